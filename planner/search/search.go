@@ -1,0 +1,322 @@
+package search
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"runtime"
+	"sync"
+	"sync/atomic"
+	"time"
+)
+
+// Options are the limits and wishes of one search. The zero value of a limit means the default named.
+type Options struct {
+	Cost        Cost
+	Count       int           // routes wanted; 5
+	MaxSteps    int           // along the longest run; 8
+	From        []Key         // items that every route must consume; at most MaxFrom
+	MakeRoot    bool          // the target is made even if it could be taken from stock
+	MaxExpanded int           // nodes opened at most; no limit
+	MaxNodes    int           // nodes held at most, for the memory; 1,000,000
+	Time        time.Duration // by the clock; no limit
+	Workers     int           // goroutines that expand; the number of processors
+	Progress    func(Progress)
+}
+
+// Progress is reported between batches.
+type Progress struct {
+	Expanded, Routes int
+	Bound            float64
+	Elapsed          time.Duration
+}
+
+// Route is one way to make the target, as a tree of nodes.
+type Route struct {
+	Cost   float64
+	Tree   *Tree
+	Proven bool
+	Stood  time.Duration // after the start, when its last node had been opened
+}
+
+// Tree is a node taken from stock (no children) or made by one edge.
+type Tree struct {
+	Key      Key
+	Edge     int // index into the expansion of Key, -1 for a leaf
+	Variant  int
+	Children []*Tree
+	Cost     float64
+}
+
+// Result of a search.
+type Result struct {
+	Routes       []Route // in order of cost; beyond Options.Count where the costs tie
+	Expanded     int
+	Tried        int // ways looked at in all expansions
+	LeftOut      int // ways left out because they may not be shown
+	Nodes        int
+	Exhausted    bool    // nothing is open within the limit of steps
+	ProvenRoutes int     // how many of the first routes are proven
+	Bound        float64 // no route outside the list costs less than this; infinite when exhausted
+	Stopped      Stop
+	Elapsed      time.Duration
+}
+
+// Stop says what ended a search.
+type Stop string
+
+// The ends of a search. Proven and Exhausted are ends by itself.
+const (
+	Proven    Stop = "proven"
+	Exhausted Stop = "exhausted"
+	ByCount   Stop = "max-expanded"
+	ByMemory  Stop = "memory"
+	ByClock   Stop = "time"
+	Cancelled Stop = "cancelled"
+)
+
+const (
+	batchSize = 64
+	// maxTies bounds the routes of equal cost drawn beyond the count.
+	maxTies = 64
+	// drawBudget and finalBudget bound the derivations looked at for one drawing of routes. Ordinary
+	// graphs need hundreds; rings of mutual interconversion could need very many.
+	drawBudget  = 20000
+	finalBudget = 200000
+)
+
+func (o Options) withDefaults() Options {
+	if o.Count <= 0 {
+		o.Count = 5
+	}
+	if o.MaxSteps <= 0 {
+		o.MaxSteps = 8
+	}
+	if o.MaxNodes <= 0 {
+		o.MaxNodes = 1_000_000
+	}
+	if o.Workers <= 0 {
+		o.Workers = runtime.GOMAXPROCS(0)
+	}
+	return o
+}
+
+// run is the working state of one search.
+type run struct {
+	o        Options
+	g        *graph
+	start    time.Time
+	result   Result
+	routes   []*tree // drawn last, at most Count and ties
+	cut      bool    // the last drawing spent its budget
+	sequence int     // number of the batch
+}
+
+// Find searches until the Count cheapest routes are proven, nothing is open, or a limit is met. The
+// error is the context's only if nothing at all could be done, and a Problem's own otherwise.
+func Find(ctx context.Context, p Problem, target Key, options Options) (*Result, error) {
+	o := options.withDefaults()
+	if len(o.From) > MaxFrom {
+		return nil, fmt.Errorf("%d items that must be consumed; at most %d are possible", len(o.From), MaxFrom)
+	}
+	r := &run{o: o, start: time.Now()}
+	r.g = newGraph(p, target, &o)
+	for {
+		r.result.Stopped = r.stop(ctx)
+		if r.result.Stopped != "" {
+			break
+		}
+		if err := r.batch(ctx); err != nil {
+			return nil, err
+		}
+		r.g.propagate()
+		r.draw(drawBudget)
+		if o.Progress != nil {
+			o.Progress(Progress{r.result.Expanded, min(len(r.routes), o.Count), r.bound(), time.Since(r.start)})
+		}
+	}
+	r.finish()
+	return &r.result, nil
+}
+
+// bound returns the least bound of any route that still has an open node.
+func (r *run) bound() float64 {
+	_, bound, _ := r.g.values(r.g.root, r.o.MaxSteps, uint8(r.g.sets-1))
+	return bound
+}
+
+// worst returns the cost that the last route wanted has now, infinite while there are too few.
+func (r *run) worst() float64 {
+	if len(r.routes) < r.o.Count {
+		return inf
+	}
+	return r.routes[r.o.Count-1].cost
+}
+
+// stop looks at the ends of the search, those that depend on the input alone first.
+func (r *run) stop(ctx context.Context) Stop {
+	bound := r.bound()
+	switch {
+	case bound == inf:
+		return Exhausted
+	case r.worst() <= bound && !r.cut:
+		return Proven
+	case r.o.MaxExpanded > 0 && r.result.Expanded >= r.o.MaxExpanded:
+		return ByCount
+	case len(r.g.nodes) >= r.o.MaxNodes:
+		return ByMemory
+	case r.late(), errors.Is(ctx.Err(), context.DeadlineExceeded):
+		return ByClock
+	case ctx.Err() != nil:
+		return Cancelled
+	}
+	return ""
+}
+
+func (r *run) late() bool { return r.o.Time > 0 && time.Since(r.start) >= r.o.Time }
+
+// choose picks the nodes to open next. Until routes stand most of the batch follows the estimates, to
+// find a first route soon; then half of it, as long as the estimates promise something cheaper than
+// what stands. The rest follows the bounds, which is what proves. The first batches are small.
+func (r *run) choose() []int32 {
+	size := batchSize
+	if r.sequence < 6 {
+		size = 1 << r.sequence
+	}
+	if r.o.MaxExpanded > 0 {
+		size = min(size, r.o.MaxExpanded-r.result.Expanded)
+	}
+	r.sequence++
+	r.g.batch++
+	_, _, estimate := r.g.values(r.g.root, r.o.MaxSteps, uint8(r.g.sets-1))
+	byGuess := 0
+	switch {
+	case len(r.routes) == 0:
+		byGuess = (3*size + 3) / 4
+	case estimate < r.worst():
+		byGuess = size / 2
+	}
+	picked := r.g.pick(nil, byGuess, true)
+	picked = r.g.pick(picked, size-len(picked), false)
+	return picked
+}
+
+// batch opens one batch of nodes in parallel and enters what was found in the order of the batch.
+func (r *run) batch(ctx context.Context) error {
+	ids := r.choose()
+	found := make([]Expansion, len(ids))
+	failed := make([]error, len(ids))
+	var next atomic.Int32
+	work := func() {
+		for {
+			i := int(next.Add(1)) - 1
+			if i >= len(ids) {
+				return
+			}
+			if r.late() {
+				failed[i] = context.DeadlineExceeded
+			} else if failed[i] = ctx.Err(); failed[i] == nil {
+				found[i], failed[i] = r.g.problem.Expand(ctx, r.g.nodes[ids[i]].key)
+			}
+		}
+	}
+	var wait sync.WaitGroup
+	for w := 1; w < min(r.o.Workers, len(ids)); w++ {
+		wait.Go(work)
+	}
+	work()
+	wait.Wait()
+	at := int64(time.Since(r.start))
+	before := r.result.Expanded
+	for i, id := range ids {
+		switch err := failed[i]; {
+		case err == nil:
+			r.g.expand(id, found[i], at)
+			r.result.Expanded++
+			r.result.Tried += found[i].Tried
+			r.result.LeftOut += found[i].LeftOut
+		case errors.Is(err, context.Canceled), errors.Is(err, context.DeadlineExceeded):
+		default:
+			return err
+		}
+	}
+	if r.result.Expanded == before && ctx.Err() == nil && !r.late() {
+		return fmt.Errorf("search: a batch of %d opened nothing", len(ids))
+	}
+	return nil
+}
+
+// draw lists the routes of the graph as it stands, in order of cost.
+func (r *run) draw(budget int) {
+	complete, _, _ := r.g.values(r.g.root, r.o.MaxSteps, uint8(r.g.sets-1))
+	if complete == inf {
+		return
+	}
+	d := newDrawer(r.g, budget)
+	r.routes = r.routes[:0]
+	seen := map[uint64][]*tree{}
+	for n := 0; ; n++ {
+		t := d.root(n)
+		if t == nil || d.budget <= 0 {
+			break
+		}
+		if k := len(r.routes); k >= r.o.Count && (t.cost > r.routes[r.o.Count-1].cost || k >= r.o.Count+maxTies) {
+			break
+		}
+		if !listed(seen[t.hash], t) {
+			seen[t.hash] = append(seen[t.hash], t)
+			r.routes = append(r.routes, t)
+		}
+	}
+	r.cut = d.budget <= 0
+}
+
+// listed says whether a route of the same molecules is in the list.
+func listed(list []*tree, t *tree) bool {
+	for _, o := range list {
+		if o.sameMolecules(t) {
+			return true
+		}
+	}
+	return false
+}
+
+// finish draws the final list and fills in the result.
+func (r *run) finish() {
+	r.draw(finalBudget)
+	bound := r.bound()
+	res := &r.result
+	res.Bound, res.Exhausted, res.Nodes = bound, bound == inf && !r.cut, len(r.g.nodes)
+	for _, t := range r.routes {
+		proven := t.cost <= bound && res.ProvenRoutes == len(res.Routes)
+		if proven {
+			res.ProvenRoutes++
+		}
+		res.Routes = append(res.Routes, Route{Cost: t.cost, Tree: r.tree(t), Proven: proven, Stood: time.Duration(r.stood(t))})
+	}
+	res.Elapsed = time.Since(r.start)
+}
+
+// stood returns when the last node of t was opened.
+func (r *run) stood(t *tree) int64 {
+	if t.edge == nil {
+		return 0
+	}
+	last := r.g.nodes[t.id].openedAt
+	for _, c := range t.children {
+		last = max(last, r.stood(c))
+	}
+	return last
+}
+
+func (r *run) tree(t *tree) *Tree {
+	out := &Tree{Key: r.g.nodes[t.id].key, Edge: -1, Variant: t.variant, Cost: t.cost}
+	if t.edge == nil {
+		return out
+	}
+	out.Edge = int(t.edge.number)
+	for _, c := range t.children {
+		out.Children = append(out.Children, r.tree(c))
+	}
+	return out
+}
