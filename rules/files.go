@@ -31,7 +31,7 @@ import (
 	"strings"
 )
 
-//go:embed *.yaml
+//go:embed *.yaml shifts
 var embedded embed.FS
 
 // builtinPrefix stands before the name of an embedded file in messages.
