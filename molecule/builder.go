@@ -1,12 +1,22 @@
 package molecule
 
+import (
+	"fmt"
+	"sync"
+
+	"shelfward/molecule/canon"
+	"shelfward/molecule/matching"
+	"shelfward/molecule/ring"
+)
+
 // AutoHydrogens in Atom.Hydrogens asks the Builder to fill hydrogens up to the lowest normal valence.
 const AutoHydrogens uint8 = 255
 
 // OrderAromatic is the bond order of aromatic input; Build assigns a Kekulé form by maximum matching.
 const OrderAromatic uint8 = 5
 
-// MaxAtoms is the largest molecule that Build accepts.
+// MaxAtoms is the largest molecule that Build accepts: far above what a bench chemist draws, and
+// small enough that a hostile text costs milliseconds.
 const MaxAtoms = 2000
 
 // Builder collects atoms and bonds; Build perceives and freezes them. Not safe for concurrent use.
@@ -25,13 +35,147 @@ type Error struct {
 
 func (e *Error) Error() string { return e.Text }
 
-// Builder returns a Builder that holds a copy of m (Kekulé orders, explicit hydrogen counts, stereo
-// marks), to be edited and built again. Atom and bond indices are kept.
-func (m *Molecule) Builder() *Builder { panic("todo") }
+// AddAtom appends a and returns its index, which stays valid until RemoveAtoms.
+func (b *Builder) AddAtom(a Atom) int {
+	b.Atoms = append(b.Atoms, a)
+	return len(b.Atoms) - 1
+}
 
-// AddAtom and AddBond append and return the index. Indices stay valid until RemoveAtoms/RemoveBonds.
-func (b *Builder) AddAtom(a Atom) int                  { panic("todo") }
-func (b *Builder) AddBond(a1, a2 int, order uint8) int { panic("todo") }
+// AddBond appends a bond and returns its index, which stays valid until RemoveAtoms or RemoveBonds.
+func (b *Builder) AddBond(a1, a2 int, order uint8) int {
+	b.Bonds = append(b.Bonds, Bond{A: int32(a1), B: int32(a2), Order: order})
+	return len(b.Bonds) - 1
+}
 
-// Build perceives and freezes; the Builder may be reused. Errors are *Error.
-func (b *Builder) Build() (*Molecule, error) { panic("todo") }
+// perceiver is the working memory of Build, reused over molecules.
+type perceiver struct {
+	m         *Molecule
+	finder    ring.Finder
+	matcher   matching.Matcher
+	inRing    []bool
+	usable    []bool
+	role      []matching.Role
+	sum       []int16 // bond orders per atom, aromatic ones counted 1 until they are assigned
+	relevant  [][]int32
+	aromatic  aromaticity
+	graph     canon.Graph
+	worker    canon.Worker
+	neighborN []int32
+}
+
+var perceivers = sync.Pool{New: func() any { return new(perceiver) }}
+
+// Build perceives and freezes; the Builder may be reused. Errors are *Error. The aromatic flags of
+// the input say only where Kekulé bonds must be found (bonds of OrderAromatic); the flags of the
+// result come from the bonds. Marks that say nothing (equal ligands, rings under 8) are dropped.
+// Hydrogen atoms stay atoms; FoldHydrogens turns them into counts.
+func (b *Builder) Build() (*Molecule, error) {
+	p := perceivers.Get().(*perceiver)
+	m, err := p.build(b)
+	p.m = nil
+	p.relevant = nil
+	perceivers.Put(p)
+	return m, err
+}
+
+func (p *perceiver) build(b *Builder) (*Molecule, error) {
+	if len(b.Atoms) > MaxAtoms {
+		return nil, &Error{-1, -1, fmt.Sprintf("the structure has %d atoms; at most %d are accepted", len(b.Atoms), MaxAtoms)}
+	}
+	m := &Molecule{
+		atoms: append(make([]Atom, 0, len(b.Atoms)), b.Atoms...),
+		bonds: append(make([]Bond, 0, len(b.Bonds)), b.Bonds...),
+	}
+	p.m = m
+	if err := p.connect(); err != nil {
+		return nil, err
+	}
+	p.findRings()
+	if err := p.assignBonds(); err != nil {
+		return nil, err
+	}
+	p.perceiveAromaticity()
+	if len(b.Centers)+len(b.DoubleBonds) > 0 {
+		p.keepStereo(b)
+	}
+	return m, nil
+}
+
+// connect checks the bonds and packs the adjacency.
+func (p *perceiver) connect() error {
+	m := p.m
+	n := len(m.atoms)
+	ints := make([]int32, n+1+len(m.bonds))
+	m.first, m.bondRing = ints[:n+1:n+1], ints[n+1:]
+	for i := range m.bonds {
+		x := &m.bonds[i]
+		if x.A < 0 || x.B < 0 || int(x.A) >= n || int(x.B) >= n {
+			return &Error{-1, i, fmt.Sprintf("bond %d names an atom that does not exist", i+1)}
+		}
+		if x.A == x.B {
+			return &Error{int(x.A), i, "an atom is bonded to itself"}
+		}
+		if x.Order < 1 || x.Order > OrderAromatic {
+			return &Error{-1, i, fmt.Sprintf("bond order %d; expected 1 to 4 or aromatic", x.Order)}
+		}
+		m.first[x.A]++
+		m.first[x.B]++
+	}
+	sum := int32(0)
+	for a, c := range m.first {
+		m.first[a] = sum
+		sum += c
+	}
+	m.neighbors = make([]Neighbor, sum)
+	for i := range m.bonds {
+		x := &m.bonds[i]
+		m.neighbors[m.first[x.A]] = Neighbor{Atom: x.B, Bond: int32(i)}
+		m.first[x.A]++
+		m.neighbors[m.first[x.B]] = Neighbor{Atom: x.A, Bond: int32(i)}
+		m.first[x.B]++
+	}
+	copy(m.first[1:], m.first[:n])
+	m.first[0] = 0
+	for a := range m.atoms {
+		nbs := m.Neighbors(a)
+		for i, x := range nbs {
+			for _, y := range nbs[:i] {
+				if x.Atom == y.Atom {
+					return &Error{a, int(x.Bond), "two bonds join the same two atoms"}
+				}
+			}
+		}
+	}
+	return nil
+}
+
+// findRings fills the ring data of m and the relevant cycles.
+func (p *perceiver) findRings() {
+	m := p.m
+	p.inRing = sizedBools(p.inRing, len(m.bonds))
+	p.relevant = nil
+	if len(m.bonds) == 0 {
+		return
+	}
+	rings := p.finder.Find(m.first, m.neighbors, p.inRing)
+	m.rings, p.relevant = rings.Basis, rings.Relevant
+	for i := range m.bonds {
+		m.bonds[i].Ring = p.inRing[i]
+	}
+	for _, r := range m.rings {
+		size := int32(len(r))
+		for i, a := range r {
+			b := m.BondBetween(int(a), int(r[(i+1)%len(r)]))
+			if m.bondRing[b] == 0 || size < m.bondRing[b] {
+				m.bondRing[b] = size
+			}
+		}
+	}
+}
+
+func sizedBools(s []bool, n int) []bool {
+	if cap(s) < n {
+		return make([]bool, n, n+n/2)
+	}
+	return s[:n]
+}

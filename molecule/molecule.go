@@ -1,7 +1,11 @@
 // Package molecule holds the frozen molecular graph: atoms and bonds in flat slices, packed
 // adjacency, hydrogens, rings, aromaticity and stereo perceived once when a Builder builds it.
 // A *Molecule is immutable and safe to share between goroutines.
+//
+// Short names: m is a molecule, a an atom index, b a bond index, both from 0.
 package molecule
+
+import "sync/atomic"
 
 // Element is an atomic number; 0 is the unknown atom '*'.
 type Element uint8
@@ -24,8 +28,9 @@ type Bond struct {
 	Ring     bool
 }
 
-// Neighbor is one entry of the packed adjacency: the atom across and the bond between.
-type Neighbor struct{ Atom, Bond int32 }
+// Neighbor is one entry of the packed adjacency: the atom across and the bond between. It is an
+// alias so that the pure graph packages below can take the adjacency as it is.
+type Neighbor = struct{ Atom, Bond int32 }
 
 // Ligand places that are not atoms of the graph.
 const (
@@ -49,91 +54,114 @@ type DoubleBond struct {
 	Together bool
 }
 
-// Key identifies a molecule: a 128-bit hash of its canonical certificate.
-type Key [16]byte
-
 // Molecule is a frozen molecular graph; see the package comment.
 type Molecule struct {
-	atoms []Atom
-	bonds []Bond
+	atoms       []Atom
+	bonds       []Bond
+	first       []int32    // atom -> start of its neighbours, one more entry than atoms
+	neighbors   []Neighbor // all adjacency lists, one after the other
+	rings       [][]int32
+	bondRing    []int32 // bond -> size of its smallest ring, 0 none
+	centers     []Center
+	doubleBonds []DoubleBond
+
+	exact, flat, seen atomic.Pointer[identity] // made when first asked for
 }
 
-func (m *Molecule) NumAtoms() int   { panic("todo") }
-func (m *Molecule) NumBonds() int   { panic("todo") }
-func (m *Molecule) Atom(a int) Atom { panic("todo") }
-func (m *Molecule) Bond(b int) Bond { panic("todo") }
+// NumAtoms returns the number of atoms of the graph (folded hydrogens not counted).
+func (m *Molecule) NumAtoms() int { return len(m.atoms) }
+
+// NumBonds returns the number of bonds of the graph.
+func (m *Molecule) NumBonds() int { return len(m.bonds) }
+
+// Atom returns atom a.
+func (m *Molecule) Atom(a int) Atom { return m.atoms[a] }
+
+// Bond returns bond b.
+func (m *Molecule) Bond(b int) Bond { return m.bonds[b] }
 
 // Neighbors returns the packed adjacency of a: shared, read only.
-func (m *Molecule) Neighbors(a int) []Neighbor { panic("todo") }
-func (m *Molecule) Degree(a int) int           { panic("todo") }
+func (m *Molecule) Neighbors(a int) []Neighbor { return m.neighbors[m.first[a]:m.first[a+1]] }
+
+// Degree returns the number of bonds of a in the graph.
+func (m *Molecule) Degree(a int) int { return int(m.first[a+1] - m.first[a]) }
 
 // BondBetween returns the bond that joins a and b, or -1.
-func (m *Molecule) BondBetween(a, b int) int { panic("todo") }
-
-// Rings returns a minimal cycle basis, each ring its atoms in cyclic order: shared, read only.
-func (m *Molecule) Rings() [][]int32  { panic("todo") }
-func (m *Molecule) InRing(a int) bool { panic("todo") }
-
-// SmallestRing returns the size of the smallest ring through atom a, 0 if none.
-func (m *Molecule) SmallestRing(a int) int { panic("todo") }
-
-// SmallestBondRing returns the size of the smallest ring through bond b, 0 if none.
-func (m *Molecule) SmallestBondRing(b int) int { panic("todo") }
-
-// Components labels each atom with its connected component, 0.. in order of first atom.
-func (m *Molecule) Components() (count int, label []int32) { panic("todo") }
-
-// Split returns the connected components as molecules of their own.
-func (m *Molecule) Split() []*Molecule { panic("todo") }
-
-// Centers and DoubleBonds list the stereo marks kept (void marks are dropped).
-func (m *Molecule) Centers() []Center         { panic("todo") }
-func (m *Molecule) DoubleBonds() []DoubleBond { panic("todo") }
-
-// Ranks gives each atom its place in the canonical order (a permutation).
-func (m *Molecule) Ranks() []int32 { panic("todo") }
-
-// Orbits gives each atom the lowest index of the atoms equivalent to it by symmetry, stereo included.
-func (m *Molecule) Orbits() []int32 { panic("todo") }
-
-// Key is the exact identity, FlatKey ignores stereo, SeenThroughKey also sees through salts,
-// charge-separated forms and hydrogens shifting between N, O, S along a conjugated path, and simple enols.
-func (m *Molecule) Key() Key            { panic("todo") }
-func (m *Molecule) FlatKey() Key        { panic("todo") }
-func (m *Molecule) SeenThroughKey() Key { panic("todo") }
-
-// FreeForm returns the neutral parent: metal cations and counter-ions of salts dropped, protons restored.
-func (m *Molecule) FreeForm() *Molecule { panic("todo") }
-
-// Mirror returns the mirror image; WithoutStereo drops all stereo marks.
-func (m *Molecule) Mirror() *Molecule        { panic("todo") }
-func (m *Molecule) WithoutStereo() *Molecule { panic("todo") }
-
-// Join puts several molecules into one graph; atoms keep their order, shifted.
-func Join(ms ...*Molecule) *Molecule { panic("todo") }
-func (m *Molecule) Formula() Formula { panic("todo") }
-
-// Formula counts atoms by element, hydrogens included, with the total charge.
-type Formula struct {
-	Count  [119]int32
-	Charge int32
+func (m *Molecule) BondBetween(a, b int) int {
+	for _, nb := range m.Neighbors(a) {
+		if nb.Atom == int32(b) {
+			return int(nb.Bond)
+		}
+	}
+	return -1
 }
 
-// String writes f in Hill order ("C8H16O").
-func (f Formula) String() string { panic("todo") }
+// Other returns the atom across bond b from a.
+func (m *Molecule) Other(b, a int) int {
+	x := m.bonds[b]
+	return int(x.A + x.B - int32(a))
+}
 
-// ParseFormula reads a formula such as C8H16O or C2H6OS; errors name the position.
-func ParseFormula(s string) (Formula, error) { panic("todo") }
+// Rings returns a minimal cycle basis, each ring its atoms in cyclic order: shared, read only.
+// Which basis is taken can depend on the numbering where several are minimal (cages).
+func (m *Molecule) Rings() [][]int32 { return m.rings }
 
-// MolarMass in g/mol from IUPAC standard atomic weights.
-func (f Formula) MolarMass() float64 { panic("todo") }
+// InRing says whether a lies in a ring.
+func (m *Molecule) InRing(a int) bool {
+	for _, nb := range m.Neighbors(a) {
+		if m.bondRing[nb.Bond] > 0 {
+			return true
+		}
+	}
+	return false
+}
 
-// MonoisotopicMass in Da, electron mass of the charge counted.
-func (f Formula) MonoisotopicMass() float64 { panic("todo") }
+// SmallestRing returns the size of the smallest ring through atom a, 0 if none.
+func (m *Molecule) SmallestRing(a int) int {
+	size := int32(0)
+	for _, nb := range m.Neighbors(a) {
+		if r := m.bondRing[nb.Bond]; r > 0 && (size == 0 || r < size) {
+			size = r
+		}
+	}
+	return int(size)
+}
 
-// Unsaturation: rings plus pi bonds, standard valences; half-integers mean an odd electron count.
-func (f Formula) Unsaturation() float64 { panic("todo") }
+// SmallestBondRing returns the size of the smallest ring through bond b, 0 if none.
+func (m *Molecule) SmallestBondRing(b int) int { return int(m.bondRing[b]) }
 
-// Symbol and ElementBySymbol translate between atomic numbers and symbols.
-func (e Element) Symbol() string               { panic("todo") }
-func ElementBySymbol(s string) (Element, bool) { panic("todo") }
+// Centers lists the tetrahedral marks kept (void marks are dropped): shared, read only.
+func (m *Molecule) Centers() []Center { return m.centers }
+
+// DoubleBonds lists the double bond marks kept (void marks are dropped): shared, read only.
+func (m *Molecule) DoubleBonds() []DoubleBond { return m.doubleBonds }
+
+// HasStereo says whether any stereo mark is kept.
+func (m *Molecule) HasStereo() bool { return len(m.centers)+len(m.doubleBonds) > 0 }
+
+// Components labels each atom with its connected component, 0.. in order of first atom.
+func (m *Molecule) Components() (count int, label []int32) {
+	label = make([]int32, len(m.atoms))
+	for i := range label {
+		label[i] = -1
+	}
+	var stack []int32
+	for a := range m.atoms {
+		if label[a] >= 0 {
+			continue
+		}
+		label[a] = int32(count)
+		for stack = append(stack[:0], int32(a)); len(stack) > 0; {
+			x := stack[len(stack)-1]
+			stack = stack[:len(stack)-1]
+			for _, nb := range m.Neighbors(int(x)) {
+				if label[nb.Atom] < 0 {
+					label[nb.Atom] = int32(count)
+					stack = append(stack, nb.Atom)
+				}
+			}
+		}
+		count++
+	}
+	return count, label
+}

@@ -1,0 +1,79 @@
+package molecule
+
+import (
+	"encoding/binary"
+	"encoding/hex"
+)
+
+// Key identifies a molecule: a 128-bit hash of its canonical certificate.
+type Key [16]byte
+
+// String writes k in hexadecimal.
+func (k Key) String() string { return hex.EncodeToString(k[:]) }
+
+// identity is the outcome of one labelling.
+type identity struct {
+	key    Key
+	ranks  []int32
+	orbits []int32
+}
+
+// label labels m with or without its stereo marks.
+func (m *Molecule) label(stereo bool) *identity {
+	p := perceivers.Get().(*perceiver)
+	p.fillGraph(m, stereo)
+	l := p.worker.Label(&p.graph)
+	p.graph.First, p.graph.Neighbors = nil, nil
+	perceivers.Put(p)
+	id := &identity{ranks: l.Ranks, orbits: l.Orbits}
+	binary.BigEndian.PutUint64(id.key[:8], l.Hash[0])
+	binary.BigEndian.PutUint64(id.key[8:], l.Hash[1])
+	return id
+}
+
+func (m *Molecule) exactIdentity() *identity {
+	if id := m.exact.Load(); id != nil {
+		return id
+	}
+	id := m.label(true)
+	m.exact.Store(id)
+	return id
+}
+
+func (m *Molecule) flatIdentity() *identity {
+	if !m.HasStereo() {
+		return m.exactIdentity()
+	}
+	if id := m.flat.Load(); id != nil {
+		return id
+	}
+	id := m.label(false)
+	m.flat.Store(id)
+	return id
+}
+
+// Ranks gives each atom its place in the canonical order (a permutation): shared, read only.
+func (m *Molecule) Ranks() []int32 { return m.exactIdentity().ranks }
+
+// Orbits gives each atom the lowest index of the atoms equivalent to it by symmetry, stereo
+// included: shared, read only. Mirror-related (enantiotopic) atoms are equivalent where no mark
+// tells them apart.
+func (m *Molecule) Orbits() []int32 { return m.exactIdentity().orbits }
+
+// FlatOrbits is Orbits with stereo left out.
+func (m *Molecule) FlatOrbits() []int32 { return m.flatIdentity().orbits }
+
+// Key is the exact identity: constitution, isotopes, charges and stereo marks; never atom classes.
+// It is the same on every machine and in every run of one version of the program.
+func (m *Molecule) Key() Key { return m.exactIdentity().key }
+
+// FlatKey is the identity without stereo.
+func (m *Molecule) FlatKey() Key { return m.flatIdentity().key }
+
+// SeenThroughKey is the exact identity of the form in which salts are free acids and bases,
+// charge-separated forms are one, hydrogens that shift between N, O and S along a conjugated path
+// stand at one place, and a simple enol is its ketone.
+func (m *Molecule) SeenThroughKey() Key { panic("todo") }
+
+// FreeForm returns the neutral parent: metal cations and counter-ions of salts dropped, protons restored.
+func (m *Molecule) FreeForm() *Molecule { panic("todo") }

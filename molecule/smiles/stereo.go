@@ -1,0 +1,57 @@
+package smiles
+
+import "shelfward/molecule"
+
+// addCenter turns a mark into a centre of the builder. Marks whose atom has not three or four
+// ligands are left out; Build drops those that its atom cannot hold.
+func (r *reader) addCenter(k *mark) {
+	if k.count == 3 {
+		// A lone pair counts as the last ligand, wherever the atom stands.
+		k.add(molecule.LigandLonePair)
+	}
+	if k.count != 4 {
+		return
+	}
+	c := molecule.Center{Atom: k.atom, Clockwise: k.clockwise}
+	copy(c.Ligands[:], k.ligands[:4])
+	r.b.Centers = append(r.b.Centers, c)
+}
+
+// side is where a marked neighbour of a double bond end lies.
+type side struct {
+	atom int32
+	up   bool
+	pos  int32
+}
+
+// addDoubleBonds reads the directions around each double bond.
+func (r *reader) addDoubleBonds() error {
+	sides := map[int32][]side{}
+	for i, d := range r.bondDir {
+		if d == 0 {
+			continue
+		}
+		x := r.b.Bonds[i]
+		// Written A then B: '/' puts B above A, and A below B.
+		sides[x.A] = append(sides[x.A], side{x.B, d > 0, r.bondAt[i]})
+		sides[x.B] = append(sides[x.B], side{x.A, d < 0, r.bondAt[i]})
+	}
+	for i := range r.b.Bonds {
+		x := r.b.Bonds[i]
+		if x.Order != 2 {
+			continue
+		}
+		a, b := sides[x.A], sides[x.B]
+		if len(a) == 0 || len(b) == 0 {
+			continue
+		}
+		for _, s := range [2][]side{a, b} {
+			if len(s) == 2 && s[0].up == s[1].up {
+				return r.fail(int(max(s[0].pos, s[1].pos)), "the two marks at one end of the double bond put both neighbours on one side")
+			}
+		}
+		r.b.DoubleBonds = append(r.b.DoubleBonds, molecule.DoubleBond{
+			Bond: int32(i), A: a[0].atom, B: b[0].atom, Together: a[0].up == b[0].up})
+	}
+	return nil
+}
