@@ -60,6 +60,8 @@ type Piece struct {
 	Name  string // used in errors and assumptions
 	Atoms []PieceAtom
 	Bonds []PieceBond
+
+	kekule []uint8 // order of each bond in a Kekulé form where PieceOf knows it
 }
 
 // PieceOf turns a molecule into a Piece. An atom class n on an atom takes n of its hydrogens away

@@ -1,0 +1,245 @@
+package isomer
+
+// The Kekulé forms of one aromatic compound are different codes. One of them stands for the
+// compound: that whose code is the largest. Which bonds are aromatic is for package molecule to say;
+// only the commonest case is settled here, a single six-membered ring of alternating bonds.
+
+// plainKekule reports whether the code of s is the largest among those of its Kekulé forms; s has no
+// blocks.
+func (w *workspace) plainKekule(s *search) bool {
+	if s.rings == 0 || !w.findPi(s) {
+		return true
+	}
+	ring, several := w.alternating(s)
+	switch {
+	case len(ring) == 0:
+		return true
+	case !several && len(ring) == 6 && s.isolatedRing(ring):
+		adj := s.adj
+		flip(&adj, &s.deg, ring)
+		j := judge{&s.kind, &s.deg, &adj, &s.row, s.plan.units}
+		return !j.beats(s.plan.root, s.met)
+	}
+	w.write(s)
+	w.perceive(s)
+	return w.largestForm(s, &s.kind, 0)
+}
+
+// beats reports whether some tour has a larger code than the rows that stand.
+func (j *judge) beats(root uint8, units int) bool {
+	for u := 0; u < units; u++ {
+		if j.kind[u] == root {
+			switch j.from(u) {
+			case larger:
+				return true
+			case same:
+				return false // the same code: a picture of the structure itself
+			}
+		}
+	}
+	return false
+}
+
+// findPi notes the partner of each unit that has exactly one double bond; it reports whether there
+// are three double bonds, the least that resonance needs.
+func (w *workspace) findPi(s *search) bool {
+	n := 0
+	for u := 0; u < s.met; u++ {
+		w.pi[u] = -1
+		if s.twos[u] != 1 {
+			continue
+		}
+		n++
+		for _, e := range s.adj[u][:s.deg[u]] {
+			if e.code == 2 {
+				w.pi[u] = int8(e.to)
+			}
+		}
+	}
+	return n >= 6
+}
+
+// alternation is the search for rings of alternating single and double bonds.
+type alternation struct {
+	path, ring [maxUnits]uint8
+	length     int  // of the first ring found, 0 for none
+	several    bool // there are others
+}
+
+// alternating looks for rings of alternating bonds; it returns one, nil if there is none, and
+// whether there are others. Four alternating bonds alone are never aromatic and do not count.
+func (w *workspace) alternating(s *search) (ring []uint8, several bool) {
+	alt := &w.alternation
+	alt.length, alt.several = 0, false
+	for u := uint8(0); int(u) < s.met && !alt.several; u++ {
+		if w.pi[u] > int8(u) {
+			v := uint8(w.pi[u])
+			alt.path[0], alt.path[1] = u, v
+			w.walk(s, v, 2, 1<<u|1<<v)
+		}
+	}
+	return alt.ring[:alt.length], alt.several
+}
+
+// walk stands at u, reached over a double bond as the n-th unit of the path, and goes on over single
+// bonds. Units below the first of the path are left out, so that each ring is met once.
+func (w *workspace) walk(s *search, u uint8, n int, on uint32) {
+	alt := &w.alternation
+	start := alt.path[0]
+	for _, e := range s.adj[u][:s.deg[u]] {
+		switch {
+		case e.code != 1 || alt.several:
+		case e.to == start:
+			if n >= 6 {
+				alt.several = alt.length > 0
+				alt.ring, alt.length = alt.path, n
+			}
+		case w.pi[e.to] > int8(start) && e.to > start && on>>e.to&1 == 0:
+			v := uint8(w.pi[e.to])
+			alt.path[n], alt.path[n+1] = e.to, v
+			w.walk(s, v, n+2, on|1<<e.to|1<<v)
+		}
+	}
+}
+
+// flip exchanges single and double bonds round a ring whose bonds 0-1, 2-3 ... are double.
+func flip(adj *[maxUnits][maxDegree]edge, deg *[maxUnits]uint8, ring []uint8) {
+	for x := range ring {
+		a, b := ring[x], ring[(x+1)%len(ring)]
+		setCode(adj, deg, a, b, uint8(1+x%2))
+	}
+}
+
+func setCode(adj *[maxUnits][maxDegree]edge, deg *[maxUnits]uint8, a, b, code uint8) {
+	for _, x := range [2][2]uint8{{a, b}, {b, a}} {
+		for i := range adj[x[0]][:deg[x[0]]] {
+			if adj[x[0]][i].to == x[1] {
+				adj[x[0]][i].code = code
+			}
+		}
+	}
+}
+
+// isolatedRing reports whether a six-membered ring is certainly one of the smallest rings: no chord,
+// no short cut of two or three bonds between units that are not neighbours in it.
+func (s *search) isolatedRing(ring []uint8) bool {
+	var in uint32
+	for _, u := range ring {
+		in |= 1 << u
+	}
+	for x, u := range ring {
+		var near, far uint32 // units outside the ring within one and two bonds of u
+		for _, e := range s.adj[u][:s.deg[u]] {
+			if in>>e.to&1 == 0 {
+				near |= 1 << e.to
+			} else if e.to != ring[(x+1)%6] && e.to != ring[(x+5)%6] {
+				return false
+			}
+		}
+		far = near
+		for v := 0; v < s.met; v++ {
+			if near>>v&1 != 0 {
+				for _, e := range s.adj[v][:s.deg[v]] {
+					far |= 1 << e.to
+				}
+			}
+		}
+		for _, y := range [3]int{2, 3, 4} {
+			for _, e := range s.adj[ring[(x+y)%6]][:s.deg[ring[(x+y)%6]]] {
+				if in>>e.to&1 == 0 && far>>e.to&1 != 0 {
+					return false
+				}
+			}
+		}
+	}
+	return true
+}
+
+// perceive marks the aromatic links of the structure written.
+func (w *workspace) perceive(s *search) {
+	m, err := w.structure.Materialise()
+	if err != nil {
+		return // the builder accepts every valence the search uses; a structure it refuses has no aromatic bond to mark
+	}
+	for i := range w.links {
+		l := &w.links[i]
+		if b := m.BondBetween(int(w.first[l.a]), int(w.first[l.b])); b >= 0 {
+			l.aromatic = m.Bond(b).Aromatic
+		}
+	}
+}
+
+// largestForm reports whether no Kekulé form of the aromatic links has a larger code than s, when
+// units have the given kinds and the links in the set inside are bonds of blocks.
+func (w *workspace) largestForm(s *search, kinds *[maxUnits]uint8, inside uint64) bool {
+	adj := s.adj
+	var mate [maxUnits]bool // units whose double bond is aromatic and outside blocks
+	var covered uint32
+	for i, l := range w.links {
+		if inside>>i&1 != 0 {
+			covered |= 1<<l.a | 1<<l.b
+			code := l.order + inner - 1
+			if l.aromatic {
+				code = innerAromatic
+			}
+			setCode(&adj, &s.deg, l.a, l.b, code)
+		} else {
+			setCode(&adj, &s.deg, l.a, l.b, l.order)
+		}
+	}
+	for _, l := range w.links {
+		if l.aromatic && l.order == 2 {
+			mate[l.a], mate[l.b] = true, true
+		}
+	}
+	var open uint32
+	for i, l := range w.links {
+		if !l.aromatic || inside>>i&1 != 0 {
+			continue
+		}
+		setCode(&adj, &s.deg, l.a, l.b, 1)
+		for _, u := range [2]uint8{l.a, l.b} {
+			if mate[u] && !w.aromaticInside(u, inside) {
+				open |= 1 << u
+			}
+		}
+	}
+	j := judge{kinds, &s.deg, &adj, &s.row, s.plan.units}
+	var match func(open uint32) bool
+	match = func(open uint32) bool {
+		if open == 0 {
+			return !j.beats(s.plan.root, s.met)
+		}
+		var u uint8
+		for open>>u&1 == 0 {
+			u++
+		}
+		for i, l := range w.links {
+			if !l.aromatic || inside>>i&1 != 0 || l.a != u && l.b != u {
+				continue
+			}
+			v := l.a + l.b - u
+			if open>>v&1 == 0 {
+				continue
+			}
+			setCode(&adj, &s.deg, u, v, 2)
+			ok := match(open &^ (1<<u | 1<<v))
+			setCode(&adj, &s.deg, u, v, 1)
+			if !ok {
+				return false
+			}
+		}
+		return true
+	}
+	return match(open)
+}
+
+// aromaticInside reports whether unit u has its aromatic double bond inside a block.
+func (w *workspace) aromaticInside(u uint8, inside uint64) bool {
+	for i, l := range w.links {
+		if inside>>i&1 != 0 && l.aromatic && (l.a == u || l.b == u) {
+			return true
+		}
+	}
+	return false
+}

@@ -1,0 +1,297 @@
+package isomer
+
+import (
+	"sort"
+
+	"shelfward/molecule"
+)
+
+// kind is a colour of units: an atom in a stated state with a stated number of hydrogens, free or
+// as part of a block.
+type kind struct {
+	state     *state
+	hydrogens uint8
+	free      uint8 // valence left for bonds chosen by the search
+
+	block int         // index in plan.blocks of the block it belongs to, or -1
+	site  int         // lowest index of the equivalent atoms of the block
+	inner []innerBond // kinds of bonds inside the block
+	need  uint32      // how many bonds of each entry of inner a unit has, four bits each
+	share uint8       // units of this kind in one instance of the block
+}
+
+// innerBond is a kind of bond inside a block: its code and the kind across.
+type innerBond struct{ code, kind uint8 }
+
+// plan is one distribution of hydrogens and states over the atoms: the units to be joined.
+type plan struct {
+	kinds []kind // from 1, in the order of their tokens
+	count []uint8
+	top   uint8 // last kind
+	root  uint8 // the kind that codes begin with: the rarest
+	units int
+
+	excess             int // bond orders beyond those of a tree
+	minRings, maxRings int // rings between units
+	allow              [maxUnits][maxUnits]bondSet
+	noCumulated        bool
+	local              bool // prefixes have more to meet than the code (sound)
+	blocks             []*variant
+	perBlock           []int // instances of each block
+	aromatic           bool  // some block has aromatic bonds
+
+	problem *compiled
+}
+
+// bondSet is a set of bond orders, bit n for order n.
+type bondSet uint8
+
+func (b bondSet) has(order uint8) bool { return b>>order&1 != 0 }
+
+const anyOrder bondSet = 1<<1 | 1<<2 | 1<<3
+
+// pool is a number of atoms in one state whose hydrogens are to be chosen.
+type pool struct {
+	state *state
+	count int
+	split [5]int // atoms with 0 to 4 hydrogens
+}
+
+// plans calls yield with every plan of the problem in a fixed order, until yield returns false.
+func (c *compiled) plans(yield func(*plan) bool) bool {
+	return c.chooseVariants(0, nil, nil, c.atoms, c.hydrogens, func(blocks []*variant, count []int, atoms [maxElement]int, hydrogens int) bool {
+		return c.chooseStates(0, nil, atoms, func(pools []pool) bool {
+			return c.chooseHydrogens(pools, 0, hydrogens, blocks, count, yield)
+		})
+	})
+}
+
+// chooseStates distributes the atoms that belong to no block over the states.
+func (c *compiled) chooseStates(i int, pools []pool, atoms [maxElement]int, yield func([]pool) bool) bool {
+	if i == len(c.states) {
+		for _, n := range atoms {
+			if n != 0 {
+				return true
+			}
+		}
+		return yield(pools)
+	}
+	st := c.states[i]
+	for n := 0; ; n++ {
+		if n > 0 {
+			atoms[st.element]--
+			for _, w := range st.with {
+				atoms[w.element]--
+			}
+			for _, left := range atoms {
+				if left < 0 {
+					return true
+				}
+			}
+		}
+		if st.plain() && atoms[st.element] > 0 {
+			continue // plain states come last of their element and take what is left
+		}
+		next := pools
+		if n > 0 {
+			next = append(pools[:len(pools):len(pools)], pool{state: st, count: n})
+		}
+		if !c.chooseStates(i+1, next, atoms, yield) {
+			return false
+		}
+	}
+}
+
+// chooseHydrogens distributes the hydrogens over the pools.
+func (c *compiled) chooseHydrogens(pools []pool, i, hydrogens int, blocks []*variant, count []int, yield func(*plan) bool) bool {
+	if i == len(pools) {
+		if hydrogens != 0 {
+			return true
+		}
+		p := c.plan(pools, blocks, count)
+		return p == nil || yield(p)
+	}
+	pl := &pools[i]
+	var split func(h, atoms, left int) bool
+	split = func(h, atoms, left int) bool {
+		if h == 0 {
+			pl.split[0] = atoms
+			return c.chooseHydrogens(pools, i+1, left, blocks, count, yield)
+		}
+		for n := 0; n <= atoms && n*h <= left; n++ {
+			pl.split[h] = n
+			if !split(h-1, atoms-n, left-n*h) {
+				return false
+			}
+		}
+		pl.split[h] = 0
+		return true
+	}
+	return split(min(pl.state.valence, pl.state.maxHydrogens), pl.count, hydrogens)
+}
+
+// plan builds the plan of chosen pools and blocks; nil if it cannot hold together.
+func (c *compiled) plan(pools []pool, blocks []*variant, blockCount []int) *plan {
+	type counted struct {
+		kind
+		n int
+	}
+	var list []counted
+	carbons, hetero, units := c.blockHydrogens(blocks, blockCount)
+	stubs := 0
+	for _, pl := range pools {
+		for h, n := range pl.split {
+			if n == 0 {
+				continue
+			}
+			list = append(list, counted{kind{state: pl.state, hydrogens: uint8(h), free: uint8(pl.state.valence - h), block: -1, share: 1}, n})
+			units += n
+			carbons[0] += n * pl.state.companions(carbon)
+			stubs += n * (pl.state.valence - h)
+			if pl.state.element == carbon {
+				carbons[min(h, 3)] += n
+			} else {
+				hetero += n * h
+			}
+		}
+	}
+	for h, n := range carbons {
+		if !c.Carbons[h].Holds(n) {
+			return nil
+		}
+	}
+	if !c.enough(pools) {
+		return nil
+	}
+	if !c.OnHetero.Holds(hetero) || units == 0 || units > maxUnits {
+		return nil
+	}
+	parts := units
+	for b, v := range blocks {
+		n := blockCount[b]
+		parts -= n * (len(v.atoms) - 1)
+		for _, k := range v.siteKinds(b) {
+			list = append(list, counted{k, n * int(k.share)})
+			stubs += n * int(k.share) * int(k.free)
+		}
+	}
+	p := &plan{units: units, problem: c, blocks: blocks, perBlock: blockCount, noCumulated: c.NoCumulated}
+	p.excess = stubs/2 - (parts - 1)
+	if stubs%2 != 0 || p.excess < 0 || len(list) >= maxUnits {
+		return nil
+	}
+	sort.SliceStable(list, func(i, j int) bool { return kindBefore(&list[i].kind, &list[j].kind) })
+	p.kinds, p.count = make([]kind, 1, len(list)+1), make([]uint8, 1, len(list)+1)
+	for _, x := range list {
+		if x.free == 0 && x.block < 0 && units > 1 {
+			return nil
+		}
+		p.kinds, p.count = append(p.kinds, x.kind), append(p.count, uint8(x.n))
+	}
+	p.top = uint8(len(list))
+	p.linkSites()
+	p.chooseRoot()
+	p.setRings()
+	p.setAllowed()
+	return p
+}
+
+// kindBefore orders kinds: the more bonds, the larger the token.
+func kindBefore(a, b *kind) bool {
+	switch {
+	case a.free != b.free:
+		return a.free < b.free
+	case a.block != b.block:
+		return a.block < b.block
+	case a.site != b.site:
+		return a.site < b.site
+	case a.state.element != b.state.element:
+		return a.state.element > b.state.element
+	case len(a.state.with) != len(b.state.with):
+		return len(a.state.with) < len(b.state.with)
+	default:
+		return a.hydrogens < b.hydrogens
+	}
+}
+
+// chooseRoot takes the rarest kind, so that few units compete for the first place.
+func (p *plan) chooseRoot() {
+	p.root = 1
+	for k := uint8(1); k <= p.top; k++ {
+		if p.count[k] <= p.count[p.root] {
+			p.root = k
+		}
+	}
+}
+
+// setRings turns the bounds on rings into bounds on rings between units.
+func (p *plan) setRings() {
+	inside := 0
+	for b, v := range p.blocks {
+		inside += p.perBlock[b] * v.rings()
+	}
+	p.minRings, p.maxRings = 0, maxUnits*4
+	if r := p.problem.Rings; r.Set {
+		p.minRings, p.maxRings = r.Min-inside, r.Max-inside
+	}
+}
+
+// setAllowed fills the table of allowed bonds.
+func (p *plan) setAllowed() {
+	c := p.problem
+	for a := 1; a <= int(p.top); a++ {
+		for b := 1; b <= int(p.top); b++ {
+			p.allow[a][b] = anyOrder
+			for _, ban := range c.Bonds {
+				p.allow[a][b] &^= ban.between(p.kinds[a].state.element, p.kinds[b].state.element)
+			}
+		}
+	}
+	for a := 1; a <= int(p.top); a++ {
+		for b := 1; b <= int(p.top); b++ {
+			if p.kinds[a].state.oxide() && p.kinds[b].state.element == oxygen {
+				// [N+]([O-])=O is the state nitro, not an N-oxide with a double bond to oxygen.
+				p.allow[a][b] &^= 1 << 2
+				p.allow[b][a] &^= 1 << 2
+			}
+		}
+	}
+	p.local = c.NoRings != 0 || c.NoSmallRing || len(c.Lacks) > 0
+}
+
+// between gives the bond orders that the ban takes from bonds between elements a and b.
+func (ban BondBan) between(a, b molecule.Element) bondSet {
+	if (ban.A != a || ban.B != b) && (ban.A != b || ban.B != a) {
+		return 0
+	}
+	if ban.Order == 0 {
+		return anyOrder
+	}
+	return 1 << ban.Order
+}
+
+// enough reports whether the pools hold the units that blocks of one unit ask for.
+func (c *compiled) enough(pools []pool) bool {
+	for i, r := range c.required {
+		have, asked := 0, 0
+		for _, pl := range pools {
+			if pl.state != r.state {
+				continue
+			}
+			for h, n := range pl.split {
+				if r.hydrogens == AnyHydrogens || int(r.hydrogens) == h {
+					have += n
+				}
+			}
+		}
+		for j, o := range c.required {
+			if o.state == r.state && (r.hydrogens == AnyHydrogens || o.hydrogens == r.hydrogens) && (j <= i || r.hydrogens == AnyHydrogens) {
+				asked += o.count
+			}
+		}
+		if have < asked {
+			return false
+		}
+	}
+	return true
+}
