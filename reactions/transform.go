@@ -1,9 +1,72 @@
 package reactions
 
-// Transform is one textbook reaction class, compiled; rules/transforms.md describes its source.
+import (
+	"shelfward/molecule"
+	"shelfward/molecule/pattern"
+)
+
+// Transform is one textbook reaction class, compiled; rules/transforms.md describes its source. It is
+// immutable and safe to share.
 type Transform struct {
-	ID, Name, Family string
-	Conditions       []*Conditions
+	ID, Name, Family, Summary string
+	Conditions                []*Conditions
+	Reactants, Products       []string // the parts as written
+	Everywhere                bool
+	Dangers                   []string
+	Source, Provenance        string
+	File                      string // file and line of its definition
+	Examples, Rejects         []Example
+
+	script      *script
+	part        [2][]partQuery // per side
+	choices     map[int][]*molecule.Molecule
+	partChoices map[int][]coproduct // product part -> molecules that the target need not contain
+	same        []int               // reactant parts (from 0) that must be one kind of molecule
+	closes      ringSizes
+	prefers     []preference
+	goesOn      []goesOn
+}
+
+// partQuery is one part of a side, compiled alone: its query atoms are those of the side from first on.
+type partQuery struct {
+	query       *pattern.Query
+	first       int
+	significant []int // query atoms whose place makes a difference to the outcome
+}
+
+// coproduct is a molecule that completes a product part backwards; same stands for the target itself.
+type coproduct struct {
+	m       *molecule.Molecule
+	classAt map[int]int32
+	same    bool
+}
+
+// goesOn says that the product reacts again with a partner that fits the query.
+type goesOn struct {
+	part  int // from 0
+	query *pattern.Query
+	why   string
+}
+
+// preference is a preference model laid on the atoms of a transform.
+type preference struct {
+	model  *model
+	slots  []int
+	rho    float64
+	needs  float64
+	hasMin bool
+	whyNot string
+}
+
+// Example is a checked use of a transform: From gives To.
+type Example struct {
+	From    []string
+	To      string
+	With    string // id of a condition set, empty: the first
+	Share   Share
+	Objects bool // an objection is expected
+	Why     string
+	File    string
 }
 
 // Conditions is one reagent set of a transform. Amounts are equivalents per mole of the product at full yield.
@@ -12,6 +75,8 @@ type Conditions struct {
 	Reagents           []Charge
 	Solvents           []Solvent
 	Media              []string
+	OnlyWith           []string // facts that a description must state
+	NeverWith          []string
 	Order              string
 	Temperature        [2]float64 // C
 	Hours              [2]float64
@@ -25,9 +90,13 @@ type Conditions struct {
 	Needs              []string
 	Uses, Gives        []Amount // balanced, per occurrence of the edit
 	HeatKJ             float64  // evolved per mol, 0 unknown
-	Gas                []Amount // mol gas per mol of product
+	Gas                []Amount // mol gas per mol of product, by formula
+	Together           []string // ids of transforms that run in the same flask
 	Source, Provenance string
-	ReactantEquiv      map[int]float64 // part number (from 1) -> equivalents, where not 1
+	ReactantEquiv      map[int]float64 // reactant part (from 1) -> equivalents, where not 1
+	File               string
+
+	applies map[int][]*molecule.Molecule
 }
 
 // Charge is a reagent charged to the flask.
@@ -36,6 +105,7 @@ type Charge struct {
 	Equiv    float64
 	Optional bool
 	Like     []string
+	Note     string
 }
 
 // Solvent is a solvent with its volume per gram of the first reactant.
@@ -44,7 +114,8 @@ type Solvent struct {
 	MLPerG float64
 }
 
-// Amount is a number of molecules of a substance written as SMILES (in gives, '[*:9]' has been replaced).
+// Amount is a number of molecules of a substance written as SMILES; in Gives '[*:9]' stands for what
+// left with class 9.
 type Amount struct {
 	Count  float64
 	SMILES string

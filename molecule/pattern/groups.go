@@ -138,8 +138,16 @@ func (s *Subject) Instances(id string) [][]int32 {
 
 // within keeps the keys whose classes text has, where a group has several alternative patterns.
 func (w Where) within(text string, alternatives int) Where {
+	if alternatives < 2 {
+		return w
+	}
+	return w.Within(text)
+}
+
+// Within keeps the words about classes that text has; a text that does not parse keeps all.
+func (w Where) Within(text string) Where {
 	q, err := Parse(text)
-	if err != nil || alternatives < 2 {
+	if err != nil {
 		return w
 	}
 	kept := Where{}

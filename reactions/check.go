@@ -1,0 +1,223 @@
+package reactions
+
+import (
+	"context"
+	"fmt"
+	"sort"
+	"strings"
+
+	"shelfward/molecule"
+	"shelfward/molecule/smiles"
+)
+
+// Fault is one thing wrong with a transform, found by running its examples.
+type Fault struct {
+	Place, Transform, Text string
+}
+
+func (f Fault) String() string { return fmt.Sprintf("%s: %s: %s", f.Place, f.Transform, f.Text) }
+
+// Check runs every example and reject of a transform in both directions and balances its condition sets.
+func (b *Book) Check(t *Transform) []Fault {
+	var faults []Fault
+	for _, ex := range t.Examples {
+		faults = append(faults, b.checkExample(t, ex)...)
+	}
+	for _, ex := range t.Rejects {
+		if text := b.checkReject(t, ex); text != "" {
+			faults = append(faults, Fault{ex.File, t.ID, text})
+		}
+	}
+	return faults
+}
+
+func (b *Book) readExample(ex Example) (from []*subject, target *molecule.Molecule, err error) {
+	for _, s := range ex.From {
+		m, err := smiles.Read(s)
+		if err != nil {
+			return nil, nil, err
+		}
+		from = append(from, b.subject(freeForm(m)))
+	}
+	m, err := smiles.Read(ex.To)
+	if err != nil {
+		return nil, nil, err
+	}
+	return distinct(from), freeForm(m), nil
+}
+
+func distinct(list []*subject) []*subject {
+	var out []*subject
+	seen := map[molecule.Key]bool{}
+	for _, s := range list {
+		if !seen[s.key] {
+			seen[s.key] = true
+			out = append(out, s)
+		}
+	}
+	return out
+}
+
+func (b *Book) checkExample(t *Transform, ex Example) []Fault {
+	fault := func(format string, args ...any) []Fault {
+		return []Fault{{ex.File, t.ID, fmt.Sprintf(format, args...)}}
+	}
+	from, target, err := b.readExample(ex)
+	if err != nil {
+		return fault("%v", err)
+	}
+	a := b.assess(t, from, target)
+	if !a.found {
+		return fault("forwards, %s does not give %s%s", strings.Join(ex.From, " + "), ex.To, gaveInstead(a))
+	}
+	if fatal(a.objections) {
+		return fault("forwards: %s", a.objections[0].Text)
+	}
+	var faults []Fault
+	if a.share > ex.Share {
+		faults = append(faults, fault("forwards: the share of %s is %s (%.0f %%), not %s%s", ex.To, a.share, 100*a.fraction, ex.Share, gaveInstead(a))...)
+	} else if len(a.objections) > 0 && !ex.Objects && ex.Share == ShareMain {
+		faults = append(faults, fault("forwards: objection: %s", a.objections[0].Text)...)
+	}
+	faults = append(faults, b.checkBalance(t, ex, &a)...)
+	faults = append(faults, b.checkMedia(t, ex, &a, from)...)
+	return append(faults, b.checkBackwards(t, ex, from, target)...)
+}
+
+func gaveInstead(a assessment) string {
+	var names []string
+	for i, p := range a.products {
+		if i < 3 {
+			names = append(names, fmt.Sprintf("%s (%.0f %%)", written(p.Molecule), 100*p.Fraction))
+		}
+	}
+	if len(names) == 0 {
+		return "; it gives nothing"
+	}
+	return "; it gives " + strings.Join(names, ", ")
+}
+
+func (b *Book) checkBalance(t *Transform, ex Example, a *assessment) []Fault {
+	var faults []Fault
+	for _, c := range t.Conditions {
+		if !t.appliesTo(c, &a.outcome) {
+			continue
+		}
+		if left := t.imbalance(&a.outcome, c); left != "" {
+			faults = append(faults, Fault{c.File, t.ID, fmt.Sprintf("conditions %s do not balance in the example at %s: right minus left = %s", c.ID, ex.File, left)})
+		}
+	}
+	return faults
+}
+
+func (b *Book) checkMedia(t *Transform, ex Example, a *assessment, from []*subject) []Fault {
+	if ex.Objects {
+		return nil
+	}
+	busy := a.outcome.busyAtoms(from)
+	sets := 0
+	var last []Objection
+	for _, c := range t.Conditions {
+		if ex.With != "" && c.ID != ex.With || !t.appliesTo(c, &a.outcome) {
+			continue
+		}
+		sets++
+		var list []Objection
+		for i, r := range from {
+			list = append(list, b.media.objections(c.Media, r.Subject, b.groups, busy[i], nil)...)
+		}
+		if len(list) == 0 {
+			return nil
+		}
+		last = list
+	}
+	if sets == 0 {
+		return []Fault{{ex.File, t.ID, "no condition set applies to the example"}}
+	}
+	return []Fault{{ex.File, t.ID, "no condition set is free of objections: " + last[0].Text}}
+}
+
+func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target *molecule.Molecule) []Fault {
+	want := make([]string, len(from))
+	for i, s := range from {
+		k := seenKey(s.M)
+		want[i] = string(k[:])
+	}
+	sort.Strings(want)
+	stocked := func(m *molecule.Molecule) bool {
+		k := seenKey(m)
+		for _, w := range want {
+			if w == string(k[:]) {
+				return true
+			}
+		}
+		return false
+	}
+	var seen []string
+	for _, p := range t.backwards(b, b.subject(target), stocked) {
+		var keys, names []string
+		for _, pc := range p.pieces {
+			k := seenKey(pc.m)
+			if !containsString(keys, string(k[:])) {
+				keys = append(keys, string(k[:]))
+				names = append(names, written(pc.m))
+			}
+		}
+		sort.Strings(keys)
+		if strings.Join(keys, "") == strings.Join(want, "") {
+			return nil
+		}
+		seen = append(seen, strings.Join(names, " + "))
+	}
+	if len(seen) > 4 {
+		seen = seen[:4]
+	}
+	return []Fault{{ex.File, t.ID, fmt.Sprintf("backwards, %s does not come from %s; proposals: %s", ex.To, strings.Join(ex.From, " + "), strings.Join(seen, " | "))}}
+}
+
+func containsString(list []string, x string) bool {
+	for _, y := range list {
+		if x == y {
+			return true
+		}
+	}
+	return false
+}
+
+// checkReject returns a text when the reject comes out sound.
+func (b *Book) checkReject(t *Transform, ex Example) string {
+	from, target, err := b.readExample(ex)
+	if err != nil {
+		return err.Error()
+	}
+	a := b.assess(t, from, target)
+	if !a.found || len(a.objections) > 0 {
+		return ""
+	}
+	busy := a.outcome.busyAtoms(from)
+	for _, c := range t.Conditions {
+		if ex.With != "" && c.ID != ex.With || !t.appliesTo(c, &a.outcome) {
+			continue
+		}
+		var list []Objection
+		for i, r := range from {
+			list = append(list, b.media.objections(c.Media, r.Subject, b.groups, busy[i], nil)...)
+		}
+		if len(list) == 0 {
+			return fmt.Sprintf("the reject %s to %s comes out without objection (%s)", strings.Join(ex.From, " + "), ex.To, c.ID)
+		}
+	}
+	return ""
+}
+
+// CheckAll checks every transform, cancellable.
+func (b *Book) CheckAll(ctx context.Context) ([]Fault, error) {
+	var faults []Fault
+	for _, t := range b.Transforms {
+		if err := ctx.Err(); err != nil {
+			return faults, err
+		}
+		faults = append(faults, b.Check(t)...)
+	}
+	return faults, nil
+}

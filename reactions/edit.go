@@ -1,0 +1,508 @@
+package reactions
+
+import (
+	"errors"
+
+	"shelfward/molecule"
+	"shelfward/molecule/pattern"
+)
+
+// pool is a set of molecules laid side by side, whose atoms one mapping may pick from.
+type pool struct {
+	molecules []*molecule.Molecule
+	offset    []int32 // first atom of each molecule
+	atoms     int
+}
+
+func newPool(ms []*molecule.Molecule) *pool {
+	p := &pool{molecules: ms}
+	for _, m := range ms {
+		p.offset = append(p.offset, int32(p.atoms))
+		p.atoms += m.NumAtoms()
+	}
+	return p
+}
+
+// locate returns the molecule and its atom for a pool atom.
+func (p *pool) locate(a int32) (which int, atom int32) {
+	which = len(p.offset) - 1
+	for p.offset[which] > a {
+		which--
+	}
+	return which, a - p.offset[which]
+}
+
+// piece is one molecule after an edit, with the pool atom of each of its atoms (-1: new).
+type piece struct {
+	m    *molecule.Molecule
+	from []int32
+}
+
+var errNoFit = errors.New("the edit does not fit the molecule")
+
+// editor applies a script to a pool. slots[i] lists, per application, the pool atom of slot i or -1.
+type editor struct {
+	s        *script
+	d        direction
+	p        *pool
+	b        molecule.Builder
+	hBefore  []int // hydrogens and bond orders before the edit, per atom
+	sumBefor []int
+	dead     []bool // atoms that vanish
+	touched  []bool
+	newSlot  []int             // for atoms made: 1 + slot, else 0
+	lost     map[int32][]int32 // ligands that an atom lost and gained
+	gained   map[int32][]int32
+	course   map[int32]string // stereo course of the atoms that the script names
+}
+
+// fragment is what is attached for a class that stands only on the side made.
+type fragments map[int]*molecule.Molecule // class -> fragment whose first atom is attached
+
+// edit applies the script to p once per mapping (slot -> pool atom, -1 where the slot is not found)
+// and returns the connected pieces, those with found atoms and the rest alike.
+func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments) ([]piece, error) {
+	e := &editor{s: s, d: d, p: p, lost: map[int32][]int32{}, gained: map[int32][]int32{}, course: map[int32]string{}}
+	e.load()
+	for _, to := range mappings {
+		to = append([]int32(nil), to...)
+		if err := e.makeAtoms(to, frags); err != nil {
+			return nil, err
+		}
+		if err := e.changeBonds(to); err != nil {
+			return nil, err
+		}
+		if err := e.changeAtoms(to); err != nil {
+			return nil, err
+		}
+		if err := e.dropAtoms(to); err != nil {
+			return nil, err
+		}
+		if err := e.stereo(to); err != nil {
+			return nil, err
+		}
+	}
+	if err := e.setHydrogens(mappings); err != nil {
+		return nil, err
+	}
+	e.mendMarks()
+	return e.pieces()
+}
+
+// load copies the molecules into one builder. Aromatic bonds are given as such only where the script
+// changes an aromatic bond; otherwise the Kekulé form kept by the molecule serves as it is.
+func (e *editor) load() {
+	aromatic := e.s.changesAromatic()
+	for i, m := range e.p.molecules {
+		src := m.Builder()
+		off := e.p.offset[i]
+		for _, a := range src.Atoms {
+			a.Aromatic = a.Aromatic && aromatic
+			a.Class = 0
+			e.b.Atoms = append(e.b.Atoms, a)
+		}
+		for bi, b := range src.Bonds {
+			b.A, b.B = b.A+off, b.B+off
+			if aromatic && m.Bond(bi).Aromatic {
+				b.Order = molecule.OrderAromatic
+			} else {
+				b.Aromatic = false
+			}
+			e.b.Bonds = append(e.b.Bonds, b)
+		}
+		bondOff := int32(len(e.b.Bonds) - len(src.Bonds))
+		for _, c := range src.Centers {
+			c.Atom += off
+			for k, l := range c.Ligands {
+				if l >= 0 {
+					c.Ligands[k] = l + off
+				}
+			}
+			e.b.Centers = append(e.b.Centers, c)
+		}
+		for _, db := range src.DoubleBonds {
+			db.Bond, db.A, db.B = db.Bond+bondOff, db.A+off, db.B+off
+			e.b.DoubleBonds = append(e.b.DoubleBonds, db)
+		}
+		for a := 0; a < m.NumAtoms(); a++ {
+			sum := 0
+			for _, n := range m.Neighbors(a) {
+				sum += int(m.Bond(int(n.Bond)).Order)
+			}
+			e.hBefore = append(e.hBefore, int(m.Atom(a).Hydrogens))
+			e.sumBefor = append(e.sumBefor, sum)
+		}
+	}
+	e.dead = make([]bool, len(e.b.Atoms))
+	e.touched = make([]bool, len(e.b.Atoms))
+	e.newSlot = make([]int, len(e.b.Atoms))
+}
+
+func (s *script) changesAromatic() bool {
+	for _, b := range s.bonds {
+		if b.order[0] == molecule.OrderAromatic || b.order[1] == molecule.OrderAromatic {
+			return true
+		}
+	}
+	return false
+}
+
+func (e *editor) addAtom(a molecule.Atom, slot int) int32 {
+	e.b.Atoms = append(e.b.Atoms, a)
+	e.dead = append(e.dead, false)
+	e.touched = append(e.touched, false)
+	e.newSlot = append(e.newSlot, slot+1)
+	return int32(len(e.b.Atoms) - 1)
+}
+
+// makeAtoms creates the atoms that stand only on the side made.
+func (e *editor) makeAtoms(to []int32, frags fragments) error {
+	for i, sl := range e.s.slots {
+		if sl.found(e.d) >= 0 || sl.made(e.d) < 0 {
+			continue
+		}
+		if f := frags[sl.class]; f != nil && e.d == backward && sl.class != 0 {
+			to[i] = e.attach(f, i)
+			continue
+		}
+		qa := e.s.side[1-e.d].Atoms[sl.made(e.d)]
+		el, ok := qa.SingleElement()
+		if !ok {
+			return errNoFit
+		}
+		a := molecule.Atom{Element: el, Charge: qa.Charge, Isotope: qa.Isotope, Hydrogens: molecule.AutoHydrogens, Aromatic: qa.OnlyAromatic()}
+		if qa.Hydrogens >= 0 {
+			a.Hydrogens = uint8(qa.Hydrogens)
+		}
+		to[i] = e.addAtom(a, i)
+	}
+	return nil
+}
+
+// attach copies a fragment into the builder; its first atom gives up the hydrogens that the bonds to
+// the molecule replace.
+func (e *editor) attach(f *molecule.Molecule, slotIndex int) int32 {
+	src := f.Builder()
+	first := int32(len(e.b.Atoms))
+	for i, a := range src.Atoms {
+		if i == 0 {
+			need := 0
+			for _, be := range e.s.bonds {
+				if be.a == slotIndex || be.b == slotIndex {
+					need += int(be.order[1-e.d])
+				}
+			}
+			a.Hydrogens = uint8(max(0, int(a.Hydrogens)-need))
+		}
+		a.Class, a.Aromatic = 0, false
+		e.addAtom(a, slotIndex)
+	}
+	for _, b := range src.Bonds {
+		b.A, b.B, b.Aromatic = b.A+first, b.B+first, false
+		e.b.Bonds = append(e.b.Bonds, b)
+	}
+	return first
+}
+
+// bond returns the index of the bond between two builder atoms, -1 if none.
+func (e *editor) bond(a, b int32) int {
+	for i := range e.b.Bonds {
+		x := &e.b.Bonds[i]
+		if x.Order != 0 && (x.A == a && x.B == b || x.A == b && x.B == a) {
+			return i
+		}
+	}
+	return -1
+}
+
+func (e *editor) changeBonds(to []int32) error {
+	for _, be := range e.s.bonds {
+		a, b := to[be.a], to[be.b]
+		if a < 0 || b < 0 {
+			continue // an atom that stands on neither side here
+		}
+		onMadeA, onMadeB := e.s.slots[be.a].made(e.d) >= 0, e.s.slots[be.b].made(e.d) >= 0
+		if !onMadeA && !onMadeB {
+			continue // both leave together, still joined
+		}
+		after := be.order[1-e.d]
+		i := e.bond(a, b)
+		e.touched[a], e.touched[b] = true, true
+		switch {
+		case after == 0 && i >= 0:
+			e.b.Bonds[i].Order = 0
+			e.lost[a], e.lost[b] = append(e.lost[a], b), append(e.lost[b], a)
+		case after != 0 && i >= 0:
+			if be.order[e.d] == 0 {
+				return errNoFit // the bond to be made is there already
+			}
+			e.b.Bonds[i].Order = after
+			e.b.Bonds[i].Aromatic = after == molecule.OrderAromatic
+		case after != 0:
+			e.b.Bonds = append(e.b.Bonds, molecule.Bond{A: a, B: b, Order: after, Aromatic: after == molecule.OrderAromatic})
+			e.gained[a], e.gained[b] = append(e.gained[a], b), append(e.gained[b], a)
+		}
+	}
+	return nil
+}
+
+// changeAtoms sets charges; hydrogens follow later.
+func (e *editor) changeAtoms(to []int32) error {
+	for i, sl := range e.s.slots {
+		if to[i] < 0 || sl.at[0] < 0 || sl.at[1] < 0 || !e.s.touched[i] {
+			continue
+		}
+		f, m := e.s.side[e.d].Atoms[sl.found(e.d)], e.s.side[1-e.d].Atoms[sl.made(e.d)]
+		e.touched[to[i]] = true
+		if sl.course != "" {
+			e.course[to[i]] = sl.course
+		}
+		if f.AnyCharge || m.AnyCharge {
+			continue
+		}
+		e.b.Atoms[to[i]].Charge += m.Charge - f.Charge
+	}
+	return nil
+}
+
+// dropAtoms removes, backwards, the atoms that a reagent brought: all that hangs on them must be known.
+func (e *editor) dropAtoms(to []int32) error {
+	if e.d == forward {
+		return nil
+	}
+	known := map[int32]bool{}
+	for _, a := range to {
+		known[a] = true
+	}
+	for i, sl := range e.s.slots {
+		if sl.at[forward] >= 0 || to[i] < 0 {
+			continue
+		}
+		a := to[i]
+		for bi := range e.b.Bonds {
+			b := &e.b.Bonds[bi]
+			if b.Order == 0 || b.A != a && b.B != a {
+				continue
+			}
+			other := b.A + b.B - a
+			if !known[other] {
+				return errNoFit
+			}
+			b.Order = 0
+			e.lost[other] = append(e.lost[other], a)
+			e.touched[other] = true
+		}
+		e.dead[a] = true
+	}
+	return nil
+}
+
+// setHydrogens gives every touched atom the hydrogens that its new bonds leave room for.
+func (e *editor) setHydrogens(mappings [][]int32) error {
+	made := make(map[int32]pattern.QueryAtom)
+	for _, to := range mappings {
+		for i, sl := range e.s.slots {
+			if to[i] >= 0 && sl.made(e.d) >= 0 {
+				made[to[i]] = e.s.side[1-e.d].Atoms[sl.made(e.d)]
+			}
+		}
+	}
+	sum, arom, degree := e.bondSums()
+	for a := range e.hBefore {
+		if !e.touched[a] || e.dead[a] {
+			continue
+		}
+		qa, known := made[int32(a)]
+		written := -1
+		if known {
+			written = qa.Hydrogens
+		}
+		h, ok := e.hydrogensAfter(a, sum[a], arom[a], degree[a], written)
+		if !ok {
+			return errNoFit
+		}
+		e.b.Atoms[a].Hydrogens = uint8(h)
+		e.b.Atoms[a].Aromatic = arom[a] > 0
+	}
+	return nil
+}
+
+// bondSums returns per atom the sum of the orders of plain bonds, the number of aromatic bonds and the degree.
+func (e *editor) bondSums() (sum, arom, degree []int) {
+	n := len(e.b.Atoms)
+	sum, arom, degree = make([]int, n), make([]int, n), make([]int, n)
+	for _, b := range e.b.Bonds {
+		if b.Order == 0 {
+			continue
+		}
+		for _, a := range [2]int32{b.A, b.B} {
+			degree[a]++
+			if b.Order == molecule.OrderAromatic {
+				arom[a]++
+			} else {
+				sum[a] += int(b.Order)
+			}
+		}
+	}
+	return sum, arom, degree
+}
+
+// hydrogensAfter follows the valence: hydrogens before + bond orders before - bond orders after,
+// corrected for the charge. Elements of several valences take the lowest that holds the bonds.
+func (e *editor) hydrogensAfter(a, sum, arom, degree, written int) (int, bool) {
+	at := e.b.Atoms[a]
+	if arom > 0 {
+		sum += arom
+		switch {
+		case at.Element == 6 && sum == degree: // no double bond out of the ring
+			sum++
+		case at.Element == 7 && written < 1 && (degree == 2 || at.Charge > 0):
+			sum++
+		}
+	}
+	var h int
+	switch valences := manyValences(at.Element); {
+	case isMetal(at.Element):
+		return e.hBefore[a], true
+	case valences != nil:
+		h = -1
+		for _, v := range valences {
+			if v+int(at.Charge) >= sum {
+				h = v + int(at.Charge) - sum
+				break
+			}
+		}
+		if written >= 0 {
+			h = written
+		}
+	default:
+		before := e.chargeBefore(a)
+		h = e.hBefore[a] + e.sumBefor[a] - sum + valenceShift(at.Element, int(at.Charge)) - valenceShift(at.Element, before)
+	}
+	return h, h >= 0 && (written < 0 || h == written)
+}
+
+func (e *editor) chargeBefore(a int) int {
+	which, atom := e.p.locate(int32(a))
+	return int(e.p.molecules[which].Atom(int(atom)).Charge)
+}
+
+// valenceShift is how a charge changes the number of bonds: N+ and O+ gain one, C+ and C- lose one,
+// anions of N, O lose one, B- gains one.
+func valenceShift(el molecule.Element, charge int) int {
+	switch el {
+	case 6, 14:
+		return -max(charge, -charge)
+	case 5:
+		return -charge
+	}
+	return charge
+}
+
+// manyValences lists the valences of elements that have several, lowest first.
+func manyValences(el molecule.Element) []int {
+	switch el {
+	case 16, 34, 52:
+		return []int{2, 4, 6}
+	case 15, 33:
+		return []int{3, 5}
+	case 17, 35, 53:
+		return []int{1, 3, 5, 7}
+	}
+	return nil
+}
+
+func isMetal(el molecule.Element) bool {
+	switch el {
+	case 1, 2, 5, 6, 7, 8, 9, 10, 14, 15, 16, 17, 18, 32, 33, 34, 35, 36, 50, 52, 53:
+		return false
+	}
+	return el != 0
+}
+
+// pieces builds the connected pieces that are left.
+func (e *editor) pieces() ([]piece, error) {
+	n := len(e.b.Atoms)
+	label := make([]int32, n)
+	for i := range label {
+		label[i] = int32(i)
+	}
+	var find func(a int32) int32
+	find = func(a int32) int32 {
+		for label[a] != a {
+			label[a] = label[label[a]]
+			a = label[a]
+		}
+		return a
+	}
+	for _, b := range e.b.Bonds {
+		if b.Order == 0 || e.dead[b.A] || e.dead[b.B] {
+			continue
+		}
+		x, y := find(b.A), find(b.B)
+		if x != y {
+			label[max(x, y)] = min(x, y)
+		}
+	}
+	index := make([]int32, n)
+	builders := map[int32]*molecule.Builder{}
+	froms := map[int32][]int32{}
+	var order []int32
+	for a := range e.b.Atoms {
+		if e.dead[a] {
+			continue
+		}
+		root := find(int32(a))
+		if builders[root] == nil {
+			builders[root] = &molecule.Builder{}
+			order = append(order, root)
+		}
+		index[a] = int32(builders[root].AddAtom(e.b.Atoms[a]))
+		from := int32(-1)
+		if a < e.p.atoms {
+			from = int32(a)
+		}
+		froms[root] = append(froms[root], from)
+	}
+	bondIndex := make([]int32, len(e.b.Bonds))
+	for i, b := range e.b.Bonds {
+		bondIndex[i] = -1
+		if b.Order == 0 || e.dead[b.A] || e.dead[b.B] {
+			continue
+		}
+		bondIndex[i] = int32(builders[find(b.A)].AddBond(int(index[b.A]), int(index[b.B]), b.Order))
+	}
+	e.copyMarks(builders, find, index, bondIndex)
+	var out []piece
+	for _, root := range order {
+		m, err := builders[root].Build()
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, piece{m, froms[root]})
+	}
+	return out, nil
+}
+
+func (e *editor) copyMarks(builders map[int32]*molecule.Builder, find func(int32) int32, index, bondIndex []int32) {
+	for _, c := range e.b.Centers {
+		if e.dead[c.Atom] {
+			continue
+		}
+		bld := builders[find(c.Atom)]
+		for k, l := range c.Ligands {
+			if l >= 0 {
+				c.Ligands[k] = index[l]
+			}
+		}
+		c.Atom = index[c.Atom]
+		bld.Centers = append(bld.Centers, c)
+	}
+	for _, db := range e.b.DoubleBonds {
+		if bondIndex[db.Bond] < 0 || e.dead[db.A] || e.dead[db.B] {
+			continue
+		}
+		bld := builders[find(db.A)]
+		bld.DoubleBonds = append(bld.DoubleBonds, molecule.DoubleBond{Bond: bondIndex[db.Bond], A: index[db.A], B: index[db.B], Together: db.Together})
+	}
+}

@@ -1,0 +1,475 @@
+package reactions
+
+import (
+	"bytes"
+	"math"
+	"sort"
+
+	"shelfward/molecule"
+	"shelfward/molecule/pattern"
+)
+
+// maxCombinations bounds the ways in which one transform may be laid on given molecules; textbook
+// steps have fewer than fifty. What lies beyond is left out of the shares.
+const maxCombinations = 600
+
+// subject is a molecule ready for matching, with its key.
+type subject struct {
+	*pattern.Subject
+	key molecule.Key
+}
+
+func (b *Book) subject(m *molecule.Molecule) *subject {
+	return &subject{pattern.NewSubject(m, b.groups), m.Key()}
+}
+
+// partMatch is one way to lay a part on a molecule: the atom of each of the part's query atoms.
+type partMatch []int32
+
+// matches lists the ways to lay part p on s that differ in a significant atom. keep filters (may be nil).
+func (p *partQuery) matches(s *pattern.Subject, keep func(queryAtom, a int) bool) []partMatch {
+	var out []partMatch
+	p.query.EachWithin(s, keep, func(to pattern.Mapping) bool {
+		for _, old := range out {
+			if p.sameSites(old, to) {
+				return true
+			}
+		}
+		out = append(out, append(partMatch(nil), to...))
+		return len(out) < maxCombinations
+	})
+	return out
+}
+
+func (p *partQuery) sameSites(a partMatch, b pattern.Mapping) bool {
+	for _, q := range p.significant {
+		if a[q] != b[q] {
+			return false
+		}
+	}
+	return true
+}
+
+// laid is one part laid on one copy of a molecule.
+type laid struct {
+	copy  int // index into attempt.copies
+	match partMatch
+}
+
+// attempt is one way to run a transform: the copies of molecules charged and where the parts lie.
+type attempt struct {
+	copies []int // index of the reactant molecule
+	laid   []laid
+}
+
+// outcome is what one attempt gives.
+type outcome struct {
+	attempt
+	pool     *pool
+	pieces   []piece
+	mappings [][]int32 // slot -> pool atom, one per application
+	score    float64
+	why      []string
+	blocked  string // a preference model says that nothing happens
+	sites    int    // applications (more than one with everywhere)
+}
+
+// run lays the transform on the molecules in every way and edits. The molecules may be used more than once.
+func (t *Transform) run(b *Book, ms []*subject) []outcome {
+	found := t.layEach(ms)
+	var out []outcome
+	if t.Everywhere {
+		out = t.runEverywhere(b, ms, found)
+	}
+	x := &combiner{t: t, b: b, ms: ms, found: found, intramolecularOnly: t.Everywhere}
+	x.next(0)
+	return append(out, x.out...)
+}
+
+// layEach lists the matches of every part on every molecule.
+func (t *Transform) layEach(ms []*subject) [][][]partMatch {
+	found := make([][][]partMatch, len(t.part[forward]))
+	for i := range t.part[forward] {
+		found[i] = make([][]partMatch, len(ms))
+		for j, s := range ms {
+			found[i][j] = t.part[forward][i].matches(s.Subject, nil)
+		}
+	}
+	return found
+}
+
+// combiner runs over all ways to give each part a molecule, a copy and a match.
+type combiner struct {
+	t                  *Transform
+	b                  *Book
+	ms                 []*subject
+	found              [][][]partMatch
+	now                attempt
+	tried              int
+	intramolecularOnly bool
+	out                []outcome
+}
+
+func (x *combiner) next(part int) {
+	if x.tried >= maxCombinations {
+		return
+	}
+	if part == len(x.found) {
+		x.tried++
+		if x.intramolecularOnly && (len(x.now.copies) > 1 || len(x.found) < 2) {
+			return
+		}
+		if o, ok := x.t.attempt(x.b, x.ms, x.now); ok {
+			x.out = append(x.out, o)
+		}
+		return
+	}
+	for i := range x.ms {
+		for _, match := range x.found[part][i] {
+			for c, used := range x.now.copies {
+				if used == i && !x.overlaps(c, match) {
+					x.place(part, laid{c, match})
+				}
+			}
+			x.now.copies = append(x.now.copies, i)
+			x.place(part, laid{len(x.now.copies) - 1, match})
+			x.now.copies = x.now.copies[:len(x.now.copies)-1]
+		}
+	}
+}
+
+func (x *combiner) place(part int, l laid) {
+	if !x.t.sameAllowed(x.now, part, l) {
+		return
+	}
+	x.now.laid = append(x.now.laid, l)
+	x.next(part + 1)
+	x.now.laid = x.now.laid[:len(x.now.laid)-1]
+}
+
+func (x *combiner) overlaps(copy int, match partMatch) bool {
+	for _, l := range x.now.laid {
+		if l.copy != copy {
+			continue
+		}
+		for _, a := range l.match {
+			for _, b := range match {
+				if a == b {
+					return true
+				}
+			}
+		}
+	}
+	return false
+}
+
+// sameAllowed holds parts that must be one kind of molecule to it: another copy, the same site.
+func (t *Transform) sameAllowed(now attempt, part int, l laid) bool {
+	if !containsInt(t.same, part) {
+		return true
+	}
+	for _, p := range t.same {
+		if p >= part || p >= len(now.laid) {
+			continue
+		}
+		first := now.laid[p]
+		if now.copies[first.copy] != now.copies[l.copy] || first.copy == l.copy {
+			return false
+		}
+		for i := range first.match {
+			if i < len(l.match) && first.match[i] != l.match[i] {
+				return false
+			}
+		}
+	}
+	return true
+}
+
+func containsInt(list []int, x int) bool {
+	for _, y := range list {
+		if x == y {
+			return true
+		}
+	}
+	return false
+}
+
+// attempt edits one combination and scores it; ok is false where it does not fit.
+func (t *Transform) attempt(b *Book, ms []*subject, now attempt) (outcome, bool) {
+	o := outcome{attempt: attempt{append([]int(nil), now.copies...), append([]laid(nil), now.laid...)}, sites: 1}
+	o.pool = newPool(moleculesOf(ms, o.copies))
+	o.mappings = [][]int32{t.mapping(o.pool, o.laid)}
+	return o, t.finish(b, ms, &o)
+}
+
+func moleculesOf(ms []*subject, which []int) []*molecule.Molecule {
+	out := make([]*molecule.Molecule, len(which))
+	for i, w := range which {
+		out[i] = ms[w].M
+	}
+	return out
+}
+
+// mapping turns laid parts into slot -> pool atom.
+func (t *Transform) mapping(p *pool, parts []laid) []int32 {
+	to := make([]int32, len(t.script.slots))
+	for i := range to {
+		to[i] = -1
+	}
+	for i, l := range parts {
+		pq := &t.part[forward][i]
+		for q, a := range l.match {
+			to[t.script.slotOf[forward][pq.first+q]] = a + p.offset[l.copy]
+		}
+	}
+	return to
+}
+
+// finish edits, checks rings and scores.
+func (t *Transform) finish(b *Book, ms []*subject, o *outcome) bool {
+	var err error
+	if o.pieces, err = t.script.edit(forward, o.pool, o.mappings, nil); err != nil {
+		return false
+	}
+	bonus, ok := t.ringCheck(o)
+	if !ok || !o.sane() || o.idle() {
+		return false
+	}
+	o.score = bonus
+	t.rate(b, ms, o)
+	return true
+}
+
+// rate adds the scores of the preference models at the first application.
+func (t *Transform) rate(b *Book, ms []*subject, o *outcome) {
+	to := o.mappings[0]
+	for _, p := range t.prefers {
+		which, atoms := -1, make([]int32, len(p.slots))
+		for i, s := range p.slots {
+			atoms[i] = -1
+			if to[s] < 0 {
+				continue
+			}
+			c, a := o.pool.locate(to[s])
+			if which < 0 {
+				which = c
+			}
+			if which == c {
+				atoms[i] = a
+			}
+		}
+		if which < 0 || atoms[0] < 0 {
+			continue
+		}
+		var points float64
+		var why []string
+		if s := ms[o.copies[which]].Subject; p.model.ring {
+			points, why = b.arene.rate(s, atoms[0], p.rho)
+		} else {
+			points, why = p.model.rate(s, atoms)
+		}
+		o.score += points
+		o.why = append(o.why, why...)
+		if p.hasMin && points < p.needs && o.blocked == "" {
+			o.blocked = p.whyNot
+			if o.blocked == "" {
+				o.blocked = "the site is not reactive enough (" + p.model.means + ")"
+			}
+		}
+	}
+}
+
+// ringCheck refuses rings of sizes that the transform does not close, and favours five and six: powers
+// of ten against the reaction between two molecules (effective molarities, common practice).
+func (t *Transform) ringCheck(o *outcome) (bonus float64, ok bool) {
+	for _, to := range o.mappings {
+		for _, be := range t.script.bonds {
+			if be.order[forward] != 0 || be.order[backward] == 0 || to[be.a] < 0 || to[be.b] < 0 {
+				continue
+			}
+			pa, pb := t.partOfSlot(be.a), t.partOfSlot(be.b)
+			ca, _ := o.pool.locate(to[be.a])
+			cb, _ := o.pool.locate(to[be.b])
+			if pa < 0 || pb < 0 || pa == pb || ca != cb {
+				continue
+			}
+			size := o.ringThrough(to[be.a], to[be.b])
+			if size != 0 && !t.closes.allows(size) {
+				return 0, false
+			}
+			switch {
+			case size == 0: // the ends fell apart again
+			case size == 5 || size == 6:
+				bonus += 1.5
+			case size == 7:
+				bonus += 0.3
+			case size < 5:
+				bonus -= 0.5
+			default:
+				bonus -= 2
+			}
+		}
+	}
+	return bonus, true
+}
+
+func (t *Transform) partOfSlot(s int) int {
+	if q := t.script.slots[s].at[forward]; q >= 0 {
+		return t.script.partOf(forward, q)
+	}
+	return -1
+}
+
+// ringThrough returns the smallest ring through the bond of two pool atoms after the edit, 0 if none.
+func (o *outcome) ringThrough(a, b int32) int {
+	for _, p := range o.pieces {
+		ia, ib := indexOf(p.from, a), indexOf(p.from, b)
+		if ia >= 0 && ib >= 0 {
+			if bond := p.m.BondBetween(ia, ib); bond >= 0 {
+				return p.m.SmallestBondRing(bond)
+			}
+		}
+	}
+	return 0
+}
+
+// idle says that the products are the molecules charged: nothing has happened.
+func (o *outcome) idle() bool {
+	if len(o.pieces) != len(o.pool.molecules) {
+		return false
+	}
+	as := make([]piece, len(o.pool.molecules))
+	for i, m := range o.pool.molecules {
+		as[i].m = m
+	}
+	return precursorKey(as) == precursorKey(o.pieces)
+}
+
+func (o *outcome) sane() bool {
+	for _, p := range o.pieces {
+		if !saneRings(p.m) {
+			return false
+		}
+	}
+	return true
+}
+
+// saneRings refuses what ring strain forbids: a triple bond or cumulated double bonds in a ring under
+// eight, and a double bond at the bridgehead of a small bicycle (Bredt's rule).
+func saneRings(m *molecule.Molecule) bool {
+	for i := 0; i < m.NumBonds(); i++ {
+		bd := m.Bond(i)
+		if bd.Aromatic || bd.Order < 2 || !bd.Ring {
+			continue
+		}
+		size := m.SmallestBondRing(i)
+		if bd.Order == 3 && size < 8 {
+			return false
+		}
+		for _, a := range [2]int{int(bd.A), int(bd.B)} {
+			if size < 8 && (m.Atom(a).Element == 6 && pattern.Hybridisation(m, a) == "sp" || pattern.Bridgehead(m, a)) {
+				return false
+			}
+		}
+	}
+	return true
+}
+
+// runEverywhere lets all like sites of one molecule react at once, each with a fresh copy of the partners.
+func (t *Transform) runEverywhere(b *Book, ms []*subject, found [][][]partMatch) []outcome {
+	var out []outcome
+	for i := range ms {
+		sites := disjoint(&t.part[forward][0], found[0][i])
+		if len(sites) == 0 {
+			continue
+		}
+		for _, partners := range partnerChoices(found[1:], len(ms)) {
+			if o, ok := t.attemptEverywhere(b, ms, i, sites, partners); ok {
+				out = append(out, o)
+			}
+			if len(out) >= maxCombinations {
+				return out
+			}
+		}
+	}
+	return out
+}
+
+// partnerChoice is a molecule and a match for each part after the first.
+type partnerChoice []struct {
+	molecule int
+	match    partMatch
+}
+
+func partnerChoices(found [][][]partMatch, molecules int) []partnerChoice {
+	choices := []partnerChoice{nil}
+	for _, perMolecule := range found {
+		var longer []partnerChoice
+		for _, c := range choices {
+			for i := 0; i < molecules; i++ {
+				for _, m := range perMolecule[i] {
+					n := append(append(partnerChoice(nil), c...), struct {
+						molecule int
+						match    partMatch
+					}{i, m})
+					longer = append(longer, n)
+				}
+			}
+		}
+		choices = longer
+	}
+	return choices
+}
+
+// disjoint picks, in order, matches whose significant atoms do not overlap.
+func disjoint(p *partQuery, matches []partMatch) []partMatch {
+	var picked []partMatch
+	used := map[int32]bool{}
+next:
+	for _, m := range matches {
+		for _, q := range p.significant {
+			if used[m[q]] {
+				continue next
+			}
+		}
+		for _, q := range p.significant {
+			used[m[q]] = true
+		}
+		picked = append(picked, m)
+	}
+	return picked
+}
+
+func (t *Transform) attemptEverywhere(b *Book, ms []*subject, substrate int, sites []partMatch, partners partnerChoice) (outcome, bool) {
+	o := outcome{sites: len(sites)}
+	o.copies = []int{substrate}
+	var perSite [][]laid
+	for _, site := range sites {
+		parts := []laid{{0, site}}
+		for _, p := range partners {
+			o.copies = append(o.copies, p.molecule)
+			parts = append(parts, laid{len(o.copies) - 1, p.match})
+		}
+		perSite = append(perSite, parts)
+	}
+	o.laid = perSite[0]
+	o.pool = newPool(moleculesOf(ms, o.copies))
+	for _, parts := range perSite {
+		o.mappings = append(o.mappings, t.mapping(o.pool, parts))
+	}
+	return o, t.finish(b, ms, &o)
+}
+
+// productKey groups outcomes by what they give: the sorted keys of the pieces.
+func (o *outcome) productKey() string {
+	keys := make([][]byte, len(o.pieces))
+	for i, p := range o.pieces {
+		k := p.m.Key()
+		keys[i] = k[:]
+	}
+	sort.Slice(keys, func(i, j int) bool { return bytes.Compare(keys[i], keys[j]) < 0 })
+	return string(bytes.Join(keys, nil))
+}
+
+// weight is the share that the score stands for, before normalisation.
+func (o *outcome) weight() float64 { return math.Pow(10, max(-12, min(12, o.score))) }

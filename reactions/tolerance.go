@@ -1,0 +1,152 @@
+package reactions
+
+import (
+	"fmt"
+	"sort"
+
+	"shelfward/molecule/pattern"
+	"shelfward/rules"
+)
+
+// level says what a medium does to a group.
+type level uint8
+
+const (
+	survives level = iota
+	spent          // takes up reagent, comes back unchanged
+	competes
+	reacts
+	reactsFirst
+)
+
+var levels = map[string]level{"survives": survives, "spent": spent, "competes": competes, "reacts": reacts, "first": reactsFirst}
+
+// toleranceTable is the one table media x groups (rules/tolerance.yaml).
+type toleranceTable struct {
+	order []string
+	media map[string]*medium
+}
+
+type medium struct {
+	id, name, source string
+	groups           []groupLevel // sorted by group id
+}
+
+type groupLevel struct {
+	group string
+	level level
+	why   string
+}
+
+type sourceTolerance struct {
+	Media []struct {
+		rules.Place
+		ID     rules.Text        `yaml:"id" need:"id: organomagnesium"`
+		Name   string            `yaml:"name" need:"name: Grignard reagent in ether"`
+		Groups map[string]string `yaml:"groups"`
+		Why    map[string]string `yaml:"why"`
+		Source sourceNote        `yaml:"source"`
+	} `yaml:"media"`
+}
+
+func (t *toleranceTable) has(id string) bool { return t != nil && t.media[id] != nil }
+
+func (t *toleranceTable) ids() []string {
+	if t == nil {
+		return nil
+	}
+	return t.order
+}
+
+func (l *loader) loadTolerance() {
+	l.media = &toleranceTable{media: map[string]*medium{}}
+	var file sourceTolerance
+	if err := rules.ReadInto(l.fsys, "tolerance.yaml", &file); err != nil {
+		l.addErr(rules.Place{Path: "tolerance.yaml"}, err)
+		return
+	}
+	for _, src := range file.Media {
+		m := &medium{id: src.ID.Value, name: src.Name, source: src.Source.Text}
+		for g, word := range src.Groups {
+			lv, ok := levels[word]
+			switch {
+			case !ok:
+				l.errs = append(l.errs, src.Place.Errorf("group %s: survives, spent, competes, reacts or first was expected, not %q", g, word))
+			case !l.groups.Has(g):
+				l.errs = append(l.errs, src.Place.Errorf("no group %q in rules/groups.yaml%s", g, didYouMean(g, l.groups.IDs())))
+			case lv != survives:
+				m.groups = append(m.groups, groupLevel{g, lv, src.Why[g]})
+			}
+		}
+		sort.Slice(m.groups, func(i, j int) bool { return m.groups[i].group < m.groups[j].group })
+		if l.media.media[m.id] != nil {
+			l.errs = append(l.errs, src.Place.Errorf("the medium %q stands twice", m.id))
+			continue
+		}
+		l.media.media[m.id] = m
+		l.media.order = append(l.media.order, m.id)
+	}
+}
+
+// objections lists what the media do to the groups of s that do not overlap the atoms marked busy.
+// Groups named in handled are carried along on purpose.
+func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *pattern.Groups, busy []bool, handled map[string]bool) []Objection {
+	var out []Objection
+	for _, id := range media {
+		m := t.media[id]
+		if m == nil {
+			continue
+		}
+		for _, gl := range m.groups {
+			if gl.level == spent || handled[gl.group] {
+				continue
+			}
+			if free := freeInstances(s, gl.group, busy); free > 0 {
+				out = append(out, m.objection(gl, groups.Name(gl.group)))
+			}
+		}
+	}
+	return worstPerText(out)
+}
+
+func freeInstances(s *pattern.Subject, group string, busy []bool) int {
+	n := 0
+	for _, set := range s.Instances(group) {
+		overlaps := false
+		for _, a := range set {
+			overlaps = overlaps || busy[a]
+		}
+		if !overlaps {
+			n++
+		}
+	}
+	return n
+}
+
+func (m *medium) objection(gl groupLevel, name string) Objection {
+	o := Objection{Kind: KindGroup, Source: m.source, Fatal: gl.level >= reacts}
+	switch gl.level {
+	case competes:
+		o.Text = fmt.Sprintf("the %s may react too (%s)", name, m.name)
+	case reacts:
+		o.Text = fmt.Sprintf("the %s reacts as well (%s)", name, m.name)
+	default:
+		o.Text = fmt.Sprintf("the %s reacts before the wanted group (%s)", name, m.name)
+	}
+	if gl.why != "" {
+		o.Text += ": " + gl.why
+	}
+	return o
+}
+
+func worstPerText(list []Objection) []Objection {
+	var out []Objection
+	seen := map[string]bool{}
+	for _, o := range list {
+		if !seen[o.Text] {
+			seen[o.Text] = true
+			out = append(out, o)
+		}
+	}
+	return out
+}
