@@ -31,7 +31,7 @@ import (
 	"strings"
 )
 
-//go:embed *.yaml shifts
+//go:embed *.yaml shifts transforms preferences
 var embedded embed.FS
 
 // builtinPrefix stands before the name of an embedded file in messages.

@@ -246,6 +246,14 @@ func (qb *QueryBond) addWord(f []string) error {
 		qb.orders = orderSingle | orderAromatic
 	case "any order":
 		qb.orders = orderAny
+	case "single":
+		qb.orders = orderSingle
+	case "double":
+		qb.orders = orderDouble
+	case "triple":
+		qb.orders = orderTriple
+	case "aromatic":
+		qb.orders = orderAromatic
 	case "in a ring":
 		qb.tests = append(qb.tests, func(s *Subject, b int) bool { return s.M.Bond(b).Ring })
 	case "not in a ring":
