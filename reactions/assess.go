@@ -2,6 +2,7 @@ package reactions
 
 import (
 	"fmt"
+	"math"
 	"sort"
 
 	"shelfward/molecule"
@@ -74,6 +75,7 @@ func (a *assessment) weigh(outs []outcome, target *molecule.Molecule) {
 	total, wanted := 0.0, 0.0
 	best := -1
 	covers := map[string]covering{}
+	top := topScore(outs)
 	for i := range outs {
 		o := &outs[i]
 		key := o.productKey()
@@ -82,10 +84,8 @@ func (a *assessment) weigh(outs []outcome, target *molecule.Molecule) {
 			g = &group{first: i}
 			groups[key] = g
 			order = append(order, key)
-			c, piece, count := o.gives(target)
-			covers[key] = c
-			g.hit = c.ok
-			_, _ = piece, count
+			covers[key], _, _ = o.gives(target)
+			g.hit = covers[key].ok
 		}
 		if g.hit && (best < 0 || better(covers[key], o, a.cover, &outs[best])) {
 			best, a.cover = i, covers[key]
@@ -93,10 +93,10 @@ func (a *assessment) weigh(outs []outcome, target *molecule.Molecule) {
 		if o.blocked != "" {
 			continue
 		}
-		g.weight += o.weight()
-		total += o.weight()
+		g.weight += o.weight(top)
+		total += o.weight(top)
 		if g.hit && !covers[key].wrong {
-			wanted += o.weight()
+			wanted += o.weight(top)
 		}
 	}
 	a.products = nil
@@ -115,6 +115,17 @@ func (a *assessment) weigh(outs []outcome, target *molecule.Molecule) {
 		a.fraction = wanted / total
 	}
 	a.share = shareOf(a.fraction)
+}
+
+// topScore is the highest score of an outcome that is not blocked.
+func topScore(outs []outcome) float64 {
+	top := math.Inf(-1)
+	for i := range outs {
+		if outs[i].blocked == "" {
+			top = max(top, outs[i].score)
+		}
+	}
+	return top
 }
 
 // better prefers exact stereo, then the higher score.

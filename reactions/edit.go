@@ -313,11 +313,11 @@ func (e *editor) setHydrogens(mappings [][]int32) error {
 			continue
 		}
 		qa, known := made[int32(a)]
-		written := -1
+		written, lower := -1, false
 		if known {
-			written = qa.Hydrogens
+			written, lower = qa.Hydrogens, qa.OnlyAromatic()
 		}
-		h, ok := e.hydrogensAfter(a, sum[a], arom[a], degree[a], written)
+		h, ok := e.hydrogensAfter(a, sum[a], arom[a], degree[a], written, lower)
 		if !ok {
 			return errNoFit
 		}
@@ -348,16 +348,19 @@ func (e *editor) bondSums() (sum, arom, degree []int) {
 }
 
 // hydrogensAfter follows the valence: hydrogens before + bond orders before - bond orders after,
-// corrected for the charge. Elements of several valences take the lowest that holds the bonds.
-func (e *editor) hydrogensAfter(a, sum, arom, degree, written int) (int, bool) {
+// corrected for the charge. Elements of several valences take the lowest that holds the bonds. written is
+// the number of hydrogens the pattern asks for (-1 free), lower says that it writes an aromatic symbol.
+func (e *editor) hydrogensAfter(a, sum, arom, degree, written int, lower bool) (int, bool) {
 	at := e.b.Atoms[a]
 	if arom > 0 {
 		sum += arom
 		switch {
 		case at.Element == 6 && sum == degree: // no double bond out of the ring
 			sum++
-		case at.Element == 7 && written < 1 && (degree == 2 || at.Charge > 0):
+		case at.Element == 7 && written < 1 && at.Charge > 0:
 			sum++
+		case at.Element == 7 && written < 1 && degree == 2 && (lower || e.hBefore[a] == 0):
+			sum++ // pyridine-like; a '*' that had its hydrogen keeps it, as in pyrrole
 		}
 	}
 	var h int

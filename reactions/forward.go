@@ -471,5 +471,5 @@ func (o *outcome) productKey() string {
 	return string(bytes.Join(keys, nil))
 }
 
-// weight is the share that the score stands for, before normalisation.
-func (o *outcome) weight() float64 { return math.Pow(10, max(-12, min(12, o.score))) }
+// weight is the share that the score stands for beside the strongest score top, before normalisation.
+func (o *outcome) weight(top float64) float64 { return math.Pow(10, o.score-top) }
