@@ -2,7 +2,7 @@ package molecule
 
 // The aromaticity model. A ring of the relevant cycles is a candidate when every atom in it can
 // give 0, 1 or 2 electrons to the ring; a candidate, or the outline of up to six fused candidates
-// (rings of at most 24 atoms), is aromatic when the electrons can sum to 4n+2. Exocyclic double
+// (rings of at most 24 atoms that share one bond), is aromatic when the electrons can sum to 4n+2. Exocyclic double
 // bonds to a more electronegative atom leave no electron (tropone, pyridone and quinones count so:
 // the first two are aromatic, the last is not); those to carbon leave one. It is the model of the
 // reference toolkit, restated from its published description (the "RDKit book", section
@@ -30,18 +30,22 @@ type aromaticity struct {
 	donors    []donor
 	rings     [][]int32 // candidate rings, as atoms
 	bonds     [][]int32 // the same, as bonds
-	neighbors [][]int32 // candidate rings that share a bond
+	neighbors [][]int32 // candidate rings that share exactly one bond
 	done      []bool    // candidate already in a fused system
 	count     []int32   // by atom or bond, zero between uses
 	bondRings [][2]int32
 	arena     []int32
 }
 
-// outerElectrons and defaultValence drive the electron count; only what can occur in a ring or
-// beside it is listed (periodic table groups).
-var outerElectrons = [119]int8{1: 1, 3: 1, 4: 2, 5: 3, 6: 4, 7: 5, 8: 6, 9: 7, 11: 1, 12: 2, 13: 3, 14: 4, 15: 5, 16: 6, 17: 7,
-	19: 1, 20: 2, 30: 2, 31: 3, 32: 4, 33: 5, 34: 6, 35: 7, 37: 1, 38: 2, 48: 2, 49: 3, 50: 4, 51: 5, 52: 6, 53: 7,
-	55: 1, 56: 2, 80: 2, 81: 3, 82: 4, 83: 5, 84: 6, 85: 7}
+// outerElectrons counts the electrons outside closed shells (the column of the periodic table);
+// defaultValence is the valence of the elements that can stand in an aromatic ring.
+var outerElectrons = [119]int8{
+	1: 1, 2: 2, 3: 1, 4: 2, 5: 3, 6: 4, 7: 5, 8: 6, 9: 7, 10: 8, 11: 1, 12: 2, 13: 3, 14: 4, 15: 5, 16: 6, 17: 7, 18: 8,
+	19: 1, 20: 2, 21: 3, 22: 4, 23: 5, 24: 6, 25: 7, 26: 8, 27: 9, 28: 10, 29: 11, 30: 2, 31: 3, 32: 4, 33: 5, 34: 6, 35: 7, 36: 8,
+	37: 1, 38: 2, 39: 3, 40: 4, 41: 5, 42: 6, 43: 7, 44: 8, 45: 9, 46: 10, 47: 11, 48: 2, 49: 3, 50: 4, 51: 5, 52: 6, 53: 7, 54: 8,
+	55: 1, 56: 2, 57: 3, 72: 4, 73: 5, 74: 6, 75: 7, 76: 8, 77: 9, 78: 10, 79: 11, 80: 2, 81: 3, 82: 4, 83: 5, 84: 6, 85: 7, 86: 8,
+	87: 1, 88: 2,
+}
 
 var defaultValence = [119]int8{1: 1, 5: 3, 6: 4, 7: 3, 8: 2, 9: 1, 13: 3, 14: 4, 15: 3, 16: 2, 17: 1, 34: 2, 52: 2}
 
@@ -236,12 +240,13 @@ func (p *perceiver) linkCandidates() {
 			if len(ar.rings[j]) > maxFusedRing {
 				continue
 			}
+			shared := int32(0)
 			for _, b := range ar.bonds[j] {
-				if ar.count[b] > 0 {
-					ar.neighbors[i] = append(ar.neighbors[i], int32(j))
-					ar.neighbors[j] = append(ar.neighbors[j], int32(i))
-					break
-				}
+				shared += ar.count[b]
+			}
+			if shared == 1 {
+				ar.neighbors[i] = append(ar.neighbors[i], int32(j))
+				ar.neighbors[j] = append(ar.neighbors[j], int32(i))
 			}
 		}
 		for _, b := range ar.bonds[i] {

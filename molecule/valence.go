@@ -47,6 +47,10 @@ var valenceTable = func() (t [119][7][]uint8) {
 	return t
 }()
 
+// highest lists neutral atoms that bear more bonds than hydrogens are filled up to (SiF6, PF6 and
+// the like drawn without charges; common practice of structure files).
+var highest = map[Element]int16{14: 6, 15: 7, 33: 7, 51: 7}
+
 // valences returns the normal valences of a, lowest first; nil means no limit is known.
 func valences(a *Atom) []uint8 {
 	if a.Charge < -3 || a.Charge > 3 || a.Element > 118 {
@@ -127,7 +131,7 @@ func (p *perceiver) checkValence(a int) error {
 		}
 		most = 3
 	}
-	if total <= most {
+	if total <= most || x.Charge == 0 && total <= highest[x.Element] {
 		return nil
 	}
 	text := fmt.Sprintf("%s has %d bonds, hydrogens counted; at most %d are possible", describe(x), total, most)

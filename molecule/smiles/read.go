@@ -289,7 +289,7 @@ func (r *reader) addAtom(a molecule.Atom, lower bool, position int) {
 	r.atomAt = append(r.atomAt, int32(position))
 	r.markOf = append(r.markOf, -1)
 	if r.prev >= 0 {
-		r.addBond(r.prev, at, r.bond, r.bond, position)
+		r.addBond(r.prev, at, r.bond, position)
 		if k := r.markOf[r.prev]; k >= 0 {
 			r.marks[k].add(at)
 		}
@@ -299,13 +299,13 @@ func (r *reader) addAtom(a molecule.Atom, lower bool, position int) {
 }
 
 // addBond appends the bond a-b; symbol is what is written (either end of a closure), seen from a.
-func (r *reader) addBond(a, b int32, symbol, _ uint8, position int) {
+func (r *reader) addBond(a, b int32, symbol uint8, position int) {
 	order, dir := symbol, int8(0)
 	switch symbol {
 	case bondDefault:
 		order = 1
-		if r.lower[a] && r.lower[b] {
-			order = molecule.OrderAromatic
+		if r.lower[a] && (r.lower[b] || r.star(b)) || r.star(a) && (r.lower[b] || r.star(b)) {
+			order = molecule.OrderAromatic // Build makes it single outside rings
 		}
 	case bondUp, bondDown:
 		order, dir = 1, 1
@@ -318,6 +318,9 @@ func (r *reader) addBond(a, b int32, symbol, _ uint8, position int) {
 	r.bondAt = append(r.bondAt, int32(position))
 	r.bondDir = append(r.bondDir, dir)
 }
+
+// star says that a is the unknown atom, which takes part in aromatic rings as needed.
+func (r *reader) star(a int32) bool { return r.b.Atoms[a].Element == 0 }
 
 func (k *mark) add(ligand int32) {
 	if k.count < len(k.ligands) {
@@ -385,7 +388,7 @@ func (r *reader) closeRing(c *closure, n int, bond uint8, at int) error {
 			symbol = bond
 		}
 	}
-	r.addBond(c.atom, r.prev, symbol, bond, at)
+	r.addBond(c.atom, r.prev, symbol, at)
 	if k := r.markOf[c.atom]; k >= 0 {
 		m := &r.marks[k]
 		for i := range m.ligands[:m.count] {

@@ -267,9 +267,15 @@ func (w *writer) bond(b int32) {
 		w.out = append(w.out, '#')
 	case x.Order == 4:
 		w.out = append(w.out, '$')
-	case w.m.Atom(int(x.A)).Aromatic && w.m.Atom(int(x.B)).Aromatic:
+	case w.readAromatic(x.A, x.Ring) && w.readAromatic(x.B, x.Ring):
 		w.out = append(w.out, '-')
 	}
+}
+
+// readAromatic says that a reader may take an unwritten bond between a and its like as aromatic.
+func (w *writer) readAromatic(a int32, ring bool) bool {
+	x := w.m.Atom(int(a))
+	return x.Aromatic || x.Element == 0 && ring
 }
 
 // closures writes the ring digits of a. Numbers that end here are free again after this atom only.
@@ -345,6 +351,8 @@ func (w *writer) bare(a int32, x *molecule.Atom) bool {
 	h := int(x.Hydrogens)
 	if x.Aromatic {
 		switch x.Element {
+		case 0:
+			return h == 0
 		case 6:
 			return h == max(0, 3-sum)
 		case 7:
