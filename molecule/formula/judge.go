@@ -107,8 +107,8 @@ func prepare(in Evidence) (*evidence, error) {
 
 // judge tests f against the evidence; the second result is false if f is excluded. Words asks for
 // Reasons, which cost most of the time.
-func (ev *evidence) judge(f molecule.Formula, words bool) (Candidate, bool) {
-	c := Candidate{Formula: f, MolarMass: ev.weights.sum(&f, &ev.weights.average)}
+func (ev *evidence) judge(f *molecule.Formula, words bool) (Candidate, bool) {
+	c := Candidate{Formula: *f, MolarMass: ev.weights.sum(f, &ev.weights.average)}
 	say := func(format string, args ...any) {
 		if words {
 			c.Reasons = append(c.Reasons, fmt.Sprintf(format, args...))
@@ -132,7 +132,7 @@ func (ev *evidence) judge(f molecule.Formula, words bool) (Candidate, bool) {
 		}
 		say("%s %.2f %% found, %.2f %% calculated", molecule.Element(e).Symbol(), ev.percent[e], calculated)
 	}
-	exact := ev.weights.sum(&f, &ev.weights.exact)
+	exact := ev.weights.sum(f, &ev.weights.exact)
 	for i, x := range ev.Exact {
 		off := (ev.neutral[i] - exact) / x.MZ * 1e6
 		if !add(off / ppm(x)) {
@@ -141,7 +141,7 @@ func (ev *evidence) judge(f molecule.Formula, words bool) (Candidate, bool) {
 		say("m/z %.4f found, %.4f calculated for %s (%+.1f ppm)", x.MZ, exact+x.Ion.shift(), x.Ion, off)
 	}
 	if ev.MolecularIon > 0 {
-		if int(ev.weights.sum(&f, &ev.weights.nominal)) != ev.MolecularIon {
+		if int(ev.weights.sum(f, &ev.weights.nominal)) != ev.MolecularIon {
 			return c, false
 		}
 		say("nominal mass %d as found", ev.MolecularIon)
@@ -157,7 +157,7 @@ func (ev *evidence) judge(f molecule.Formula, words bool) (Candidate, bool) {
 	}
 	ev.weigh(&c, say)
 	if ev.Score != nil {
-		p, why := ev.Score(f)
+		p, why := ev.Score(*f)
 		if math.IsInf(p, 1) {
 			return c, false
 		}

@@ -63,7 +63,7 @@ type finder struct {
 	high     float64
 	min, max [119]int
 	f        molecule.Formula
-	found    []Candidate
+	found    []*Candidate
 	steps    int
 }
 
@@ -107,7 +107,7 @@ func find(ctx context.Context, in Evidence) (Result, error) {
 		return Result{}, ctx.Err()
 	}
 	sort.SliceStable(f.found, func(i, j int) bool {
-		a, b := &f.found[i], &f.found[j]
+		a, b := f.found[i], f.found[j]
 		if a.Penalty != b.Penalty {
 			return a.Penalty < b.Penalty
 		}
@@ -117,13 +117,14 @@ func find(ctx context.Context, in Evidence) (Result, error) {
 		doubts = append(doubts, fmt.Sprintf("%d formulas agree with the evidence; the %d likeliest are listed.", len(f.found), ev.MaxCandidates))
 		f.found = f.found[:ev.MaxCandidates]
 	}
-	for i := range f.found {
-		f.found[i], _ = ev.judge(f.found[i].Formula, true)
+	list := make([]Candidate, len(f.found))
+	for i, c := range f.found {
+		list[i], _ = ev.judge(&c.Formula, true)
 	}
 	if len(f.found) == 0 {
 		doubts = append(doubts, ev.whyNone())
 	}
-	return Result{f.found, doubts}, nil
+	return Result{list, doubts}, nil
 }
 
 // run finds the formulas whose mass on the scale given lies from low to high.
@@ -237,7 +238,7 @@ func (f *finder) fill(sum float64) {
 
 // consider tests the formula at hand against all evidence and keeps it.
 func (f *finder) consider() {
-	if c, ok := f.ev.judge(f.f, false); ok {
-		f.found = append(f.found, c)
+	if c, ok := f.ev.judge(&f.f, false); ok {
+		f.found = append(f.found, &c)
 	}
 }
