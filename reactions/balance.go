@@ -80,15 +80,14 @@ func (t *Transform) given(o *outcome, text string) *molecule.Molecule {
 	if err != nil {
 		return nil
 	}
-	classes := starClasses(text)
-	if len(classes) == 0 {
-		return m
+	for _, class := range starClasses(text) {
+		left := t.leaving(o, class)
+		if left == nil || m == nil {
+			return nil
+		}
+		m = graft(m, class, left, t.leavingAtom(o, class))
 	}
-	left := t.leaving(o, classes[0])
-	if left == nil {
-		return nil
-	}
-	return graft(m, left, t.leavingAtom(o, classes[0]))
+	return m
 }
 
 // leavingAtom is the atom of the leaving piece that was cut off.
@@ -102,12 +101,12 @@ func (t *Transform) leavingAtom(o *outcome, class int) int {
 	return 0
 }
 
-// graft puts frag in place of the star of m: the star's bonds go to the fragment's atom at, which gives
+// graft puts frag in place of the star of m with a class: the star's bonds go to the fragment's atom at, which gives
 // up one hydrogen for each.
-func graft(m, frag *molecule.Molecule, at int) *molecule.Molecule {
+func graft(m *molecule.Molecule, class int, frag *molecule.Molecule, at int) *molecule.Molecule {
 	star := -1
 	for a := 0; a < m.NumAtoms(); a++ {
-		if m.Atom(a).Element == 0 {
+		if m.Atom(a).Element == 0 && int(m.Atom(a).Class) == class {
 			star = a
 		}
 	}
@@ -119,14 +118,14 @@ func graft(m, frag *molecule.Molecule, at int) *molecule.Molecule {
 	for a := 0; a < m.NumAtoms(); a++ {
 		if a != star {
 			at := m.Atom(a)
-			at.Class, at.Aromatic = 0, false
+			at.Aromatic = false
 			index[a] = b.AddAtom(at)
 		}
 	}
 	first := len(b.Atoms)
 	for a := 0; a < frag.NumAtoms(); a++ {
 		x := frag.Atom(a)
-		x.Aromatic = false
+		x.Aromatic, x.Class = false, 0
 		if a == at {
 			x.Hydrogens = uint8(max(0, int(x.Hydrogens)-m.Degree(star)))
 		}

@@ -1,0 +1,515 @@
+package reactions
+
+import (
+	"context"
+	"fmt"
+	"sort"
+	"strings"
+
+	"shelfward/molecule"
+	"shelfward/reactions/reagent"
+)
+
+// Judgement is the answer to 'is this one step sound?'.
+type Judgement struct {
+	Verdict       string // sound | doubtful | unsound | unknown
+	Transforms    []*Transform
+	Expected      []Product
+	Objections    []Objection
+	NotUnderstood []string
+	Racemic       bool
+}
+
+// The verdicts.
+const (
+	Sound    = "sound"
+	Doubtful = "doubtful"
+	Unsound  = "unsound"
+	Unknown  = "unknown"
+)
+
+// Judge asks whether the molecules give the claimed product under the conditions described. Salts are
+// read as their free forms; ions without a structure of their own are dropped. described is false when
+// no conditions were given: then any condition set of a transform will do.
+func (b *Book) Judge(ctx context.Context, reactants, products []*molecule.Molecule, with reagent.Description, described bool, table *reagent.Table) (Judgement, error) {
+	j := &judge{b: b, table: table, with: with, described: described}
+	for _, m := range reactants {
+		j.add(m)
+	}
+	for _, p := range products {
+		for _, part := range p.Split() {
+			j.claimed = append(j.claimed, part.FreeForm())
+		}
+	}
+	sort.SliceStable(j.claimed, func(x, y int) bool { return j.claimed[x].NumAtoms() > j.claimed[y].NumAtoms() })
+	j.readReagents()
+	if err := j.tryAll(ctx); err != nil {
+		return Judgement{}, err
+	}
+	return j.conclude(), nil
+}
+
+// judge is the state of one judgement.
+type judge struct {
+	b         *Book
+	table     *reagent.Table
+	with      reagent.Description
+	described bool
+	reactants []*subject
+	extra     []*subject // carbon compounds named only among the conditions
+	claimed   []*molecule.Molecule
+	mentions  []mentioned
+	found     []candidate // transforms that give the claimed product
+	others    []candidate // transforms that fit the conditions and give something else
+	known     []*Transform
+}
+
+// mentioned is a substance of the description or a reactant, as the condition sets see it.
+type mentioned struct {
+	r      *reagent.Reagent
+	acts   map[string]bool
+	active bool // more than a solvent, a drying agent or part of the work-up
+}
+
+// candidate is one transform with one condition set.
+type candidate struct {
+	t           *Transform
+	c           *Conditions
+	a           assessment
+	objections  []Objection
+	matched     bool
+	unexplained []string
+	missing     []string
+}
+
+func (j *judge) add(m *molecule.Molecule) {
+	for _, part := range m.Split() {
+		if part.NumAtoms() == 1 && isMetal(part.Atom(0).Element) && part.Atom(0).Charge > 0 {
+			continue // the cation of a salt
+		}
+		j.reactants = append(j.reactants, j.b.subject(part.FreeForm()))
+	}
+	j.reactants = distinct(j.reactants)
+}
+
+// passive acts do nothing to a molecule by themselves.
+func passive(act string) bool {
+	return strings.HasPrefix(act, "solvent") || act == "drying-agent" || act == "water" || act == "inert-gas"
+}
+
+func (j *judge) readReagents() {
+	for _, st := range j.with.Stages {
+		for _, m := range st.Mentions {
+			if m.Reagent != nil {
+				j.mentions = append(j.mentions, mention(m.Reagent, !st.Workup && !m.Note))
+			}
+			if mol := mentionMolecule(m); mol != nil && carbons(mol) > 0 {
+				j.extra = append(j.extra, j.b.subject(mol.FreeForm()))
+			}
+		}
+	}
+	j.extra = distinct(j.extra)
+	if j.table == nil {
+		return
+	}
+	for _, s := range j.reactants {
+		if r, ok := j.table.ByMolecule(s.M); ok {
+			m := mention(r, false) // a reactant need not be explained
+			j.mentions = append(j.mentions, m)
+		}
+	}
+}
+
+func mentionMolecule(m reagent.Mention) *molecule.Molecule {
+	if m.Reagent == nil {
+		return m.Molecule
+	}
+	mol, err := m.Reagent.Molecule()
+	if err != nil {
+		return nil
+	}
+	return mol
+}
+
+func carbons(m *molecule.Molecule) int { return int(m.Formula().Count[6]) }
+
+func mention(r *reagent.Reagent, active bool) mentioned {
+	m := mentioned{r: r, acts: map[string]bool{}}
+	for _, a := range r.Acts {
+		m.acts[a] = true
+		m.active = m.active || !passive(a)
+	}
+	m.active = m.active && active
+	return m
+}
+
+// tryAll runs every transform on the reactants alone, then with the carbon compounds among the conditions.
+func (j *judge) tryAll(ctx context.Context) error {
+	pools := [][]*subject{j.reactants}
+	if len(j.extra) > 0 {
+		pools = append(pools, distinct(append(append([]*subject(nil), j.reactants...), j.extra...)))
+	}
+	for _, pool := range pools {
+		for _, t := range j.b.Transforms {
+			if err := ctx.Err(); err != nil {
+				return err
+			}
+			j.try(t, pool)
+		}
+		if len(j.found) > 0 {
+			return nil
+		}
+	}
+	return nil
+}
+
+func (j *judge) try(t *Transform, pool []*subject) {
+	var sets []candidate
+	for _, c := range t.Conditions {
+		sets = append(sets, j.match(t, c))
+	}
+	fits := false
+	for _, s := range sets {
+		fits = fits || s.matched
+	}
+	if fits && j.described {
+		j.known = append(j.known, t)
+	}
+	outs := t.run(j.b, pool)
+	if len(outs) == 0 {
+		return
+	}
+	hit := j.assessClaims(t, outs, pool)
+	for _, s := range sets {
+		s.a = hit
+		if !t.appliesTo(s.c, &outs[0]) && !hit.found || hit.found && !t.appliesTo(s.c, &hit.outcome) {
+			continue
+		}
+		if hit.found {
+			s.objections = append(append([]Objection(nil), hit.objections...), j.media(s.c, &hit.outcome, pool)...)
+			j.found = append(j.found, s)
+		} else if s.matched {
+			s.objections = j.media(s.c, &outs[0], pool)
+			j.others = append(j.others, s)
+		}
+	}
+}
+
+// assessClaims weighs the outcomes against each claimed product and keeps the one that stands strongest.
+func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) assessment {
+	var best assessment
+	for _, claim := range j.claimed {
+		if carbons(claim) == 0 && len(j.claimed) > 1 {
+			continue
+		}
+		var a assessment
+		a.weigh(outs, claim)
+		if !a.found {
+			if best.products == nil {
+				best.products = a.products
+			}
+			continue
+		}
+		a.judgeShare(t)
+		a.judgeStereo(pool)
+		a.judgeOver(j.b, t, pool)
+		return a
+	}
+	return best
+}
+
+func (j *judge) media(c *Conditions, o *outcome, pool []*subject) []Objection {
+	busy := o.busyAtoms(pool)
+	for _, id := range c.Together {
+		if t := j.b.byID[id]; t != nil {
+			j.markCompanion(t, pool, busy)
+		}
+	}
+	var out []Objection
+	for i, s := range pool {
+		used := false
+		for _, which := range o.copies {
+			used = used || which == i
+		}
+		if used {
+			out = append(out, j.b.media.objections(c.Media, s.Subject, j.b.groups, busy[i], nil)...)
+		}
+	}
+	return worstPerText(out)
+}
+
+// markCompanion marks the atoms that a companion transform of the same flask takes care of.
+func (j *judge) markCompanion(t *Transform, pool []*subject, busy [][]bool) {
+	for i, s := range pool {
+		for _, m := range t.part[forward][0].matches(s.Subject, nil) {
+			for _, a := range m {
+				busy[i][a] = true
+			}
+		}
+	}
+}
+
+// match compares a condition set with the description: every reagent that is not optional must be
+// there, by name or by what it does; what else is there and active stays unexplained.
+func (j *judge) match(t *Transform, c *Conditions) candidate {
+	s := candidate{t: t, c: c, matched: true}
+	if !j.described {
+		return s
+	}
+	explained := make([]bool, len(j.mentions))
+	for _, ch := range c.Reagents {
+		hit := false
+		for i := range j.mentions {
+			if j.serves(&j.mentions[i], ch) {
+				hit, explained[i] = true, true
+			}
+		}
+		if !hit && !ch.Optional {
+			s.missing = append(s.missing, ch.Name)
+		}
+	}
+	for _, sol := range c.Solvents {
+		for i := range j.mentions {
+			if r := j.find(sol.Name); r != nil && r == j.mentions[i].r {
+				explained[i] = true
+			}
+		}
+	}
+	for _, name := range c.WorkupMaterials {
+		for i := range j.mentions {
+			if r := j.find(name); r != nil && r == j.mentions[i].r {
+				explained[i] = true
+			}
+		}
+	}
+	for i, m := range j.mentions {
+		if m.active && !explained[i] {
+			s.unexplained = append(s.unexplained, m.r.Name)
+		}
+	}
+	s.matched = len(s.missing) == 0 && j.factsAllow(c, &s)
+	return s
+}
+
+func (j *judge) find(name string) *reagent.Reagent {
+	if j.table == nil {
+		return nil
+	}
+	r, _ := j.table.Named(name)
+	return r
+}
+
+// serves says whether a mentioned substance can stand for a charge of the condition set.
+func (j *judge) serves(m *mentioned, ch Charge) bool {
+	r := j.find(ch.Name)
+	if r != nil && r == m.r {
+		return true
+	}
+	for _, act := range ch.Like {
+		if m.acts[act] {
+			return true
+		}
+	}
+	if len(ch.Like) > 0 || r == nil {
+		return false
+	}
+	for _, act := range r.Acts { // no list of like acts: the leading act decides
+		return !passive(act) && m.acts[act]
+	}
+	return false
+}
+
+// factsAllow looks at heat, cold, light and the like.
+func (j *judge) factsAllow(c *Conditions, s *candidate) bool {
+	for _, f := range c.NeverWith {
+		if j.with.Has(f) {
+			s.missing = append(s.missing, "not "+f)
+			return false
+		}
+	}
+	if len(c.OnlyWith) == 0 {
+		return true
+	}
+	for _, f := range c.OnlyWith {
+		if j.with.Has(f) {
+			return true
+		}
+	}
+	s.missing = append(s.missing, strings.Join(c.OnlyWith, " or "))
+	return false
+}
+
+// conclude turns candidates into a verdict.
+func (j *judge) conclude() Judgement {
+	out := Judgement{NotUnderstood: j.with.NotUnderstood}
+	best := j.bestFound()
+	switch {
+	case best == nil:
+		j.concludeNothing(&out)
+	case best.matched:
+		j.concludeMatched(best, &out)
+	default:
+		j.concludeOther(best, &out)
+	}
+	if len(out.NotUnderstood) > 0 && out.Verdict == Sound {
+		out.Verdict = Doubtful
+	}
+	return out
+}
+
+// bestFound picks the candidate that stands strongest: matched, without fatal objection, with the
+// fewest unexplained reagents and objections.
+func (j *judge) bestFound() *candidate {
+	rank := func(c *candidate) [5]int {
+		r := [5]int{1, 1, len(c.unexplained), len(c.objections), len(c.missing)}
+		if c.matched {
+			r[0] = 0
+		}
+		if !fatal(c.objections) {
+			r[1] = 0
+		}
+		return r
+	}
+	var best *candidate
+	for i := range j.found {
+		c := &j.found[i]
+		if best == nil || less(rank(c), rank(best)) {
+			best = c
+		}
+	}
+	return best
+}
+
+func less(a, b [5]int) bool {
+	for i := range a {
+		if a[i] != b[i] {
+			return a[i] < b[i]
+		}
+	}
+	return false
+}
+
+func (j *judge) concludeMatched(best *candidate, out *Judgement) {
+	out.Transforms = []*Transform{best.t}
+	out.Expected = best.a.products
+	out.Racemic = best.a.racemic
+	out.Objections = append(out.Objections, best.objections...)
+	if rival := j.rivalOf(best); rival != nil {
+		out.Objections = append(out.Objections, Objection{Kind: KindOther, Fatal: true, Source: rival.t.Source,
+			Text: fmt.Sprintf("with these reagents %s runs instead and gives %s", rival.t.Name, productNames(rival.a.products))})
+		out.Expected = rival.a.products
+		out.Transforms = append(out.Transforms, rival.t)
+	}
+	switch {
+	case fatal(out.Objections):
+		out.Verdict = Unsound
+	case len(out.Objections) > 0:
+		out.Verdict = Doubtful
+	default:
+		out.Verdict = Sound
+	}
+}
+
+// rivalOf looks for another transform that explains more of the reagents and gives something else.
+func (j *judge) rivalOf(best *candidate) *candidate {
+	if len(best.unexplained) == 0 {
+		return nil
+	}
+	for i := range j.others {
+		c := &j.others[i]
+		if c.t != best.t && len(c.unexplained) < len(best.unexplained) && !fatal(c.objections) && len(c.a.products) > 0 {
+			return c
+		}
+	}
+	return nil
+}
+
+func productNames(list []Product) string {
+	var names []string
+	for i, p := range list {
+		if i < 2 {
+			names = append(names, written(p.Molecule))
+		}
+	}
+	if len(names) == 0 {
+		return "another product"
+	}
+	return strings.Join(names, " and ")
+}
+
+// concludeOther: a transform gives the product, but not with these reagents.
+func (j *judge) concludeOther(best *candidate, out *Judgement) {
+	out.Transforms = []*Transform{best.t}
+	out.Verdict = Unsound
+	if len(j.known) == 0 && len(j.others) == 0 {
+		out.Verdict = Doubtful
+	}
+	if len(out.NotUnderstood) > 0 {
+		out.Verdict = Doubtful
+	}
+	text := fmt.Sprintf("%s would give it, but these conditions lack %s", best.t.Name, strings.Join(best.missing, ", "))
+	out.Objections = append(out.Objections, Objection{Kind: KindNoReaction, Text: text, Fatal: out.Verdict == Unsound})
+	if rival := j.strongestOther(); rival != nil {
+		out.Expected = rival.a.products
+		out.Objections = append(out.Objections, Objection{Kind: KindSite, Fatal: out.Verdict == Unsound, Source: rival.t.Source,
+			Text: fmt.Sprintf("with these reagents %s runs and gives %s", rival.t.Name, productNames(rival.a.products))})
+	}
+	for _, o := range best.objections {
+		out.Objections = append(out.Objections, o)
+	}
+}
+
+func (j *judge) strongestOther() *candidate {
+	var best *candidate
+	for i := range j.others {
+		c := &j.others[i]
+		if fatal(c.objections) || len(c.a.products) == 0 {
+			continue
+		}
+		if best == nil || len(c.unexplained) < len(best.unexplained) {
+			best = c
+		}
+	}
+	return best
+}
+
+// concludeNothing: no transform gives the product from these molecules.
+func (j *judge) concludeNothing(out *Judgement) {
+	rival := j.strongestOther()
+	switch {
+	case rival != nil:
+		out.Verdict = Unsound
+		out.Transforms = []*Transform{rival.t}
+		out.Expected = rival.a.products
+		kind := KindSite
+		if !j.sameFormula(rival) {
+			kind = KindOther
+		}
+		out.Objections = append(out.Objections, Objection{Kind: kind, Fatal: true, Source: rival.t.Source,
+			Text: fmt.Sprintf("with these reagents %s runs and gives %s, not the product claimed", rival.t.Name, productNames(rival.a.products))})
+	case len(j.known) > 0:
+		out.Verdict = Unsound
+		out.Transforms = j.known[:min(3, len(j.known))]
+		out.Objections = append(out.Objections, Objection{Kind: KindNoReaction, Fatal: true,
+			Text: fmt.Sprintf("these are the conditions of %s, which needs other groups than these molecules offer", namesOf(out.Transforms))})
+	default:
+		out.Verdict = Unknown
+		out.Objections = append(out.Objections, Objection{Kind: KindNoTransform,
+			Text: "no loaded transform leads from these materials to this product"})
+	}
+	if len(out.NotUnderstood) > 0 && out.Verdict == Unsound {
+		out.Verdict = Doubtful
+	}
+}
+
+func (j *judge) sameFormula(c *candidate) bool {
+	return len(c.a.products) > 0 && len(j.claimed) > 0 && c.a.products[0].Molecule.Formula() == j.claimed[0].Formula()
+}
+
+func namesOf(ts []*Transform) string {
+	var names []string
+	for _, t := range ts {
+		names = append(names, t.Name)
+	}
+	return strings.Join(names, ", ")
+}
