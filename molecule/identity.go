@@ -69,11 +69,3 @@ func (m *Molecule) Key() Key { return m.exactIdentity().key }
 
 // FlatKey is the identity without stereo.
 func (m *Molecule) FlatKey() Key { return m.flatIdentity().key }
-
-// SeenThroughKey is the exact identity of the form in which salts are free acids and bases,
-// charge-separated forms are one, hydrogens that shift between N, O and S along a conjugated path
-// stand at one place, and a simple enol is its ketone.
-func (m *Molecule) SeenThroughKey() Key { panic("todo") }
-
-// FreeForm returns the neutral parent: metal cations and counter-ions of salts dropped, protons restored.
-func (m *Molecule) FreeForm() *Molecule { panic("todo") }

@@ -42,11 +42,24 @@ func (m *Matcher) Match(first []int32, nbrs []Neighbor, usable []bool, role []Ro
 		}
 	}
 	for a := 0; a < n; a++ {
-		if role[a] == Required && m.mate[a] < 0 && !m.augment(first, nbrs, usable, role, int32(a)) {
+		if role[a] == Required && m.mate[a] < 0 && !m.augment(first, nbrs, usable, role, int32(a), true) {
 			alone = append(alone, int32(a))
 		}
 	}
 	return m.mate, alone
+}
+
+// Largest is Match with as many Optional vertices covered as possible besides.
+func (m *Matcher) Largest(first []int32, nbrs []Neighbor, usable []bool, role []Role) (mate, alone []int32) {
+	if _, alone = m.Match(first, nbrs, usable, role); alone != nil {
+		return m.mate, alone
+	}
+	for a := range m.mate {
+		if role[a] == Optional && m.mate[a] < 0 {
+			m.augment(first, nbrs, usable, role, int32(a), false)
+		}
+	}
+	return m.mate, nil
 }
 
 func (m *Matcher) grow(n int) {
@@ -80,8 +93,8 @@ func (m *Matcher) loneliest(first []int32, nbrs []Neighbor, usable []bool, role 
 }
 
 // augment covers root along an alternating path, or reports that none exists. A path may also end
-// at an optional vertex that then loses its partner.
-func (m *Matcher) augment(first []int32, nbrs []Neighbor, usable []bool, role []Role, root int32) bool {
+// at an optional vertex that then loses its partner, where exchange allows it.
+func (m *Matcher) augment(first []int32, nbrs []Neighbor, usable []bool, role []Role, root int32, exchange bool) bool {
 	for i := range m.parent {
 		m.parent[i], m.base[i], m.outer[i] = -1, int32(i), false
 	}
@@ -109,7 +122,7 @@ func (m *Matcher) augment(first []int32, nbrs []Neighbor, usable []bool, role []
 			c := m.mate[b]
 			m.outer[c] = true
 			m.queue = append(m.queue, c)
-			if role[c] == Optional {
+			if exchange && role[c] == Optional {
 				m.mate[c] = -1
 				m.flip(b)
 				return true

@@ -1,0 +1,500 @@
+package molecule
+
+import "slices"
+
+// FreeForm returns the neutral parent of a salt: cations of the alkali and alkaline earth metals
+// and plain ammonium dropped, their organic anions (and cyanide and azide) protonated, ammonium
+// ions of amines deprotonated and the halide, hydrogen halide or mineral acid beside them dropped,
+// equal copies left by it written once. Organometallics drawn as ions become covalent and are never
+// protonated. Quaternary ammonium and the like stay charged, without chloride, bromide or iodide.
+// Salts without an organic ion (sodium chloride, potassium carbonate), salts of other metals and
+// of anions that take no proton (borates, hexafluorophosphate) are left as they are. It returns m
+// itself if nothing changes.
+func (m *Molecule) FreeForm() *Molecule {
+	if !m.mayBeSalt() {
+		return m
+	}
+	b := m.Builder()
+	f := &freeing{b: b}
+	changed := f.cutMetalBonds()
+	changed = f.joinOrganometals() || changed
+	changed = f.neutralise() || changed
+	if !changed {
+		return m
+	}
+	free, err := b.Build()
+	if err != nil {
+		return m
+	}
+	if f.dropped {
+		free = free.withoutCopies()
+	}
+	return free
+}
+
+// mayBeSalt is a quick look for charges, metals or mineral acids beside something else.
+func (m *Molecule) mayBeSalt() bool {
+	for a := range m.atoms {
+		x := &m.atoms[a]
+		if x.Charge != 0 || x.Element.IsMetal() {
+			return true
+		}
+		if m.Degree(a) == 0 && len(m.atoms) > 1 || x.Element == 16 && m.Degree(a) == 4 {
+			return true
+		}
+	}
+	return false
+}
+
+// isSaltMetal says that e forms salts whose anion is what counts on the shelf: groups 1 and 2.
+func isSaltMetal(e Element) bool {
+	switch e {
+	case 3, 11, 19, 37, 55, 12, 20, 38, 56:
+		return true
+	}
+	return false
+}
+
+// freeing is the working state of FreeForm.
+type freeing struct {
+	b       *Builder
+	dropped bool // some component was dropped
+	nbs     [][]Neighbor
+}
+
+// adjacency lists neighbours as the bonds now stand.
+func (f *freeing) adjacency() {
+	f.nbs = make([][]Neighbor, len(f.b.Atoms))
+	for i, x := range f.b.Bonds {
+		f.nbs[x.A] = append(f.nbs[x.A], Neighbor{Atom: x.B, Bond: int32(i)})
+		f.nbs[x.B] = append(f.nbs[x.B], Neighbor{Atom: x.A, Bond: int32(i)})
+	}
+}
+
+// cyanide says that carbon a is the carbon of a cyanide: a triple bond to nitrogen.
+func (f *freeing) cyanide(a int32) bool {
+	if f.b.Atoms[a].Element != 6 {
+		return false
+	}
+	for _, nb := range f.nbs[a] {
+		if f.b.Bonds[nb.Bond].Order == 3 && f.b.Atoms[nb.Atom].Element == 7 && f.b.Atoms[nb.Atom].Charge == 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// cutMetalBonds turns covalently drawn salts (CO[Na], [K]C#N) into ions. A metal that also holds
+// carbon is an organometallic and keeps its bonds.
+func (f *freeing) cutMetalBonds() bool {
+	f.adjacency()
+	b := f.b
+	cut := make([]bool, len(b.Bonds))
+	any := false
+	for a := range b.Atoms {
+		if !isSaltMetal(b.Atoms[a].Element) || len(f.nbs[a]) == 0 {
+			continue
+		}
+		ionic := true
+		organic := false
+		for _, nb := range f.nbs[a] {
+			e := b.Atoms[nb.Atom].Element
+			ionic = ionic && b.Bonds[nb.Bond].Order == 1 && (e == 7 || e == 8 || e == 16 || e == 34 || e == 9 || e == 17 || e == 35 || e == 53 || f.cyanide(nb.Atom))
+			organic = organic || len(f.nbs[nb.Atom]) > 1
+		}
+		if !ionic || !organic {
+			continue
+		}
+		for _, nb := range f.nbs[a] {
+			cut[nb.Bond] = true
+			b.Atoms[a].Charge++
+			b.Atoms[nb.Atom].Charge--
+			any = true
+		}
+	}
+	if any {
+		b.RemoveBonds(cut)
+	}
+	return any
+}
+
+// carbanion says that a is a carbon anion that is no cyanide and not balanced by a neighbour.
+func (f *freeing) carbanion(a int32) bool {
+	x := &f.b.Atoms[a]
+	if x.Element != 6 || x.Charge >= 0 || f.cyanide(a) {
+		return false
+	}
+	for _, nb := range f.nbs[a] {
+		if f.b.Atoms[nb.Atom].Charge > 0 {
+			return false
+		}
+	}
+	return true
+}
+
+// joinOrganometals bonds carbanions to metal cations, and halide ions to metals that hold carbon.
+func (f *freeing) joinOrganometals() bool {
+	f.adjacency()
+	b := f.b
+	changed := false
+	var metals []int32
+	for a := range b.Atoms {
+		if b.Atoms[a].Element.IsMetal() && b.Atoms[a].Charge > 0 {
+			metals = append(metals, int32(a))
+		}
+	}
+	join := func(a, metal int32) {
+		b.AddBond(int(a), int(metal), 1)
+		b.Atoms[a].Charge++
+		b.Atoms[metal].Charge--
+		changed = true
+	}
+	holdsCarbon := func(metal int32) bool {
+		for _, x := range b.Bonds {
+			if x.A == metal && b.Atoms[x.B].Element == 6 || x.B == metal && b.Atoms[x.A].Element == 6 {
+				return true
+			}
+		}
+		return false
+	}
+	for a := range b.Atoms {
+		for b.Atoms[a].Charge < 0 && f.carbanion(int32(a)) {
+			at := slices.IndexFunc(metals, func(k int32) bool { return b.Atoms[k].Charge > 0 })
+			if at < 0 {
+				return changed
+			}
+			join(int32(a), metals[at])
+			break // one bond between two atoms
+		}
+	}
+	for _, metal := range metals {
+		for a := range b.Atoms {
+			if b.Atoms[metal].Charge > 0 && isHalogen(b.Atoms[a].Element) && b.Atoms[a].Charge == -1 && len(f.nbs[a]) == 0 && holdsCarbon(metal) {
+				join(int32(a), metal)
+			}
+		}
+	}
+	return changed
+}
+
+func isHalogen(e Element) bool { return e == 9 || e == 17 || e == 35 || e == 53 }
+
+// part is one component while it is judged.
+type part struct {
+	atoms    []int32
+	charge   int
+	carbon   bool // holds carbon, or is hydroxylamine, hydrazine and the like
+	metal    bool // a salt metal cation or ammonium, alone
+	halide   bool // Cl-, Br-, I- or the hydrogen halide
+	acid     bool // a neutral mineral acid or hydrogen halide, or one of their anions
+	takes    bool // an anion that is protonated
+	stubborn bool // an anion that takes no proton
+}
+
+// neutralise drops counter-ions and moves protons.
+func (f *freeing) neutralise() bool {
+	f.adjacency()
+	parts := f.parts()
+	organicIon, organicBase, stubborn, permanent := false, false, false, 0
+	for _, p := range parts {
+		stubborn = stubborn || p.stubborn
+		if p.carbon && !p.metal {
+			organicIon = organicIon || p.charge != 0
+			organicBase = organicBase || f.hasAmine(p)
+			permanent += max(0, p.charge-f.acidicAmmonium(p))
+		}
+		if p.takes {
+			organicIon = true
+		}
+	}
+	changed := false
+	drop := make([]bool, len(f.b.Atoms))
+	metals := 0
+	for _, p := range parts {
+		if p.metal {
+			metals++
+		}
+	}
+	for _, p := range parts {
+		switch {
+		case p.metal && organicIon && !stubborn && !f.loneInorganic(parts),
+			p.acid && len(parts) > 1 && (organicBase || p.halide && p.charge < 0 && f.hasOrganicCation(parts)) && metals == 0:
+			for _, a := range p.atoms {
+				drop[a] = true
+			}
+			changed, f.dropped = true, true
+		case p.carbon || p.takes:
+			protonate := !stubborn && (permanent == 0 || metals > 0)
+			changed = f.balance(p, protonate) || changed
+		}
+	}
+	if f.dropped {
+		f.b.RemoveAtoms(drop)
+	}
+	return changed
+}
+
+// loneInorganic says that some anion beside the organic ones is inorganic and stays (hydroxide,
+// carbonate): then the metal stays too.
+func (f *freeing) loneInorganic(parts []part) bool {
+	for _, p := range parts {
+		if p.charge < 0 && !p.takes && !p.carbon && !p.halide {
+			return true
+		}
+	}
+	return false
+}
+
+func (f *freeing) hasOrganicCation(parts []part) bool {
+	for _, p := range parts {
+		if p.carbon && p.charge > 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// parts lists the components with what they are.
+func (f *freeing) parts() []part {
+	b := f.b
+	seen := make([]bool, len(b.Atoms))
+	var list []part
+	for a := range b.Atoms {
+		if seen[a] {
+			continue
+		}
+		p := part{atoms: []int32{int32(a)}}
+		seen[a] = true
+		for i := 0; i < len(p.atoms); i++ {
+			for _, nb := range f.nbs[p.atoms[i]] {
+				if !seen[nb.Atom] {
+					seen[nb.Atom] = true
+					p.atoms = append(p.atoms, nb.Atom)
+				}
+			}
+		}
+		f.classify(&p)
+		list = append(list, p)
+	}
+	return list
+}
+
+func (f *freeing) classify(p *part) {
+	b := f.b
+	oxygens := 0
+	for _, a := range p.atoms {
+		x := &b.Atoms[a]
+		p.charge += int(x.Charge)
+		p.carbon = p.carbon || x.Element == 6
+		if x.Element == 8 {
+			oxygens++
+		}
+	}
+	x := &b.Atoms[p.atoms[0]]
+	if len(p.atoms) == 1 {
+		p.metal = isSaltMetal(x.Element) && x.Charge > 0 || x.Element == 7 && x.Charge == 1 && x.Hydrogens == 4
+		p.halide = (x.Element == 17 || x.Element == 35 || x.Element == 53) && (x.Charge == -1 || x.Charge == 0 && x.Hydrogens == 1)
+		p.acid = p.halide
+		p.carbon = p.carbon && !(x.Element == 6 && x.Hydrogens == 0)
+	}
+	p.carbon = p.carbon || f.nitrogenBase(p)
+	if len(p.atoms) == 4 && oxygens == 3 && p.carbon && p.charge < 0 {
+		p.carbon = false // carbonate and hydrogen carbonate count as inorganic
+	}
+	if !p.carbon && len(p.atoms) > 1 && f.mineralAcid(p) {
+		p.acid = true
+	}
+	if p.charge < 0 {
+		p.takes = p.carbon || f.azide(p)
+		if p.takes {
+			for _, a := range p.atoms {
+				if x := &b.Atoms[a]; x.Charge < 0 && !f.protonSite(a) && !f.balanced(a) {
+					p.takes, p.stubborn = false, true
+				}
+			}
+		}
+	}
+}
+
+// nitrogenBase knows hydroxylamine, hydrazine and their ammonium ions: two atoms or more, all
+// singly bonded nitrogen or oxygen.
+func (f *freeing) nitrogenBase(p *part) bool {
+	nitrogen := false
+	for _, a := range p.atoms {
+		x := &f.b.Atoms[a]
+		nitrogen = nitrogen || x.Element == 7
+		if x.Element != 7 && x.Element != 8 || x.Charge < 0 {
+			return false
+		}
+		for _, nb := range f.nbs[a] {
+			if f.b.Bonds[nb.Bond].Order != 1 {
+				return false
+			}
+		}
+	}
+	return nitrogen && len(p.atoms) > 1
+}
+
+// mineralAcid knows sulfuric, nitric, phosphoric and perchloric acid and their anions by formula:
+// one central atom, the rest oxygen.
+func (f *freeing) mineralAcid(p *part) bool {
+	center := int32(-1)
+	for _, a := range p.atoms {
+		if f.b.Atoms[a].Element == 8 {
+			continue
+		}
+		if center >= 0 {
+			return false
+		}
+		center = a
+	}
+	if center < 0 {
+		return false
+	}
+	switch e := f.b.Atoms[center].Element; len(p.atoms) {
+	case 5:
+		return e == 16 || e == 15 || e == 17
+	case 4:
+		return e == 7
+	}
+	return false
+}
+
+// azide says that p is the azide ion.
+func (f *freeing) azide(p *part) bool {
+	if len(p.atoms) != 3 || p.charge != -1 {
+		return false
+	}
+	for _, a := range p.atoms {
+		if f.b.Atoms[a].Element != 7 {
+			return false
+		}
+	}
+	return true
+}
+
+// balanced says that an anion is drawn next to its cation (nitro, N-oxide, ylide, isocyanide).
+func (f *freeing) balanced(a int32) bool {
+	for _, nb := range f.nbs[a] {
+		if f.b.Atoms[nb.Atom].Charge > 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// protonSite says that anion a takes a proton to make the free acid.
+func (f *freeing) protonSite(a int32) bool {
+	x := &f.b.Atoms[a]
+	switch x.Element {
+	case 7, 8, 16, 34:
+		return x.Charge < 0
+	case 6:
+		return x.Charge == -1 && f.cyanide(a)
+	}
+	return false
+}
+
+// ammonium says that a is a protonated nitrogen (not one whose charge is only drawn apart).
+func (f *freeing) ammonium(a int32) bool {
+	x := &f.b.Atoms[a]
+	if x.Element != 7 || x.Charge != 1 || x.Hydrogens == 0 {
+		return false
+	}
+	for _, nb := range f.nbs[a] {
+		if f.b.Atoms[nb.Atom].Charge < 0 || f.b.Atoms[nb.Atom].Element == 7 && f.b.Atoms[nb.Atom].Charge > 0 {
+			return false
+		}
+	}
+	return true
+}
+
+func (f *freeing) acidicAmmonium(p part) int {
+	n := 0
+	for _, a := range p.atoms {
+		if f.ammonium(a) {
+			n++
+		}
+	}
+	return n
+}
+
+// hasAmine says that p holds a nitrogen that an acid protonates: an ammonium, or a neutral one with
+// single or aromatic bonds to carbon that is no amide, nitrile or nitro nitrogen.
+func (f *freeing) hasAmine(p part) bool {
+	b := f.b
+	for _, a := range p.atoms {
+		if f.ammonium(a) {
+			return true
+		}
+		x := &b.Atoms[a]
+		if x.Element != 7 || x.Charge != 0 {
+			continue
+		}
+		basic := true
+		for _, nb := range f.nbs[a] {
+			if b.Bonds[nb.Bond].Order == 3 {
+				basic = false
+			}
+			if b.Bonds[nb.Bond].Order != 1 {
+				continue
+			}
+			for _, c := range f.nbs[nb.Atom] { // acyl, sulfonyl
+				if e := b.Atoms[c.Atom].Element; b.Bonds[c.Bond].Order == 2 && (e == 8 || e == 16) {
+					basic = false
+				}
+			}
+		}
+		if basic {
+			return true
+		}
+	}
+	return false
+}
+
+// balance deprotonates ammonium ions of p and protonates its anions until p is neutral or only
+// permanent charges are left.
+func (f *freeing) balance(p part, protonate bool) bool {
+	b := f.b
+	changed := false
+	net := p.charge
+	for _, a := range p.atoms {
+		if f.ammonium(a) {
+			b.Atoms[a].Charge, b.Atoms[a].Hydrogens = 0, b.Atoms[a].Hydrogens-1
+			net--
+			changed = true
+		}
+	}
+	if !protonate {
+		return changed
+	}
+	for pass := 0; pass < 2; pass++ { // anions drawn apart from their cation first
+		for _, a := range p.atoms {
+			for net < 0 && f.protonSite(a) && (pass == 1 || !f.balanced(a)) && b.Atoms[a].Charge < 0 {
+				b.Atoms[a].Charge++
+				b.Atoms[a].Hydrogens++
+				net++
+				changed = true
+			}
+		}
+	}
+	return changed
+}
+
+// withoutCopies writes equal components once.
+func (m *Molecule) withoutCopies() *Molecule {
+	parts := m.Split()
+	if len(parts) == 1 {
+		return m
+	}
+	var kept []*Molecule
+	for _, p := range parts {
+		if !slices.ContainsFunc(kept, func(q *Molecule) bool { return q.Key() == p.Key() }) {
+			kept = append(kept, p)
+		}
+	}
+	if len(kept) == len(parts) {
+		return m
+	}
+	return Join(kept...)
+}
