@@ -23,7 +23,8 @@ import (
 type Reagent struct {
 	Name   string   // the name used by transforms and on sheets
 	Also   []string // other names of the same substance
-	Alike  []string // names of close relatives read like this one, never bought as it
+	Alike  []string // names of close relatives that share its acts
+	Like   *Reagent // of a close relative: the entry that stands in for it; nil for an entry of its own
 	Class  bool     // a word for a class ('acid'), no substance
 	Means  []string // names of the reagents a short name stands for; empty otherwise
 	CAS    string   // empty if unknown
@@ -31,6 +32,7 @@ type Reagent struct {
 
 	Form     string // solid, liquid, solution or gas, as supplied
 	Supplied string // how the trade supplies it
+	DryForm  string // name of what is meant when it is called dry or a gas; may be empty
 	Strength Strength
 
 	DensityGPerML  float64  // of the supplied liquid or solution; 0 unknown
@@ -52,8 +54,9 @@ type Reagent struct {
 // Does reports whether the reagent carries an act.
 func (r *Reagent) Does(act string) bool { return slices.Contains(r.Acts, act) }
 
-// Substance reports whether the entry is a substance that can be bought and charged.
-func (r *Reagent) Substance() bool { return !r.Class && len(r.Means) == 0 }
+// Substance reports whether the entry is a substance whose data are known: no class, no short name
+// for several, no close relative of another entry.
+func (r *Reagent) Substance() bool { return !r.Class && len(r.Means) == 0 && r.Like == nil }
 
 // Table is the loaded list of reagents with its index of names and the wording of conditions.
 type Table struct {
@@ -64,7 +67,7 @@ type Table struct {
 	acts    map[string]string
 	wording *wording
 
-	structures func() map[molecule.Key]*Reagent // built on first use
+	structures func() structures // built on first use
 }
 
 // entry is a reagent as written.
@@ -79,6 +82,7 @@ type entry struct {
 	SMILES         rules.Text   `yaml:"smiles"`
 	Form           rules.Text   `yaml:"form"`
 	Supplied       string       `yaml:"supplied"`
+	DryForm        string       `yaml:"dry_form"`
 	Strength       rules.Text   `yaml:"strength"`
 	Density        float64      `yaml:"density"`
 	Boils          *float64     `yaml:"boils"`
@@ -119,6 +123,9 @@ func Load(fsys fs.FS) (*Table, error) {
 				errs = append(errs, r.place.Errorf("%s means %q, which is no reagent%s", r.Name, m, t.didYouMean(m)))
 			}
 		}
+		if _, ok := t.byName[fold(r.DryForm)]; r.DryForm != "" && !ok {
+			errs = append(errs, r.place.Errorf("dry_form of %s is %q, which is no reagent%s", r.Name, r.DryForm, t.didYouMean(r.DryForm)))
+		}
 	}
 	var err error
 	if t.wording, err = loadWording(fsys); err != nil {
@@ -136,8 +143,8 @@ var Builtin = sync.OnceValues(func() (*Table, error) { return Load(rules.Files()
 
 // add checks an entry and puts it into the table.
 func (t *Table) add(e entry, errs *rules.ErrorList) {
-	r := &Reagent{Name: e.Name.Value, Also: e.Also, Alike: e.Alike, Class: e.Class, Means: e.Means, CAS: e.CAS.Value,
-		SMILES: e.SMILES.Value, Form: e.Form.Value, Supplied: e.Supplied, DensityGPerML: e.Density, BoilsC: e.Boils, MeltsC: e.Melts,
+	r := &Reagent{Name: e.Name.Value, Also: e.Also, Alike: e.Alike, Class: e.Class, Means: e.Means, CAS: e.CAS.Value, SMILES: e.SMILES.Value, Form: e.Form.Value,
+		Supplied: e.Supplied, DryForm: e.DryForm, DensityGPerML: e.Density, BoilsC: e.Boils, MeltsC: e.Melts,
 		FlashC: e.Flash, Peroxides: e.Peroxides.Value, MixesWithWater: e.MixesWithWater, Caution: e.Caution, Source: e.Source, place: e.Place}
 	if r.Source == "" {
 		r.Source = "memory"
@@ -171,10 +178,11 @@ func (t *Table) add(e entry, errs *rules.ErrorList) {
 		}
 	}
 	t.all = append(t.all, r)
-	for _, list := range [][]string{{r.Name}, r.Also, r.Alike} {
-		for _, name := range list {
-			t.addName(name, r, e.Place, errs)
-		}
+	for _, name := range append([]string{r.Name}, r.Also...) {
+		t.addName(name, r, e.Place, errs)
+	}
+	for _, name := range r.Alike {
+		t.addName(name, &Reagent{Name: name, Like: r, Form: r.Form, Acts: r.Acts, Class: r.Class, Source: r.Source, place: e.Place}, e.Place, errs)
 	}
 	if _, taken := t.byCAS[r.CAS]; r.CAS != "" && !taken {
 		t.byCAS[r.CAS] = r // hydrogen chloride and hydrochloric acid share a number: the first answers
@@ -183,7 +191,11 @@ func (t *Table) add(e entry, errs *rules.ErrorList) {
 
 func (t *Table) addName(name string, r *Reagent, p rules.Place, errs *rules.ErrorList) {
 	key := fold(name)
-	if other, taken := t.byName[key]; taken && other != r {
+	other, taken := t.byName[key]
+	if taken && r.Like != nil && other.Like == r.Like {
+		return // two spellings of one relative
+	}
+	if taken && other != r {
 		errs.Add(p, p.Errorf("the name %q stands for %s already (%s)", name, other.Name, other.place))
 		return
 	}
@@ -210,18 +222,34 @@ func (t *Table) ActMeaning(act string) (string, bool) {
 	return m, ok
 }
 
-// indexStructures reads the structures of all substances. A structure that cannot be read is left
-// out here; the tests of the rules report it.
-func (t *Table) indexStructures() map[molecule.Key]*Reagent {
-	index := map[molecule.Key]*Reagent{}
-	for _, r := range t.all {
-		if m, err := r.Molecule(); err == nil && m != nil {
-			for _, key := range []molecule.Key{m.Key(), m.SeenThroughKey()} {
-				if _, taken := index[key]; !taken {
-					index[key] = r
-				}
-			}
+// structures is the index of reagents by structure.
+type structures struct{ exact, seenThrough map[molecule.Key]*Reagent }
+
+// indexStructures reads the structures of all substances. Of several that are one seen through, the
+// free form answers: ethanol, not sodium ethoxide. A structure that cannot be read is left out here;
+// the tests of the rules report it.
+func (t *Table) indexStructures() structures {
+	index := structures{map[molecule.Key]*Reagent{}, map[molecule.Key]*Reagent{}}
+	put := func(to map[molecule.Key]*Reagent, key molecule.Key, r *Reagent) {
+		if _, taken := to[key]; !taken {
+			to[key] = r
 		}
+	}
+	salts := map[molecule.Key]*Reagent{}
+	for _, r := range t.all {
+		m, err := r.Molecule()
+		if err != nil || m == nil {
+			continue
+		}
+		put(index.exact, m.Key(), r)
+		if m.FreeForm().Key() == m.Key() {
+			put(index.seenThrough, m.SeenThroughKey(), r)
+		} else {
+			put(salts, m.SeenThroughKey(), r)
+		}
+	}
+	for key, r := range salts {
+		put(index.seenThrough, key, r)
 	}
 	return index
 }
@@ -242,10 +270,10 @@ func (r *Reagent) Molecule() (*molecule.Molecule, error) {
 // seen through.
 func (t *Table) ByMolecule(m *molecule.Molecule) (*Reagent, bool) {
 	index := t.structures()
-	if r, ok := index[m.Key()]; ok {
+	if r, ok := index.exact[m.Key()]; ok {
 		return r, true
 	}
-	r, ok := index[m.SeenThroughKey()]
+	r, ok := index.seenThrough[m.SeenThroughKey()]
 	return r, ok
 }
 
