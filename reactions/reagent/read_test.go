@@ -77,7 +77,9 @@ func TestNotUnderstood(t *testing.T) {
 // TestNames resolves what the table does not know by the caller's names, the longest run first.
 func TestNames(t *testing.T) {
 	known := &molecule.Molecule{}
-	names := func(name string) (*molecule.Molecule, bool) { return known, name == "hexanoic acid" || name == "hexanoic" }
+	names := func(name string) (*molecule.Molecule, bool) {
+		return known, name == "hexanoic acid" || name == "hexanoic"
+	}
 	d := table(t).Read("excess hexanoic acid, sulfuric acid (catalytic)", names)
 	if got, want := dump(d), "hexanoic acid, sulfuric acid {catalytic excess}"; got != want {
 		t.Errorf("got %s, want %s", got, want)
