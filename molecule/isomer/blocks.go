@@ -94,7 +94,29 @@ func (c *compiled) promotable(p Piece) bool {
 		}
 	}
 	vs, err := p.variants()
-	return err == nil && len(vs) > 0
+	if err != nil {
+		return false
+	}
+	for _, v := range vs {
+		if v.aromatic && v.openAromatic() > 1 {
+			return false // as a pattern it also fits rings with double bonds to outside (C=c1ccccc1=C)
+		}
+	}
+	return true
+}
+
+// openAromatic counts the aromatic units of v that are bonded to outside.
+func (v *variant) openAromatic() int {
+	n := 0
+	for x, u := range v.units {
+		for _, b := range v.bonds {
+			if u.free > 0 && b.code == innerAromatic && (int(b.a) == x || int(b.b) == x) {
+				n++
+				break
+			}
+		}
+	}
+	return n
 }
 
 // wholeRings reports whether every atom with aromatic bonds has two of them or more.

@@ -142,7 +142,7 @@ func (w *workspace) decomposition(s *search) bool {
 	if s.rings > 0 {
 		w.perceive(s)
 		for _, l := range w.links {
-			if l.code >= inner && l.aromatic != (l.code == innerAromatic) {
+			if l.code >= inner && l.code != inner+2 && l.aromatic != (l.code == innerAromatic) {
 				return false // the block is not what it says: C=C that became part of an aromatic ring
 			}
 			free = free || l.aromatic && l.code < inner

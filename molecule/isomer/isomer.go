@@ -69,7 +69,8 @@ type Piece struct {
 // with two substituents para to each other, [OH:1][CH:1]=O an ester group -O-C(=O)-.
 func PieceOf(name string, m *molecule.Molecule) (Piece, error) { return pieceOf(name, m) }
 
-// Block is a Piece that is present Count times, disjoint from all other blocks.
+// Block is a Piece that is present Count times, disjoint from all other blocks. The valences that it
+// leaves open at aromatic atoms are taken by single bonds.
 type Block struct {
 	Piece Piece
 	Count int

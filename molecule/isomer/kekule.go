@@ -14,6 +14,8 @@ func (w *workspace) plainKekule(s *search) bool {
 	switch {
 	case len(ring) == 0:
 		return true
+	case len(ring) == 4 && s.rings == 1:
+		return true // cyclobutadienes are not aromatic; their two forms are two compounds
 	case !several && len(ring) == 6 && s.isolatedRing(ring):
 		adj := s.adj
 		flip(&adj, &s.deg, ring)
@@ -41,7 +43,7 @@ func (j *judge) beats(root uint8, units int) bool {
 }
 
 // findPi notes the partner of each unit that has exactly one double bond; it reports whether there
-// are three double bonds, the least that resonance needs.
+// are two double bonds, the least that resonance needs.
 func (w *workspace) findPi(s *search) bool {
 	n := 0
 	for u := 0; u < s.met; u++ {
@@ -56,7 +58,7 @@ func (w *workspace) findPi(s *search) bool {
 			}
 		}
 	}
-	return n >= 6
+	return n >= 4
 }
 
 // alternation is the search for rings of alternating single and double bonds.
@@ -67,7 +69,7 @@ type alternation struct {
 }
 
 // alternating looks for rings of alternating bonds; it returns one, nil if there is none, and
-// whether there are others. Four alternating bonds alone are never aromatic and do not count.
+// whether there are others.
 func (w *workspace) alternating(s *search) (ring []uint8, several bool) {
 	alt := &w.alternation
 	alt.length, alt.several = 0, false
@@ -90,10 +92,8 @@ func (w *workspace) walk(s *search, u uint8, n int, on uint32) {
 		switch {
 		case e.code != 1 || alt.several:
 		case e.to == start:
-			if n >= 6 {
-				alt.several = alt.length > 0
-				alt.ring, alt.length = alt.path, n
-			}
+			alt.several = alt.length > 0
+			alt.ring, alt.length = alt.path, n
 		case w.pi[e.to] > int8(start) && e.to > start && on>>e.to&1 == 0:
 			v := uint8(w.pi[e.to])
 			alt.path[n], alt.path[n+1] = e.to, v

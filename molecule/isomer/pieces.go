@@ -62,14 +62,8 @@ func (w *workspace) markAromatic() {
 	for range st.Bonds {
 		w.aromatic = append(w.aromatic, false)
 	}
-	doubles := 0
-	for _, b := range st.Bonds {
-		if b.Order == 2 {
-			doubles++
-		}
-	}
-	if doubles < 2 || len(st.Bonds) < len(st.Atoms) {
-		return // nothing aromatic has fewer double bonds, nor no ring
+	if len(st.Bonds) < len(st.Atoms) {
+		return // no ring
 	}
 	if m, err := st.Materialise(); err == nil {
 		for i, b := range st.Bonds {
@@ -129,7 +123,7 @@ func (w *workspace) bonded(p *Piece, x int) bool {
 func (w *workspace) bondIs(a, b, order uint8) bool {
 	for i, x := range w.structure.Bonds {
 		if x.A == a && x.B == b || x.A == b && x.B == a {
-			if w.aromatic[i] {
+			if w.aromatic[i] && x.Order < 3 {
 				return order == OrderAromatic
 			}
 			return x.Order == order

@@ -1,0 +1,193 @@
+package isomer
+
+import (
+	"context"
+	"reflect"
+	"sort"
+	"strings"
+	"testing"
+
+	"shelfward/molecule/smiles"
+)
+
+// holdsDisjoint judges by brute force whether blocks occur in s without sharing an atom.
+func holdsDisjoint(s *Structure, blocks []Block) bool {
+	var w workspace
+	w.structure = *s.Clone()
+	w.markAromatic()
+	var sets [][]uint64
+	var counts []int
+	for _, b := range blocks {
+		p, err := b.Piece.sorted()
+		if err != nil {
+			panic(err)
+		}
+		seen := map[uint64]bool{}
+		var list []uint64
+		var at [64]uint8
+		var put func(x int, used uint64)
+		put = func(x int, used uint64) {
+			if x == len(p.Atoms) {
+				if !seen[used] && w.singlyBonded(&p, at[:x]) {
+					seen[used] = true
+					list = append(list, used)
+				}
+				return
+			}
+			for a := range w.structure.Atoms {
+				if used>>a&1 == 0 && w.fits(&p, x, uint8(a)) {
+					at[x] = uint8(a)
+					w.at[x] = uint8(a)
+					copy(w.at[:], at[:])
+					if w.bonded(&p, x) {
+						put(x+1, used|1<<a)
+					}
+				}
+			}
+		}
+		put(0, 0)
+		sets, counts = append(sets, list), append(counts, b.Count)
+	}
+	var choose func(b, from, left int, used uint64) bool
+	choose = func(b, from, left int, used uint64) bool {
+		if left == 0 {
+			return b+1 == len(sets) || choose(b+1, 0, counts[b+1], used)
+		}
+		for i := from; i < len(sets[b]); i++ {
+			if sets[b][i]&used == 0 && choose(b, i+1, left-1, used|sets[b][i]) {
+				return true
+			}
+		}
+		return false
+	}
+	return choose(0, 0, counts[0], 0)
+}
+
+// singlyBonded reports whether the aromatic atoms of a piece have single or aromatic bonds to outside.
+func (w *workspace) singlyBonded(p *Piece, at []uint8) bool {
+	place := map[uint8]int{}
+	for x, a := range at {
+		place[a] = x + 1
+	}
+	aromatic, inside := map[int]bool{}, map[[2]int]bool{}
+	for _, b := range p.Bonds {
+		inside[[2]int{int(b.A), int(b.B)}], inside[[2]int{int(b.B), int(b.A)}] = true, true
+		if b.Order == OrderAromatic {
+			aromatic[int(b.A)], aromatic[int(b.B)] = true, true
+		}
+	}
+	for i, b := range w.structure.Bonds {
+		x, y := place[b.A]-1, place[b.B]-1
+		if x >= 0 && y >= 0 && inside[[2]int{x, y}] {
+			continue
+		}
+		if (aromatic[x] || aromatic[y]) && b.Order > 1 && !w.aromatic[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// readBlocks reads '2 [CH3:1] + [CH2:1]=[CH:1]'; a leading ~ leaves the hydrogens of marked atoms open.
+func readBlocks(t testing.TB, text string) (list []Block) {
+	for _, part := range strings.Split(text, " + ") {
+		b := Block{Count: 1}
+		if len(part) > 2 && part[1] == ' ' {
+			b.Count, part = int(part[0]-'0'), part[2:]
+		}
+		open := strings.HasPrefix(part, "~")
+		m, err := smiles.Read(strings.TrimPrefix(part, "~"))
+		if err != nil {
+			t.Fatalf("%s: %v", part, err)
+		}
+		b.Piece = pieceFrom(t, strings.TrimPrefix(part, "~"))
+		for a := range b.Piece.Atoms {
+			if open && m.Atom(a).Class > 0 {
+				b.Piece.Atoms[a].Hydrogens = AnyHydrogens
+			}
+		}
+		list = append(list, b)
+	}
+	return list
+}
+
+// Joining blocks gives the same compounds as building everything and looking for the blocks.
+func TestBlocks(t *testing.T) {
+	for _, tc := range []struct{ formula, blocks string }{
+		{"C6H12O", "[CH3:1][CH2:1]"},
+		{"C6H12O", "2 [CH3][CH2:1]"},
+		{"C6H12O", "[CH3:1]"},
+		{"C6H12O", "2 [CH3:1]"},
+		{"C5H10O2", "[OH:1][CH:1]=O"},
+		{"C5H8O2", "[CH2:2]=O"},
+		{"C5H8O2", "~[CH2:2]=O"},
+		{"C5H8O3", "2 [CH2:2]=O"},
+		{"C6H10O", "[CH2:1]=[CH:1] + [CH3:1]"},
+		{"C6H10O", "[CH2:1][CH2][CH2:1]"},
+		{"C6H10", "[CH2:1]1[CH2:1][CH2:1]1"},
+		{"C7H10", "2 [CH2:1]1[CH2:1][CH2]1"},
+		{"C7H12", "2 [CH2:1]1[CH2][CH2]1"},
+		{"C6H10", "[CH2:1]1[CH2][CH2][CH2:1]1"},
+		{"C7H8O", "[cH:1]1ccccc1"},
+		{"C7H8O", "[cH:1]1[cH:1]cccc1"},
+		{"C8H10", "[cH:1]1cc[cH:1]cc1"},
+		{"C8H8O", "[cH:1]1ccccc1"},
+		{"C8H8", "[cH:1]1[cH:1]cccc1"},
+		{"C9H8", "[cH:1]1[cH:1]cccc1"},
+		{"C9H10", "~[cH:1]1[cH:1][cH:1][cH:1][cH:1][cH:1]1"},
+		{"C5H9NO", "[OH:1][CH:1]=O"},
+		{"C5H9NO", "[NH2:1][CH:1]=O"},
+		{"C5H9NO", "~[NH2:1][CH:1]=O"},
+		{"C5H6O", "[cH:1]1ccco1"},
+		{"C6H8O", "[cH:1]1cc[cH:1]o1"},
+		{"C5H5NO", "[cH:1]1ccc[nH]1"},
+		{"C6H7N", "[cH:1]1cccnc1"},
+		{"C6H10O", "~[CH:1](=[CH:1])"},
+		{"C6H6O", "[CH2:1]=[CH2:1]"},
+		{"C6H8", "2 [CH2:1]=[CH2:1]"},
+		{"C6H8", "[CH2:1]=[CH2:1] + [CH2:2][CH2:2]"},
+		{"C4H8O3", "[CH3][OH:1] + [CH2:1][OH:1]"},
+		{"C6H14O2", "2 [CH3][OH:1]"},
+		{"C7H14", "2 [CH3:1][CH2:1]"},
+		{"C8H16", "2 [CH2:1][CH2:1][CH2:1]"},
+		{"C4H8N2O", "[NH2:2][NH:1]"},
+		{"C3H7NO2", "[O-][N+:1]=O"},
+		{"C6H6", "[CH2:2][CH2:2] + [CH:1]#C"},
+	} {
+		if tc.formula == "C3H7NO2" {
+			tc.blocks = "[O-][NH+:1]=O"
+		}
+		blocks := readBlocks(t, tc.blocks)
+		p := Problem{Formula: formulaOf(t, tc.formula)}
+		var want []string
+		p.Accept = func(s *Structure) bool { return holdsDisjoint(s, blocks) }
+		want = keys(t, p)
+		p.Accept, p.Blocks = nil, blocks
+		got := keys(t, p)
+		t.Logf("%s with %s: %d", tc.formula, tc.blocks, len(got))
+		if !reflect.DeepEqual(got, want) {
+			t.Errorf("%s with %s: %d structures, want %d: missing %s, too many %s", tc.formula, tc.blocks, len(got), len(want), minus(want, got), minus(got, want))
+		}
+		if len(blocks) == 1 && blocks[0].Count == 1 {
+			p.Blocks, p.Contains = nil, []Piece{blocks[0].Piece}
+			if c := keys(t, p); !strings.Contains(tc.blocks, "c") && !reflect.DeepEqual(c, want) {
+				t.Errorf("%s contains %s: %d structures, want %d", tc.formula, tc.blocks, len(c), len(want))
+			}
+		}
+	}
+	_, _ = sort.Strings, context.Background
+}
+
+// minus returns what is in a and not in b.
+func minus(a, b []string) (list []string) {
+	in := map[string]bool{}
+	for _, x := range b {
+		in[x] = true
+	}
+	for _, x := range a {
+		if !in[x] {
+			list = append(list, x)
+		}
+	}
+	return list
+}

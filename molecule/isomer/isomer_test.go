@@ -1,0 +1,177 @@
+package isomer
+
+import (
+	"bufio"
+	"context"
+	"os"
+	"sort"
+	"strconv"
+	"strings"
+	"testing"
+
+	"shelfward/molecule"
+	"shelfward/molecule/smiles"
+)
+
+func formulaOf(t testing.TB, text string) molecule.Formula {
+	t.Helper()
+	f, err := molecule.ParseFormula(text)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return f
+}
+
+func pieceFrom(t testing.TB, text string) Piece {
+	t.Helper()
+	m, err := smiles.Read(text)
+	if err != nil {
+		t.Fatalf("%s: %v", text, err)
+	}
+	p, err := PieceOf(text, m)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return p
+}
+
+// count runs p and returns the number of structures.
+func count(t testing.TB, p Problem) int64 {
+	t.Helper()
+	r, err := Enumerate(context.Background(), p, Options{}, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !r.Complete {
+		t.Fatalf("%s: stopped: %s", p.Formula, r.Stopped)
+	}
+	return r.Generated
+}
+
+// keys runs p and returns the sorted canonical strings; it fails if one comes twice.
+func keys(t testing.TB, p Problem) []string {
+	t.Helper()
+	var list []string
+	_, err := Enumerate(context.Background(), p, Options{}, func(s *Structure) bool {
+		m, err := s.Materialise()
+		if err != nil {
+			t.Fatalf("%+v: %v", *s, err)
+		}
+		if got := m.Formula(); got != p.Formula {
+			t.Fatalf("%s has the formula %s, want %s", smiles.Write(m), got, p.Formula)
+		}
+		list = append(list, smiles.Write(m))
+		return true
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	sort.Strings(list)
+	for i := 1; i < len(list); i++ {
+		if list[i] == list[i-1] {
+			t.Errorf("%s: %s comes twice", p.Formula, list[i])
+		}
+	}
+	return list
+}
+
+// lines reads a tab-separated file without its comments.
+func lines(t testing.TB, name string) (rows [][]string) {
+	t.Helper()
+	file, err := os.Open("../../testdata/isomers/" + name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer file.Close()
+	for in := bufio.NewScanner(file); in.Scan(); {
+		if !strings.HasPrefix(in.Text(), "#") {
+			rows = append(rows, strings.Split(in.Text(), "\t"))
+		}
+	}
+	return rows
+}
+
+func number(t testing.TB, s string) int64 {
+	t.Helper()
+	n, err := strconv.ParseInt(s, 10, 64)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return n
+}
+
+func TestCounts(t *testing.T) {
+	for _, row := range lines(t, "counts.tsv") {
+		p := Problem{Formula: formulaOf(t, row[0]), Valences: Standard}
+		if got, want := count(t, p), number(t, row[1]); got != want {
+			t.Errorf("%s: %d isomers, want %d", row[0], got, want)
+		}
+		p.Rings = Exactly(0)
+		if got, want := count(t, p), number(t, row[2]); got != want {
+			t.Errorf("%s: %d without rings, want %d", row[0], got, want)
+		}
+	}
+}
+
+// Each structure is a molecule of its own for the canonical labelling, which knows nothing of codes.
+func TestDistinct(t *testing.T) {
+	for _, f := range []string{"C6H6", "C7H6", "C8H6", "C6H6O", "C4H5N3", "C5H4N2", "C9H12", "C4H4N4"} {
+		list := keys(t, Problem{Formula: formulaOf(t, f), Valences: Standard})
+		t.Logf("%s %d", f, len(list))
+	}
+	for _, f := range []string{"C2H5NO2", "C2H6OS", "C3H3N3", "C2H7O3P", "C5H5NO", "C2H4N4", "C6H5NO2"} {
+		list := keys(t, Problem{Formula: formulaOf(t, f)})
+		t.Logf("%s %d", f, len(list))
+	}
+}
+
+// rawSink takes every code, all Kekulé forms included.
+type rawSink struct {
+	work workspace
+	give func(s *Structure)
+}
+
+func (r *rawSink) node(*search, int) verdict { return descend }
+func (r *rawSink) leaf(s *search) bool {
+	r.work.write(s)
+	r.give(&r.work.structure)
+	return true
+}
+
+// The Kekulé forms that are left out are those, and only those, of compounds that are counted.
+func TestKekuleForms(t *testing.T) {
+	for _, f := range []string{"C6H6", "C7H6", "C8H6", "C5H4N2", "C4H3N3", "C4H4N2O2"} {
+		p := Problem{Formula: formulaOf(t, f)}
+		c, err := compile(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		all := map[string]bool{}
+		forms := 0
+		var s search
+		sink := &rawSink{give: func(st *Structure) {
+			forms++
+			m, err := st.Materialise()
+			if err != nil {
+				t.Fatal(err)
+			}
+			all[smiles.Write(m)] = true
+		}}
+		c.plans(func(pl *plan) bool {
+			s.start(pl, sink)
+			return s.visit(0)
+		})
+		list := keys(t, p)
+		t.Logf("%s: %d compounds in %d forms", f, len(list), forms)
+		if len(list) != len(all) {
+			t.Errorf("%s: %d compounds, the forms make %d", f, len(list), len(all))
+		}
+		for _, k := range list {
+			delete(all, k)
+		}
+		for k := range all {
+			t.Errorf("%s: %s is missing", f, k)
+			break
+		}
+	}
+}
