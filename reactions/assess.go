@@ -33,8 +33,29 @@ type assessment struct {
 	fraction   float64
 	share      Share
 	racemic    bool
-	objections []Objection // from site, stereo, over-reaction; the media are looked at per condition set
-	products   []Product   // what forms, most first
+	objections []Objection // from site and stereo; the media are looked at per condition set
+	over       []overReaction
+	products   []Product // what forms, most first
+}
+
+// overReaction is a second reaction of the product; an excess of the material of part prevents it.
+type overReaction struct {
+	part int // from 0, -1: nothing prevents it
+	Objection
+}
+
+// excessEquiv is the number of equivalents of a material from which its second reaction is held back.
+const excessEquiv = 1.8
+
+// under returns the objections that hold under a condition set (nil: under any).
+func (a *assessment) under(c *Conditions) []Objection {
+	list := append([]Objection(nil), a.objections...)
+	for _, o := range a.over {
+		if c == nil || o.part < 0 || c.ReactantEquiv[o.part+1] < excessEquiv {
+			list = append(list, o.Objection)
+		}
+	}
+	return list
 }
 
 // fatal says whether one objection makes the step unsound.
@@ -255,7 +276,7 @@ func (a *assessment) judgeOver(b *Book, t *Transform, ms []*subject) {
 	for _, g := range t.goesOn {
 		partner := ms[a.outcome.copies[a.outcome.laid[g.part].copy]]
 		if g.query.Matches(partner.Subject) && t.fitsAgain(product, g.part) {
-			a.objections = append(a.objections, Objection{Kind: KindOverReaction, Text: g.why, Fatal: true, Source: t.Source})
+			a.over = append(a.over, overReaction{-1, Objection{Kind: KindOverReaction, Text: g.why, Fatal: true, Source: t.Source}})
 			return
 		}
 	}
@@ -270,8 +291,8 @@ func (a *assessment) judgeOver(b *Book, t *Transform, ms []*subject) {
 		}
 		again := t.scoreAgain(b, ms, product, part, a)
 		if again >= a.outcome.score-0.3 {
-			a.objections = append(a.objections, Objection{Kind: KindOverReaction, Source: preferenceSource(t), Text: fmt.Sprintf(
-				"the product has another such site that reacts as fast: part of it goes on (%s in excess helps)", written(s.M))})
+			a.over = append(a.over, overReaction{part, Objection{Kind: KindOverReaction, Source: preferenceSource(t), Text: fmt.Sprintf(
+				"the product has another such site that reacts as fast: part of it goes on (%s in excess helps)", written(s.M))}})
 			return
 		}
 	}

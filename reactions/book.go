@@ -200,7 +200,7 @@ func (x *expander) draft(t *Transform, p proposal) *draft {
 // step looks for condition sets under which the rest of the molecules survives.
 func (d *draft) step() (*Step, []Objection) {
 	if !d.found || fatal(d.objections) {
-		return nil, d.objections
+		return nil, d.under(nil)
 	}
 	for _, n := range d.uses {
 		if n == 0 {
@@ -214,7 +214,7 @@ func (d *draft) step() (*Step, []Objection) {
 	var good []fit
 	var worst []Objection
 	for _, c := range d.conditionSets() {
-		list := d.mediaObjections(c)
+		list := append(d.under(c), d.mediaObjections(c)...)
 		if fatal(list) {
 			worst = append(worst, list...)
 			continue
@@ -226,7 +226,7 @@ func (d *draft) step() (*Step, []Objection) {
 	}
 	sort.SliceStable(good, func(i, j int) bool { return len(good[i].objections) < len(good[j].objections) })
 	s := d.newStep()
-	s.Objections = append(append(s.Objections, d.objections...), good[0].objections...)
+	s.Objections = good[0].objections
 	for _, f := range good {
 		if len(f.objections) == len(good[0].objections) {
 			s.Conditions = append(s.Conditions, f.c)

@@ -21,7 +21,7 @@ func cover(product, target *molecule.Molecule) covering {
 		return covering{ok: true, exact: true}
 	}
 	if product.FlatKey() != target.FlatKey() {
-		if seenKey(product) != seenKey(target) {
+		if product.SeenThroughKey() != target.SeenThroughKey() {
 			return covering{}
 		}
 		if noMarks(product) || noMarks(target) {

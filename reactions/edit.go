@@ -157,8 +157,9 @@ func (e *editor) addAtom(a molecule.Atom, slot int) int32 {
 
 // makeAtoms creates the atoms that stand only on the side made.
 func (e *editor) makeAtoms(to []int32, frags fragments) error {
+	inside := e.s.insideFragments(e.d, frags)
 	for i, sl := range e.s.slots {
-		if sl.found(e.d) >= 0 || sl.made(e.d) < 0 {
+		if sl.found(e.d) >= 0 || sl.made(e.d) < 0 || inside[i] {
 			continue
 		}
 		if f := frags[sl.class]; f != nil && e.d == backward && sl.class != 0 {
@@ -179,6 +180,28 @@ func (e *editor) makeAtoms(to []int32, frags fragments) error {
 	return nil
 }
 
+// insideFragments marks the unnumbered leaving atoms that hang on a class for which a whole fragment
+// stands in: the fragment brings them.
+func (s *script) insideFragments(d direction, frags fragments) []bool {
+	inside := make([]bool, len(s.slots))
+	if d != backward {
+		return inside
+	}
+	for changed := true; changed; {
+		changed = false
+		for _, be := range s.bonds {
+			for _, pair := range [2][2]int{{be.a, be.b}, {be.b, be.a}} {
+				from, to := s.slots[pair[0]], s.slots[pair[1]]
+				whole := from.class != 0 && frags[from.class] != nil && from.at[backward] < 0 || inside[pair[0]]
+				if whole && to.class == 0 && to.at[backward] < 0 && !inside[pair[1]] {
+					inside[pair[1]], changed = true, true
+				}
+			}
+		}
+	}
+	return inside
+}
+
 // attach copies a fragment into the builder; its first atom gives up the hydrogens that the bonds to
 // the molecule replace.
 func (e *editor) attach(f *molecule.Molecule, slotIndex int) int32 {
@@ -188,7 +211,7 @@ func (e *editor) attach(f *molecule.Molecule, slotIndex int) int32 {
 		if i == 0 {
 			need := 0
 			for _, be := range e.s.bonds {
-				if be.a == slotIndex || be.b == slotIndex {
+				if far := be.a + be.b - slotIndex; (be.a == slotIndex || be.b == slotIndex) && e.s.slots[far].at[backward] >= 0 {
 					need += int(be.order[1-e.d])
 				}
 			}
@@ -317,6 +340,10 @@ func (e *editor) setHydrogens(mappings [][]int32) error {
 		if known {
 			written, lower = qa.Hydrogens, qa.OnlyAromatic()
 		}
+		if !known {
+			e.neutralise(a, sum[a])
+			continue
+		}
 		h, ok := e.hydrogensAfter(a, sum[a], arom[a], degree[a], written, lower)
 		if !ok {
 			return errNoFit
@@ -325,6 +352,37 @@ func (e *editor) setHydrogens(mappings [][]int32) error {
 		e.b.Atoms[a].Aromatic = arom[a] > 0
 	}
 	return nil
+}
+
+// neutralise lets an atom that leaves take hydrogens and give up its charge: nitro oxygen leaves as water.
+func (e *editor) neutralise(a, sum int) {
+	at := &e.b.Atoms[a]
+	at.Aromatic = false
+	if isMetal(at.Element) {
+		return
+	}
+	at.Charge = 0
+	at.Hydrogens = uint8(max(0, lowestValence(at.Element, sum)-sum))
+}
+
+// lowestValence is the lowest normal valence of an element that holds a sum of bond orders.
+func lowestValence(el molecule.Element, sum int) int {
+	for _, v := range manyValences(el) {
+		if v >= sum {
+			return v
+		}
+	}
+	switch el {
+	case 5, 7:
+		return 3
+	case 6, 14, 32, 50:
+		return 4
+	case 8:
+		return 2
+	case 9:
+		return 1
+	}
+	return sum
 }
 
 // bondSums returns per atom the sum of the orders of plain bonds, the number of aromatic bonds and the degree.

@@ -156,11 +156,35 @@ func (j *judge) tryAll(ctx context.Context) error {
 			}
 			j.try(t, pool)
 		}
+		if len(j.found) == 0 {
+			j.tryTogether(pool)
+		}
 		if len(j.found) > 0 {
 			return nil
 		}
 	}
 	return nil
+}
+
+// tryTogether looks for a step in which one flask does two things.
+func (j *judge) tryTogether(pool []*subject) {
+	for _, t := range j.b.Transforms {
+		for _, c := range t.Conditions {
+			if s := j.match(t, c); len(c.Together) == 0 || !s.matched {
+				continue
+			}
+			for _, claim := range j.claimed {
+				step := j.b.stepFrom(t, pool, claim)
+				if step == nil || len(step.Together) == 0 {
+					continue
+				}
+				s := j.match(t, c)
+				s.a = assessment{found: true, racemic: step.Racemic, products: []Product{{claim, step.Fraction, step.Share}}}
+				s.objections = step.Objections
+				j.found = append(j.found, s)
+			}
+		}
+	}
 }
 
 func (j *judge) try(t *Transform, pool []*subject) {
@@ -186,7 +210,7 @@ func (j *judge) try(t *Transform, pool []*subject) {
 			continue
 		}
 		if hit.found {
-			s.objections = append(append([]Objection(nil), hit.objections...), j.media(s.c, &hit.outcome, pool)...)
+			s.objections = append(hit.under(s.c), j.media(s.c, &hit.outcome, pool)...)
 			j.found = append(j.found, s)
 		} else if s.matched {
 			s.objections = j.media(s.c, &outs[0], pool)

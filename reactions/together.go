@@ -41,6 +41,7 @@ func (x *expander) undoCompanion(d *draft, c *Conditions, companion *Transform) 
 func (d *draft) joined(e *draft, i int, c *Conditions) *draft {
 	j := &draft{b: d.b, t: d.t, together: []*Transform{e.t}, only: c, target: d.target, assessment: d.assessment}
 	j.objections = append(append([]Objection(nil), d.objections...), e.objections...)
+	j.over = append(append([]overReaction(nil), d.over...), e.over...)
 	index := map[int]int{}
 	for k, r := range d.reactants {
 		if k != i {

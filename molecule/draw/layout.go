@@ -337,7 +337,7 @@ func (l *layout) directions(a int, used []float64) []float64 {
 		if l.linear(a) {
 			return []float64{used[0] + math.Pi}
 		}
-		return []float64{used[0] + 2*math.Pi/3, used[0] - 2*math.Pi/3, used[0] + math.Pi}
+		return []float64{used[0] + 2*math.Pi/3, used[0] - 2*math.Pi/3}
 	}
 	var out []float64
 	for i := range used {
