@@ -165,11 +165,6 @@ func (p *perceiver) legalDoubleBond(d DoubleBond) (DoubleBond, bool) {
 		return d, false
 	}
 	for _, end := range [2]int32{x.A, x.B} {
-		for _, nb := range m.Neighbors(int(end)) {
-			if m.bonds[nb.Bond].Aromatic {
-				return d, false // a text has no place for a direction on an aromatic bond
-			}
-		}
 		y := &m.atoms[end]
 		if deg := m.Degree(int(end)); deg < 2 || deg > 3 || deg == 2 && y.Hydrogens > 1 || int(p.sum[end]) != deg+1 {
 			return d, false

@@ -30,6 +30,7 @@ type mark struct {
 	atom      int32
 	ligands   [8]int32 // atoms, LigandHydrogen, or -10-n for the open closure n
 	count     int
+	digits    int // ring closures on the atom
 	clockwise bool
 }
 
@@ -350,6 +351,7 @@ func (r *reader) ringDigit() error {
 		r.openCount++
 		if k := r.markOf[r.prev]; k >= 0 {
 			r.marks[k].add(int32(-10 - n))
+			r.marks[k].digits++
 		}
 		return nil
 	}
@@ -399,6 +401,7 @@ func (r *reader) closeRing(c *closure, n int, bond uint8, at int) error {
 	}
 	if k := r.markOf[r.prev]; k >= 0 {
 		r.marks[k].add(c.atom)
+		r.marks[k].digits++
 	}
 	return nil
 }

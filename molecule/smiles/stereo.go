@@ -8,6 +8,9 @@ func (r *reader) addCenter(k *mark) {
 	if k.count == 3 {
 		// A lone pair counts as the last ligand, wherever the atom stands.
 		k.add(molecule.LigandLonePair)
+		if lonePairTurned(k.digits, r.bondSum(k.atom)) {
+			k.clockwise = !k.clockwise
+		}
 	}
 	if k.count != 4 {
 		return
@@ -16,6 +19,23 @@ func (r *reader) addCenter(k *mark) {
 	copy(c.Ligands[:], k.ligands[:4])
 	r.b.Centers = append(r.b.Centers, c)
 }
+
+// bondSum adds the bond orders at atom a.
+func (r *reader) bondSum(a int32) int {
+	sum := 0
+	for _, x := range r.b.Bonds {
+		if x.A == a || x.B == a {
+			sum += int(x.Order)
+		}
+	}
+	return sum
+}
+
+// lonePairTurned says that the mark of an atom with three ligands and a lone pair is read the other
+// way round. OpenSMILES says nothing about lone pairs; the reference toolkit, whose reading is
+// followed, turns the mark where three single bonds and exactly one ring closure meet at the atom
+// (found by trying every order of writing; sulfoxides drawn S=O are not turned).
+func lonePairTurned(digits, bondSum int) bool { return digits == 1 && bondSum == 3 }
 
 // side is where a marked neighbour of a double bond end lies.
 type side struct {

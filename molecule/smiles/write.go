@@ -256,11 +256,11 @@ func (w *writer) emit() {
 func (w *writer) bond(b int32) {
 	x := w.m.Bond(int(b))
 	switch {
-	case x.Aromatic:
-	case w.dir[b] > 0:
+	case w.dir[b] > 0: // also beside a double bond on an aromatic ring, where the bond is single in any Kekulé form
 		w.out = append(w.out, '/')
 	case w.dir[b] < 0:
 		w.out = append(w.out, '\\')
+	case x.Aromatic:
 	case x.Order == 2:
 		w.out = append(w.out, '=')
 	case x.Order == 3:
@@ -446,6 +446,15 @@ func (w *writer) mark(a int32, c molecule.Center) {
 		add(molecule.LigandLonePair)
 	}
 	clockwise := c.Clockwise
+	if n == 4 && written[3] == molecule.LigandLonePair {
+		sum := 0
+		for _, nb := range w.m.Neighbors(int(a)) {
+			sum += int(w.m.Bond(int(nb.Bond)).Order)
+		}
+		if lonePairTurned(int(w.backAt[a+1]-w.backAt[a]), sum) {
+			clockwise = !clockwise
+		}
+	}
 	l := c.Ligands
 	for i := range l { // count the swaps that turn the stored order into the written one
 		for j := i; j < 4; j++ {
