@@ -72,8 +72,9 @@ func (l *loader) compileArene(a *arene, src *sourceArene, file string) {
 	}
 }
 
-// rate returns the score of ring atom a for an electrophile with the reaction constant rho.
-func (ar *arene) rate(s *pattern.Subject, a int32, rho float64) (float64, []string) {
+// rate returns the score of ring atom a for an electrophile with the reaction constant rho; ortho is added
+// for each substituent beside it (a bulky electrophile).
+func (ar *arene) rate(s *pattern.Subject, a int32, rho, ortho float64) (float64, []string) {
 	total := 0.0
 	for _, p := range ar.position {
 		if atClassOne(p.query, s, a) {
@@ -93,7 +94,7 @@ func (ar *arene) rate(s *pattern.Subject, a int32, rho float64) (float64, []stri
 		}
 		switch place.distance {
 		case 1:
-			total += rho*sub.para + sub.ortho
+			total += rho*sub.para + sub.ortho + ortho
 		case 2:
 			total += rho * sub.meta
 		case 3:

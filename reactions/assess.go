@@ -8,10 +8,10 @@ import (
 	"shelfward/molecule"
 )
 
-// Limits of the shares: a site ten times faster than the rest is the main one, within a factor of
-// about three it is even, below one part in twelve it is not worth isolating (design: common practice).
+// Limits of the shares: what makes up more than half is the main product, down to a quarter it is even
+// with others, below one part in twelve it is not worth isolating (common practice).
 const (
-	mainFraction  = 0.70
+	mainFraction  = 0.52
 	evenFraction  = 0.28
 	minorFraction = 0.08
 )

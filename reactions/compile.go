@@ -348,7 +348,7 @@ func (l *loader) compilePreferences(t *Transform, src *sourceTransform, file str
 		if len(sp.At) != m.at {
 			return sp.Place.Errorf("model %s looks at %d atoms; at lists %d", m.id, m.at, len(sp.At))
 		}
-		p := preference{model: m, rho: m.rho, needs: m.needs, hasMin: m.hasMin, whyNot: m.whyNot}
+		p := preference{model: m, rho: m.rho, ortho: sp.Ortho, needs: m.needs, hasMin: m.hasMin, whyNot: m.whyNot}
 		for _, class := range sp.At {
 			s := t.script.slotOfClass(class)
 			if s < 0 || t.script.slots[s].at[forward] < 0 {

@@ -264,7 +264,7 @@ func (t *Transform) rate(b *Book, ms []*subject, o *outcome) {
 		var points float64
 		var why []string
 		if s := ms[o.copies[which]].Subject; p.model.ring {
-			points, why = b.arene.rate(s, atoms[0], p.rho)
+			points, why = b.arene.rate(s, atoms[0], p.rho, p.ortho)
 		} else {
 			points, why = p.model.rate(s, atoms)
 		}

@@ -80,6 +80,7 @@ type candidate struct {
 	matched     bool
 	unexplained []string
 	missing     []string
+	served      int // reagents asked for that the description names
 }
 
 func (j *judge) add(m *molecule.Molecule) {
@@ -98,10 +99,11 @@ func passive(act string) bool {
 }
 
 func (j *judge) readReagents() {
-	for _, st := range j.with.Stages {
+	for i, st := range j.with.Stages {
 		for _, m := range st.Mentions {
 			if m.Reagent != nil {
-				j.mentions = append(j.mentions, mention(m.Reagent, !st.Workup && !m.Note))
+				active := !st.Workup && !m.Note && (i == 0 || !quenches(m.Reagent))
+				j.mentions = append(j.mentions, mention(m.Reagent, active))
 			}
 			if mol := mentionMolecule(m); mol != nil && carbons(mol) > 0 {
 				j.extra = append(j.extra, j.b.subject(mol.FreeForm()))
@@ -118,6 +120,16 @@ func (j *judge) readReagents() {
 			j.mentions = append(j.mentions, m)
 		}
 	}
+}
+
+// quenches says that a reagent named in a later stage may be no more than a work-up.
+func quenches(r *reagent.Reagent) bool {
+	for _, act := range []string{"mineral-acid", "strong-acid", "weak-acid", "organic-acid", "hydroxide", "carbonate-base", "hydrogencarbonate", "weak-base", "water"} {
+		if r.Does(act) {
+			return true
+		}
+	}
+	return false
 }
 
 func mentionMolecule(m reagent.Mention) *molecule.Molecule {
@@ -192,12 +204,11 @@ func (j *judge) try(t *Transform, pool []*subject) {
 	for _, c := range t.Conditions {
 		sets = append(sets, j.match(t, c))
 	}
-	fits := false
 	for _, s := range sets {
-		fits = fits || s.matched
-	}
-	if fits && j.described {
-		j.known = append(j.known, t)
+		if s.matched && j.described && s.served > 0 && len(s.unexplained) == 0 {
+			j.known = append(j.known, t)
+			break
+		}
 	}
 	outs := t.run(j.b, pool)
 	if len(outs) == 0 {
@@ -287,6 +298,9 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 			if j.serves(&j.mentions[i], ch) {
 				hit, explained[i] = true, true
 			}
+		}
+		if hit && !ch.Optional {
+			s.served++
 		}
 		if !hit && !ch.Optional {
 			s.missing = append(s.missing, ch.Name)

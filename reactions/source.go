@@ -47,6 +47,7 @@ type sourcePreference struct {
 	Model  rules.Text `yaml:"model" need:"model: markovnikov"`
 	At     []int      `yaml:"at" need:"at: [1]"`
 	Rho    *float64   `yaml:"rho"`
+	Ortho  float64    `yaml:"ortho"`
 	Needs  *float64   `yaml:"needs"`
 	WhyNot string     `yaml:"why_not"`
 }

@@ -53,6 +53,7 @@ type preference struct {
 	model  *model
 	slots  []int
 	rho    float64
+	ortho  float64 // further factor for ortho to any substituent, by the bulk of the electrophile
 	needs  float64
 	hasMin bool
 	whyNot string
