@@ -22,6 +22,9 @@ type Options struct {
 	Time        time.Duration // by the clock; no limit
 	Workers     int           // goroutines that expand; the number of processors
 	Progress    func(Progress)
+	// Accept says whether a complete route may be listed; nil accepts all. Routes are drawn until Count
+	// are accepted, so what is proven holds among accepted ones.
+	Accept func(*Tree) bool
 }
 
 // Progress is reported between batches.
@@ -46,6 +49,15 @@ type Tree struct {
 	Variant  int
 	Children []*Tree
 	Cost     float64
+}
+
+// Depth returns the number of edges along the longest run of t.
+func (t *Tree) Depth() int {
+	depth := 0
+	for _, c := range t.Children {
+		depth = max(depth, c.Depth()+1)
+	}
+	return depth
 }
 
 // Result of a search.
@@ -265,7 +277,9 @@ func (r *run) draw(budget int) {
 		}
 		if !listed(seen[t.hash], t) {
 			seen[t.hash] = append(seen[t.hash], t)
-			r.routes = append(r.routes, t)
+			if r.o.Accept == nil || r.o.Accept(r.tree(t)) {
+				r.routes = append(r.routes, t)
+			}
 		}
 	}
 	r.cut = d.budget <= 0

@@ -1,0 +1,281 @@
+package route
+
+import (
+	"bytes"
+	"context"
+	"math"
+	"slices"
+	"sync"
+
+	"shelfward/molecule"
+	"shelfward/planner/search"
+	"shelfward/reactions"
+)
+
+// Book lists the judged steps that make a molecule; *reactions.Book does.
+type Book interface {
+	Expand(ctx context.Context, target *molecule.Molecule, stocked reactions.Stocked) ([]*reactions.Step, error)
+}
+
+// World is everything routes are made from. All functions must be safe for several goroutines.
+type World struct {
+	Book       Book
+	Transforms []*reactions.Transform // all that Book holds; used for bounds, words to avoid and counts
+	Materials  Materials
+	Shelf      []*molecule.Molecule                     // what stands on the shelf; used for the order of the work only
+	Gravity    func(hazard string) int                  // class of a GHS H code, 0 (slight) to 4 (gravest)
+	Name       func(*molecule.Molecule) string          // "" if none is known
+	Declined   func(*molecule.Molecule) bool            // restricted intermediates; nil: none
+	Write      func(*molecule.Molecule) string          // canonical SMILES
+	Read       func(string) (*molecule.Molecule, error) // reads what Write wrote
+}
+
+// chemistry is the graph of molecules as the search sees it.
+type chemistry struct {
+	world         *World
+	by            RankBy
+	filter        *filter
+	from          []*molecule.Molecule
+	fromSeen      []molecule.Key
+	floor         float64 // no step weighs less
+	oneEnantiomer bool
+	guesser       *guesser
+
+	mu        sync.RWMutex
+	molecules map[search.Key]*molecule.Molecule
+	options   map[search.Key][][]option // per molecule and edge
+	materials map[search.Key]*Material
+}
+
+func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *chemistry {
+	c := &chemistry{world: w, by: by, filter: f, from: from, molecules: map[search.Key]*molecule.Molecule{},
+		options: map[search.Key][][]option{}, materials: map[search.Key]*Material{}}
+	c.floor = c.leastStep()
+	c.guesser = newGuesser(w.Shelf, from)
+	for _, m := range from {
+		c.fromSeen = append(c.fromSeen, m.SeenThroughKey())
+	}
+	return c
+}
+
+// leastStep is the least weight that any step under the loaded transforms can have.
+func (c *chemistry) leastStep() float64 {
+	switch c.by {
+	case Cost, Waste:
+		return 0
+	case Hazard:
+		return hazardPoints[0]
+	}
+	least := math.Inf(1)
+	for _, t := range c.world.Transforms {
+		for _, x := range t.Conditions {
+			y := x.Yield.Usual
+			if y <= 0 {
+				y = lowYield.Usual
+			}
+			least = min(least, -math.Log(clampYield(y)))
+		}
+	}
+	if math.IsInf(least, 1) {
+		least = 0
+	}
+	switch c.by {
+	case Yield:
+		return least
+	case Steps:
+		return 1 + 0.01*(1+partYieldLoss*least)
+	}
+	return 1 + partYieldLoss*least
+}
+
+// enter remembers a molecule under its exact key, or under that of the item of From that it counts
+// as (another salt, a tautomer). Such an item is always a leaf, so its atoms need no order.
+func (c *chemistry) enter(m *molecule.Molecule) search.Key {
+	k := search.Key(m.Key())
+	if len(c.from) > 0 {
+		seen := m.SeenThroughKey()
+		for i, f := range c.fromSeen {
+			if f == seen {
+				k = search.Key(c.from[i].Key())
+			}
+		}
+	}
+	c.mu.Lock()
+	if c.molecules[k] == nil {
+		c.molecules[k] = m
+	}
+	c.mu.Unlock()
+	return k
+}
+
+func (c *chemistry) molecule(k search.Key) *molecule.Molecule {
+	c.mu.RLock()
+	defer c.mu.RUnlock()
+	return c.molecules[k]
+}
+
+// material describes the molecule k, looked up once.
+func (c *chemistry) material(k search.Key) *Material {
+	c.mu.RLock()
+	mat := c.materials[k]
+	c.mu.RUnlock()
+	if mat != nil {
+		return mat
+	}
+	found := c.world.Materials.Molecule(c.molecule(k))
+	c.mu.Lock()
+	defer c.mu.Unlock()
+	if c.materials[k] == nil {
+		c.materials[k] = &found
+	}
+	return c.materials[k]
+}
+
+// stocked says whether a molecule stands on the shelf or is an item of From.
+func (c *chemistry) stocked(m *molecule.Molecule) bool {
+	if slices.Contains(c.fromSeen, m.SeenThroughKey()) {
+		return true
+	}
+	return c.material(c.enter(m)).OnShelf
+}
+
+// Expand groups the judged steps by what they consume: one edge per set of molecules, one variant per
+// step and condition set that the filter lets through.
+func (c *chemistry) Expand(ctx context.Context, k search.Key) (search.Expansion, error) {
+	steps, err := c.world.Book.Expand(ctx, c.molecule(k), c.stocked)
+	if err != nil {
+		return search.Expansion{}, err
+	}
+	x := search.Expansion{Tried: len(steps)}
+	var edges [][]option
+	for _, s := range steps {
+		if c.restricted(s) {
+			x.LeftOut++
+			continue
+		}
+		if !c.filter.step(s) || fatal(s) {
+			continue
+		}
+		var usable []option
+		for _, cond := range s.Conditions {
+			if c.filter.conditions(cond) {
+				usable = append(usable, c.newOption(s, cond))
+			}
+		}
+		if len(usable) > 0 {
+			edges = join(edges, usable)
+		}
+	}
+	for _, options := range edges {
+		x.Edges = append(x.Edges, c.edge(options))
+	}
+	c.mu.Lock()
+	c.options[k] = edges
+	c.mu.Unlock()
+	return x, nil
+}
+
+// fatal says whether an objection makes the step unsound.
+func fatal(s *reactions.Step) bool {
+	return slices.ContainsFunc(s.Objections, func(o reactions.Objection) bool { return o.Fatal })
+}
+
+func (c *chemistry) restricted(s *reactions.Step) bool {
+	if c.world.Declined == nil {
+		return false
+	}
+	return slices.ContainsFunc(s.Reactants, func(r reactions.Reactant) bool { return c.world.Declined(r.Molecule) })
+}
+
+// join adds options to the edge that consumes the same molecules and maps atoms alike, or as a new one.
+func join(edges [][]option, add []option) [][]option {
+	for i, e := range edges {
+		if sameEdge(&e[0], &add[0]) {
+			edges[i] = append(e, add...)
+			return edges
+		}
+	}
+	return append(edges, add)
+}
+
+// sameEdge says whether two steps consume the same molecules and take the atoms of the product from
+// the same ones.
+func sameEdge(a, b *option) bool {
+	if len(a.children) != len(b.children) || len(a.step.Origins) != len(b.step.Origins) {
+		return false
+	}
+	return slices.Equal(a.children, b.children) && slices.Equal(a.origins(), b.origins())
+}
+
+// option is one way to carry out an edge: a judged step under one of its condition sets.
+type option struct {
+	step       *reactions.Step
+	conditions *reactions.Conditions
+	children   []search.Child // in order of key, so that two steps that consume the same are seen as alike
+	order      []int          // order[i] is the index in step.Reactants of child i
+}
+
+// newOption sorts the reactants of a step by key. A reactant that counts as an item of From becomes
+// that item, whatever its form.
+func (c *chemistry) newOption(s *reactions.Step, cond *reactions.Conditions) option {
+	o := option{step: s, conditions: cond}
+	keys := make([]search.Key, len(s.Reactants))
+	for i, r := range s.Reactants {
+		keys[i] = c.enter(r.Molecule)
+		o.order = append(o.order, i)
+	}
+	slices.SortStableFunc(o.order, func(a, b int) int { return bytes.Compare(keys[a][:], keys[b][:]) })
+	for _, i := range o.order {
+		o.children = append(o.children, search.Child{Key: keys[i]})
+	}
+	return o
+}
+
+// origins gives the origin of each product atom by child.
+func (o *option) origins() []search.Origin {
+	child := make([]int32, len(o.order))
+	for c, i := range o.order {
+		child[i] = int32(c)
+	}
+	out := make([]search.Origin, len(o.step.Origins))
+	for a, from := range o.step.Origins {
+		out[a] = search.Origin{Child: -1, Atom: from.Atom}
+		if from.Reactant >= 0 {
+			out[a].Child = child[from.Reactant]
+		}
+	}
+	return out
+}
+
+func (c *chemistry) edge(options []option) search.Edge {
+	e := search.Edge{Children: options[0].children, Origins: options[0].origins()}
+	for i := range options {
+		e.Variants = append(e.Variants, c.world.variant(c.by, &options[i]))
+	}
+	return e
+}
+
+// Leaf says whether k may be taken: it stands on the shelf, or it gives no carbon and is bought as a
+// reagent is, or it is required. What is avoided may not be taken.
+func (c *chemistry) Leaf(k search.Key) (float64, bool) {
+	mat := c.material(k)
+	m := c.molecule(k)
+	required := slices.ContainsFunc(c.from, func(f *molecule.Molecule) bool { return search.Key(f.Key()) == k })
+	if !required && (!mat.OnShelf && hasCarbon(m) || !c.filter.material(mat, m)) {
+		return 0, false
+	}
+	return c.world.leaf(c.by, mat), true
+}
+
+const carbon = molecule.Element(6)
+
+func hasCarbon(m *molecule.Molecule) bool { return m.Formula().Count[carbon] > 0 }
+
+// Bound: every molecule that is made needs one step at least.
+func (c *chemistry) Bound(search.Key, uint8) (int, float64) { return 1, c.floor }
+
+// Guess estimates the steps still needed from what the molecule has in common with what it could be
+// made from; it orders the work and proves nothing.
+func (c *chemistry) Guess(k search.Key, owed uint8) float64 {
+	return c.floor * c.guesser.steps(c.molecule(k), owed)
+}

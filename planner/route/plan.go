@@ -1,0 +1,214 @@
+package route
+
+import (
+	"context"
+	"fmt"
+	"math"
+	"time"
+
+	"shelfward/molecule"
+	"shelfward/planner/search"
+)
+
+// Options are the wishes and limits of one planning.
+type Options struct {
+	From          []*molecule.Molecule // every route consumes each; at most search.MaxFrom
+	Count         int                  // routes listed; 5
+	MaxSteps      int                  // along the longest run; 8
+	RankBy        RankBy
+	Avoid         []string
+	Bench         *Bench
+	OneEnantiomer bool
+	MakeAnyway    bool
+	MakeMol       float64 // mol of target wanted, 0: not said; figures are then for DefaultMakeG
+	Time          time.Duration
+	MaxExpanded   int
+	Workers       int
+	Progress      func(search.Progress)
+}
+
+// DefaultMakeG is the mass of target for which prices and purchases are worked out when no amount was
+// asked for.
+const DefaultMakeG = 10
+
+// Target is the molecule to make.
+type Target struct {
+	SMILES    string  `json:"smiles"`
+	Name      string  `json:"name"`
+	Formula   string  `json:"formula"`
+	MolarMass float64 `json:"molar_mass"`
+	OnShelf   bool    `json:"on_shelf"`
+}
+
+// SearchFigures say what the search did and what is proven.
+type SearchFigures struct {
+	Expanded        int      `json:"expanded"`
+	TransformsTried int      `json:"transforms_tried"`
+	Seconds         float64  `json:"seconds"`
+	FirstAfter      *float64 `json:"first_after"` // null without a route
+	Exhausted       bool     `json:"exhausted"`
+	ProvenBest      bool     `json:"proven_best"`
+	ProvenRoutes    int      `json:"proven_routes"`
+	Bound           *float64 `json:"bound"` // null when nothing was left open
+	LeftOut         int      `json:"left_out"`
+	Stopped         string   `json:"stopped"` // proven, exhausted, max-expanded, memory, time, cancelled
+	Rules           int      `json:"rules"`
+}
+
+// Plan is the answer: routes in order of rank and how far they are proven.
+type Plan struct {
+	Version   int           `json:"version"`
+	Target    Target        `json:"target"`
+	From      []string      `json:"from"`
+	RankedBy  RankBy        `json:"ranked_by"`
+	Minimised string        `json:"minimised"` // what weight is, in words
+	Avoided   []string      `json:"avoided"`
+	MaxSteps  int           `json:"max_steps"`
+	MakeG     float64       `json:"make_g"` // g of target that prices, purchases and shortages are for
+	MakeAsked bool          `json:"make_asked"`
+	Routes    []Route       `json:"routes"`
+	Search    SearchFigures `json:"search"`
+	WouldOpen []Opening     `json:"would_open"`
+	Doubts    []string      `json:"doubts"`
+
+	Molecule *molecule.Molecule `json:"-"`
+}
+
+// Make plans the target. Finding nothing is a Plan without routes, not an error; errors are words to
+// avoid that mean nothing, too many items of From, or trouble in the rules.
+func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (*Plan, error) {
+	by, err := ParseRankBy(string(o.RankBy))
+	if err != nil {
+		return nil, err
+	}
+	f, err := newFilter(w, o.Avoid, o.Bench)
+	if err != nil {
+		return nil, err
+	}
+	if o.Count <= 0 {
+		o.Count = 5
+	}
+	if o.MaxSteps <= 0 {
+		o.MaxSteps = 8
+	}
+	c := newChemistry(w, by, f, o.From)
+	c.oneEnantiomer = o.OneEnantiomer
+	root := c.enter(target)
+	p := c.newPlan(target, root, &o)
+	if p.Target.OnShelf && !o.MakeAnyway {
+		p.Routes = []Route{c.takenFromShelf(root)}
+		p.Search.ProvenBest, p.Search.ProvenRoutes, p.Search.Exhausted, p.Search.Stopped = true, 1, true, string(search.Exhausted)
+		zero := 0.0
+		p.Search.FirstAfter = &zero
+		return p, nil
+	}
+	options := search.Options{Cost: by.cost(), Count: o.Count, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
+		Time: o.Time, Workers: o.Workers, Progress: o.Progress, Accept: c.oneWayEach}
+	for _, m := range o.From {
+		options.From = append(options.From, c.enter(m))
+	}
+	found, err := search.Find(ctx, c, root, options)
+	if err != nil {
+		return nil, err
+	}
+	for _, r := range found.Routes {
+		built, err := c.build(r, p)
+		if err != nil {
+			return nil, err
+		}
+		p.Routes = append(p.Routes, *built)
+	}
+	p.fillSearch(found, len(w.Transforms))
+	p.order(o.Count)
+	p.finish(w)
+	return p, nil
+}
+
+func (c *chemistry) newPlan(target *molecule.Molecule, root search.Key, o *Options) *Plan {
+	formula := target.Formula()
+	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Avoided: c.filter.Avoided(), MaxSteps: o.MaxSteps,
+		From: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Doubts: []string{}, Molecule: target,
+		Target: Target{SMILES: c.world.Write(target), Name: c.world.Name(target), Formula: formula.String(), MolarMass: formula.MolarMass(), OnShelf: c.material(root).OnShelf}}
+	for _, m := range o.From {
+		p.From = append(p.From, c.world.Write(m))
+	}
+	p.MakeG, p.MakeAsked = DefaultMakeG, o.MakeMol > 0
+	if p.MakeAsked {
+		p.MakeG = o.MakeMol * p.Target.MolarMass
+	}
+	return p
+}
+
+// takenFromShelf is the route without steps.
+func (c *chemistry) takenFromShelf(root search.Key) Route {
+	m := c.material(root)
+	r := emptyRoute()
+	r.Rank, r.Proven = 1, true
+	one := 1.0
+	r.AtomEconomy, r.OverallYield, r.WorstBranchYield = &one, Range{1, 1, 1}, Range{1, 1, 1}
+	r.StartingMaterials = []StartingMaterial{{SMILES: m.SMILES, Name: m.Name, OnShelf: true, Mol: 1, Molecule: c.molecule(root), Material: *m}}
+	r.Code = codeOf([]string{"taken from the shelf: " + m.SMILES})
+	return r
+}
+
+func emptyRoute() Route {
+	return Route{Steps: []Step{}, Hazard: HazardFigures{Gravest: []string{}}, StartingMaterials: []StartingMaterial{}, ToBuy: []Purchase{},
+		Alternatives: []Alternative{}, Short: []string{}, Doubts: []string{}}
+}
+
+func (p *Plan) fillSearch(r *search.Result, rules int) {
+	s := &p.Search
+	s.Expanded, s.TransformsTried, s.Seconds, s.LeftOut, s.Rules = r.Expanded, r.Tried, r.Elapsed.Seconds(), r.LeftOut, rules
+	s.Exhausted, s.Stopped = r.Exhausted, string(r.Stopped)
+	if !math.IsInf(r.Bound, 1) {
+		bound := r.Bound
+		s.Bound = &bound
+	}
+}
+
+// finish numbers the routes and says what is proven of the list as it stands.
+func (p *Plan) finish(w *World) {
+	s := &p.Search
+	for i := range p.Routes {
+		r := &p.Routes[i]
+		r.Rank = i + 1
+		if r.Proven && s.ProvenRoutes == i {
+			s.ProvenRoutes++
+		}
+	}
+	s.ProvenBest = s.ProvenRoutes > 0
+	if len(p.Routes) > 0 {
+		first := p.Routes[0].stood.Seconds()
+		s.FirstAfter = &first
+	}
+	if s.LeftOut > 0 {
+		p.Doubts = append(p.Doubts, fmt.Sprintf("%d %s left out because they pass through a controlled or excluded material.", s.LeftOut, plural(s.LeftOut, "step was", "steps were")))
+	}
+	p.searchDoubts()
+	markVariants(p.Routes)
+}
+
+// searchDoubts says in words how far the search got when it did not end by itself.
+func (p *Plan) searchDoubts() {
+	switch s := &p.Search; search.Stop(s.Stopped) {
+	case search.Exhausted, search.Proven:
+		return
+	default:
+		why := map[search.Stop]string{search.ByClock: "The time was up", search.ByCount: "The limit of molecules opened was reached",
+			search.ByMemory: "The memory limit was reached", search.Cancelled: "The search was broken off"}[search.Stop(s.Stopped)]
+		if len(p.Routes) == 0 {
+			p.Doubts = append(p.Doubts, why+" before a route was found; more may exist.")
+		} else if !s.ProvenBest {
+			p.Doubts = append(p.Doubts, why+": a better ranked route may exist.")
+		} else if s.ProvenRoutes < len(p.Routes) {
+			p.Doubts = append(p.Doubts, fmt.Sprintf("%s: only the first %d of the list are proven.", why, s.ProvenRoutes))
+		}
+	}
+}
+
+func plural(n int, one, many string) string {
+	if n == 1 {
+		return one
+	}
+	return many
+}

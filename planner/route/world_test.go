@@ -1,0 +1,87 @@
+package route
+
+import (
+	"math"
+	"strings"
+	"sync"
+	"testing"
+
+	"shelfward/molecule"
+	"shelfward/molecule/smiles"
+	"shelfward/reactions"
+	"shelfward/rules"
+)
+
+// bottles is a shelf for tests: structures with what is known about them, and reagents by name.
+type bottles struct {
+	list   []*molecule.Molecule
+	bySeen map[molecule.Key]Material
+	byName map[string]Material
+}
+
+func newBottles() *bottles {
+	return &bottles{nil, map[molecule.Key]Material{}, map[string]Material{}}
+}
+
+func mustRead(t testing.TB, s string) *molecule.Molecule {
+	t.Helper()
+	m, err := smiles.Read(s)
+	if err != nil {
+		t.Fatalf("%s: %v", s, err)
+	}
+	return m
+}
+
+// put adds a bottle; change may set more fields.
+func (b *bottles) put(t testing.TB, name, structure string, change func(*Material)) {
+	t.Helper()
+	m := mustRead(t, structure)
+	mat := Computed(m, smiles.Write(m))
+	mat.Name, mat.OnShelf = name, true
+	if change != nil {
+		change(&mat)
+	}
+	b.list = append(b.list, m)
+	b.bySeen[m.SeenThroughKey()] = mat
+	b.byName[strings.ToLower(name)] = mat
+}
+
+func (b *bottles) Molecule(m *molecule.Molecule) Material {
+	if mat, ok := b.bySeen[m.SeenThroughKey()]; ok {
+		return mat
+	}
+	return Computed(m, smiles.Write(m))
+}
+
+func (b *bottles) Named(name string) (Material, bool) {
+	mat, ok := b.byName[strings.ToLower(name)]
+	return mat, ok
+}
+
+var book = sync.OnceValues(func() (*reactions.Book, error) { return reactions.Load(rules.Files()) })
+
+// worldWith makes a world of the built-in rules and a shelf.
+func worldWith(t testing.TB, b *bottles) *World {
+	t.Helper()
+	rulesBook, err := book()
+	if err != nil {
+		t.Logf("rules: %.300s", err.Error())
+	}
+	return &World{Book: rulesBook, Transforms: rulesBook.Transforms, Materials: b, Shelf: b.list,
+		Gravity: testGravity, Name: func(*molecule.Molecule) string { return "" }, Write: smiles.Write, Read: smiles.Read}
+}
+
+// testGravity ranks a few codes for tests.
+func testGravity(h string) int {
+	switch h[:min(4, len(h))] {
+	case "H360", "H350", "H260", "H300":
+		return 4
+	case "H224", "H225", "H314", "H261", "H301":
+		return 3
+	case "H302", "H318":
+		return 2
+	}
+	return 1
+}
+
+var unknown = math.NaN()
