@@ -42,7 +42,7 @@ const TransformFolder = "transforms"
 
 // addOnly names the files whose built-in entries a user's folder may add to but never replace: the
 // screen for restricted work and the hazard data. Loaders read all layers of these with Layers.
-var addOnly = []string{"restricted.yaml", "watched.yaml", "ghs.yaml", "incompatible.yaml", "acts.yaml"}
+var addOnly = []string{"restricted.yaml", "watched.yaml", "ghs.yaml", "incompatible.yaml", "cautions.yaml", "acts.yaml"}
 
 // Files returns the embedded rules: "reagents.yaml", "transforms/aldol.yaml" and so on. Safe for
 // concurrent use.
