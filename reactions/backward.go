@@ -5,7 +5,6 @@ import (
 	"sort"
 
 	"shelfward/molecule"
-	"shelfward/molecule/pattern"
 )
 
 // Limits of the backward direction, per transform and target.
@@ -25,12 +24,12 @@ type proposal struct {
 }
 
 // backwards proposes the precursor sets of one target under one transform.
-func (t *Transform) backwards(b *Book, target *subject, stocked Stocked) []proposal {
+func (t *Transform) backwards(b *Book, target *subject, stocked Stocked, cache *subjects) []proposal {
 	sites := t.sites(target)
 	if len(sites) == 0 {
 		return nil
 	}
-	x := &undoer{t: t, b: b, target: target, stocked: stocked, seen: map[string]bool{}}
+	x := &undoer{t: t, b: b, target: target, stocked: stocked, cache: cache, seen: map[string]bool{}}
 	for _, subset := range t.subsets(sites) {
 		x.undo(subset)
 		if len(x.out) >= maxProposals {
@@ -171,6 +170,7 @@ type undoer struct {
 	b       *Book
 	target  *subject
 	stocked Stocked
+	cache   *subjects
 	seen    map[string]bool
 	out     []proposal
 }
@@ -274,8 +274,7 @@ func (t *Transform) layPart(to []int32, part int, m partMatch, offset int32) {
 // completing lays the part on its co-product, numbered classes at the numbered atoms.
 func (x *undoer) completing(part int, m *molecule.Molecule, c coproduct, s site) partMatch {
 	pq := &x.t.part[backward][part]
-	sub := x.b.subject(m)
-	matches := pq.matches(sub.Subject, func(q, a int) bool {
+	matches := pq.matches(x.cache.of(m).Subject, func(q, a int) bool {
 		at, fixed := c.classAt[pq.query.Atoms[q].Class]
 		return !fixed || int(at) == a
 	})
@@ -342,7 +341,7 @@ func (x *undoer) sound(p proposal) bool {
 	for i := range x.t.part[forward] {
 		matched := false
 		for _, pc := range p.pieces {
-			if x.t.part[forward][i].query.Matches(pattern.NewSubject(pc.m, x.b.groups)) {
+			if x.t.part[forward][i].query.Matches(x.cache.of(pc.m).Subject) {
 				matched = true
 				break
 			}

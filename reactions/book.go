@@ -98,7 +98,7 @@ func (l *loader) ids() []string {
 // leaving groups and co-products that a transform leaves free, those that complete to such a molecule
 // come first. The order is fixed by the rule set alone.
 func (b *Book) Expand(ctx context.Context, target *molecule.Molecule, stocked Stocked) ([]*Step, error) {
-	x := &expander{b: b, target: b.subject(target), stocked: stocked, subjects: map[molecule.Key]*subject{}}
+	x := &expander{b: b, target: b.subject(target), stocked: stocked, subjects: b.newSubjects()}
 	for _, t := range b.Transforms {
 		if err := ctx.Err(); err != nil {
 			return nil, err
@@ -114,7 +114,7 @@ type expander struct {
 	b        *Book
 	target   *subject
 	stocked  Stocked
-	subjects map[molecule.Key]*subject
+	subjects *subjects
 	steps    []*Step
 	rejected []rejectedStep
 	keepAll  bool
@@ -126,17 +126,8 @@ type rejectedStep struct {
 	reasons []Objection
 }
 
-func (x *expander) subjectOf(m *molecule.Molecule) *subject {
-	if s := x.subjects[m.Key()]; s != nil {
-		return s
-	}
-	s := x.b.subject(m)
-	x.subjects[s.key] = s
-	return s
-}
-
 func (x *expander) expand(t *Transform) {
-	for _, p := range t.backwards(x.b, x.target, x.stocked) {
+	for _, p := range t.backwards(x.b, x.target, x.stocked, x.subjects) {
 		d := x.draft(t, p)
 		if step, reasons := d.step(); step != nil {
 			x.steps = append(x.steps, step)
@@ -168,7 +159,7 @@ func (x *expander) draft(t *Transform, p proposal) *draft {
 		d.origins[i] = Origin{-1, -1}
 	}
 	for _, pc := range p.pieces {
-		s := x.subjectOf(pc.m)
+		s := x.subjects.of(pc.m)
 		at := -1
 		for i, r := range d.reactants {
 			if r.key == s.key {

@@ -91,7 +91,7 @@ func (b *Book) stepFrom(t *Transform, from []*subject, target *molecule.Molecule
 	for _, s := range from {
 		have[s.M.SeenThroughKey()] = true
 	}
-	x := &expander{b: b, target: b.subject(target), subjects: map[molecule.Key]*subject{},
+	x := &expander{b: b, target: b.subject(target), subjects: b.newSubjects(),
 		stocked: func(m *molecule.Molecule) bool { return have[m.SeenThroughKey()] }}
 	x.expand(t)
 	for _, s := range x.steps {
@@ -182,7 +182,7 @@ func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target 
 		return false
 	}
 	var seen []string
-	for _, p := range t.backwards(b, b.subject(target), stocked) {
+	for _, p := range t.backwards(b, b.subject(target), stocked, b.newSubjects()) {
 		var keys, names []string
 		for _, pc := range p.pieces {
 			k := pc.m.SeenThroughKey()

@@ -23,6 +23,25 @@ func (b *Book) subject(m *molecule.Molecule) *subject {
 	return &subject{pattern.NewSubject(m, b.groups), m.Key()}
 }
 
+// subjects keeps the molecules of one expansion: many transforms propose the same precursors. Not safe
+// for concurrent use.
+type subjects struct {
+	b     *Book
+	byKey map[molecule.Key]*subject
+}
+
+func (b *Book) newSubjects() *subjects { return &subjects{b, map[molecule.Key]*subject{}} }
+
+func (c *subjects) of(m *molecule.Molecule) *subject {
+	k := m.Key()
+	if s := c.byKey[k]; s != nil {
+		return s
+	}
+	s := &subject{pattern.NewSubject(m, c.b.groups), k}
+	c.byKey[k] = s
+	return s
+}
+
 // partMatch is one way to lay a part on a molecule: the atom of each of the part's query atoms.
 type partMatch []int32
 

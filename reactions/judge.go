@@ -32,7 +32,7 @@ const (
 // read as their free forms; ions without a structure of their own are dropped. described is false when
 // no conditions were given: then any condition set of a transform will do.
 func (b *Book) Judge(ctx context.Context, reactants, products []*molecule.Molecule, with reagent.Description, described bool, table *reagent.Table) (Judgement, error) {
-	j := &judge{b: b, table: table, with: with, described: described}
+	j := &judge{b: b, table: table, with: with, described: described, names: map[string]*reagent.Reagent{}}
 	for _, m := range reactants {
 		j.add(m)
 	}
@@ -62,6 +62,7 @@ type judge struct {
 	found     []candidate // transforms that give the claimed product
 	others    []candidate // transforms that fit the conditions and give something else
 	known     []*Transform
+	names     map[string]*reagent.Reagent // charges looked up so far
 }
 
 // mentioned is a substance of the description or a reactant, as the condition sets see it.
@@ -333,7 +334,11 @@ func (j *judge) find(name string) *reagent.Reagent {
 	if j.table == nil {
 		return nil
 	}
-	r, _ := j.table.Named(name)
+	r, known := j.names[name]
+	if !known {
+		r, _ = j.table.Named(name)
+		j.names[name] = r
+	}
 	return r
 }
 

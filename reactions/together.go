@@ -25,7 +25,7 @@ func (x *expander) undoCompanion(d *draft, c *Conditions, companion *Transform) 
 			continue
 		}
 		inner := &expander{b: x.b, target: r, stocked: x.stocked, subjects: x.subjects}
-		for _, p := range companion.backwards(x.b, r, x.stocked) {
+		for _, p := range companion.backwards(x.b, r, x.stocked, x.subjects) {
 			e := inner.draft(companion, p)
 			if !e.found || fatal(e.objections) {
 				continue

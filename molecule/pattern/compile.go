@@ -1,10 +1,6 @@
 package pattern
 
-import (
-	"sort"
-
-	"shelfward/molecule"
-)
+import "sort"
 
 // planStep matches one query atom: from the neighbours of an atom matched before (anchor), or from
 // all atoms when a new part begins. Closing bonds lead back to atoms matched before.
@@ -101,11 +97,20 @@ func (q *Query) labelParts() {
 }
 
 func (q *Query) countNeeded() {
-	q.needed = map[molecule.Element]int{}
+	q.needed = nil
+next:
 	for _, a := range q.Atoms {
-		if e, ok := a.SingleElement(); ok {
-			q.needed[e]++
+		e, ok := a.SingleElement()
+		if !ok {
+			continue
 		}
+		for i := range q.needed {
+			if q.needed[i].element == e {
+				q.needed[i].count++
+				continue next
+			}
+		}
+		q.needed = append(q.needed, need{e, 1})
 	}
 }
 

@@ -7,7 +7,7 @@ import "shelfward/molecule"
 type Subject struct {
 	M      *molecule.Molecule
 	groups *Groups
-	count  map[molecule.Element]int
+	count  [119]uint16  // atoms per element, a quick refusal
 	member []groupAtoms // per group, filled on first use
 }
 
@@ -20,7 +20,7 @@ type groupAtoms struct {
 
 // NewSubject prepares m; groups may be nil.
 func NewSubject(m *molecule.Molecule, groups *Groups) *Subject {
-	s := &Subject{M: m, groups: groups, count: map[molecule.Element]int{}}
+	s := &Subject{M: m, groups: groups}
 	for a := 0; a < m.NumAtoms(); a++ {
 		s.count[m.Atom(a).Element]++
 	}
@@ -41,8 +41,8 @@ func (q *Query) Each(s *Subject, yield func(Mapping) bool) {
 
 // EachWithin is Each with a further filter: allowed says for a query atom whether an atom may take it.
 func (q *Query) EachWithin(s *Subject, allowed func(queryAtom, a int) bool, yield func(Mapping) bool) {
-	for e, n := range q.needed {
-		if s.count[e] < n {
+	for _, n := range q.needed {
+		if s.count[n.element] < n.count {
 			return
 		}
 	}

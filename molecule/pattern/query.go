@@ -94,8 +94,14 @@ type Query struct {
 	Parts int   // connected pieces
 	Part  []int // piece of each atom
 
-	needed map[molecule.Element]int // lower bounds for a quick refusal
+	needed []need // lower bounds for a quick refusal
 	plan   []planStep
+}
+
+// need is a number of atoms of one element that a match takes at least.
+type need struct {
+	element molecule.Element
+	count   uint16
 }
 
 // AtomOfClass returns the index of the query atom with that class, or -1.
