@@ -101,8 +101,40 @@ func (c *compiled) promotable(p Piece) bool {
 		if v.aromatic && v.openAromatic() > 1 {
 			return false // as a pattern it also fits rings with double bonds to outside (C=c1ccccc1=C)
 		}
+		if c.NoCumulated && v.cumulated() {
+			return false
+		}
 	}
 	return true
+}
+
+// bannedInside reports whether a forbidden bond is part of v.
+func (c *compiled) bannedInside(v *variant) bool {
+	for _, b := range v.bonds {
+		for _, ban := range c.Bonds {
+			if ban.between(v.units[b.a].state.element, v.units[b.b].state.element).has(b.order) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// cumulated reports whether a unit of v has two double bonds inside.
+func (v *variant) cumulated() bool {
+	var twos [maxUnits]int
+	for _, b := range v.bonds {
+		if b.code == inner+1 {
+			twos[b.a]++
+			twos[b.b]++
+		}
+	}
+	for _, n := range twos {
+		if n > 1 {
+			return true
+		}
+	}
+	return false
 }
 
 // openAromatic counts the aromatic units of v that are bonded to outside.
@@ -148,6 +180,17 @@ func (c *compiled) addBlock(b Block) error {
 	if err != nil {
 		return err
 	}
+	kept := vs[:0]
+	for _, v := range vs {
+		if !c.bannedInside(v) {
+			kept = append(kept, v)
+		}
+	}
+	if len(kept) == 0 {
+		c.impossible = true
+		return nil
+	}
+	vs = kept
 	if len(vs[0].units) == 1 {
 		u := vs[0].units[0]
 		r := requirement{u.state, int8(u.hydrogens), b.Count}
@@ -195,7 +238,7 @@ func (p Piece) variants() ([]*variant, error) {
 			list = append(list, v)
 			return
 		}
-		for h := int8(0); h <= 4; h++ {
+		for h := int8(0); h <= 4; h++ { // more hydrogens no atom holds
 			atoms[i].Hydrogens = h
 			choose(i + 1)
 		}
@@ -480,7 +523,6 @@ func (p *plan) linkSites() {
 			continue
 		}
 		v := p.blocks[kd.block]
-		p.aromatic = p.aromatic || v.aromatic
 		number := map[innerBond]uint32{}
 		for _, b := range v.bonds {
 			for _, ends := range [2][2]uint8{{b.a, b.b}, {b.b, b.a}} {
@@ -498,6 +540,9 @@ func (p *plan) linkSites() {
 		})
 		kd.need = 0
 		for i, e := range kd.inner {
+			if e.code == inner+1 {
+				kd.twos += uint8(number[e])
+			}
 			kd.need |= number[e] << (4 * i)
 		}
 	}

@@ -17,6 +17,9 @@ type probe struct {
 }
 
 func (p *probe) node(s *search, depth int) verdict {
+	if len(p.problem.Lacks) > 0 && p.work.banned(s, depth) {
+		return skip
+	}
 	p.found++
 	if p.rand.IntN(p.found) == 0 {
 		p.kept = *s

@@ -43,6 +43,21 @@ func (w *workspace) finish(s *search) *Structure {
 // write fills structure from the finished code: units in the order of the code, each followed by
 // its company. It returns false if the inner bonds do not make the blocks.
 func (w *workspace) write(s *search) bool {
+	w.writeAtoms(s)
+	if len(s.plan.blocks) > 0 && !w.kekuliseBlocks(s) {
+		return false
+	}
+	w.writeLinks()
+	return true
+}
+
+// writePrefix does the same for the units met so far.
+func (w *workspace) writePrefix(s *search) {
+	w.writeAtoms(s)
+	w.writeLinks()
+}
+
+func (w *workspace) writeAtoms(s *search) {
 	st := &w.structure
 	st.Atoms, st.Bonds = st.Atoms[:0], st.Bonds[:0]
 	for u := 0; u < s.met; u++ {
@@ -68,11 +83,10 @@ func (w *workspace) write(s *search) bool {
 			w.links = append(w.links, link{a: uint8(u), b: e.to, code: e.code, order: order, aromatic: e.code == innerAromatic})
 		}
 	}
-	if len(s.plan.blocks) > 0 && !w.kekuliseBlocks(s) {
-		return false
-	}
+}
+
+func (w *workspace) writeLinks() {
 	for _, l := range w.links {
-		st.Bonds = append(st.Bonds, Bond{w.first[l.a], w.first[l.b], l.order})
+		w.structure.Bonds = append(w.structure.Bonds, Bond{w.first[l.a], w.first[l.b], l.order})
 	}
-	return true
 }

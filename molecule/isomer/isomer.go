@@ -76,7 +76,8 @@ type Block struct {
 	Count int
 }
 
-// BondBan forbids a bond of the given order between two elements; Order 0 forbids every order.
+// BondBan forbids a bond of the given order between two elements; Order 0 forbids every order. Single
+// and double bonds between C, N, P, B and Si cannot be banned apart: aromatic compounds have both.
 type BondBan struct {
 	A, B  molecule.Element
 	Order uint8
@@ -106,7 +107,7 @@ type Problem struct {
 	Lacks []Piece
 
 	Bonds       []BondBan // forbidden bonds
-	NoCumulated bool      // no atom with two double bonds (blocks excepted)
+	NoCumulated bool      // no atom with two double bonds (those inside one block excepted)
 	NoSmallRing bool      // strain: no triple bond or cumulated bond in a ring under 8
 
 	// Accept is a further test of finished structures; nil accepts all. It is called from several

@@ -32,6 +32,7 @@ func pieceOf(name string, m *molecule.Molecule) (Piece, error) {
 // pieceMatch looks for pieces in structure.
 type pieceMatch struct {
 	aromatic []bool // by bond of structure
+	unsure   []bool // bonds of a prefix that may still become aromatic; empty for finished structures
 	at       [64]uint8
 	used     [256]bool
 }
@@ -53,6 +54,55 @@ func (w *workspace) pieces(p *compiled) bool {
 		}
 	}
 	return true
+}
+
+// banned reports whether a prefix already holds a piece of Lacks whatever follows. Hydrogens and the
+// bonds made are final; but a bond that could still become aromatic does not count.
+func (w *workspace) banned(s *search, depth int) bool {
+	if depth == s.plan.units {
+		return false // tested with all the rest
+	}
+	w.writePrefix(s)
+	w.unsure = w.unsure[:0]
+	for range w.structure.Bonds {
+		w.unsure = append(w.unsure, false)
+	}
+	settled := func(u uint8) bool { // u has no bond that can be aromatic
+		k := &s.plan.kinds[s.kind[u]]
+		if s.deg[u] == 1 && s.free[u] == 0 && s.need[u] == 0 {
+			return true // the only bond of an end
+		}
+		if int(u) >= depth || k.state.element != carbon {
+			return false
+		}
+		for _, e := range s.adj[u][:s.deg[u]] {
+			if e.code != 1 && e.code != inner {
+				return false
+			}
+		}
+		return true
+	}
+	first := len(w.structure.Bonds) - len(w.links)
+	w.aromatic = w.aromatic[:0]
+	for range w.structure.Bonds {
+		w.aromatic = append(w.aromatic, false)
+	}
+	for i, l := range w.links {
+		if l.aromatic {
+			w.aromatic[first+i] = true
+		} else if l.order < 3 && !settled(l.a) && !settled(l.b) {
+			w.unsure[first+i] = true
+		}
+	}
+	found := false
+	for i := range s.plan.problem.Lacks {
+		if w.occurs(&s.plan.problem.Lacks[i]) {
+			found = true
+			break
+		}
+	}
+	w.unsure = w.unsure[:0]
+	return found
 }
 
 // markAromatic asks package molecule for the aromatic bonds of structure.
@@ -123,6 +173,9 @@ func (w *workspace) bonded(p *Piece, x int) bool {
 func (w *workspace) bondIs(a, b, order uint8) bool {
 	for i, x := range w.structure.Bonds {
 		if x.A == a && x.B == b || x.A == b && x.B == a {
+			if len(w.unsure) > 0 && w.unsure[i] {
+				return false
+			}
 			if w.aromatic[i] && x.Order < 3 {
 				return order == OrderAromatic
 			}

@@ -18,6 +18,7 @@ type kind struct {
 	inner []innerBond // kinds of bonds inside the block
 	need  uint32      // how many bonds of each entry of inner a unit has, four bits each
 	share uint8       // units of this kind in one instance of the block
+	twos  uint8       // double bonds it has inside the block
 }
 
 // innerBond is a kind of bond inside a block: its code and the kind across.
@@ -38,7 +39,6 @@ type plan struct {
 	local              bool // prefixes have more to meet than the code (sound)
 	blocks             []*variant
 	perBlock           []int // instances of each block
-	aromatic           bool  // some block has aromatic bonds
 
 	problem *compiled
 }
@@ -59,6 +59,9 @@ type pool struct {
 
 // plans calls yield with every plan of the problem in a fixed order, until yield returns false.
 func (c *compiled) plans(yield func(*plan) bool) bool {
+	if c.impossible {
+		return true
+	}
 	return c.chooseVariants(0, nil, nil, c.atoms, c.hydrogens, func(blocks []*variant, count []int, atoms [maxElement]int, hydrogens int) bool {
 		return c.chooseStates(0, nil, atoms, func(pools []pool) bool {
 			return c.chooseHydrogens(pools, 0, hydrogens, blocks, count, yield)

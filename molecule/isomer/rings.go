@@ -54,7 +54,7 @@ func (s *search) strained() bool {
 	for u := 0; u < s.met; u++ {
 		cumulated := s.twos[u] > 1
 		for _, e := range s.adj[u][:s.deg[u]] {
-			if (e.code == 3 || e.code == inner+2 || cumulated && e.code == 2) && s.smallestRing(u, int(e.to)) < 8 {
+			if (e.code == 3 || e.code == inner+2 || cumulated && (e.code == 2 || e.code == inner+1)) && s.smallestRing(u, int(e.to)) < 8 {
 				return true
 			}
 		}

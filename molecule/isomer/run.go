@@ -8,7 +8,7 @@ import (
 )
 
 // patience is the number of search nodes between two looks at the clock.
-const patience = 4096
+const patience = 256
 
 // collector turns finished codes into structures and hands them on.
 type collector struct {
@@ -25,8 +25,11 @@ type collector struct {
 
 func (c *collector) node(s *search, depth int) verdict {
 	c.nodes++
-	if c.nodes%patience == 0 && (c.ctx.Err() != nil || c.halt.Load()) {
+	if c.nodes%patience == 0 && c.over() {
 		return stop
+	}
+	if len(c.problem.Lacks) > 0 && c.work.banned(s, depth) {
+		return skip
 	}
 	if c.splitDepth > 0 && depth == min(c.splitDepth, s.plan.units) {
 		if !c.split(s, depth) {
@@ -35,6 +38,14 @@ func (c *collector) node(s *search, depth int) verdict {
 		return skip
 	}
 	return descend
+}
+
+// over reports whether the search is to end.
+func (c *collector) over() bool {
+	if c.ctx.Err() != nil {
+		c.halt.Store(true)
+	}
+	return c.halt.Load()
 }
 
 func (c *collector) leaf(s *search) bool {
@@ -123,7 +134,7 @@ func parallel(ctx context.Context, c *compiled, workers int, halt *atomic.Bool, 
 		defer close(order)
 		out := &collector{ctx: ctx, halt: halt, problem: c, splitDepth: splitRows}
 		out.split = func(s *search, depth int) bool {
-			if halt.Load() {
+			if out.over() {
 				return false
 			}
 			j := &job{search: *s, depth: depth, out: make(chan *chunk, 8)}
@@ -167,6 +178,9 @@ func (j *job) run(ctx context.Context, c *compiled, halt *atomic.Bool) {
 	defer close(j.out)
 	k := &chunk{}
 	out := &collector{ctx: ctx, halt: halt, problem: c}
+	if out.over() {
+		return
+	}
 	out.give = func(s *Structure) bool {
 		k.add(s)
 		if len(k.ends) == chunkSize {

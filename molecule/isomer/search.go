@@ -91,7 +91,7 @@ func (s *search) meet(k uint8, spent uint8) int {
 	s.left[k]--
 	kd := &s.plan.kinds[k]
 	s.kind[u], s.free[u], s.need[u] = k, kd.free-spent, kd.need
-	s.deg[u], s.twos[u] = 0, 0
+	s.deg[u], s.twos[u] = 0, kd.twos
 	return u
 }
 
@@ -236,11 +236,8 @@ func (s *search) children(i, end int, row uint64, shift int, last int) bool {
 		return true // inner bonds come first: their tokens are larger
 	}
 	for order := min(s.free[i], 3, uint8(min(s.excess+1, 3))); order > 0; order-- {
-		if p.noCumulated && order == 2 && s.twos[i] > 0 {
-			continue
-		}
 		for k := p.top; k > 0; k-- {
-			if s.left[k] == 0 || p.kinds[k].free < order || !p.allow[s.kind[i]][k].has(order) {
+			if s.left[k] == 0 || p.kinds[k].free < order || !p.allow[s.kind[i]][k].has(order) || p.noCumulated && order == 2 && s.twos[i]+p.kinds[k].twos > 0 {
 				continue
 			}
 			token := int(order)<<5 | int(k)

@@ -74,11 +74,12 @@ var usualStates = []*state{
 // compiled is a checked problem.
 type compiled struct {
 	Problem
-	states    []*state // those the formula has atoms for, plain ones after the others
-	atoms     [maxElement]int
-	hydrogens int
-	blocks    []*block
-	required  []requirement
+	states     []*state // those the formula has atoms for, plain ones after the others
+	atoms      [maxElement]int
+	hydrogens  int
+	blocks     []*block
+	required   []requirement
+	impossible bool // a block holds a forbidden bond
 }
 
 // compile checks a problem.
@@ -90,6 +91,11 @@ func compile(p Problem) (*compiled, error) {
 	plain := map[molecule.Element]bool{}
 	for _, st := range plainStates {
 		plain[st.element] = true
+	}
+	for _, ban := range p.Bonds {
+		if ban.Order > 0 && ban.Order < 3 && resonant(ban.A) && resonant(ban.B) {
+			return nil, fmt.Errorf("a ban on %s-%s bonds of order %d would depend on the Kekulé form drawn: use Lacks with a piece, or order 0", ban.A.Symbol(), ban.B.Symbol(), ban.Order)
+		}
 	}
 	total := 0
 	for e := 2; e < maxElement; e++ {
@@ -116,6 +122,11 @@ func compile(p Problem) (*compiled, error) {
 		}
 	}
 	return c, c.compileBlocks()
+}
+
+// resonant reports whether atoms of e change the order of their bonds between Kekulé forms.
+func resonant(e molecule.Element) bool {
+	return e == carbon || e == nitrogen || e == phosphor || e == 5 || e == 14
 }
 
 // affords reports whether the formula holds the atoms of st.
