@@ -236,7 +236,9 @@ func (x *undoer) lay(sites []site, co []coproduct) (*pool, [][]int32) {
 			}
 			m := co[k].m
 			if co[k].same {
-				m = x.target.M
+				if m = x.t.otherHalf(x.target.M, part, s); m == nil {
+					return nil, nil
+				}
 			}
 			extras = append(extras, extra{si, part, len(ms), co[k]})
 			ms = append(ms, m)

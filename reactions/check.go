@@ -168,12 +168,12 @@ func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject
 func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target *molecule.Molecule) []Fault {
 	want := make([]string, len(from))
 	for i, s := range from {
-		k := s.M.SeenThroughKey()
+		k := s.M.WithoutStereo().SeenThroughKey() // marks are the forward run's affair
 		want[i] = string(k[:])
 	}
 	sort.Strings(want)
 	stocked := func(m *molecule.Molecule) bool {
-		k := m.SeenThroughKey()
+		k := m.WithoutStereo().SeenThroughKey()
 		for _, w := range want {
 			if w == string(k[:]) {
 				return true
@@ -185,7 +185,7 @@ func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target 
 	for _, p := range t.backwards(b, b.subject(target), stocked, b.newSubjects()) {
 		var keys, names []string
 		for _, pc := range p.pieces {
-			k := pc.m.SeenThroughKey()
+			k := pc.m.WithoutStereo().SeenThroughKey()
 			if !containsString(keys, string(k[:])) {
 				keys = append(keys, string(k[:]))
 				names = append(names, written(pc.m))

@@ -117,7 +117,7 @@ func sides(m *molecule.Molecule, ia, ib int32) (p, q, r, s int32, ok bool) {
 		}
 	}
 	if !known {
-		if p, r, known = ringSides(m, ia, ib); !known {
+		if p, r, known = ringSides(m, ia, ib, -1, -1); !known {
 			return 0, 0, 0, 0, false
 		}
 		together = true
@@ -150,20 +150,22 @@ func other(pair []int32, x int32) int32 {
 	return pair[0]
 }
 
-// ringSides returns the ring neighbours of a small ring through the bond: they lie on the same side.
-func ringSides(m *molecule.Molecule, ia, ib int32) (p, r int32, ok bool) {
+// ringSides returns the ring neighbours of a small ring through the bond: they lie on the same side. A
+// ring that the edit opens, because x leaves ia or y leaves ib, does not count.
+func ringSides(m *molecule.Molecule, ia, ib, x, y int32) (p, r int32, ok bool) {
 	for _, ring := range m.Rings() {
 		n := len(ring)
 		if n >= 8 {
 			continue
 		}
 		for k := range ring {
-			x, y := ring[k], ring[(k+1)%n]
-			if x == ia && y == ib {
-				return ring[(k+n-1)%n], ring[(k+2)%n], true
+			first, second := ring[k], ring[(k+1)%n]
+			before, after := ring[(k+n-1)%n], ring[(k+2)%n]
+			if first == ib && second == ia {
+				first, second, before, after = ia, ib, after, before
 			}
-			if x == ib && y == ia {
-				return ring[(k+2)%n], ring[(k+n-1)%n], true
+			if first == ia && second == ib && before != x && after != y {
+				return before, after, true
 			}
 		}
 	}
@@ -216,7 +218,7 @@ func (e *editor) eliminate(m *molecule.Molecule, ia, ib, off int32, bond int, sy
 	}
 	// turn is true for clockwise; syn with p beside r needs counter-clockwise at a, clockwise at b
 	together := (!turnA == turnB) == syn
-	if pr, rr, inRing := ringSides(m, ia, ib); inRing {
+	if pr, rr, inRing := ringSides(m, ia, ib, x, y); inRing {
 		cis := together
 		if pr != p {
 			cis = !cis
