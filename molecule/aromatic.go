@@ -1,5 +1,7 @@
 package molecule
 
+import "shelfward/molecule/matching"
+
 // The aromaticity model. A ring of the relevant cycles is a candidate when every atom in it can
 // give 0, 1 or 2 electrons to the ring; a candidate, or the outline of up to six fused candidates
 // (rings of at most 24 atoms that share one bond), is aromatic when the electrons can sum to 4n+2. Exocyclic double
@@ -67,6 +69,45 @@ func (p *perceiver) perceiveAromaticity() {
 	for i := range p.m.bonds {
 		if x := &p.m.bonds[i]; x.Aromatic {
 			p.m.atoms[x.A].Aromatic, p.m.atoms[x.B].Aromatic = true, true
+		}
+	}
+	p.settleInner()
+}
+
+// settleInner makes double bonds inside an aromatic outline single where the outline alone can take
+// all double bonds (octalene), so that the Kekulé form found first leaves no trace.
+func (p *perceiver) settleInner() {
+	m := p.m
+	inner := func(x *Bond) bool {
+		return x.Ring && !x.Aromatic && x.Order == 2 && m.atoms[x.A].Aromatic && m.atoms[x.B].Aromatic
+	}
+	any := false
+	for i := range m.bonds {
+		any = any || inner(&m.bonds[i])
+	}
+	if !any {
+		return
+	}
+	p.usable = sizedBools(p.usable, len(m.bonds))
+	p.role = make([]matching.Role, len(m.atoms))
+	for i := range m.bonds {
+		x := &m.bonds[i]
+		p.usable[i] = x.Aromatic
+		if x.Order == 2 && (x.Aromatic || inner(x)) {
+			p.role[x.A], p.role[x.B] = matching.Required, matching.Required
+		}
+	}
+	mate, alone := p.matcher.Match(m.first, m.neighbors, p.usable, p.role)
+	if alone != nil {
+		return
+	}
+	for i := range m.bonds {
+		x := &m.bonds[i]
+		if x.Aromatic || inner(x) {
+			x.Order = 1
+			if mate[x.A] == x.B {
+				x.Order = 2
+			}
 		}
 	}
 }

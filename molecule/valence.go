@@ -131,6 +131,9 @@ func (p *perceiver) checkValence(a int) error {
 		}
 		most = 3
 	}
+	if total > 1 && x.Charge == 0 && (x.Element == 17 || x.Element == 35 || x.Element == 53) && !p.oxidised(a) {
+		most = 1
+	}
 	if total <= most || x.Charge == 0 && total <= highest[x.Element] {
 		return nil
 	}
@@ -139,6 +142,23 @@ func (p *perceiver) checkValence(a int) error {
 		text += " without a charge: [N+]"
 	}
 	return &Error{a, -1, text}
+}
+
+// oxidised says that a halogen holds an atom more electronegative than carbon and no multiple bond
+// to carbon: only then does it bear more than one bond.
+func (p *perceiver) oxidised(a int) bool {
+	found := false
+	for _, nb := range p.m.Neighbors(a) {
+		switch p.m.atoms[nb.Atom].Element {
+		case 7, 8, 9, 16, 17, 35, 53:
+			found = true
+		case 6:
+			if p.m.bonds[nb.Bond].Order > 1 {
+				return false
+			}
+		}
+	}
+	return found
 }
 
 // describe names an atom with its charge in words.

@@ -30,6 +30,7 @@ type search struct {
 	autos  [][]int32
 	fixing []int32 // union-find of the automorphisms that fix the current path
 	seen   []uint64
+	leaves int // leaves met, for tests of the pruning
 }
 
 // run labels g; the result is s.best with s.theta.
@@ -38,6 +39,7 @@ func (s *search) run(g *Graph) {
 	s.g, s.r.g, s.r.trace = g, g, 0
 	s.path, s.trace = s.path[:0], s.trace[:0]
 	s.autos = s.autos[:0]
+	s.leaves = 0
 	s.first.set, s.best.set = false, false
 	s.theta = resized(s.theta, n)
 	for i := range s.theta {
@@ -208,6 +210,7 @@ func (s *search) compare(l *leaf, depth int) int {
 
 // leaf compares a discrete labelling with the first and the best and returns the depth to go on at.
 func (s *search) leaf(depth int) int {
+	s.leaves++
 	s.now.path = append(s.now.path[:0], s.path[:depth]...)
 	s.now.trace = append(s.now.trace[:0], s.trace[:depth+1]...)
 	s.now.order = append(s.now.order[:0], s.level[depth].elems...)

@@ -46,7 +46,8 @@ func (r *relation) relate(b, c int32, sign int8) bool {
 }
 
 // placeMarks chooses the bonds that carry / and \ and their directions. Each double bond relates
-// one single bond at either end; a single bond may serve two double bonds.
+// one single bond at either end; a single bond may serve two double bonds. Where that would put
+// marks on both sides of a double bond that has none, a hydrogen is written out to carry one.
 func (w *writer) placeMarks() {
 	nb := w.m.NumBonds()
 	if cap(w.dir) < nb {
@@ -54,33 +55,105 @@ func (w *writer) placeMarks() {
 	}
 	w.dir = w.dir[:nb]
 	clear(w.dir)
-	marks := w.m.DoubleBonds()
-	if len(marks) == 0 {
+	w.dirH = nil
+	if len(w.m.DoubleBonds()) == 0 {
 		return
 	}
-	w.relation.reset(nb)
 	w.partner = ints(w.partner, w.m.NumAtoms())
-	for _, d := range marks {
+	for _, d := range w.m.DoubleBonds() {
 		x := w.m.Bond(int(d.Bond))
 		w.partner[x.A], w.partner[x.B] = x.B+1, x.A+1
 	}
-	ordered := slices.Clone(marks)
+	ordered := slices.Clone(w.m.DoubleBonds())
 	slices.SortFunc(ordered, func(x, y molecule.DoubleBond) int { return int(w.time(x) - w.time(y)) })
-	for _, d := range ordered {
-		w.relateEnds(d)
+	w.avoid = nil
+	for range 4 { // each round can bring a neighbour into trouble; chains of them are short
+		w.relation.reset(nb + w.m.NumAtoms())
+		for _, d := range ordered {
+			w.relateEnds(d)
+		}
+		if !w.strayMarks() {
+			break
+		}
 	}
+	w.setDirections()
+}
+
+// setDirections gives each group of related bonds its signs: the bond written first gets '/'.
+func (w *writer) setDirections() {
+	nb := int32(w.m.NumBonds())
+	set := func(b int32, sign int8) {
+		if b < nb {
+			w.dir[b] = sign
+		} else {
+			w.dirH[b-nb] = sign
+		}
+	}
+	w.dirH = make([]int8, w.m.NumAtoms())
 	bonds := w.bondsInOrder()
-	for _, b := range bonds {
-		if !w.relation.used[b] || w.dir[b] != 0 {
+	done := make([]bool, len(bonds))
+	for i, b := range bonds {
+		if done[i] {
 			continue
 		}
 		root, sign := w.relation.find(b)
-		for _, c := range bonds { // the first bond of each group is written '/'
-			if r, s := w.relation.find(c); r == root && w.relation.used[c] {
-				w.dir[c] = s * sign
+		for k, c := range bonds {
+			if r, s := w.relation.find(c); r == root {
+				set(c, s*sign)
+				done[k] = true
 			}
 		}
 	}
+}
+
+// strayMarks looks for double bonds without geometry that would be read with one, notes their
+// neighbours to be avoided and reports whether there are new ones.
+func (w *writer) strayMarks() bool {
+	found := false
+	for b := 0; b < w.m.NumBonds(); b++ {
+		x := w.m.Bond(b)
+		if x.Order != 2 || x.Aromatic || w.partner[x.A] == x.B+1 {
+			continue
+		}
+		var stray []int32
+		for _, end := range [2]int32{x.A, x.B} {
+			at := len(stray)
+			for _, nb := range w.m.Neighbors(int(end)) {
+				if w.relation.used[nb.Bond] {
+					stray = append(stray, nb.Bond)
+				}
+			}
+			if len(stray) == at {
+				stray = nil
+				break
+			}
+		}
+		if stray == nil || !w.canBeMarked(b) {
+			continue
+		}
+		if w.avoid == nil {
+			w.avoid = make([]bool, w.m.NumBonds())
+		}
+		for _, s := range stray {
+			found = found || !w.avoid[s]
+			w.avoid[s] = true
+		}
+	}
+	return found
+}
+
+// canBeMarked says that a reader keeps marks around double bond b.
+func (w *writer) canBeMarked(b int) bool {
+	x := w.m.Bond(b)
+	if r := w.m.SmallestBondRing(b); r > 0 && r < 8 {
+		return false
+	}
+	for _, end := range [2]int32{x.A, x.B} {
+		if w.m.Degree(int(end)) < 2 || w.m.Degree(int(end)) > 3 {
+			return false
+		}
+	}
+	return true
 }
 
 // time is when the first end of d is written.
@@ -97,7 +170,11 @@ func (w *writer) bondsInOrder() []int32 {
 			list = append(list, int32(b))
 		}
 	}
+	nb := int32(w.m.NumBonds())
 	key := func(b int32) int64 {
+		if b >= nb {
+			return int64(w.seen[b-nb])<<32 | 2<<32
+		}
 		x := w.m.Bond(int(b))
 		i, j := w.seen[x.A], w.seen[x.B]
 		if w.tree[b] { // written before its second atom
@@ -126,10 +203,10 @@ func (w *writer) relateEnds(d molecule.DoubleBond) {
 			if !together {
 				sign = -1
 			}
-			if !w.firstWritten(x.A, la.Bond) {
+			if !w.startsAt(x.A, la.Bond) {
 				sign = -sign
 			}
-			if !w.firstWritten(x.B, lb.Bond) {
+			if !w.startsAt(x.B, lb.Bond) {
 				sign = -sign
 			}
 			if w.relation.relate(la.Bond, lb.Bond, sign) {
@@ -148,6 +225,9 @@ func (w *writer) use(b int32) {
 		return
 	}
 	w.relation.used[b] = true
+	if int(b) >= w.m.NumBonds() {
+		return
+	}
 	x := w.m.Bond(int(b))
 	for _, end := range [2]int32{x.A, x.B} {
 		if w.partner[end] == 0 {
@@ -166,8 +246,14 @@ func (w *writer) use(b int32) {
 	}
 }
 
+// startsAt says that end is the first written atom of bond b; bonds to written hydrogens start there.
+func (w *writer) startsAt(end, b int32) bool {
+	return int(b) >= w.m.NumBonds() || w.firstWritten(end, b)
+}
+
 // choices lists the single bonds at end beside the double bond to partner, in order of preference:
-// marked already, in the tree, low rank.
+// marked already, in the tree, low rank; then its hydrogen, then bonds to be avoided. The bond to
+// the hydrogen of atom a has the number NumBonds + a.
 func (w *writer) choices(end, partner int32) []molecule.Neighbor {
 	var list []molecule.Neighbor
 	for _, nb := range w.sorted[w.first[end]:w.first[end+1]] {
@@ -175,8 +261,17 @@ func (w *writer) choices(end, partner int32) []molecule.Neighbor {
 			list = append(list, nb)
 		}
 	}
+	if w.avoid != nil && len(list) == 1 && w.m.Atom(int(end)).Hydrogens == 1 {
+		list = append(list, molecule.Neighbor{Atom: -1, Bond: int32(w.m.NumBonds()) + end})
+	}
 	grade := func(nb molecule.Neighbor) int {
 		g := 0
+		switch {
+		case nb.Atom < 0:
+			return 4
+		case w.avoid != nil && w.avoid[nb.Bond]:
+			g = 8
+		}
 		if !w.relation.used[nb.Bond] {
 			g += 2
 		}

@@ -30,6 +30,8 @@ type writer struct {
 	digit    []int32 // bond -> closure number, 0 none
 	taken    []bool  // closure numbers in use
 	dir      []int8  // bond -> 1 '/', -1 '\', as written from its first atom
+	dirH     []int8  // atom -> direction of the bond to its written hydrogen, nil or 0 none
+	avoid    []bool  // bonds that must carry no mark
 	partner  []int32 // atom -> 1+the atom across its marked double bond, 0
 	marked   []int32 // atom -> 1+index of its centre, 0
 	stack    []frame
@@ -322,6 +324,10 @@ func (w *writer) atom(a int32) {
 		w.bracket(a, &x)
 	}
 	w.closures(a)
+	if w.dirH != nil && w.dirH[a] != 0 {
+		w.out = append(w.out, '(', "\\?/"[w.dirH[a]+1])
+		w.out = append(w.out, "[H])"...)
+	}
 }
 
 func (w *writer) symbol(x *molecule.Atom) {
@@ -389,6 +395,9 @@ func (w *writer) bare(a int32, x *molecule.Atom) bool {
 
 // bracket writes a with everything spelled out.
 func (w *writer) bracket(a int32, x *molecule.Atom) {
+	if w.dirH != nil && w.dirH[a] != 0 {
+		x.Hydrogens--
+	}
 	w.out = append(w.out, '[')
 	if x.Isotope != 0 {
 		w.out = strconv.AppendInt(w.out, int64(x.Isotope), 10)
