@@ -139,7 +139,7 @@ func (w *workspace) decomposition(s *search) bool {
 		return false
 	}
 	free := false // aromatic bonds outside the blocks
-	if s.rings > 0 {
+	if s.rings > 0 && s.mayBeAromatic() {
 		w.perceive(s)
 		for _, l := range w.links {
 			if l.code >= inner && l.code != inner+2 && l.aromatic != (l.code == innerAromatic) {

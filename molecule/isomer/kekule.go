@@ -1,5 +1,7 @@
 package isomer
 
+import "math/bits"
+
 // The Kekulé forms of one aromatic compound are different codes. One of them stands for the
 // compound: that whose code is the largest. Which bonds are aromatic is for package molecule to say;
 // only the commonest case is settled here, a single six-membered ring of alternating bonds.
@@ -153,6 +155,87 @@ func (s *search) isolatedRing(ring []uint8) bool {
 		}
 	}
 	return true
+}
+
+// mayBeAromatic reports whether a bond that the search made lies in a ring without a saturated carbon,
+// the least that an aromatic ring needs, or bridges a block, which may lose its aromatic ring by that.
+func (s *search) mayBeAromatic() bool {
+	var fit uint32
+	for u := 0; u < s.met; u++ {
+		unsaturated := s.plan.kinds[s.kind[u]].state.element != carbon
+		for _, e := range s.adj[u][:s.deg[u]] {
+			unsaturated = unsaturated || e.code != 1 && e.code != inner
+		}
+		if unsaturated {
+			fit |= 1 << u
+		}
+	}
+	for u := 0; u < s.met; u++ {
+		if fit>>u&1 == 0 {
+			continue
+		}
+		if s.inBlock(u) && s.bridged(u) {
+			return true
+		}
+		for _, e := range s.adj[u][:s.deg[u]] {
+			if e.code < inner && int(e.to) > u && fit>>e.to&1 != 0 && s.joined(u, int(e.to), fit) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// bridged reports whether four bonds or fewer lead from unit u of a block over units outside it to
+// another unit of it that is not a neighbour. Longer bridges leave the rings of the block the smallest.
+func (s *search) bridged(u int) bool {
+	var block, near uint32
+	for v := 0; v < s.met; v++ {
+		if s.inBlock(v) && s.group[v] == s.group[u] {
+			block |= 1 << v
+		}
+	}
+	for _, e := range s.adj[u][:s.deg[u]] {
+		near |= 1 << e.to
+	}
+	front := near &^ block
+	for range 3 {
+		next := front
+		for v := 0; v < s.met; v++ {
+			if front>>v&1 != 0 {
+				for _, e := range s.adj[v][:s.deg[v]] {
+					next |= 1 << e.to
+				}
+			}
+		}
+		if next&block&^near&^(1<<u) != 0 {
+			return true
+		}
+		front = next &^ block
+	}
+	return false
+}
+
+// joined reports whether units a and b are joined within the set fit by another way than their bond.
+func (s *search) joined(a, b int, fit uint32) bool {
+	seen, front := uint32(1)<<a, uint32(1)<<a
+	for front != 0 {
+		u := bits.TrailingZeros32(front)
+		front &= front - 1
+		for _, e := range s.adj[u][:s.deg[u]] {
+			if u == a && int(e.to) == b {
+				continue
+			}
+			if next := uint32(1) << e.to & fit &^ seen; next != 0 {
+				seen |= next
+				front |= next
+			}
+		}
+		if seen>>b&1 != 0 {
+			return true
+		}
+	}
+	return false
 }
 
 // perceive marks the aromatic links of the structure written.
