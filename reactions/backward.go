@@ -286,21 +286,41 @@ func (x *undoer) completing(part int, m *molecule.Molecule, c coproduct, s site)
 	return matches[0]
 }
 
-// fragmentChoices lists what may stand for the classes that leave; several such classes vary together
-// by place in their lists.
+// maxFragments bounds the combinations of leaving groups tried at one site.
+const maxFragments = 36
+
+// fragmentChoices lists what may stand for the classes that leave: every combination, those early in
+// their lists first.
 func (t *Transform) fragmentChoices() []fragments {
-	longest := 1
-	for _, list := range t.choices {
-		longest = max(longest, len(list))
+	classes := make([]int, 0, len(t.choices))
+	for class := range t.choices {
+		classes = append(classes, class)
 	}
-	out := make([]fragments, longest)
-	for i := range out {
-		out[i] = fragments{}
-		for class, list := range t.choices {
-			out[i][class] = list[min(i, len(list)-1)]
+	sort.Ints(classes)
+	type combination struct {
+		frags fragments
+		late  int
+	}
+	combos := []combination{{fragments{}, 0}}
+	for _, class := range classes {
+		var longer []combination
+		for _, c := range combos {
+			for i, m := range t.choices[class] {
+				f := fragments{class: m}
+				for k, v := range c.frags {
+					f[k] = v
+				}
+				longer = append(longer, combination{f, c.late + i})
+			}
 		}
+		combos = longer
 	}
-	return out
+	sort.SliceStable(combos, func(i, j int) bool { return combos[i].late < combos[j].late })
+	out := make([]fragments, 0, len(combos))
+	for _, c := range combos {
+		out = append(out, c.frags)
+	}
+	return out[:min(len(out), maxFragments)]
 }
 
 // keep adds proposals that are new and pass the reactant side's words; of those that no shelf item

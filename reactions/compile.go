@@ -190,7 +190,7 @@ func (l *loader) compileParts(t *Transform, src *sourceTransform, file string) e
 }
 
 // ownWords are words about an atom's own bonds: they hold on both sides where these do not change.
-var ownWords = []string{"sp3", "sp2", "sp", "aromatic", "not aromatic", "hydrogens ", "carbon neighbours ", "hetero neighbours ", "heavy neighbours ", "one of ", "none of "}
+var ownWords = []string{"any charge", "sp3", "sp2", "sp", "aromatic", "not aromatic", "hydrogens ", "carbon neighbours ", "hetero neighbours ", "heavy neighbours ", "one of ", "none of "}
 
 // carryWords copies to the product side what is said of atoms whose bonds stay as they are.
 func (t *Transform) carryWords(left, right pattern.Where) {

@@ -177,10 +177,51 @@ func (e *editor) makeAtoms(to []int32, frags fragments) error {
 		}
 		to[i] = e.addAtom(a, i)
 	}
+	if e.d == backward {
+		return e.mirrorHalves(to)
+	}
 	return nil
 }
 
-// insideFragments marks the unnumbered leaving atoms that hang on a class for which a whole fragment
+// mirrorHalves completes a symmetrical reactant: an atom that leaves and whose surroundings in the reactant
+// part are those of an atom that stays takes over what hangs there. So the other half of an anhydride is
+// the same acid.
+func (e *editor) mirrorHalves(to []int32) error {
+	for i, sl := range e.s.slots {
+		if to[i] < 0 || e.newSlot[to[i]] != i+1 || sl.at[forward] < 0 || sl.at[backward] >= 0 {
+			continue
+		}
+		twin := e.s.counterpart(i)
+		if twin < 0 || to[twin] < 0 || int(to[twin]) >= e.p.atoms || e.s.slots[twin].at[backward] < 0 {
+			continue
+		}
+		if !e.copyBranches(to[i], to[twin], to) {
+			return errNoFit
+		}
+	}
+	return nil
+}
+
+// copyBranches hangs on the new atom a copy of what hangs on the pool atom twin outside the pattern.
+func (e *editor) copyBranches(on, twin int32, to []int32) bool {
+	which, a := e.p.locate(twin)
+	off := e.p.offset[which]
+	var laid []int32
+	for _, x := range to {
+		if x >= off && x < off+int32(e.p.molecules[which].NumAtoms()) {
+			laid = append(laid, x-off)
+		}
+	}
+	b := &molecule.Builder{Atoms: e.b.Atoms, Bonds: e.b.Bonds}
+	ok := copyBranches(b, int(on), e.p.molecules[which], a, laid)
+	for len(e.dead) < len(b.Atoms) {
+		e.dead, e.touched, e.newSlot = append(e.dead, false), append(e.touched, false), append(e.newSlot, 0)
+	}
+	e.b.Atoms, e.b.Bonds = b.Atoms, b.Bonds
+	return ok
+}
+
+// insideFragments marks the leaving atoms without choices of their own that hang on a class for which a whole fragment
 // stands in: the fragment brings them.
 func (s *script) insideFragments(d direction, frags fragments) []bool {
 	inside := make([]bool, len(s.slots))
@@ -193,7 +234,7 @@ func (s *script) insideFragments(d direction, frags fragments) []bool {
 			for _, pair := range [2][2]int{{be.a, be.b}, {be.b, be.a}} {
 				from, to := s.slots[pair[0]], s.slots[pair[1]]
 				whole := from.class != 0 && frags[from.class] != nil && from.at[backward] < 0 || inside[pair[0]]
-				if whole && to.class == 0 && to.at[backward] < 0 && !inside[pair[1]] {
+				if whole && frags[to.class] == nil && to.at[backward] < 0 && !inside[pair[1]] {
 					inside[pair[1]], changed = true, true
 				}
 			}

@@ -34,7 +34,7 @@ func (t *Transform) otherHalf(target *molecule.Molecule, part int, s site) *mole
 		b.AddBond(index[qb.A], index[qb.B], order)
 	}
 	for q := range pq.query.Atoms {
-		twin := t.counterpart(t.script.slotOf[backward][pq.first+q])
+		twin := t.script.counterpart(t.script.slotOf[backward][pq.first+q])
 		if twin < 0 || at[twin] < 0 {
 			continue
 		}
@@ -66,23 +66,23 @@ func (t *Transform) laidSlots(s site) []int32 {
 }
 
 // counterpart returns the slot of the same reactant part whose surroundings there are alike, -1 if none.
-func (t *Transform) counterpart(s int) int {
-	q := t.script.slots[s].at[forward]
+func (s *script) counterpart(slot int) int {
+	q := s.slots[slot].at[forward]
 	if q < 0 {
 		return -1
 	}
-	mine := t.reactantSurroundings(q)
-	for other := range t.script.side[forward].Atoms {
-		if other != q && t.script.partOf(forward, other) == t.script.partOf(forward, q) && equalInts(mine, t.reactantSurroundings(other)) {
-			return t.script.slotOf[forward][other]
+	mine := s.reactantSurroundings(q)
+	for other := range s.side[forward].Atoms {
+		if other != q && s.partOf(forward, other) == s.partOf(forward, q) && equalInts(mine, s.reactantSurroundings(other)) {
+			return s.slotOf[forward][other]
 		}
 	}
 	return -1
 }
 
 // reactantSurroundings is the element of a reactant query atom and its sorted bonds (order, element).
-func (t *Transform) reactantSurroundings(q int) []int {
-	side := t.script.side[forward]
+func (s *script) reactantSurroundings(q int) []int {
+	side := s.side[forward]
 	el, _ := side.Atoms[q].SingleElement()
 	var around []int
 	for _, b := range side.Bonds {
