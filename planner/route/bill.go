@@ -192,9 +192,11 @@ func (b *bill) sums() {
 		}
 		if !x.material.HazardsKnown && !isWater(&x.material) {
 			r.Hazard.WithoutData++
+			r.GravestClass = gravestClass
 		}
 		for _, h := range x.material.Hazards {
 			grave[h] = b.c.world.Gravity(h)
+			r.GravestClass = max(r.GravestClass, grave[h])
 		}
 		r.Materials.Of++
 		if price, known := x.material.Price(); known {

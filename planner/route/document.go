@@ -132,9 +132,10 @@ type Route struct {
 	StartingMaterials []StartingMaterial `json:"starting_materials"`
 	ToBuy             []Purchase         `json:"to_buy"`
 	Alternatives      []Alternative      `json:"alternatives"`
-	VariantOf         string             `json:"variant_of"` // code of a route with the same reactions in another order
-	Short             []string           `json:"short"`      // stock that does not suffice for the scale of the plan
-	Days              float64            `json:"days"`       // working days of eight hours, added up along the bench order
+	VariantOf         string             `json:"variant_of"`    // code of a route with the same reactions in another order
+	Short             []string           `json:"short"`         // stock that does not suffice for the scale of the plan
+	GravestClass      int                `json:"gravest_class"` // 0 slight to 4; unknown hazards count as 4
+	Days              float64            `json:"days"`          // working days of eight hours, added up along the bench order
 	Doubts            []string           `json:"doubts"`
 
 	stood time.Duration // after the start of the search

@@ -53,6 +53,7 @@ type SearchFigures struct {
 	LeftOut         int      `json:"left_out"`
 	Stopped         string   `json:"stopped"` // proven, exhausted, max-expanded, memory, time, cancelled
 	Rules           int      `json:"rules"`
+	ShelfItems      int      `json:"shelf_items"`
 }
 
 // Plan is the answer: routes in order of rank and how far they are proven.
@@ -118,7 +119,8 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		}
 		p.Routes = append(p.Routes, *built)
 	}
-	p.fillSearch(found, len(w.Transforms))
+	p.fillSearch(found)
+	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), len(w.Shelf)
 	p.order(o.Count)
 	p.finish(w)
 	return p, nil
@@ -156,9 +158,9 @@ func emptyRoute() Route {
 		Alternatives: []Alternative{}, Short: []string{}, Doubts: []string{}}
 }
 
-func (p *Plan) fillSearch(r *search.Result, rules int) {
+func (p *Plan) fillSearch(r *search.Result) {
 	s := &p.Search
-	s.Expanded, s.TransformsTried, s.Seconds, s.LeftOut, s.Rules = r.Expanded, r.Tried, r.Elapsed.Seconds(), r.LeftOut, rules
+	s.Expanded, s.TransformsTried, s.Seconds, s.LeftOut = r.Expanded, r.Tried, r.Elapsed.Seconds(), r.LeftOut
 	s.Exhausted, s.Stopped = r.Exhausted, string(r.Stopped)
 	if !math.IsInf(r.Bound, 1) {
 		bound := r.Bound

@@ -88,7 +88,7 @@ const (
 )
 
 const (
-	batchSize = 64
+	batchSize = 16
 	// maxTies bounds the routes of equal cost drawn beyond the count.
 	maxTies = 64
 	// drawBudget and finalBudget bound the derivations looked at for one drawing of routes. Ordinary
@@ -192,7 +192,7 @@ func (r *run) late() bool { return r.o.Time > 0 && time.Since(r.start) >= r.o.Ti
 // what stands. The rest follows the bounds, which is what proves. The first batches are small.
 func (r *run) choose() []int32 {
 	size := batchSize
-	if r.sequence < 6 {
+	if r.sequence < 4 {
 		size = 1 << r.sequence
 	}
 	if r.o.MaxExpanded > 0 {
