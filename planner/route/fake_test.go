@@ -65,3 +65,6 @@ func plan(t testing.TB, w *World, target string, o Options) *Plan {
 	}
 	return p
 }
+
+// molecules returns the target of a plan as a list.
+func (p *Plan) molecules() []*molecule.Molecule { return []*molecule.Molecule{p.Molecule} }

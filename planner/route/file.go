@@ -1,9 +1,12 @@
 package route
 
 import (
+	"context"
 	"encoding/json"
 	"fmt"
 	"os"
+
+	"shelfward/reactions"
 )
 
 // planVersion is raised when a plan file changes in a way that older readers would misread.
@@ -57,4 +60,73 @@ func (p *Plan) Route(name string) (*Route, error) {
 		codes[i] = p.Routes[i].Code
 	}
 	return nil, fmt.Errorf("no route %q in the plan%s", name, near(name, codes))
+}
+
+// Restore brings back the judged steps and the condition sets behind a plan that was read from a file,
+// by working out again how each product is made. It fails if the rules no longer hold a step.
+func (p *Plan) Restore(ctx context.Context, w *World) error {
+	c := newChemistry(w, p.RankedBy, &filter{world: w}, nil)
+	target, err := w.Read(p.Target.SMILES)
+	if err != nil {
+		return fmt.Errorf("plan: target %s: %w", p.Target.SMILES, err)
+	}
+	p.Molecule = target
+	for i := range p.Routes {
+		for j := range p.Routes[i].Steps {
+			s := &p.Routes[i].Steps[j]
+			if err := c.restore(ctx, s); err != nil {
+				return fmt.Errorf("plan: route %s, step %d: %w", p.Routes[i].Code, s.Number, err)
+			}
+		}
+		p.Routes[i].restoreStart(w)
+	}
+	return nil
+}
+
+// restore finds the judged step of s among those that make its product.
+func (c *chemistry) restore(ctx context.Context, s *Step) error {
+	product, err := c.world.Read(s.Product)
+	if err != nil {
+		return err
+	}
+	steps, err := c.world.Book.Expand(ctx, product, c.stocked)
+	if err != nil {
+		return err
+	}
+	for _, judged := range steps {
+		if judged.Transform.ID != s.Transform || len(judged.Reactants) != len(s.Reactants) || len(judged.Together) != len(s.Together) || !c.consumes(judged, s) {
+			continue
+		}
+		for _, set := range judged.Conditions {
+			if set.ID == s.Conditions {
+				s.Judged, s.Set, s.Molecule = judged, set, product
+				for _, r := range judged.Reactants {
+					s.Consumed = append(s.Consumed, r.Molecule)
+				}
+				return nil
+			}
+		}
+	}
+	return fmt.Errorf("the rules loaded no longer hold %s with conditions %s for %s", s.Transform, s.Conditions, s.Product)
+}
+
+// consumes says whether a judged step takes the reactants of s, in their order.
+func (c *chemistry) consumes(judged *reactions.Step, s *Step) bool {
+	for i, r := range judged.Reactants {
+		m, err := c.world.Read(s.Reactants[i])
+		if err != nil || m.SeenThroughKey() != r.Molecule.SeenThroughKey() {
+			return false
+		}
+	}
+	return true
+}
+
+// restoreStart looks the starting materials up on the shelf as it is now.
+func (r *Route) restoreStart(w *World) {
+	for i := range r.StartingMaterials {
+		m := &r.StartingMaterials[i]
+		if mol, err := w.Read(m.SMILES); err == nil {
+			m.Molecule, m.Material = mol, w.Materials.Molecule(mol)
+		}
+	}
 }

@@ -201,8 +201,8 @@ func covers(named, found string) bool {
 	if len(named) < 4 || !strings.HasPrefix(strings.ToUpper(found), named[:len(named)-len(tail(named))]) {
 		return false
 	}
-	for _, letter := range tail(named) {
-		if !strings.ContainsRune(tail(found), letter) {
+	for _, letter := range strings.ToUpper(tail(named)) {
+		if !strings.ContainsRune(strings.ToUpper(tail(found)), letter) {
 			return false
 		}
 	}

@@ -31,6 +31,10 @@ type Options struct {
 // asked for.
 const DefaultMakeG = 10
 
+// moreForStock is how many routes beyond the count are drawn when an amount is asked for: those whose
+// stock does not suffice go back.
+const moreForStock = 5
+
 // Target is the molecule to make.
 type Target struct {
 	SMILES    string  `json:"smiles"`
@@ -103,7 +107,11 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		p.Search.FirstAfter = &zero
 		return p, nil
 	}
-	options := search.Options{Cost: by.cost(), Count: o.Count, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
+	wanted := o.Count
+	if o.MakeMol > 0 { // some more, because stock comes before weight
+		wanted += moreForStock
+	}
+	options := search.Options{Cost: by.cost(), Count: wanted, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
 		Time: o.Time, Workers: o.Workers, Progress: o.Progress, Accept: c.oneWayEach}
 	for _, m := range o.From {
 		options.From = append(options.From, c.enter(m))
@@ -122,7 +130,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	p.fillSearch(found)
 	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), len(w.Shelf)
 	p.order(o.Count)
-	p.finish(w)
+	p.finish(found.Exhausted && len(p.Routes) == len(found.Routes))
 	return p, nil
 }
 
@@ -168,12 +176,16 @@ func (p *Plan) fillSearch(r *search.Result) {
 	}
 }
 
-// finish numbers the routes and says what is proven of the list as it stands.
-func (p *Plan) finish(w *World) {
+// finish numbers the routes and says what is proven of the list as it stands. everything says that the
+// list holds all routes there are.
+func (p *Plan) finish(everything bool) {
 	s := &p.Search
 	for i := range p.Routes {
 		r := &p.Routes[i]
 		r.Rank = i + 1
+		if p.MakeAsked && len(r.Short) > 0 && !everything { // a route whose stock suffices may come yet
+			r.Proven = false
+		}
 		if r.Proven && s.ProvenRoutes == i {
 			s.ProvenRoutes++
 		}

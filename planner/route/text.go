@@ -33,7 +33,7 @@ func (p *Plan) WriteText(w io.Writer) error {
 		return t.err
 	}
 	t.line("")
-	t.line("%d %s, least first by: %s.", len(p.Routes), plural(len(p.Routes), "route", "routes"), p.Minimised)
+	t.line("%d %s, ordered by: %s.", len(p.Routes), plural(len(p.Routes), "route", "routes"), p.Minimised)
 	t.line("Figures are for %s g of target; yields in %% as low-usual-high; waste in kg per kg, solvents counted, work-up not.", figure(p.MakeG))
 	t.line("")
 	p.writeTable(t)
@@ -115,7 +115,7 @@ func (p *Plan) proof() string {
 
 // write prints one route: doubts, ladder, steps, materials.
 func (r *Route) write(t *writer, p *Plan) {
-	head := fmt.Sprintf("Route %s (%d): %d %s, longest run %d, about %s working days", r.Code, r.Rank, len(r.Steps), plural(len(r.Steps), "step", "steps"), r.LongestRun, figureDays(r.Days))
+	head := fmt.Sprintf("Route %s (%d): %d %s, longest run %d, about %s working %s", r.Code, r.Rank, len(r.Steps), plural(len(r.Steps), "step", "steps"), r.LongestRun, figureDays(r.Days), plural(int(r.Days), "day", "days"))
 	if r.VariantOf != "" {
 		head += ", a variant of " + r.VariantOf + " (the same reactions in another order)"
 	}
