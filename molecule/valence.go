@@ -197,7 +197,16 @@ func (p *perceiver) kekulise() error {
 			p.role[a] = p.piRole(a)
 		}
 	}
+	unknown := p.leaveOut() // '*' takes a double bond only where nothing else will do
 	mate, alone := p.matcher.Match(m.first, m.neighbors, p.usable, p.role)
+	if alone != nil && unknown {
+		for a := range p.role {
+			if m.atoms[a].Element == 0 {
+				p.role[a] = matching.Optional
+			}
+		}
+		mate, alone = p.matcher.Match(m.first, m.neighbors, p.usable, p.role)
+	}
 	if alone != nil {
 		return p.kekuleError(alone)
 	}
@@ -214,6 +223,18 @@ func (p *perceiver) kekulise() error {
 		}
 	}
 	return nil
+}
+
+// leaveOut makes the optional atoms absent and reports whether there are any.
+func (p *perceiver) leaveOut() bool {
+	any := false
+	for a, r := range p.role {
+		if r == matching.Optional {
+			p.role[a] = matching.Absent
+			any = true
+		}
+	}
+	return any
 }
 
 // piRole says whether aromatic atom a needs a double bond inside the ring.

@@ -108,7 +108,12 @@ func (m *Matcher) augment(first []int32, nbrs []Neighbor, usable []bool, role []
 				continue
 			}
 			if b == root || (m.mate[b] >= 0 && m.parent[m.mate[b]] >= 0) {
-				m.contract(a, b)
+				if v := m.contract(a, b, role); v >= 0 && exchange {
+					end := m.mate[v]
+					m.mate[v] = -1
+					m.flip(end)
+					return true
+				}
 				continue
 			}
 			if m.parent[b] >= 0 {
@@ -142,8 +147,10 @@ func (m *Matcher) flip(b int32) {
 	}
 }
 
-// contract closes the blossom that the bond a-b makes.
-func (m *Matcher) contract(a, b int32) {
+// contract closes the blossom that the bond a-b makes. It returns an optional vertex that became
+// outer by it (an even path leads there from the root), or -1.
+func (m *Matcher) contract(a, b int32, role []Role) int32 {
+	optional := int32(-1)
 	base := m.meet(a, b)
 	clear(m.inBlossom)
 	m.climb(a, base, b)
@@ -154,9 +161,13 @@ func (m *Matcher) contract(a, b int32) {
 			if !m.outer[v] {
 				m.outer[v] = true
 				m.queue = append(m.queue, int32(v))
+				if role[v] == Optional {
+					optional = int32(v)
+				}
 			}
 		}
 	}
+	return optional
 }
 
 // meet returns the base where the tree paths of a and b join.

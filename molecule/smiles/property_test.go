@@ -135,7 +135,7 @@ func TestReference(t *testing.T) {
 
 func FuzzRead(f *testing.F) {
 	for _, s := range []string{"C", "c1ccccc1", "F/C=C/F", "C[C@H](N)C(=O)O", "[13CH3:7][Na+]", "C1CC%(12)C1C%12", "[nH]1cccc1", "*1cccc*1",
-		"[H]/N=C/C", "C[S@+]1([O-])CC1", "O=C1C=CC(=O)C=C1.[Cl-]", "C/C=C/C=CC(/[H])=C/C", "[N@]1(C)CC1C", "c1ccc2c(c1)[se]c1ccccc12"} {
+		"[H]/N=C/C", "C[S@+]1([O-])CC1", "O=C1C=CC(=O)C=C1.[Cl-]", "C/C=C/C=CC(/[H])=C/C", "[N@]1(C)CC1C", "c1ccc2c(c1)[se]c1ccccc12", "B\n0"} {
 		f.Add(s)
 	}
 	f.Fuzz(func(t *testing.T, text string) {

@@ -3,6 +3,7 @@ package smiles
 import (
 	"errors"
 	"fmt"
+	"strconv"
 	"strings"
 	"sync"
 	"unicode/utf8"
@@ -72,7 +73,7 @@ func (r *reader) found(i int) string {
 		return "the end"
 	}
 	c, _ := utf8.DecodeRuneInString(r.text[i:])
-	return fmt.Sprintf("'%c'", c)
+	return strconv.QuoteRune(c)
 }
 
 func (r *reader) reset(text string) {
