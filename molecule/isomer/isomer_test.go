@@ -173,3 +173,43 @@ func TestKekuleForms(t *testing.T) {
 		}
 	}
 }
+
+// Random formulas counted by programs that share nothing with this one: all Kekulé forms, and compounds.
+func TestMultigraphs(t *testing.T) {
+	for _, row := range lines(t, "multigraphs.tsv") {
+		p := Problem{Formula: formulaOf(t, row[0]), Valences: Standard}
+		c, err := compile(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		forms := int64(0)
+		var s search
+		sink := &rawSink{give: func(*Structure) { forms++ }}
+		c.plans(func(pl *plan) bool {
+			s.start(pl, sink)
+			return s.visit(0)
+		})
+		if want := number(t, row[1]); forms != want {
+			t.Errorf("%s: %d forms, want %d", row[0], forms, want)
+		}
+		if got, want := count(t, p), number(t, row[2]); got != want {
+			t.Errorf("%s: %d compounds, want %d", row[0], got, want)
+		}
+	}
+}
+
+// Alkyl chlorides are rooted trees: OEIS A000598 (values from memory, C1 to C20).
+func TestChlorides(t *testing.T) {
+	known := []int64{1, 1, 2, 4, 8, 17, 39, 89, 211, 507, 1238, 3057, 7639, 19241, 48865, 124906, 321198, 830219, 2156010, 5622109}
+	for i, want := range known {
+		n := i + 1
+		if n > 14 && os.Getenv("SHELFWARD_SLOW") == "" {
+			break
+		}
+		p := Problem{Formula: molecule.Formula{}, Valences: Standard}
+		p.Formula.Count[6], p.Formula.Count[1], p.Formula.Count[17] = int32(n), int32(2*n+1), 1
+		if got := count(t, p); got != want {
+			t.Errorf("%s: %d isomers, want %d", p.Formula, got, want)
+		}
+	}
+}

@@ -308,3 +308,50 @@ func TestBadProblems(t *testing.T) {
 		}
 	}
 }
+
+// Well-known compounds up to nine heavy atoms must be generated when their own carbon kinds and
+// exchangeable hydrogens are the evidence.
+func TestKnownAppear(t *testing.T) {
+	for _, text := range []string{
+		"C[N+](=O)[O-]", "CS(C)=O", "CS(C)(=O)=O", "COP(=O)(OC)OC", "CCN=[N+]=[N-]", "CC(C)[N+]#[C-]", "[O-][n+]1ccccc1",
+		"C[N+](C)(C)[O-]", "CC#[N+][O-]", "CC=[N+](C)[O-]", "CS(=O)(=O)O", "CS(N)(=O)=O", "COS(=O)OC", "CP(C)(C)=O", "CCOP(=O)OCC", "CP(C)(C)=S",
+		"Cc1ccccc1O", "c1ccoc1", "Cc1c[nH]cn1", "c1ccc2c(c1)C2", "O=C1C=CC(=O)C=C1", "Nc1ccc(Cl)cc1", "c1ccc2[nH]ccc2c1",
+		"CC(=O)OC=C", "C1CC2CC1CO2", "C=C1CC1", "OB(O)c1ccccc1", "C[Si](C)(C)C#C", "FC(F)(F)c1ccco1", "O=c1cc[nH]c(=O)[nH]1", "CCON=O", "CO[N+](=O)[O-]",
+		"N#CC=C", "C1=CC=CC=CC=C1", "c1cc2cccc2c1", "CC1=C(C)C=C1", "S=C=Nc1ccccc1", "O=C=O", "N#N", "CN=C=O", "O", "C", "ClC(Cl)Cl", "I", "OO",
+	} {
+		m, err := smiles.Read(text)
+		if err != nil {
+			t.Fatalf("%s: %v", text, err)
+		}
+		p := Problem{Formula: m.Formula()}
+		var carbons [4]int
+		hetero := 0
+		for a := 0; a < m.NumAtoms(); a++ {
+			if at := m.Atom(a); at.Element == carbon {
+				carbons[min(at.Hydrogens, 3)]++
+			} else {
+				hetero += int(at.Hydrogens)
+			}
+		}
+		for h, n := range carbons {
+			p.Carbons[h] = Exactly(n)
+		}
+		p.OnHetero = Exactly(hetero)
+		want, found := m.FlatKey(), 0
+		if _, err := Enumerate(context.Background(), p, Options{}, func(s *Structure) bool {
+			got, err := s.Materialise()
+			if err != nil {
+				t.Fatal(err)
+			}
+			if got.FlatKey() == want {
+				found++
+			}
+			return true
+		}); err != nil {
+			t.Fatal(err)
+		}
+		if found != 1 {
+			t.Errorf("%s is generated %d times", text, found)
+		}
+	}
+}
