@@ -73,6 +73,61 @@ func (b *blockFinder) walkCycle(r []int32) []int32 {
 	}
 }
 
+// theta handles a block with one ring more than a cycle: two branch atoms joined by three chains.
+// The two shorter pairs of chains are a basis; the third pair is relevant only where it is no
+// longer than the second.
+func (b *blockFinder) theta(f *Finder, out *Rings) {
+	start := int32(0)
+	for b.first[start+1]-b.first[start] != 3 {
+		start++
+	}
+	var chains [3][]int32 // inner atoms of the chains, as local atoms
+	room := b.queue[:0]
+	end := int32(-1)
+	for k := range chains {
+		at := len(room)
+		via := b.nbrs[b.first[start]+int32(k)]
+		for b.first[via.Atom+1]-b.first[via.Atom] == 2 {
+			room = append(room, via.Atom)
+			next := b.nbrs[b.first[via.Atom]]
+			if next.Bond == via.Bond {
+				next = b.nbrs[b.first[via.Atom]+1]
+			}
+			via = next
+		}
+		end = via.Atom
+		chains[k] = room[at:len(room):len(room)]
+	}
+	b.queue = room
+	sortChains(&chains)
+	pair := func(x, y []int32) []int32 {
+		r := append(f.arena(len(x)+len(y)+2), b.atoms[start])
+		for _, a := range x {
+			r = append(r, b.atoms[a])
+		}
+		r = append(r, b.atoms[end])
+		for i := len(y) - 1; i >= 0; i-- {
+			r = append(r, b.atoms[y[i]])
+		}
+		return r
+	}
+	first, second := pair(chains[0], chains[1]), pair(chains[0], chains[2])
+	out.Basis = append(out.Basis, first, second)
+	out.Relevant = append(out.Relevant, first, second)
+	if len(chains[0]) == len(chains[1]) {
+		out.Relevant = append(out.Relevant, pair(chains[1], chains[2]))
+	}
+}
+
+// sortChains puts short chains first, otherwise in the order found.
+func sortChains(c *[3][]int32) {
+	for i := 1; i < 3; i++ {
+		for j := i; j > 0 && len(c[j]) < len(c[j-1]); j-- {
+			c[j], c[j-1] = c[j-1], c[j]
+		}
+	}
+}
+
 // find adds the basis and the relevant cycles of the block. Cycles are looked for up to a length
 // that doubles until the basis is complete, so that large blocks of small rings stay cheap.
 func (b *blockFinder) find(f *Finder, out *Rings) {

@@ -9,13 +9,14 @@ package ring
 // Neighbor is one entry of a packed adjacency: the atom across and the bond between.
 type Neighbor = struct{ Atom, Bond int32 }
 
-// Rings is what Finder.Find reports. Its slices are new and belong to the caller.
+// Rings is what Finder.Find reports.
 type Rings struct {
 	// Basis is a minimum cycle basis, each ring its atoms in cyclic order, short rings first
-	// inside each block of the graph.
+	// inside each block of the graph. It belongs to the caller.
 	Basis [][]int32
 	// Relevant are the relevant cycles; it shares the rings of Basis where the two agree. When a
-	// block has more than maxRelevant of them only one per family is listed.
+	// block has more than maxRelevant of them only one per family is listed. It is valid until the
+	// next call.
 	Relevant [][]int32
 }
 
@@ -33,6 +34,7 @@ type Finder struct {
 	used        []bool  // bond already pushed
 	block       blockFinder
 	intsForRing []int32 // arena for rings
+	relevant    [][]int32
 }
 
 // Find perceives the rings of the graph with atoms 0..len(first)-2; the neighbours of atom a are
@@ -56,7 +58,7 @@ func (f *Finder) Find(first []int32, nbrs []Neighbor, inRing []bool) Rings {
 		}
 	}
 	copy(f.next, first[:n])
-	var out Rings
+	out := Rings{Relevant: f.relevant[:0]}
 	time := int32(0)
 	for root := int32(0); root < int32(n); root++ {
 		if f.order[root] != 0 {
@@ -95,6 +97,7 @@ func (f *Finder) Find(first []int32, nbrs []Neighbor, inRing []bool) Rings {
 			}
 		}
 	}
+	f.relevant = out.Relevant
 	return out
 }
 
@@ -129,6 +132,10 @@ func (f *Finder) ringsOfBlock(edges []int32, out *Rings) {
 		r := b.walkCycle(f.arena(len(b.atoms)))
 		out.Basis = append(out.Basis, r)
 		out.Relevant = append(out.Relevant, r)
+		return
+	}
+	if len(b.ends) == len(b.atoms)+1 {
+		b.theta(f, out)
 		return
 	}
 	b.find(f, out)
