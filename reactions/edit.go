@@ -50,19 +50,42 @@ type editor struct {
 	sumBefor []int
 	dead     []bool // atoms that vanish
 	touched  []bool
-	newSlot  []int             // for atoms made: 1 + slot, else 0
-	lost     map[int32][]int32 // ligands that an atom lost and gained
-	gained   map[int32][]int32
-	course   map[int32]string // stereo course of the atoms that the script names
+	newSlot  []int     // for atoms made: 1 + slot, else 0
+	lost     links     // ligands that an atom lost
+	gained   links     // and gained
+	course   []coursed // stereo course of the atoms that the script names
 }
 
-// fragment is what is attached for a class that stands only on the side made.
+// links lists pairs of an atom and a ligand; an edit touches a handful of atoms.
+type links [][2]int32
+
+func (l *links) add(a, ligand int32) { *l = append(*l, [2]int32{a, ligand}) }
+
+// sole returns the ligand of a where it has exactly one in the list.
+func (l links) sole(a int32) (ligand int32, ok bool) {
+	n := 0
+	for _, x := range l {
+		if x[0] == a {
+			ligand = x[1]
+			n++
+		}
+	}
+	return ligand, n == 1
+}
+
+// coursed is an atom with its stereo course.
+type coursed struct {
+	atom int32
+	word string
+}
+
+// fragments is what is attached for a class that stands only on the side made.
 type fragments map[int]*molecule.Molecule // class -> fragment whose first atom is attached
 
 // edit applies the script to p once per mapping (slot -> pool atom, -1 where the slot is not found)
 // and returns the connected pieces, those with found atoms and the rest alike.
 func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments) ([]piece, error) {
-	e := &editor{s: s, d: d, p: p, lost: map[int32][]int32{}, gained: map[int32][]int32{}, course: map[int32]string{}}
+	e := &editor{s: s, d: d, p: p}
 	e.load()
 	for _, to := range mappings {
 		to = append([]int32(nil), to...)
@@ -93,49 +116,56 @@ func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments)
 // changes an aromatic bond; otherwise the Kekulé form kept by the molecule serves as it is.
 func (e *editor) load() {
 	aromatic := e.s.changesAromatic()
+	bonds := 0
+	for _, m := range e.p.molecules {
+		bonds += m.NumBonds()
+	}
+	const room = 8 // atoms and bonds that an edit usually adds
+	e.b.Atoms = make([]molecule.Atom, 0, e.p.atoms+room)
+	e.b.Bonds = make([]molecule.Bond, 0, bonds+room)
+	e.hBefore, e.sumBefor = make([]int, e.p.atoms), make([]int, e.p.atoms)
 	for i, m := range e.p.molecules {
-		src := m.Builder()
-		off := e.p.offset[i]
-		for _, a := range src.Atoms {
-			a.Aromatic = a.Aromatic && aromatic
-			a.Class = 0
-			e.b.Atoms = append(e.b.Atoms, a)
-		}
-		for bi, b := range src.Bonds {
-			b.A, b.B = b.A+off, b.B+off
-			if aromatic && m.Bond(bi).Aromatic {
-				b.Order = molecule.OrderAromatic
-			} else {
-				b.Aromatic = false
-			}
-			e.b.Bonds = append(e.b.Bonds, b)
-		}
-		bondOff := int32(len(e.b.Bonds) - len(src.Bonds))
-		for _, c := range src.Centers {
-			c.Atom += off
-			for k, l := range c.Ligands {
-				if l >= 0 {
-					c.Ligands[k] = l + off
-				}
-			}
-			e.b.Centers = append(e.b.Centers, c)
-		}
-		for _, db := range src.DoubleBonds {
-			db.Bond, db.A, db.B = db.Bond+bondOff, db.A+off, db.B+off
-			e.b.DoubleBonds = append(e.b.DoubleBonds, db)
-		}
-		for a := 0; a < m.NumAtoms(); a++ {
-			sum := 0
-			for _, n := range m.Neighbors(a) {
-				sum += int(m.Bond(int(n.Bond)).Order)
-			}
-			e.hBefore = append(e.hBefore, int(m.Atom(a).Hydrogens))
-			e.sumBefor = append(e.sumBefor, sum)
-		}
+		e.loadMolecule(m, e.p.offset[i], aromatic)
 	}
 	e.dead = make([]bool, len(e.b.Atoms))
 	e.touched = make([]bool, len(e.b.Atoms))
 	e.newSlot = make([]int, len(e.b.Atoms))
+}
+
+func (e *editor) loadMolecule(m *molecule.Molecule, off int32, aromatic bool) {
+	for a := 0; a < m.NumAtoms(); a++ {
+		at := m.Atom(a)
+		at.Aromatic = at.Aromatic && aromatic
+		at.Class = 0
+		e.b.Atoms = append(e.b.Atoms, at)
+		e.hBefore[int(off)+a] = int(at.Hydrogens)
+	}
+	bondOff := int32(len(e.b.Bonds))
+	for bi := 0; bi < m.NumBonds(); bi++ {
+		b := m.Bond(bi)
+		b.A, b.B = b.A+off, b.B+off
+		e.sumBefor[b.A] += int(b.Order)
+		e.sumBefor[b.B] += int(b.Order)
+		if aromatic && b.Aromatic {
+			b.Order = molecule.OrderAromatic
+		} else {
+			b.Aromatic = false
+		}
+		e.b.Bonds = append(e.b.Bonds, b)
+	}
+	for _, c := range m.Centers() {
+		c.Atom += off
+		for k, l := range c.Ligands {
+			if l >= 0 {
+				c.Ligands[k] = l + off
+			}
+		}
+		e.b.Centers = append(e.b.Centers, c)
+	}
+	for _, db := range m.DoubleBonds() {
+		db.Bond, db.A, db.B = db.Bond+bondOff, db.A+off, db.B+off
+		e.b.DoubleBonds = append(e.b.DoubleBonds, db)
+	}
 }
 
 func (s *script) changesAromatic() bool {
@@ -295,7 +325,8 @@ func (e *editor) changeBonds(to []int32) error {
 		switch {
 		case after == 0 && i >= 0:
 			e.b.Bonds[i].Order = 0
-			e.lost[a], e.lost[b] = append(e.lost[a], b), append(e.lost[b], a)
+			e.lost.add(a, b)
+			e.lost.add(b, a)
 		case after != 0 && i >= 0:
 			if be.order[e.d] == 0 {
 				return errNoFit // the bond to be made is there already
@@ -304,7 +335,8 @@ func (e *editor) changeBonds(to []int32) error {
 			e.b.Bonds[i].Aromatic = after == molecule.OrderAromatic
 		case after != 0:
 			e.b.Bonds = append(e.b.Bonds, molecule.Bond{A: a, B: b, Order: after, Aromatic: after == molecule.OrderAromatic})
-			e.gained[a], e.gained[b] = append(e.gained[a], b), append(e.gained[b], a)
+			e.gained.add(a, b)
+			e.gained.add(b, a)
 		}
 	}
 	return nil
@@ -319,7 +351,7 @@ func (e *editor) changeAtoms(to []int32) error {
 		f, m := e.s.side[e.d].Atoms[sl.found(e.d)], e.s.side[1-e.d].Atoms[sl.made(e.d)]
 		e.touched[to[i]] = true
 		if sl.course != "" {
-			e.course[to[i]] = sl.course
+			e.course = append(e.course, coursed{to[i], sl.course})
 		}
 		if f.AnyCharge || m.AnyCharge {
 			continue
@@ -353,7 +385,7 @@ func (e *editor) dropAtoms(to []int32) error {
 				return errNoFit
 			}
 			b.Order = 0
-			e.lost[other] = append(e.lost[other], a)
+			e.lost.add(other, a)
 			e.touched[other] = true
 		}
 		e.dead[a] = true
@@ -546,25 +578,47 @@ func (e *editor) pieces() ([]piece, error) {
 			label[max(x, y)] = min(x, y)
 		}
 	}
-	index := make([]int32, n)
-	builders := map[int32]*molecule.Builder{}
-	froms := map[int32][]int32{}
-	var order []int32
+	return e.build(e.number(find, label), label)
+}
+
+// number turns the roots of the union into piece numbers, written into label; it returns their count.
+func (e *editor) number(find func(int32) int32, label []int32) int {
+	count := 0
+	piece := make([]int32, len(label))
+	for a := range label {
+		if e.dead[a] {
+			continue
+		}
+		if root := find(int32(a)); int(root) == a {
+			piece[a] = int32(count)
+			count++
+		}
+	}
+	for a := range label {
+		label[a] = find(int32(a))
+	}
+	for a := range label {
+		label[a] = piece[label[a]]
+	}
+	return count
+}
+
+// build freezes the pieces; label gives the piece of every atom.
+func (e *editor) build(count int, label []int32) ([]piece, error) {
+	builders := make([]molecule.Builder, count)
+	out := make([]piece, count)
+	index := make([]int32, len(label))
 	for a := range e.b.Atoms {
 		if e.dead[a] {
 			continue
 		}
-		root := find(int32(a))
-		if builders[root] == nil {
-			builders[root] = &molecule.Builder{}
-			order = append(order, root)
-		}
-		index[a] = int32(builders[root].AddAtom(e.b.Atoms[a]))
+		p := label[a]
+		index[a] = int32(builders[p].AddAtom(e.b.Atoms[a]))
 		from := int32(-1)
 		if a < e.p.atoms {
 			from = int32(a)
 		}
-		froms[root] = append(froms[root], from)
+		out[p].from = append(out[p].from, from)
 	}
 	bondIndex := make([]int32, len(e.b.Bonds))
 	for i, b := range e.b.Bonds {
@@ -572,26 +626,25 @@ func (e *editor) pieces() ([]piece, error) {
 		if b.Order == 0 || e.dead[b.A] || e.dead[b.B] {
 			continue
 		}
-		bondIndex[i] = int32(builders[find(b.A)].AddBond(int(index[b.A]), int(index[b.B]), b.Order))
+		bondIndex[i] = int32(builders[label[b.A]].AddBond(int(index[b.A]), int(index[b.B]), b.Order))
 	}
-	e.copyMarks(builders, find, index, bondIndex)
-	var out []piece
-	for _, root := range order {
-		m, err := builders[root].Build()
+	e.copyMarks(builders, label, index, bondIndex)
+	for i := range out {
+		m, err := builders[i].Build()
 		if err != nil {
 			return nil, err
 		}
-		out = append(out, piece{m, froms[root]})
+		out[i].m = m
 	}
 	return out, nil
 }
 
-func (e *editor) copyMarks(builders map[int32]*molecule.Builder, find func(int32) int32, index, bondIndex []int32) {
+func (e *editor) copyMarks(builders []molecule.Builder, label, index, bondIndex []int32) {
 	for _, c := range e.b.Centers {
 		if e.dead[c.Atom] {
 			continue
 		}
-		bld := builders[find(c.Atom)]
+		bld := &builders[label[c.Atom]]
 		for k, l := range c.Ligands {
 			if l >= 0 {
 				c.Ligands[k] = index[l]
@@ -604,7 +657,7 @@ func (e *editor) copyMarks(builders map[int32]*molecule.Builder, find func(int32
 		if bondIndex[db.Bond] < 0 || e.dead[db.A] || e.dead[db.B] {
 			continue
 		}
-		bld := builders[find(db.A)]
+		bld := &builders[label[db.A]]
 		bld.DoubleBonds = append(bld.DoubleBonds, molecule.DoubleBond{Bond: bondIndex[db.Bond], A: index[db.A], B: index[db.B], Together: db.Together})
 	}
 }

@@ -174,8 +174,8 @@ func ringSides(m *molecule.Molecule, ia, ib, x, y int32) (p, r int32, ok bool) {
 
 // gainedLigand is the ligand that an atom gained in the edit: an atom or a hydrogen.
 func (e *editor) gainedLigand(a int32) int32 {
-	if g := e.gained[a]; len(g) == 1 {
-		return g[0]
+	if g, ok := e.gained.sole(a); ok {
+		return g
 	}
 	return molecule.LigandHydrogen
 }
@@ -255,8 +255,8 @@ func centerAt(m *molecule.Molecule, a int32) (molecule.Center, bool) {
 
 // lostLigand is the ligand that an atom lost in the edit, in the numbering of its molecule.
 func (e *editor) lostLigand(a, off int32) int32 {
-	if l := e.lost[a]; len(l) == 1 {
-		return l[0] - off
+	if l, ok := e.lost.sole(a); ok {
+		return l - off
 	}
 	return molecule.LigandHydrogen
 }
@@ -297,6 +297,9 @@ func lookFrom(c molecule.Center, x int32) (molecule.Center, bool) {
 // mendMarks carries the old marks over the edit: a centre whose ligand was replaced keeps or inverts as
 // its course says, or loses its mark; a double bond keeps its geometry while its ligands stay.
 func (e *editor) mendMarks() {
+	if len(e.b.Centers)+len(e.b.DoubleBonds) == 0 {
+		return
+	}
 	sum, arom, degree := e.bondSums()
 	fresh := map[int32]bool{}
 	var kept []molecule.Center
@@ -305,7 +308,7 @@ func (e *editor) mendMarks() {
 		if e.dead[c.Atom] || fresh[c.Atom] || arom[c.Atom] > 0 || e.b.Atoms[c.Atom].Element == 6 && sum[c.Atom] != degree[c.Atom] {
 			continue
 		}
-		if e.mendCenter(&c, e.course[c.Atom]) {
+		if e.mendCenter(&c, e.courseOf(c.Atom)) {
 			fresh[c.Atom] = true
 			kept = append(kept, c)
 		}
@@ -318,6 +321,16 @@ func (e *editor) mendMarks() {
 		}
 	}
 	e.b.DoubleBonds = bonds
+}
+
+// courseOf is the stereo course that the script gives an atom, empty if none.
+func (e *editor) courseOf(a int32) string {
+	for _, c := range e.course {
+		if c.atom == a {
+			return c.word
+		}
+	}
+	return ""
 }
 
 // mendCenter replaces the ligand that left by the one that came; false drops the mark.
@@ -369,8 +382,8 @@ func (e *editor) mendLigand(l *int32, end, far int32) bool {
 	if !e.dead[*l] && e.bond(*l, end) >= 0 {
 		return true
 	}
-	if g := e.gained[end]; len(g) == 1 && !e.dead[g[0]] && g[0] != far {
-		*l = g[0]
+	if g, ok := e.gained.sole(end); ok && !e.dead[g] && g != far {
+		*l = g
 		return true
 	}
 	return false
