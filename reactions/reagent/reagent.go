@@ -277,6 +277,12 @@ func (t *Table) ByMolecule(m *molecule.Molecule) (*Reagent, bool) {
 	return r, ok
 }
 
+// ByExact finds the reagent whose structure is exactly m.
+func (t *Table) ByExact(m *molecule.Molecule) (*Reagent, bool) {
+	r, ok := t.structures().exact[m.Key()]
+	return r, ok
+}
+
 // nearClause makes ' (did you mean "x"?)' of the nearest known word, or nothing.
 func nearClause(word string, known []string) string {
 	if near := rules.Near(word, known); near != "" {

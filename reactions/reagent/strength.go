@@ -72,6 +72,9 @@ func ParseStrength(text string) (Strength, error) {
 
 var casForm = regexp.MustCompile(`^(\d{2,7})-(\d\d)-(\d)$`)
 
+// LooksLikeCAS reports whether a text has the form of a CAS number, right or wrong.
+func LooksLikeCAS(text string) bool { return casForm.MatchString(text) }
+
 func checkCAS(number string) error {
 	m := casForm.FindStringSubmatch(number)
 	if m == nil {
