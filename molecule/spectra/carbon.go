@@ -21,6 +21,10 @@ const (
 	methylOrtho
 	cisAcross
 	methylOnEsterO
+	onAcetalO
+	besideFuranO
+	besideThiopheneS
+	besideAzineN
 	numCorrections
 )
 
@@ -29,7 +33,8 @@ var correctionNames = [numCorrections]string{
 	"aryl and N on one carbon", "aryl and carbonyl on one carbon", "two carbonyls on one carbon",
 	"aryl and halogen on one carbon", "two halogens on one carbon", "two aryl on one carbon",
 	"methyl on ether O", "methyl on carbonyl", "methyl on N", "methyl on amide N", "methyl on aryl",
-	"methyl ortho to a group on aryl", "cis carbon across a double bond", "methyl on ester O",
+	"methyl ortho to a group on aryl", "cis carbon across a double bond", "methyl on ester O", "carbon on an acetal O",
+	"carbon beside the O of a furan", "carbon beside the S of a thiophene", "carbon beside the N of an azine",
 }
 
 func correctionByName(name string) (correction, bool) {
@@ -276,6 +281,7 @@ func (p *Predictor) correctionsOf(a int) float32 {
 			nHal++
 		}
 	}
+	sum += p.besideHetero(a)
 	if nO+nEO >= 2 {
 		sum += float32(nO+nEO-1) * t.correction[twoO]
 	}
@@ -304,6 +310,43 @@ func (p *Predictor) correctionsOf(a int) float32 {
 		sum += p.methylCorrection(a, int(p.nb[a][0].Atom))
 	}
 	return sum
+}
+
+// besideHetero applies to a carbon whose neighbour is the ring carbon next to a ring O, S or N, or an
+// acetal O.
+func (p *Predictor) besideHetero(a int) float32 {
+	sum, t := float32(0), p.t
+	for _, nb := range p.nb[a] {
+		x := int(nb.Atom)
+		for _, nb2 := range p.nb[x] {
+			y := int(nb2.Atom)
+			if y == a {
+				continue
+			}
+			switch {
+			case p.el[x] == oxygen && p.el[y] == carbon && p.sp[y] == single && p.bearsOther(y, x):
+				sum += t.correction[onAcetalO]
+			case !p.aromatic[x] || !p.aromatic[y]:
+			case p.el[y] == oxygen:
+				sum += t.correction[besideFuranO]
+			case p.el[y] == sulfur:
+				sum += t.correction[besideThiopheneS]
+			case p.el[y] == nitrogen && p.hyd[y] == 0 && p.deg[y] == 2 && p.ring[y] == 6:
+				sum += t.correction[besideAzineN]
+			}
+		}
+	}
+	return sum
+}
+
+// bearsOther reports an O on carbon y other than x.
+func (p *Predictor) bearsOther(y, x int) bool {
+	for _, nb := range p.nb[y] {
+		if int(nb.Atom) != x && p.el[nb.Atom] == oxygen {
+			return true
+		}
+	}
+	return false
 }
 
 func (p *Predictor) methylCorrection(a, x int) float32 {
@@ -340,7 +383,10 @@ func (p *Predictor) carbonylCarbon(a int) shift {
 	if p.ring[a] > 0 {
 		if v, ok := p.ringValue(a, p.t.ringCarbon); ok && v > 100 {
 			mean, spread = v, max(spread, 2)
-			return shift{mean + p.alphaEffect(a, row)*0.5, spread}
+			if p.carbonyl[a] == tertAmide {
+				mean -= 3 // 1-methylpyrrolidin-2-one 175 against 178.5, recalled
+			}
+			return shift{mean + p.alphaEffect(a, row), spread}
 		}
 	}
 	return shift{mean + p.alphaEffect(a, row), spread}
@@ -358,7 +404,7 @@ func (p *Predictor) alphaEffect(a int, row *carbonylRow) float32 {
 		for _, nb2 := range p.nb[x] {
 			y := int(nb2.Atom)
 			switch {
-			case y == a:
+			case y == a || p.ring[a] > 0 && p.ring[x] == p.ring[a] && p.ring[y] == p.ring[a]:
 			case p.el[y] == carbon && p.sp[y] == single:
 				carbons++
 			default:

@@ -143,6 +143,9 @@ func (p *Predictor) onRing(x, y, d int, first bool) float32 {
 		if !first {
 			v = table[0] + p.t.onRing.gem
 		}
+		if p.ring[x] == 3 {
+			v = 0.5*table[0] + 2 // propylene oxide, styrene oxide against oxirane, recalled
+		}
 		if plain || g == OR || g == NR2 {
 			for _, nb := range p.nb[y] {
 				if z := int(nb.Atom); z != x {

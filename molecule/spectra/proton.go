@@ -14,9 +14,14 @@ func (p *Predictor) protonHere(a int) shift {
 		return p.alkyneProton(a)
 	case p.doubleTo(a, carbon) >= 0:
 		one, two := p.alkeneProton(a)
-		d := one.mean - two.mean
-		if d < 0 {
-			d = -d
+		d := max(one.mean-two.mean, two.mean-one.mean)
+		b := p.doubleTo(a, carbon)
+		if p.hyd[a] == 1 && p.hyd[b] == 1 && p.ring[a] == 0 {
+			// the group of the far carbon is cis to the hydrogen in the E form, which is the usual one
+			return shift{one.mean, one.spread + d/4}
+		}
+		if p.ring[a] > 0 && p.ring[a] < 8 && p.hyd[b] == 1 {
+			return shift{two.mean, two.spread}
 		}
 		return shift{(one.mean + two.mean) / 2, one.spread + d/2}
 	}
@@ -41,6 +46,7 @@ func (p *Predictor) alkylProton(a int) shift {
 	}
 	sum, shoolery := t.protonBase[h], t.methyleneBase
 	strong, oxygens, esters, halogens := 0, 0, 0, 0
+	further := float32(0)
 	for _, nb := range p.nb[a] {
 		x := int(nb.Atom)
 		g := p.groupSeen(a, x)
@@ -59,10 +65,11 @@ func (p *Predictor) alkylProton(a int) shift {
 			halogens++
 		}
 		if g >= Alkyl && g <= RingAlkyl {
-			sum += p.furtherProton(a, x)
+			further += p.furtherProton(a, x)
 		}
 	}
-	spread := float32(0.13)
+	sum += further
+	spread := 0.13 + 0.12*further
 	if strong >= 2 && h <= 2 {
 		sum = (sum + shoolery) / 2
 		spread = 0.25
@@ -80,14 +87,36 @@ func (p *Predictor) alkylProton(a int) shift {
 	if h == 1 {
 		spread += 0.08
 	}
-	if h == 3 && strong == 0 {
-		spread = 0.08
+	if h == 3 {
+		sum += p.methylProton(a)
+		if strong == 0 {
+			spread = 0.07 + 0.22*further
+		}
 	}
 	if p.ring[a] > 0 {
 		sum += p.ringProtonEffect(a, strong)
 		spread += 0.15
 	}
 	return shift{sum, spread}
+}
+
+// methylProton corrects methyl groups: on an ether O (dimethoxyethane 3.40, methyl butyl ether 3.33)
+// and ortho to an acyl group (2-methylbenzaldehyde 2.67, methyl 2-methylbenzoate 2.60), recalled.
+func (p *Predictor) methylProton(a int) float32 {
+	x := int(p.nb[a][0].Atom)
+	switch p.groupSeen(a, x) {
+	case OR:
+		return 0.33
+	case Aryl:
+		for _, nb := range p.nb[x] {
+			for _, nb2 := range p.nb[nb.Atom] {
+				if p.carbonyl[nb2.Atom] != noCarbonyl && int(nb2.Atom) != x && !p.aromatic[nb2.Atom] && p.aromatic[nb.Atom] {
+					return 0.28
+				}
+			}
+		}
+	}
+	return 0
 }
 
 // furtherProton adds beta and gamma increments through the sp3 carbon x.

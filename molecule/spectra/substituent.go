@@ -59,6 +59,11 @@ func (p *Predictor) sp2Group(from, x int) Group {
 			return COS
 		}
 		// conjugated on: the far carbon, or this one, carries another sp2 centre
+		for _, near := range p.nb[x] {
+			if int(near.Atom) != from && near.Atom != nb.Atom && p.el[near.Atom] == carbon && p.sp[near.Atom] != single {
+				return VinylConj
+			}
+		}
 		for _, far := range p.nb[nb.Atom] {
 			if int(far.Atom) != x && p.el[far.Atom] == carbon && p.sp[far.Atom] != single {
 				return VinylConj

@@ -178,29 +178,31 @@ type tables struct {
 	branching  [4][4]float32
 	correction [numCorrections]float32
 
-	alkeneBase             float32
-	chainNear, chainFar    [3]float32
-	steric                 map[string]float32
-	alkeneNear, alkeneFar  [numGroups]float32
-	alkeneWhole            [numGroups]bool
-	benzeneBase            float32
-	benzene                [numGroups][4]float32 // ipso, ortho, meta, para
-	protonBenzeneBase      float32
-	protonBenzene          [numGroups][4]float32
-	protonAlkeneBase       float32
-	protonAlkene           [numGroups][3]float32 // gem, cis, trans
-	protonBase             [4]float32            // by hydrogens
-	protonSP3              [numGroups][3]float32 // alpha, beta, gamma
-	methyleneBase          float32
-	methylene              [numGroups]float32
-	ringCarbon, ringProton map[string][]float32
-	openChain              [5]float32 // ring size 3, 4, 5, 6, larger
-	onRing                 struct{ alpha, gem, beta, gamma float32 }
-	system                 map[uint64]systemAtom
-	nitrogen               [3]float32
-	bands                  [numFeatures][]Band
-	carbonyl               [numCarbonyls]carbonylRow
-	ringBand               [4]float32 // size 4, 5, 6; lactam of 5
+	alkeneBase                                                      float32
+	chainNear, chainFar                                             [3]float32
+	steric                                                          map[string]float32
+	alkeneNear, alkeneFar                                           [numGroups]float32
+	alkeneWhole                                                     [numGroups]bool
+	benzeneBase                                                     float32
+	benzene                                                         [numGroups][4]float32 // ipso, ortho, meta, para
+	protonBenzeneBase                                               float32
+	protonBenzene                                                   [numGroups][4]float32
+	protonAlkeneBase                                                float32
+	protonAlkene                                                    [numGroups][3]float32 // gem, cis, trans
+	protonBase                                                      [4]float32            // by hydrogens
+	protonSP3                                                       [numGroups][3]float32 // alpha, beta, gamma
+	methyleneBase                                                   float32
+	methylene                                                       [numGroups]float32
+	ringCarbon, ringProton                                          map[string][]float32
+	openChain                                                       [5]float32 // ring size 3, 4, 5, 6, larger
+	onRing                                                          struct{ alpha, gem, beta, gamma float32 }
+	system                                                          map[uint64]systemAtom
+	nitrogen                                                        [3]float32
+	bands                                                           [numFeatures][]Band
+	ion                                                             [numProcesses]float32
+	furtherCO, furtherEthene, furtherEthyne, furtherWater, furtherH float32
+	carbonyl                                                        [numCarbonyls]carbonylRow
+	ringBand                                                        [4]float32 // size 4, 5, 6; lactam of 5
 }
 
 // carbonylRow is one class of carbonyl: 13C shift and band with spreads.
@@ -230,7 +232,7 @@ func mustTables() *tables {
 // readTables reads the files of the shifts folder.
 func readTables(fsys fs.FS) (*tables, error) {
 	t := &tables{steric: map[string]float32{}, ringCarbon: map[string][]float32{}, ringProton: map[string][]float32{}, system: map[uint64]systemAtom{}}
-	for _, read := range []func(fs.FS) error{t.readAlkane, t.readAlkene, t.readBenzene, t.readProton, t.readRings, t.readCarbonyls, t.readBands, t.readSystems} {
+	for _, read := range []func(fs.FS) error{t.readAlkane, t.readAlkene, t.readBenzene, t.readProton, t.readRings, t.readCarbonyls, t.readBands, t.readFragments, t.readSystems} {
 		if err := read(fsys); err != nil {
 			return nil, err
 		}
@@ -503,4 +505,32 @@ func (p *Predictor) addSystem(m *molecule.Molecule, name string, carbon, proton 
 			p.t.system[p.systemCode[a]] = systemAtom{float32(carbon[a]), float32(proton[a]), name}
 		}
 	}
+}
+
+// RingSystem is an aromatic parent of the tables: its structure and the shifts of its atoms (ppm, 0
+// where there is none).
+type RingSystem struct {
+	Name           string
+	Molecule       *molecule.Molecule
+	Carbon, Proton []float64
+}
+
+// RingSystems lists the unsubstituted aromatic parents of the built-in tables, benzene first.
+func RingSystems() ([]RingSystem, error) {
+	var f systemsFile
+	if err := rules.ReadInto(rules.Files(), "shifts/ring-systems.yaml", &f); err != nil {
+		return nil, err
+	}
+	var out []RingSystem
+	for _, r := range f.Systems {
+		m, err := smiles.Read(r.Structure.Value)
+		if err != nil {
+			return nil, err
+		}
+		if !m.Atom(0).Aromatic {
+			continue // rows for N-substituted parents
+		}
+		out = append(out, RingSystem{r.Name, m, r.Carbon, r.Proton})
+	}
+	return out, nil
 }
