@@ -3,6 +3,7 @@ package formula
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"shelfward/molecule"
@@ -75,6 +76,9 @@ func prepare(in Evidence) (*evidence, error) {
 			continue
 		}
 		mean := 0.0
+		if spread := slices.Max(a.Percent) - slices.Min(a.Percent); spread > 2*ev.Tolerance {
+			ev.doubts = append(ev.doubts, fmt.Sprintf("The runs for %s differ by %.2f percent points, more than twice the tolerance.", a.Element.Symbol(), spread))
+		}
 		for _, p := range a.Percent {
 			if !(p >= 0 && p <= 100) {
 				return nil, fmt.Errorf("%s: %g %% is no mass fraction", a.Element.Symbol(), p)
@@ -120,7 +124,7 @@ func (ev *evidence) judge(f *molecule.Formula, words bool) (Candidate, bool) {
 		squares += x * x
 		n++
 		c.Penalty += 2 * x * x
-		return math.Abs(x) <= 1
+		return math.Abs(x) <= 1+1e-9 // the limit itself still agrees, whatever the rounding
 	}
 	for e, measured := range ev.measured {
 		if !measured {

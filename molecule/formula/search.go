@@ -75,6 +75,7 @@ type evidence struct {
 	hinted   [119]bool
 	neutral  []float64 // neutral monoisotopic masses of Exact
 	pattern  pattern
+	doubts   []string // about the evidence itself
 	weights  weights
 }
 
@@ -84,7 +85,7 @@ func find(ctx context.Context, in Evidence) (Result, error) {
 		return Result{}, err
 	}
 	f := &finder{ev: ev, ctx: ctx}
-	var doubts []string
+	doubts := ev.doubts
 	w := &ev.weights
 	switch {
 	case len(ev.neutral) > 0:
@@ -101,7 +102,7 @@ func find(ctx context.Context, in Evidence) (Result, error) {
 		}
 		doubts = append(doubts, "No mass is given: combustion analysis fixes only the ratio of the atoms; the smallest formulas are listed first, and multiples of them fit as well.")
 	default:
-		return Result{Doubts: []string{"Neither a mass nor a combustion analysis with carbon is given: no formula can be derived."}}, nil
+		return Result{Doubts: append(doubts, "Neither a mass nor a combustion analysis with carbon is given: no formula can be derived.")}, nil
 	}
 	if ctx.Err() != nil {
 		return Result{}, ctx.Err()

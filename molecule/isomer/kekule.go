@@ -252,77 +252,67 @@ func (w *workspace) perceive(s *search) {
 	}
 }
 
+// forms runs through the Kekulé forms of a finished structure.
+type forms struct {
+	judge
+	adj    [maxUnits][maxDegree]edge
+	work   *workspace
+	inside uint64 // links inside blocks: they keep their codes
+	root   uint8
+	units  int
+}
+
 // largestForm reports whether no Kekulé form of the aromatic links has a larger code than s, when
 // units have the given kinds and the links in the set inside are bonds of blocks.
 func (w *workspace) largestForm(s *search, kinds *[maxUnits]uint8, inside uint64) bool {
-	adj := s.adj
-	var mate [maxUnits]bool // units whose double bond is aromatic and outside blocks
-	var covered uint32
+	f := &forms{adj: s.adj, work: w, inside: inside, root: s.plan.root, units: s.met}
+	f.judge = judge{kinds, &s.deg, &f.adj, &s.row, s.plan.units}
+	var doubled, covered, outside uint32 // units with an aromatic double bond; with aromatic bonds inside and outside blocks
 	for i, l := range w.links {
-		if inside>>i&1 != 0 {
-			covered |= 1<<l.a | 1<<l.b
-			code := l.order + inner - 1
-			if l.aromatic {
-				code = innerAromatic
-			}
-			setCode(&adj, &s.deg, l.a, l.b, code)
-		} else {
-			setCode(&adj, &s.deg, l.a, l.b, l.order)
-		}
-	}
-	for _, l := range w.links {
+		ends := uint32(1<<l.a | 1<<l.b)
 		if l.aromatic && l.order == 2 {
-			mate[l.a], mate[l.b] = true, true
+			doubled |= ends
+		}
+		switch in := inside>>i&1 != 0; {
+		case in && l.aromatic:
+			f.set(l.a, l.b, innerAromatic)
+			covered |= ends
+		case in:
+			f.set(l.a, l.b, l.order+inner-1)
+		case l.aromatic:
+			f.set(l.a, l.b, 1)
+			outside |= ends
+		default:
+			f.set(l.a, l.b, l.order)
 		}
 	}
-	var open uint32
-	for i, l := range w.links {
-		if !l.aromatic || inside>>i&1 != 0 {
-			continue
-		}
-		setCode(&adj, &s.deg, l.a, l.b, 1)
-		for _, u := range [2]uint8{l.a, l.b} {
-			if mate[u] && !w.aromaticInside(u, inside) {
-				open |= 1 << u
-			}
-		}
-	}
-	j := judge{kinds, &s.deg, &adj, &s.row, s.plan.units}
-	var match func(open uint32) bool
-	match = func(open uint32) bool {
-		if open == 0 {
-			return !j.beats(s.plan.root, s.met)
-		}
-		var u uint8
-		for open>>u&1 == 0 {
-			u++
-		}
-		for i, l := range w.links {
-			if !l.aromatic || inside>>i&1 != 0 || l.a != u && l.b != u {
-				continue
-			}
-			v := l.a + l.b - u
-			if open>>v&1 == 0 {
-				continue
-			}
-			setCode(&adj, &s.deg, u, v, 2)
-			ok := match(open &^ (1<<u | 1<<v))
-			setCode(&adj, &s.deg, u, v, 1)
-			if !ok {
-				return false
-			}
-		}
-		return true
-	}
-	return match(open)
+	return f.match(doubled & outside &^ covered)
 }
 
-// aromaticInside reports whether unit u has its aromatic double bond inside a block.
-func (w *workspace) aromaticInside(u uint8, inside uint64) bool {
-	for i, l := range w.links {
-		if inside>>i&1 != 0 && l.aromatic && (l.a == u || l.b == u) {
-			return true
+// set changes the code of the bond between a and b.
+func (f *forms) set(a, b, code uint8) { setCode(&f.adj, f.deg, a, b, code) }
+
+// match gives each unit of the set open one double bond, in every way, and compares the codes; it
+// returns false if one is larger.
+func (f *forms) match(open uint32) bool {
+	if open == 0 {
+		return !f.beats(f.root, f.units)
+	}
+	u := uint8(bits.TrailingZeros32(open))
+	for i, l := range f.work.links {
+		if !l.aromatic || f.inside>>i&1 != 0 || l.a != u && l.b != u {
+			continue
+		}
+		v := l.a + l.b - u
+		if open>>v&1 == 0 {
+			continue
+		}
+		f.set(u, v, 2)
+		ok := f.match(open &^ (1<<u | 1<<v))
+		f.set(u, v, 1)
+		if !ok {
+			return false
 		}
 	}
-	return false
+	return true
 }

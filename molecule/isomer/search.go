@@ -46,7 +46,7 @@ type search struct {
 	twos  [maxUnits]uint8 // double bonds made
 
 	left   [maxUnits]uint8 // units of each kind not yet met
-	groups int             // block instances opened, provisional ones included
+	groups int             // block instances opened, those that merged later included
 	opened [maxBlocks]int8 // the same for each block kind, less merged ones
 
 	row   [maxUnits]uint64               // finished rows
@@ -159,7 +159,7 @@ func (s *search) closures(i, j, end int, row uint64, shift int) bool {
 		from = i + 1
 	}
 	base := uint64(1<<8 | (31-from)<<3)
-	if s.need[i] != 0 && s.need[j] != 0 && limit >= inner {
+	if s.need[i] != 0 && s.need[j] != 0 {
 		for code := limit; code >= inner; code-- {
 			u, ok := s.bindInner(i, j, code)
 			if !ok {
@@ -179,18 +179,9 @@ func (s *search) closures(i, j, end int, row uint64, shift int) bool {
 			if !s.mayBond(i, j, order) {
 				continue
 			}
-			s.code[i][j] = order
-			s.free[i] -= order
-			s.free[j] -= order
-			s.excess -= int(order)
-			s.rings++
-			s.join(i, j, order)
+			s.bind(i, j, order)
 			more := s.closures(i, j+1, end, row|(base|uint64(order))<<shift, shift-9)
-			s.unjoin(i, j)
-			s.rings--
-			s.excess += int(order)
-			s.free[i] += order
-			s.free[j] += order
+			s.unbind(i, j, order)
 			if !more {
 				return false
 			}
@@ -198,6 +189,24 @@ func (s *search) closures(i, j, end int, row uint64, shift int) bool {
 	}
 	s.code[i][j] = 0
 	return s.closures(i, j+1, end, row, shift)
+}
+
+// bind closes a ring between units met before, unbind opens it again.
+func (s *search) bind(i, j int, order uint8) {
+	s.code[i][j] = order
+	s.free[i] -= order
+	s.free[j] -= order
+	s.excess -= int(order)
+	s.rings++
+	s.join(i, j, order)
+}
+
+func (s *search) unbind(i, j int, order uint8) {
+	s.unjoin(i, j)
+	s.rings--
+	s.excess += int(order)
+	s.free[i] += order
+	s.free[j] += order
 }
 
 // mayBond tells whether units a and b may be joined by a bond of this order.
@@ -208,7 +217,8 @@ func (s *search) mayBond(a, b int, order uint8) bool {
 	return order != 2 || !s.plan.noCumulated || s.twos[a] == 0 && s.twos[b] == 0
 }
 
-// children chooses the units met for the first time from unit i, in falling order of token.
+// children chooses the units met for the first time from unit i, in falling order of token; last is
+// the token before. Inner bonds come first: their tokens are larger.
 func (s *search) children(i, end int, row uint64, shift int, last int) bool {
 	if s.free[i] == 0 && s.need[i] == 0 {
 		return s.written(i, row, end)
@@ -216,32 +226,14 @@ func (s *search) children(i, end int, row uint64, shift int, last int) bool {
 	if s.met == s.plan.units {
 		return true
 	}
-	p := s.plan
 	if s.need[i] != 0 {
-		for _, e := range p.kinds[s.kind[i]].inner {
-			token := int(e.code)<<5 | int(e.kind)
-			if token > last || s.left[e.kind] == 0 {
-				continue
-			}
-			u, ok := s.meetInner(i, e)
-			if !ok {
-				continue
-			}
-			more := s.children(i, end, row|uint64(token)<<shift, shift-9, token)
-			s.unmeetInner(u)
-			if !more {
-				return false
-			}
-		}
-		return true // inner bonds come first: their tokens are larger
+		return s.innerChildren(i, end, row, shift, last)
 	}
+	p := s.plan
 	for order := min(s.free[i], 3, uint8(min(s.excess+1, 3))); order > 0; order-- {
 		for k := p.top; k > 0; k-- {
-			if s.left[k] == 0 || p.kinds[k].free < order || !p.allow[s.kind[i]][k].has(order) || p.noCumulated && order == 2 && s.twos[i]+p.kinds[k].twos > 0 {
-				continue
-			}
 			token := int(order)<<5 | int(k)
-			if token > last || p.kinds[k].block >= 0 && !s.mayOpen(k) {
+			if token > last || !s.mayMeet(i, k, order) {
 				continue
 			}
 			s.free[i] -= order
@@ -262,6 +254,34 @@ func (s *search) children(i, end int, row uint64, shift int, last int) bool {
 			if !more {
 				return false
 			}
+		}
+	}
+	return true
+}
+
+// mayMeet tells whether a unit of kind k may be met over a bond of this order from unit i.
+func (s *search) mayMeet(i int, k, order uint8) bool {
+	p := s.plan
+	kd := &p.kinds[k]
+	return s.left[k] > 0 && kd.free >= order && p.allow[s.kind[i]][k].has(order) &&
+		(order != 2 || !p.noCumulated || s.twos[i]+kd.twos == 0) && (kd.block < 0 || s.mayOpen(k))
+}
+
+// innerChildren chooses the next unit met over a bond inside a block.
+func (s *search) innerChildren(i, end int, row uint64, shift int, last int) bool {
+	for _, e := range s.plan.kinds[s.kind[i]].inner {
+		token := int(e.code)<<5 | int(e.kind)
+		if token > last || s.left[e.kind] == 0 {
+			continue
+		}
+		u, ok := s.meetInner(i, e)
+		if !ok {
+			continue
+		}
+		more := s.children(i, end, row|uint64(token)<<shift, shift-9, token)
+		s.unmeetInner(u)
+		if !more {
+			return false
 		}
 	}
 	return true
