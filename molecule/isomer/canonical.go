@@ -11,6 +11,19 @@ type tour struct {
 
 const absent = 255
 
+// places[n] puts the units 0 to n-1 at the places of their numbers and the others nowhere.
+var places = func() (t [maxUnits + 1][maxUnits]uint8) {
+	for n := range t {
+		for u := range t[n] {
+			t[n][u] = absent
+			if u < n {
+				t[n][u] = uint8(u)
+			}
+		}
+	}
+	return t
+}()
+
 // outcome compares the rows of a tour with the rows that stand.
 type outcome uint8
 
@@ -75,23 +88,14 @@ func (s *search) largest(depth int) bool {
 
 // instead follows the tours that run as ours up to place k and take unit w there.
 func (s *search) instead(j *judge, k, w int) outcome {
-	var t tour
-	t.met = int(s.metAt[k])
-	for p := range t.place {
-		t.place[p] = absent
-	}
-	for p := 0; p < t.met; p++ {
-		t.unit[p], t.place[p], t.cell[p] = uint8(p), uint8(p), s.cell[k][p]
-	}
+	t := tour{unit: places[maxUnits], cell: s.cell[k], met: int(s.metAt[k])}
+	t.place = places[t.met]
 	return t.take(j, k, w)
 }
 
 // from follows the tours that begin with unit w.
 func (j *judge) from(w int) outcome {
-	var t tour
-	for p := range t.place {
-		t.place[p] = absent
-	}
+	t := tour{place: places[0]}
 	t.unit[0], t.place[w], t.met = uint8(w), 0, 1
 	return t.take(j, 0, w)
 }
