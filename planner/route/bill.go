@@ -196,7 +196,7 @@ func (b *bill) sums() {
 		}
 		for _, h := range x.material.Hazards {
 			grave[h] = b.c.world.Gravity(h)
-			r.GravestClass = max(r.GravestClass, grave[h])
+			r.GravestClass = max(r.GravestClass, b.c.world.codeClass(h))
 		}
 		r.Materials.Of++
 		if price, known := x.material.Price(); known {
@@ -229,15 +229,15 @@ func (b *bill) sums() {
 	}
 }
 
-// gravest sorts codes by class, then by name, and keeps the first n.
-func gravest(classes map[string]int, n int) []string {
-	codes := make([]string, 0, len(classes))
-	for h := range classes {
+// gravest sorts codes by gravity, then by name, and keeps the first n.
+func gravest(places map[string]int, n int) []string {
+	codes := make([]string, 0, len(places))
+	for h := range places {
 		codes = append(codes, h)
 	}
 	sort.Slice(codes, func(i, j int) bool {
-		if a, b := classes[codes[i]], classes[codes[j]]; a != b {
-			return a > b
+		if a, b := places[codes[i]], places[codes[j]]; a != b {
+			return a < b
 		}
 		return codes[i] < codes[j]
 	})

@@ -23,7 +23,7 @@ type World struct {
 	Transforms []*reactions.Transform // all that Book holds; used for bounds, words to avoid and counts
 	Materials  Materials
 	Shelf      []*molecule.Molecule                     // what stands on the shelf; used for the order of the work only
-	Gravity    func(hazard string) int                  // class of a GHS H code, 0 (slight) to 4 (gravest)
+	Gravity    func(hazard string) int                  // place of a GHS code in the order of gravity, 0 the gravest
 	Name       func(*molecule.Molecule) string          // "" if none is known
 	Declined   func(*molecule.Molecule) bool            // restricted intermediates; nil: none
 	Write      func(*molecule.Molecule) string          // canonical SMILES

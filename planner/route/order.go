@@ -1,19 +1,15 @@
 package route
 
 import (
+	"bytes"
 	"fmt"
 	"io"
+	"slices"
+	"strings"
 
 	"github.com/dominikbraun/graph"
 	"github.com/dominikbraun/graph/draw"
 )
-
-// vertex is a molecule or a step of a route's graph.
-type vertex struct {
-	id    string // "m0", "s0"
-	label string
-	step  int // index of the step, -1 for a molecule
-}
 
 // benchOrder sorts steps so that each stands after those that make its reactants, stably: among steps
 // that could come next, the one with the lower index does. makes[i] names what step i makes and
@@ -83,11 +79,27 @@ func (r *Route) Graph() (graph.Graph[string, string], error) {
 	return g, nil
 }
 
-// DOT writes the graph of the route in the DOT language.
+// DOT writes the graph of the route in the DOT language, its lines sorted, so that the same route gives
+// the same bytes.
 func (r *Route) DOT(w io.Writer) error {
 	g, err := r.Graph()
 	if err != nil {
 		return err
 	}
-	return draw.DOT(g, w, draw.GraphAttribute("rankdir", "BT"))
+	var b bytes.Buffer
+	if err := draw.DOT(g, &b, draw.GraphAttribute("rankdir", "BT")); err != nil {
+		return err
+	}
+	var head, body []string
+	for _, line := range strings.Split(b.String(), "\n") {
+		switch text := strings.TrimSpace(line); {
+		case strings.HasPrefix(text, "\""):
+			body = append(body, "\t"+text)
+		case text != "" && text != "}":
+			head = append(head, line)
+		}
+	}
+	slices.Sort(body)
+	_, err = fmt.Fprintf(w, "%s\n%s\n}\n", strings.Join(head, "\n"), strings.Join(body, "\n"))
+	return err
 }

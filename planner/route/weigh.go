@@ -104,6 +104,21 @@ func yieldOf(s *reactions.Step, c *reactions.Conditions) (y reactions.Range, kno
 	return y, known
 }
 
+// classEnds are the last codes of the classes 4, 3 and 2 in the order of gravity of rules/ghs.yaml:
+// fatal, self-igniting or causing cancer; then severe; then the rest of the signal word Danger.
+var classEnds = [...]string{"H360", "EUH029", "H318"}
+
+// codeClass returns the class of a hazard code, 0 for none to 4 for the gravest.
+func (w *World) codeClass(code string) int {
+	place := w.Gravity(code)
+	for i, end := range classEnds {
+		if place <= w.Gravity(end) {
+			return gravestClass - i
+		}
+	}
+	return 1
+}
+
 // class returns the gravest hazard class of a material, unknown counted as the gravest.
 func (w *World) class(m *Material) int {
 	if !m.HazardsKnown {
@@ -111,7 +126,7 @@ func (w *World) class(m *Material) int {
 	}
 	most := 0
 	for _, h := range m.Hazards {
-		most = max(most, min(w.Gravity(h), gravestClass))
+		most = max(most, w.codeClass(h))
 	}
 	return most
 }
