@@ -28,6 +28,9 @@ type World struct {
 	Declined   func(*molecule.Molecule) bool            // restricted intermediates; nil: none
 	Write      func(*molecule.Molecule) string          // canonical SMILES
 	Read       func(string) (*molecule.Molecule, error) // reads what Write wrote
+
+	names sync.Map // name -> namedMaterial, so that each is looked up once
+	sets  sync.Map // *reactions.Conditions -> setFigures
 }
 
 // chemistry is the graph of molecules as the search sees it.

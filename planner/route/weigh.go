@@ -171,12 +171,50 @@ func (w *World) charges(s *reactions.Step, c *reactions.Conditions) []charged {
 	return out
 }
 
+// namedMaterial is the answer to one name.
+type namedMaterial struct {
+	material Material
+	known    bool
+}
+
 // named looks a reagent up by the name that conditions use.
 func (w *World) named(name string) (Material, bool) {
-	if m, ok := w.Materials.Named(name); ok {
-		return m, true
+	if found, ok := w.names.Load(name); ok {
+		n := found.(namedMaterial)
+		return n.material, n.known
 	}
-	return unnamed(name), false
+	n := namedMaterial{unnamed(name), false}
+	if m, ok := w.Materials.Named(name); ok {
+		n = namedMaterial{m, true}
+	}
+	w.names.Store(name, n)
+	return n.material, n.known
+}
+
+// setFigures are figures of a condition set that do not depend on the molecules.
+type setFigures struct {
+	class int // gravest class among reagents and solvents
+	buy   int // reagents that must be bought
+}
+
+func (w *World) setFigures(c *reactions.Conditions) setFigures {
+	if f, ok := w.sets.Load(c); ok {
+		return f.(setFigures)
+	}
+	var f setFigures
+	for _, r := range c.Reagents {
+		m, _ := w.named(r.Name)
+		f.class = max(f.class, w.class(&m))
+		if !m.OnShelf && !r.Optional && !isWater(&m) {
+			f.buy++
+		}
+	}
+	for _, v := range c.Solvents {
+		m, _ := w.named(v.Name)
+		f.class = max(f.class, w.class(&m))
+	}
+	w.sets.Store(c, f)
+	return f
 }
 
 // isWater says whether a material is plain water.
@@ -196,7 +234,7 @@ func (w *World) variant(by RankBy, o *option) search.Variant {
 	case Steps:
 		v.Weight = 1 + 0.01*w.balancedStep(s, c, v.Yield)
 	case Hazard:
-		v.Weight = hazardPoints[w.stepClass(s, c)]
+		v.Weight = hazardPoints[w.setFigures(c).class]
 	case Cost:
 		for _, x := range w.charges(s, c) {
 			price, _ := x.material.Price()
@@ -216,18 +254,10 @@ func (w *World) variant(by RankBy, o *option) search.Variant {
 
 func clampYield(y float64) float64 { return min(max(y, 0.01), 1) }
 
-// stepClass is the gravest class among reagents and solvents.
-func (w *World) stepClass(s *reactions.Step, c *reactions.Conditions) int {
-	most := 0
-	for _, x := range w.charges(s, c) {
-		most = max(most, w.class(&x.material))
-	}
-	return most
-}
-
 // balancedStep is the weight of one step in the balanced order: never below 1.
 func (w *World) balancedStep(s *reactions.Step, c *reactions.Conditions, yield float64) float64 {
-	weight := 1 - partYieldLoss*math.Log(yield) + partHazard*float64(w.stepClass(s, c))
+	figures := w.setFigures(c)
+	weight := 1 - partYieldLoss*math.Log(yield) + partHazard*float64(figures.class)
 	switch s.Share {
 	case reactions.ShareEven:
 		weight += partEven
@@ -238,13 +268,7 @@ func (w *World) balancedStep(s *reactions.Step, c *reactions.Conditions, yield f
 	if c.Origin == "estimated" || c.Origin == "" {
 		weight += partEstimated
 	}
-	buy := 0
-	for _, x := range w.charges(s, c) {
-		if !x.material.OnShelf && !x.solvent && !x.optional && !isWater(&x.material) {
-			buy++
-		}
-	}
-	return weight + partPurchase*float64(min(buy, 3))
+	return weight + partPurchase*float64(min(figures.buy, 3))
 }
 
 // leaf weighs a material taken from stock.
