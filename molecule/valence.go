@@ -314,3 +314,7 @@ func (p *perceiver) bareNitrogen(a int) int {
 	}
 	return -1
 }
+
+// FilledHydrogens is the number of hydrogens that AutoHydrogens stands for on an atom like x whose
+// bonds (hydrogens left out, no aromatic ones) sum to bondSum.
+func FilledHydrogens(x Atom, bondSum int) uint8 { return fillUp(&x, int16(min(bondSum, 1000))) }

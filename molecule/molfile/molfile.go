@@ -1,0 +1,58 @@
+// Package molfile reads and writes V2000 molfiles and SD files, and reads V2000 reaction files
+// (BIOVIA, CTfile Formats). Records are streamed; an error names record and line, and reading goes
+// on with the next record. Stereo comes from wedges and 2D or 3D coordinates, or from atom parities
+// where all coordinates are zero. V3000 files and query atoms or bonds are refused with a message.
+package molfile
+
+import (
+	"fmt"
+
+	"shelfward/molecule"
+)
+
+// Point is the place of an atom; bonds are about 1 long in files from drawing programs, in
+// angstrom in files of measured structures. All zero means no coordinates.
+type Point struct{ X, Y, Z float64 }
+
+// Field is one data item of an SD record: its name and its lines joined by newlines.
+type Field struct{ Name, Value string }
+
+// Record is one structure of a file.
+type Record struct {
+	Number      int // from 1
+	Line        int // line of the file where the record starts, from 1
+	Title       string
+	Molecule    *molecule.Molecule
+	Coordinates []Point // one per atom of Molecule
+	Fields      []Field // in file order; empty for a plain molfile
+}
+
+// Field returns the value of the first field with the name, and whether there is one.
+func (r *Record) Field(name string) (string, bool) {
+	for _, f := range r.Fields {
+		if f.Name == name {
+			return f.Value, true
+		}
+	}
+	return "", false
+}
+
+// Error is a record that cannot be read.
+type Error struct {
+	Record  int // from 1
+	Line    int // from 1
+	Message string
+}
+
+func (e *Error) Error() string {
+	return fmt.Sprintf("record %d, line %d: %s", e.Record, e.Line, e.Message)
+}
+
+// bondStereo is the stereo field of a bond.
+const (
+	stereoNone   = 0
+	stereoWedge  = 1
+	stereoCis    = 3 // cis or trans, either
+	stereoEither = 4
+	stereoHash   = 6
+)
