@@ -276,7 +276,10 @@ func FuzzReader(f *testing.F) {
 			}
 			var out strings.Builder
 			if err := Write(&out, rec); err != nil {
-				t.Fatal(err)
+				if !strings.Contains(err.Error(), "coordinates below") {
+					t.Fatal(err)
+				}
+				continue
 			}
 			back, err := Read(strings.NewReader(out.String()))
 			if err != nil || back.Molecule.FlatKey() != rec.Molecule.FlatKey() {

@@ -13,6 +13,9 @@ import (
 // maxV2000 is the most atoms or bonds that the three-column counts hold.
 const maxV2000 = 999
 
+// maxCoordinate is the largest number that fits its ten columns with a sign and four decimals.
+const maxCoordinate = 9999.0
+
 // Write writes r as one molfile, without fields. Coordinates must be nil (all zero then, tetrahedral
 // marks as parities, double bond marks lost) or one point per atom in a plane; acyclic double bonds
 // drawn against their marks are turned over. Writing fails on structures above 999 atoms or bonds.
@@ -25,6 +28,11 @@ func Write(w io.Writer, r *Record) error {
 	if r.Coordinates != nil {
 		if len(r.Coordinates) != m.NumAtoms() {
 			return fmt.Errorf("%d points for %d atoms", len(r.Coordinates), m.NumAtoms())
+		}
+		for a, p := range r.Coordinates {
+			if max(math.Abs(p.X), math.Abs(p.Y), math.Abs(p.Z)) >= maxCoordinate {
+				return fmt.Errorf("atom %d lies at %g, %g, %g; a molfile holds coordinates below %g", a+1, p.X, p.Y, p.Z, maxCoordinate)
+			}
 		}
 		copy(t.points, r.Coordinates)
 		t.drawn = true
