@@ -114,6 +114,13 @@ func (c *compiled) chooseHydrogens(pools []pool, i, hydrogens int, blocks []*var
 		p := c.plan(pools, blocks, count)
 		return p == nil || yield(p)
 	}
+	room := 0
+	for _, pl := range pools[i:] {
+		room += pl.count * min(pl.state.valence, pl.state.maxHydrogens)
+	}
+	if hydrogens > room {
+		return true
+	}
 	pl := &pools[i]
 	var split func(h, atoms, left int) bool
 	split = func(h, atoms, left int) bool {
@@ -122,6 +129,9 @@ func (c *compiled) chooseHydrogens(pools []pool, i, hydrogens int, blocks []*var
 			return c.chooseHydrogens(pools, i+1, left, blocks, count, yield)
 		}
 		for n := 0; n <= atoms && n*h <= left; n++ {
+			if pl.state.element == carbon && h < 3 && c.Carbons[h].Set && n > c.Carbons[h].Max {
+				break
+			}
 			pl.split[h] = n
 			if !split(h-1, atoms-n, left-n*h) {
 				return false
@@ -133,68 +143,83 @@ func (c *compiled) chooseHydrogens(pools []pool, i, hydrogens int, blocks []*var
 	return split(min(pl.state.valence, pl.state.maxHydrogens), pl.count, hydrogens)
 }
 
+// tally sums up what a plan would hold.
+type tally struct {
+	carbons [4]int // by hydrogens
+	hetero  int    // hydrogens on other atoms
+	units   int
+	parts   int // blocks and units outside blocks
+	stubs   int // free valences
+}
+
+// count adds up pools and blocks.
+func (c *compiled) count(pools []pool, blocks []*variant, blockCount []int) (t tally) {
+	t.carbons, t.hetero, t.units = c.blockHydrogens(blocks, blockCount)
+	for b, v := range blocks {
+		t.parts += blockCount[b]
+		for _, u := range v.units {
+			t.stubs += blockCount[b] * int(u.free)
+		}
+	}
+	for i := range pools {
+		pl := &pools[i]
+		for h, n := range pl.split {
+			t.units += n
+			t.parts += n
+			t.stubs += n * (pl.state.valence - h)
+			if pl.state.element == carbon {
+				t.carbons[min(h, 3)] += n
+			} else {
+				t.hetero += n * h
+			}
+		}
+		t.carbons[0] += pl.count * pl.state.companions(carbon)
+	}
+	return t
+}
+
+// agrees tests a tally against the evidence and against itself.
+func (c *compiled) agrees(t *tally) bool {
+	for h, n := range t.carbons {
+		if !c.Carbons[h].Holds(n) {
+			return false
+		}
+	}
+	return c.OnHetero.Holds(t.hetero) && t.units > 0 && t.stubs%2 == 0 && t.stubs/2 >= t.parts-1
+}
+
 // plan builds the plan of chosen pools and blocks; nil if it cannot hold together.
 func (c *compiled) plan(pools []pool, blocks []*variant, blockCount []int) *plan {
+	t := c.count(pools, blocks, blockCount)
+	if !c.agrees(&t) || !c.enough(pools) {
+		return nil
+	}
 	type counted struct {
 		kind
 		n int
 	}
 	var list []counted
-	carbons, hetero, units := c.blockHydrogens(blocks, blockCount)
-	stubs := 0
 	for _, pl := range pools {
 		for h, n := range pl.split {
-			if n == 0 {
-				continue
-			}
-			list = append(list, counted{kind{state: pl.state, hydrogens: uint8(h), free: uint8(pl.state.valence - h), block: -1, share: 1}, n})
-			units += n
-			carbons[0] += n * pl.state.companions(carbon)
-			stubs += n * (pl.state.valence - h)
-			if pl.state.element == carbon {
-				carbons[min(h, 3)] += n
-			} else {
-				hetero += n * h
+			if n > 0 {
+				list = append(list, counted{kind{state: pl.state, hydrogens: uint8(h), free: uint8(pl.state.valence - h), block: -1, share: 1}, n})
 			}
 		}
 	}
-	for h, n := range carbons {
-		if !c.Carbons[h].Holds(n) {
-			return nil
-		}
-	}
-	if !c.enough(pools) {
-		return nil
-	}
-	if !c.OnHetero.Holds(hetero) || units == 0 {
-		return nil
-	}
-	if units > maxUnits {
-		c.overflow = true
-		return nil
-	}
-	parts := units
 	for b, v := range blocks {
-		n := blockCount[b]
-		parts -= n * (len(v.atoms) - 1)
 		for _, k := range v.siteKinds(b) {
-			list = append(list, counted{k, n * int(k.share)})
-			stubs += n * int(k.share) * int(k.free)
+			list = append(list, counted{k, blockCount[b] * int(k.share)})
 		}
 	}
-	p := &plan{units: units, problem: c, blocks: blocks, perBlock: blockCount, noCumulated: c.NoCumulated}
-	p.excess = stubs/2 - (parts - 1)
-	if stubs%2 != 0 || p.excess < 0 {
-		return nil
-	}
-	if len(list) >= maxUnits {
+	if t.units > maxUnits || len(list) >= maxUnits {
 		c.overflow = true
 		return nil
 	}
 	sort.SliceStable(list, func(i, j int) bool { return kindBefore(&list[i].kind, &list[j].kind) })
+	p := &plan{units: t.units, excess: t.stubs/2 - (t.parts - 1), problem: c, blocks: blocks, perBlock: blockCount, noCumulated: c.NoCumulated}
 	p.kinds, p.count = make([]kind, 1, len(list)+1), make([]uint8, 1, len(list)+1)
 	for _, x := range list {
-		if x.free == 0 && x.block < 0 && units > 1 {
+		if x.free == 0 && x.block < 0 && t.units > 1 {
 			return nil
 		}
 		p.kinds, p.count = append(p.kinds, x.kind), append(p.count, uint8(x.n))
