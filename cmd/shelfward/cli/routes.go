@@ -1,0 +1,247 @@
+package cli
+
+import (
+	"context"
+	"fmt"
+	"os"
+	"time"
+
+	"github.com/spf13/cobra"
+
+	"shelfward/molecule"
+	"shelfward/molecule/smiles"
+	"shelfward/planner/route"
+	"shelfward/planner/search"
+)
+
+func writeSMILES(m *molecule.Molecule) string { return smiles.Write(m) }
+
+// planFlags are the wishes shared by routes, compare, sheet and run.
+type planFlags struct {
+	from          []string
+	count         int
+	maxSteps      int
+	rankBy        string
+	avoid         []string
+	time          time.Duration
+	maxExpanded   int
+	oneEnantiomer bool
+	makeAnyway    bool
+	make          string
+	bench         string
+}
+
+func (f *planFlags) bind(cmd *cobra.Command) {
+	fl := cmd.Flags()
+	fl.StringArrayVar(&f.from, "from", nil, "a starting material that every route must consume (repeatable, at most four)")
+	fl.IntVar(&f.count, "count", 5, "routes listed")
+	fl.IntVar(&f.maxSteps, "max-steps", 8, "steps along the longest run")
+	fl.StringVar(&f.rankBy, "rank-by", "balanced", "balanced, steps, yield, hazard, cost or waste")
+	fl.StringArrayVar(&f.avoid, "avoid", nil, "reagent, solvent, H code, element symbol or transform id to do without (repeatable)")
+	fl.DurationVar(&f.time, "time", 10*time.Second, "search limit; what was found by then is returned and marked")
+	fl.IntVar(&f.maxExpanded, "max-expanded", 0, "limit on molecules opened; gives the same bytes every time")
+	fl.BoolVar(&f.oneEnantiomer, "one-enantiomer", false, "ask for absolute configuration")
+	fl.BoolVar(&f.makeAnyway, "make-anyway", false, "plan a target that stands on the shelf")
+	fl.StringVar(&f.make, "make", "", "amount of target that prices and stock are worked out for, such as 10g")
+	fl.StringVar(&f.bench, "bench", "", "bench file: what the room can do")
+}
+
+// options turns flags and case file into planning options.
+func (app *App) options(j *job, f *planFlags) (route.Options, error) {
+	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OneEnantiomer: f.oneEnantiomer,
+		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.time, MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
+	if f.count < 1 || f.maxSteps < 1 || f.time <= 0 || f.maxExpanded < 0 {
+		return o, usageError("--count, --max-steps and --time must be more than nothing")
+	}
+	by, err := route.ParseRankBy(f.rankBy)
+	if err != nil {
+		return o, failWith(exitUsage, err)
+	}
+	o.RankBy = by
+	if len(f.from) > 0 {
+		if o.From, err = j.resolveAll("--from", f.from); err != nil {
+			return o, err
+		}
+	}
+	if len(o.From) > search.MaxFrom {
+		return o, usageError("--from: at most %d starting materials", search.MaxFrom)
+	}
+	if f.make != "" {
+		if o.MakeMol, err = molOf(f.make, j.target); err != nil {
+			return o, usageError("--make: %v", err)
+		}
+	}
+	if f.bench != "" {
+		if err := checkFile(f.bench); err != nil {
+			return o, err
+		}
+		if o.Bench, err = route.LoadBench(f.bench); err != nil {
+			return o, failWith(exitUsage, err)
+		}
+	}
+	return o, nil
+}
+
+func (j *job) resolveAll(flag string, texts []string) ([]*molecule.Molecule, error) {
+	var out []*molecule.Molecule
+	for _, text := range texts {
+		m, err := j.resolve(text)
+		if err != nil {
+			return nil, usageError("%s: %v", flag, err)
+		}
+		if m.Key() == j.target.Key() {
+			return nil, usageError("%s: %s is the target itself", flag, text)
+		}
+		out = append(out, m)
+	}
+	return out, nil
+}
+
+// progress reports on standard error once a second, unless --quiet.
+func (app *App) progress() func(search.Progress) {
+	if app.Quiet {
+		return nil
+	}
+	began, last := time.Now(), time.Now()
+	return func(p search.Progress) {
+		if now := time.Now(); now.Sub(began) > time.Second && now.Sub(last) > time.Second {
+			last = now
+			fmt.Fprintf(app.ErrOut, "searching: %d molecules opened, %d routes so far, %.0f s\n", p.Expanded, p.Routes, now.Sub(began).Seconds())
+		}
+	}
+}
+
+// plan screens the target and searches.
+func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan, error) {
+	if err := app.screen(j); err != nil {
+		return nil, err
+	}
+	if len(o.From) == 0 && len(j.fromAny) > 0 {
+		return app.planFromAny(ctx, j, o)
+	}
+	p, err := route.Make(ctx, j.room.World(), j.target, o)
+	return p, failWith(exitUsage, err)
+}
+
+// planFromAny keeps the plan of the start whose first route weighs least.
+func (app *App) planFromAny(ctx context.Context, j *job, o route.Options) (*route.Plan, error) {
+	var chosen *route.Plan
+	for _, m := range j.fromAny {
+		o.From = []*molecule.Molecule{m}
+		p, err := route.Make(ctx, j.room.World(), j.target, o)
+		if err != nil {
+			return nil, failWith(exitUsage, err)
+		}
+		if chosen == nil || len(p.Routes) > 0 && (len(chosen.Routes) == 0 || p.Routes[0].Weight < chosen.Routes[0].Weight) {
+			chosen = p
+		}
+	}
+	return chosen, nil
+}
+
+type routesOptions struct {
+	app   *App
+	flags planFlags
+	out   string
+	graph string
+}
+
+func newRoutesCommand(app *App) *cobra.Command {
+	o := &routesOptions{app: app}
+	cmd := &cobra.Command{
+		Use: "routes TARGET", Short: "ranked routes to a target from the shelf or from given starting materials", Args: cobra.ExactArgs(1),
+		Long: "TARGET is SMILES, a name, synonym or CAS number on the shelf, or a case file (.yaml). With --from every route\n" +
+			"consumes every item given.\n" + exitHelp,
+		Example: "  shelfward routes 'CCCC(C)C(=O)CC'\n  shelfward routes testdata/demo/lure-4.yaml --avoid H360\n  shelfward routes cyclohexanone --make-anyway --count 3",
+		RunE:    func(c *cobra.Command, args []string) error { return o.run(c.Context(), args[0]) },
+	}
+	o.flags.bind(cmd)
+	cmd.Flags().StringVar(&o.out, "out", "", "save the plan as a JSON file for compare and sheet")
+	cmd.Flags().StringVar(&o.graph, "graph", "", "write the first route's network as a DOT file")
+	return cmd
+}
+
+func (o *routesOptions) run(ctx context.Context, text string) error {
+	j, err := o.app.openJob(ctx, text)
+	if err != nil {
+		return err
+	}
+	p := j.plan
+	if p == nil {
+		opt, err := o.app.options(j, &o.flags)
+		if err != nil {
+			return err
+		}
+		if p, err = o.app.plan(ctx, j, opt); err != nil {
+			return err
+		}
+	}
+	if err := o.save(p); err != nil {
+		return err
+	}
+	if o.app.JSON {
+		if err := printJSON(o.app.Out, p); err != nil {
+			return err
+		}
+	} else {
+		o.app.header(j)
+		if err := p.WriteText(o.app.Out); err != nil {
+			return err
+		}
+		fmt.Fprintln(o.app.Out, "\n"+j.room.Hazards.ShortCaution())
+	}
+	return nothingFound(p)
+}
+
+// header prints what was read, and that the shelf is invented where it is.
+func (app *App) header(j *job) {
+	fmt.Fprintln(app.Out, j.echo())
+	if j.room.Invented {
+		fmt.Fprintln(app.Out, "shelf: the built-in example; its amounts, places and prices are INVENTED")
+	}
+}
+
+// nothingFound turns a plan without routes into status 3; the reason has been printed.
+func nothingFound(p *route.Plan) error {
+	if len(p.Routes) == 0 {
+		return failWith(exitNothing, errSilent)
+	}
+	return nil
+}
+
+func (o *routesOptions) save(p *route.Plan) error {
+	if o.out != "" {
+		if err := p.Save(o.out); err != nil {
+			return usageError("--out: %v", err)
+		}
+	}
+	if o.graph == "" {
+		return nil
+	}
+	return writeWhole(o.graph, func(f *os.File) error {
+		if len(p.Routes) == 0 {
+			return nil
+		}
+		return p.Routes[0].DOT(f)
+	})
+}
+
+// writeWhole writes a file beside its place and renames it, so that a failure leaves no half file.
+func writeWhole(path string, write func(*os.File) error) error {
+	tmp, err := os.CreateTemp(dirOf(path), ".shelfward-*")
+	if err != nil {
+		return usageError("%s: cannot write: %v", path, plainReason(err))
+	}
+	defer os.Remove(tmp.Name())
+	if err := write(tmp); err != nil {
+		tmp.Close()
+		return err
+	}
+	if err := tmp.Close(); err != nil {
+		return err
+	}
+	if err := os.Chmod(tmp.Name(), 0o644); err != nil {
+		return err
+	}
+	return os.Rename(tmp.Name(), path)
+}
