@@ -11,6 +11,7 @@ func BenchmarkEnumerate(b *testing.B) {
 		{"C9H10O3", "[cH:1]1cc[cH:1]cc1"},
 		{"C12H14O3", "[cH:1]1c[cH:1]ccc1 + [CH3][OH:1] + [OH:1][CH:1]=O"},
 		{"C11H11N", "[cH:1]1[cH:1]cccc1 + [CH3:1]"},
+		{"C11H10O3", "[cH:1]1[cH:1]c[cH:1]cc1 + [CH3][CH2:1]"},
 	} {
 		b.Run(tc.formula+tc.blocks, func(b *testing.B) {
 			p := Problem{Formula: formulaOf(b, tc.formula)}

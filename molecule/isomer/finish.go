@@ -59,7 +59,7 @@ func (w *workspace) writePrefix(s *search) {
 
 func (w *workspace) writeAtoms(s *search) {
 	st := &w.structure
-	st.Atoms, st.Bonds = st.Atoms[:0], st.Bonds[:0]
+	st.Atoms, st.Bonds, st.built = st.Atoms[:0], st.Bonds[:0], nil
 	for u := 0; u < s.met; u++ {
 		k := &s.plan.kinds[s.kind[u]]
 		first := len(st.Atoms)

@@ -137,15 +137,20 @@ type Structure struct {
 	Atoms []Atom
 	Bonds []Bond
 	Score float64 // free for Accept to set
+
+	built *molecule.Molecule // the molecule, where the generator had to build it
 }
 
 // Clone returns a copy that the caller owns.
 func (s *Structure) Clone() *Structure {
-	return &Structure{append([]Atom(nil), s.Atoms...), append([]Bond(nil), s.Bonds...), s.Score}
+	return &Structure{Atoms: append([]Atom(nil), s.Atoms...), Bonds: append([]Bond(nil), s.Bonds...), Score: s.Score}
 }
 
 // Materialise builds the molecule; rings and aromaticity are perceived.
 func (s *Structure) Materialise() (*molecule.Molecule, error) {
+	if s.built != nil {
+		return s.built, nil
+	}
 	var b molecule.Builder
 	for _, a := range s.Atoms {
 		b.AddAtom(molecule.Atom{Element: a.Element, Charge: a.Charge, Hydrogens: a.Hydrogens})

@@ -244,6 +244,7 @@ func (w *workspace) perceive(s *search) {
 	if err != nil {
 		return // the builder accepts every valence the search uses; a structure it refuses has no aromatic bond to mark
 	}
+	w.structure.built = m
 	for i := range w.links {
 		l := &w.links[i]
 		if b := m.BondBetween(int(w.first[l.a]), int(w.first[l.b])); b >= 0 {

@@ -116,6 +116,7 @@ func (w *workspace) markAromatic() {
 		return // no ring
 	}
 	if m, err := st.Materialise(); err == nil {
+		st.built = m
 		for i, b := range st.Bonds {
 			w.aromatic[i] = m.Bond(m.BondBetween(int(b.A), int(b.B))).Aromatic
 		}

@@ -203,7 +203,7 @@ func (j *job) run(ctx context.Context, c *compiled, halt *atomic.Bool) {
 func (k *chunk) each(take func(*Structure) bool) bool {
 	a, b := 0, 0
 	for _, e := range k.ends {
-		if !take(&Structure{k.atoms[a:e.atoms], k.bonds[b:e.bonds], e.score}) {
+		if !take(&Structure{Atoms: k.atoms[a:e.atoms], Bonds: k.bonds[b:e.bonds], Score: e.score}) {
 			return false
 		}
 		a, b = e.atoms, e.bonds
