@@ -8,7 +8,8 @@ import "slices"
 // equal copies left by it written once. Organometallics drawn as ions become covalent and are never
 // protonated. Quaternary ammonium and the like stay charged, without chloride, bromide or iodide.
 // Salts without an organic ion (sodium chloride, potassium carbonate), salts of other metals and
-// of anions that take no proton (borates, hexafluorophosphate) are left as they are. It returns m
+// of anions that take no proton (borates, hexafluorophosphate, the anions of plain amines) are left
+// as they are. It returns m
 // itself if nothing changes.
 func (m *Molecule) FreeForm() *Molecule {
 	if !m.mayBeSalt() {
@@ -99,7 +100,7 @@ func (f *freeing) cutMetalBonds() bool {
 		organic := false
 		for _, nb := range f.nbs[a] {
 			e := b.Atoms[nb.Atom].Element
-			ionic = ionic && b.Bonds[nb.Bond].Order == 1 && (e == 7 || e == 8 || e == 16 || e == 34 || e == 9 || e == 17 || e == 35 || e == 53 || f.cyanide(nb.Atom))
+			ionic = ionic && b.Bonds[nb.Bond].Order == 1 && b.Atoms[nb.Atom].Charge == 0 && (e == 7 || e == 8 || e == 16 || e == 34 || e == 9 || e == 17 || e == 35 || e == 53 || f.cyanide(nb.Atom))
 			organic = organic || len(f.nbs[nb.Atom]) > 1
 		}
 		if !ionic || !organic {
@@ -118,18 +119,37 @@ func (f *freeing) cutMetalBonds() bool {
 	return any
 }
 
-// carbanion says that a is a carbon anion that is no cyanide and not balanced by a neighbour.
+// carbanion says that a is a carbon anion that makes an organometallic: no cyanide, no carbide, not
+// balanced by a neighbour, no enolate drawn with its charge on carbon.
 func (f *freeing) carbanion(a int32) bool {
 	x := &f.b.Atoms[a]
-	if x.Element != 6 || x.Charge >= 0 || f.cyanide(a) {
+	if x.Element != 6 || x.Charge >= 0 || f.cyanide(a) || f.enolate(a) {
 		return false
 	}
 	for _, nb := range f.nbs[a] {
-		if f.b.Atoms[nb.Atom].Charge > 0 {
+		if f.b.Atoms[nb.Atom].Charge != 0 {
 			return false
 		}
 	}
 	return true
+}
+
+// enolate says that a is a carbon anion beside a carbonyl group.
+func (f *freeing) enolate(a int32) bool {
+	if x := &f.b.Atoms[a]; x.Element != 6 || x.Charge != -1 {
+		return false
+	}
+	for _, nb := range f.nbs[a] {
+		if f.b.Atoms[nb.Atom].Element != 6 || f.b.Bonds[nb.Bond].Order != 1 {
+			continue
+		}
+		for _, c := range f.nbs[nb.Atom] {
+			if o := &f.b.Atoms[c.Atom]; f.b.Bonds[c.Bond].Order == 2 && o.Element == 8 && o.Charge == 0 {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // joinOrganometals bonds carbanions to metal cations, and halide ions to metals that hold carbon.
@@ -197,7 +217,7 @@ func (f *freeing) neutralise() bool {
 	parts := f.parts()
 	organicIon, organicBase, stubborn, permanent := false, false, false, 0
 	for _, p := range parts {
-		stubborn = stubborn || p.stubborn
+		stubborn = stubborn || p.stubborn || p.charge > 0 && !p.metal && !p.carbon || p.charge < 0 && !p.takes && !p.carbon && !p.acid
 		if p.carbon && !p.metal {
 			organicIon = organicIon || p.charge != 0
 			organicBase = organicBase || f.hasAmine(p)
@@ -217,7 +237,7 @@ func (f *freeing) neutralise() bool {
 	}
 	for _, p := range parts {
 		switch {
-		case p.metal && organicIon && !stubborn && !f.loneInorganic(parts),
+		case (p.metal || p.halide && p.charge < 0 && metals > 0) && organicIon && !stubborn,
 			p.acid && len(parts) > 1 && (organicBase || p.halide && p.charge < 0 && f.hasOrganicCation(parts)) && metals == 0:
 			for _, a := range p.atoms {
 				drop[a] = true
@@ -232,17 +252,6 @@ func (f *freeing) neutralise() bool {
 		f.b.RemoveAtoms(drop)
 	}
 	return changed
-}
-
-// loneInorganic says that some anion beside the organic ones is inorganic and stays (hydroxide,
-// carbonate): then the metal stays too.
-func (f *freeing) loneInorganic(parts []part) bool {
-	for _, p := range parts {
-		if p.charge < 0 && !p.takes && !p.carbon && !p.halide {
-			return true
-		}
-	}
-	return false
 }
 
 func (f *freeing) hasOrganicCation(parts []part) bool {
@@ -387,10 +396,28 @@ func (f *freeing) balanced(a int32) bool {
 func (f *freeing) protonSite(a int32) bool {
 	x := &f.b.Atoms[a]
 	switch x.Element {
-	case 7, 8, 16, 34:
+	case 8, 16, 34:
 		return x.Charge < 0
+	case 7:
+		return x.Charge < 0 && f.stabilised(a)
 	case 6:
-		return x.Charge == -1 && f.cyanide(a)
+		return x.Charge == -1 && (f.cyanide(a) || f.enolate(a))
+	}
+	return false
+}
+
+// stabilised says that the nitrogen anion a stands beside a multiple bond (imides, azoles, azide):
+// the strong bases made from plain amines are reagents of their own.
+func (f *freeing) stabilised(a int32) bool {
+	for _, nb := range f.nbs[a] {
+		if f.b.Bonds[nb.Bond].Order > 1 {
+			return true
+		}
+		for _, c := range f.nbs[nb.Atom] {
+			if f.b.Bonds[c.Bond].Order > 1 {
+				return true
+			}
+		}
 	}
 	return false
 }
