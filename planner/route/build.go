@@ -244,7 +244,7 @@ func (r *Route) doubt(c *chemistry, p *Plan) {
 				map[string]string{"even": "one of about equal amounts", "minor": "smaller part"}[s.Share])
 		}
 	}
-	r.stereoDoubt(p, add)
+	r.stereoDoubt(c, p, add)
 	for _, s := range r.Steps {
 		if s.Origin == "estimated" {
 			add("Step %d (%s): conditions and yield are estimated, not published.", s.Number, s.Name)
@@ -270,11 +270,18 @@ func (r *Route) doubt(c *chemistry, p *Plan) {
 }
 
 // stereoDoubt says where marks of the target are met in the relative sense only.
-func (r *Route) stereoDoubt(p *Plan, add func(string, ...any)) {
+func (r *Route) stereoDoubt(c *chemistry, p *Plan, add func(string, ...any)) {
 	if len(p.Molecule.Centers()) == 0 {
 		return
 	}
-	for _, s := range r.Steps {
+	for i := range r.Steps {
+		s := &r.Steps[i]
+		for j := range s.Reactants {
+			if c.racemicStart(s, j) {
+				add("Racemic: %s is at hand without a mark; one enantiomer needs a resolved start or a resolution.", label(s.ReactantNames[j], s.Reactants[j]))
+				return
+			}
+		}
 		if s.Racemic {
 			add("Racemic: step %d (%s) sets the marks relative to each other only.", s.Number, s.Name)
 			return

@@ -39,8 +39,8 @@ type chemistry struct {
 	by            RankBy
 	filter        *filter
 	from          []*molecule.Molecule
-	fromSeen      []molecule.Key
-	floor         float64 // no step weighs less
+	flatShelf     map[molecule.Key]*molecule.Molecule // shelf items by their key without stereo marks
+	floor         float64                             // no step weighs less
 	oneEnantiomer bool
 	guesser       *guesser
 
@@ -52,11 +52,13 @@ type chemistry struct {
 
 func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *chemistry {
 	c := &chemistry{world: w, by: by, filter: f, from: from, molecules: map[search.Key]*molecule.Molecule{},
-		options: map[search.Key][][]option{}, materials: map[search.Key]*Material{}}
+		options: map[search.Key][][]option{}, materials: map[search.Key]*Material{}, flatShelf: map[molecule.Key]*molecule.Molecule{}}
 	c.floor = c.leastStep()
 	c.guesser = newGuesser(w.Shelf, from)
-	for _, m := range from {
-		c.fromSeen = append(c.fromSeen, m.SeenThroughKey())
+	for _, m := range w.Shelf {
+		if k := flatKey(m); c.flatShelf[k] == nil || !marked(m) {
+			c.flatShelf[k] = m
+		}
 	}
 	return c
 }
@@ -95,12 +97,11 @@ func (c *chemistry) leastStep() float64 {
 // as (another salt, a tautomer). Such an item is always a leaf, so its atoms need no order.
 func (c *chemistry) enter(m *molecule.Molecule) search.Key {
 	k := search.Key(m.Key())
-	if len(c.from) > 0 {
-		seen := m.SeenThroughKey()
-		for i, f := range c.fromSeen {
-			if f == seen {
-				k = search.Key(c.from[i].Key())
-			}
+	for _, f := range c.from {
+		if ok, racemic := meets(f, m); ok && !(racemic && c.oneEnantiomer) {
+			k = search.Key(f.Key())
+			m = f
+			break
 		}
 	}
 	c.mu.Lock()
@@ -125,7 +126,13 @@ func (c *chemistry) material(k search.Key) *Material {
 	if mat != nil {
 		return mat
 	}
-	found := c.world.Materials.Molecule(c.molecule(k))
+	m := c.molecule(k)
+	found := c.world.Materials.Molecule(m)
+	if !found.OnShelf {
+		if other, ok := c.otherMarks(m); ok {
+			found = other
+		}
+	}
 	c.mu.Lock()
 	defer c.mu.Unlock()
 	if c.materials[k] == nil {
@@ -136,8 +143,10 @@ func (c *chemistry) material(k search.Key) *Material {
 
 // stocked says whether a molecule stands on the shelf or is an item of From.
 func (c *chemistry) stocked(m *molecule.Molecule) bool {
-	if slices.Contains(c.fromSeen, m.SeenThroughKey()) {
-		return true
+	for _, f := range c.from {
+		if ok, _ := meets(f, m); ok {
+			return true
+		}
 	}
 	return c.material(c.enter(m)).OnShelf
 }

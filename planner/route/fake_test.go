@@ -2,6 +2,7 @@ package route
 
 import (
 	"context"
+	"strings"
 	"testing"
 
 	"shelfward/molecule"
@@ -68,3 +69,12 @@ func plan(t testing.TB, w *World, target string, o Options) *Plan {
 
 // molecules returns the target of a plan as a list.
 func (p *Plan) molecules() []*molecule.Molecule { return []*molecule.Molecule{p.Molecule} }
+
+func hasDoubt(r *Route, word string) bool {
+	for _, d := range r.Doubts {
+		if strings.Contains(d, word) {
+			return true
+		}
+	}
+	return false
+}

@@ -127,6 +127,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		}
 		p.Routes = append(p.Routes, *built)
 	}
+	p.WouldOpen = c.openings(found.Openings)
 	p.fillSearch(found)
 	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), len(w.Shelf)
 	p.order(o.Count)

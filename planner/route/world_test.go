@@ -2,6 +2,7 @@ package route
 
 import (
 	"math"
+	"os"
 	"strings"
 	"sync"
 	"testing"
@@ -58,7 +59,12 @@ func (b *bottles) Named(name string) (Material, bool) {
 	return mat, ok
 }
 
-var book = sync.OnceValues(func() (*reactions.Book, error) { return reactions.Load(rules.Files()) })
+var book = sync.OnceValues(func() (*reactions.Book, error) {
+	if dir := os.Getenv("RULES_SNAPSHOT"); dir != "" {
+		return reactions.Load(os.DirFS(dir))
+	}
+	return reactions.Load(rules.Files())
+})
 
 // worldWith makes a world of the built-in rules and a shelf.
 func worldWith(t testing.TB, b *bottles) *World {

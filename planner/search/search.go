@@ -72,6 +72,7 @@ type Result struct {
 	Bound        float64 // no route outside the list costs less than this; infinite when exhausted
 	Stopped      Stop
 	Elapsed      time.Duration
+	Openings     []Opening // without a route: nodes that would complete one, the cheapest first
 }
 
 // Stop says what ended a search.
@@ -307,6 +308,9 @@ func (r *run) finish() {
 			res.ProvenRoutes++
 		}
 		res.Routes = append(res.Routes, Route{Cost: t.cost, Tree: r.tree(t), Proven: proven, Stood: time.Duration(r.stood(t))})
+	}
+	if len(res.Routes) == 0 {
+		res.Openings = r.g.openings()
 	}
 	res.Elapsed = time.Since(r.start)
 }

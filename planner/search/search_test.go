@@ -232,6 +232,38 @@ func TestLostAtoms(t *testing.T) {
 	}
 }
 
+// TestOpenings puts what is said to open a route in stock: a route must then exist, unless a molecule
+// repeats on it (bounds do not see that).
+func TestOpenings(t *testing.T) {
+	opened, looped := 0, 0
+	for seed := uint64(0); seed < 1500; seed++ {
+		m, o, _ := task(seed)
+		o.From = nil
+		for _, x := range find(t, m, o).Openings {
+			id := number(x.Key)
+			m.stock[id] = 0
+			if r := find(t, m, o); len(r.Routes) > 0 {
+				opened++
+			} else {
+				looped++
+			}
+			delete(m.stock, id)
+		}
+	}
+	if opened < 200 || looped > opened/20 {
+		t.Errorf("%d opened a route, %d did not", opened, looped)
+	}
+	m := graphOf("0 < 1 2; 2 < 3 4; 2 < 5", 1, 3)
+	r := find(t, m, Options{})
+	var got []int
+	for _, x := range r.Openings {
+		got = append(got, number(x.Key))
+	}
+	if fmt.Sprint(got) != "[2 4 5]" {
+		t.Errorf("openings %v, want 2, 4 and 5", got)
+	}
+}
+
 func TestErrorsAndEnds(t *testing.T) {
 	m := wide(1)
 	if _, err := Find(context.Background(), m, key(0), Options{From: make([]Key, 5)}); err == nil {
