@@ -6,6 +6,7 @@ import (
 	"reflect"
 	"sort"
 	"strings"
+	"sync/atomic"
 	"testing"
 
 	"shelfward/molecule/smiles"
@@ -190,4 +191,34 @@ func minus(a, b []string) (list []string) {
 		}
 	}
 	return list
+}
+
+// The work done is pinned: prefixes visited, not seconds. A looser test would hide lost pruning.
+func TestWork(t *testing.T) {
+	for _, tc := range []struct {
+		formula, blocks string
+		nodes           int
+	}{
+		{"C16H15BrO2", "[cH:1]1ccccc1 + [cH:1]1cc[cH:1]cc1 + [OH:1][CH:1]=O", 3319},
+		{"C10H20O2", "[OH:1][CH:1]=O + 2 [CH3:1]", 2808},
+		{"C8H10", "", 28409},
+	} {
+		p := Problem{Formula: formulaOf(t, tc.formula)}
+		if tc.blocks != "" {
+			p.Blocks = readBlocks(t, tc.blocks)
+		}
+		c, err := compile(p)
+		if err != nil {
+			t.Fatal(err)
+		}
+		out := &collector{ctx: context.Background(), halt: new(atomic.Bool), problem: c, give: func(*Structure) bool { return true }}
+		var s search
+		c.plans(func(pl *plan) bool {
+			s.start(pl, out)
+			return s.visit(0)
+		})
+		if out.nodes != tc.nodes {
+			t.Errorf("%s with %s: %d prefixes, want %d", tc.formula, tc.blocks, out.nodes, tc.nodes)
+		}
+	}
 }

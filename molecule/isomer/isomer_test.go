@@ -35,6 +35,24 @@ func pieceFrom(t testing.TB, text string) Piece {
 	return p
 }
 
+// label names a structure by its canonical string. Package molecule draws a double bond inside an
+// aromatic outline (CC1=CC2=C1C=C2) like the single one (CC1=CC2=CC=C12) where it can; the reference
+// toolkit keeps the two apart, and so do the counts: the label says which it is.
+func label(t testing.TB, s *Structure) string {
+	t.Helper()
+	m, err := s.Materialise()
+	if err != nil {
+		t.Fatalf("%+v: %v", *s, err)
+	}
+	text := smiles.Write(m)
+	for _, b := range s.Bonds {
+		if x := m.Bond(m.BondBetween(int(b.A), int(b.B))); b.Order == 2 && x.Order == 1 && !x.Aromatic {
+			return text + " with an inner double bond"
+		}
+	}
+	return text
+}
+
 // count runs p and returns the number of structures.
 func count(t testing.TB, p Problem) int64 {
 	t.Helper()
@@ -60,7 +78,7 @@ func keys(t testing.TB, p Problem) []string {
 		if got := m.Formula(); got != p.Formula {
 			t.Fatalf("%s has the formula %s, want %s", smiles.Write(m), got, p.Formula)
 		}
-		list = append(list, smiles.Write(m))
+		list = append(list, label(t, s))
 		return true
 	})
 	if err != nil {
@@ -149,11 +167,7 @@ func TestKekuleForms(t *testing.T) {
 		var s search
 		sink := &rawSink{give: func(st *Structure) {
 			forms++
-			m, err := st.Materialise()
-			if err != nil {
-				t.Fatal(err)
-			}
-			all[smiles.Write(m)] = true
+			all[label(t, st)] = true
 		}}
 		c.plans(func(pl *plan) bool {
 			s.start(pl, sink)

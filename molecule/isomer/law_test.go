@@ -36,11 +36,7 @@ func TestPruningLaw(t *testing.T) {
 	for _, f := range formulas {
 		p := Problem{Formula: formulaOf(t, f)}
 		if _, err := Enumerate(context.Background(), p, Options{}, func(s *Structure) bool {
-			m, err := s.Materialise()
-			if err != nil {
-				t.Fatal(err)
-			}
-			all[f], names[f] = append(all[f], s.Clone()), append(names[f], smiles.Write(m))
+			all[f], names[f] = append(all[f], s.Clone()), append(names[f], label(t, s))
 			return true
 		}); err != nil {
 			t.Fatal(err)
@@ -185,11 +181,7 @@ func TestAnyRoot(t *testing.T) {
 			var got []string
 			var s search
 			out := &collector{ctx: context.Background(), halt: new(atomic.Bool), problem: c, give: func(st *Structure) bool {
-				m, err := st.Materialise()
-				if err != nil {
-					t.Fatal(err)
-				}
-				got = append(got, smiles.Write(m))
+				got = append(got, label(t, st))
 				return true
 			}}
 			c.plans(func(pl *plan) bool {
