@@ -12,6 +12,7 @@ const (
 	maxSites     = 6   // sites of an everywhere transform of which every subset is tried
 	maxProposals = 120 // precursor sets looked at
 	maxUnstocked = 2   // choices kept that no shelf item completes
+	maxPlain     = 8   // such proposals kept at places where the target is nothing but chain
 )
 
 // Stocked says whether a molecule is on the shelf or given as a start. nil means that nothing is.
@@ -25,10 +26,14 @@ type proposal struct {
 
 // backwards proposes the precursor sets of one target under one transform.
 func (t *Transform) backwards(b *Book, target *subject, stocked Stocked, cache *subjects) []proposal {
+	if t.Everywhere && len(t.part[forward]) == 1 && t.part[forward][0].query.Matches(target.Subject) {
+		return nil // what reacts everywhere would have left no such site
+	}
 	sites := t.sites(target)
 	if len(sites) == 0 {
 		return nil
 	}
+	nearFeaturesFirst(target.M, sites)
 	x := &undoer{t: t, b: b, target: target, stocked: stocked, cache: cache, seen: map[string]bool{}}
 	for _, subset := range t.subsets(sites) {
 		x.undo(subset)
@@ -173,26 +178,111 @@ type undoer struct {
 	cache   *subjects
 	seen    map[string]bool
 	out     []proposal
+
+	plain     bool // the site at hand is nothing but chain carbon
+	plainKept int
 }
 
 // undo runs the script backwards at the sites with every choice of co-products and leaving groups.
 func (x *undoer) undo(sites []site) {
 	missing := x.missingParts(sites[0])
+	x.plain = x.plainChain(sites)
 	for ci, co := range x.coproductChoices(missing) {
 		p, mappings := x.lay(sites, co)
 		if p == nil {
 			continue
 		}
-		var list []proposal
-		for fi, frags := range x.t.fragmentChoices() {
-			pieces, err := x.t.script.edit(backward, p, mappings, frags)
-			if err != nil {
-				continue
-			}
-			list = append(list, proposal{pieces, ci*10 + fi})
-		}
-		x.keep(list)
+		x.keep(x.withFragments(p, mappings, ci))
 	}
+}
+
+// hopeless is how many combinations of leaving groups must fail before the site is given up: what the
+// reactant side refuses in these it refuses in all, as the choices are made to fit it.
+const hopeless = 2
+
+// withFragments runs the script backwards once for each combination of leaving groups.
+func (x *undoer) withFragments(p *pool, mappings [][]int32, ci int) []proposal {
+	var list []proposal
+	for fi, frags := range x.t.fragmentChoices() {
+		pieces, err := x.t.script.edit(backward, p, mappings, frags)
+		if err == nil {
+			if next := (proposal{pieces, ci*10 + fi}); x.sound(next) {
+				list = append(list, next)
+			}
+		}
+		if len(list) == 0 && fi+1 >= hopeless {
+			break
+		}
+	}
+	return list
+}
+
+// plainChain says whether the sites touch nothing but sp3 chain carbons without hetero neighbours: putting
+// an unsaturation there is possible anywhere and worth trying in a few places only, those near a feature
+// of the molecule first.
+func (x *undoer) plainChain(sites []site) bool {
+	for _, s := range sites {
+		for _, m := range s.laid {
+			for _, a := range m {
+				if feature(x.target.M, int(a)) {
+					return false
+				}
+			}
+		}
+	}
+	return true
+}
+
+// feature says that an atom is more than a chain carbon.
+func feature(m *molecule.Molecule, a int) bool {
+	if m.Atom(a).Element != 6 || m.InRing(a) || m.Degree(a) > 2 {
+		return true
+	}
+	for _, n := range m.Neighbors(a) {
+		if m.Atom(int(n.Atom)).Element != 6 || m.Bond(int(n.Bond)).Order > 1 {
+			return true
+		}
+	}
+	return false
+}
+
+// nearFeaturesFirst orders sites by their distance from the nearest feature, stably.
+func nearFeaturesFirst(m *molecule.Molecule, sites []site) {
+	far := featureDistance(m)
+	away := func(s site) int {
+		least := len(far)
+		for _, match := range s.laid {
+			for _, a := range match {
+				least = min(least, far[a])
+			}
+		}
+		return least
+	}
+	sort.SliceStable(sites, func(i, j int) bool { return away(sites[i]) < away(sites[j]) })
+}
+
+// featureDistance gives each atom its distance in bonds from the nearest feature.
+func featureDistance(m *molecule.Molecule) []int {
+	far := make([]int, m.NumAtoms())
+	var queue []int
+	for a := range far {
+		far[a] = m.NumAtoms()
+		if feature(m, a) {
+			far[a] = 0
+			queue = append(queue, a)
+		}
+	}
+	for len(queue) > 0 {
+		a := queue[0]
+		queue = queue[1:]
+		for _, n := range m.Neighbors(a) {
+			if far[n.Atom] > far[a]+1 {
+				far[n.Atom] = far[a] + 1
+				queue = append(queue, int(n.Atom))
+			}
+		}
+	}
+	return far
 }
 
 func (x *undoer) missingParts(s site) []int {
@@ -329,15 +419,18 @@ func (x *undoer) keep(list []proposal) {
 	loose := 0
 	for _, p := range list {
 		key := precursorKey(p.pieces)
-		if x.seen[key] || !x.sound(p) {
+		if x.seen[key] {
 			continue
 		}
 		x.seen[key] = true
 		if x.stocked == nil || !x.anyStocked(p) {
-			if loose >= maxUnstocked {
+			if loose >= maxUnstocked || x.plain && x.plainKept >= maxPlain {
 				continue
 			}
 			loose++
+			if x.plain {
+				x.plainKept++
+			}
 		}
 		x.out = append(x.out, p)
 	}

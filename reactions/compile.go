@@ -192,22 +192,49 @@ func (l *loader) compileParts(t *Transform, src *sourceTransform, file string) e
 // ownWords are words about an atom's own bonds: they hold on both sides where these do not change.
 var ownWords = []string{"any charge", "sp3", "sp2", "sp", "aromatic", "not aromatic", "hydrogens ", "carbon neighbours ", "hetero neighbours ", "heavy neighbours ", "one of ", "none of "}
 
-// carryWords copies to the product side what is said of atoms whose bonds stay as they are.
+// shapeWords are words about shape that single bonds made or cut do not change.
+var shapeWords = []string{"sp3", "sp2", "sp", "aromatic", "not aromatic", "one of ", "none of "}
+
+// carryWords copies to the product side what is said of atoms and does not change there.
 func (t *Transform) carryWords(left, right pattern.Where) {
 	for key, words := range left {
 		class, err := strconv.Atoi(key)
 		s := t.script.slotOfClass(class)
-		if err != nil || s < 0 || t.script.touched[s] || t.script.slots[s].at[backward] < 0 {
+		if err != nil || s < 0 || t.script.slots[s].at[backward] < 0 {
 			continue
 		}
+		carried := ownWords
+		if t.script.touched[s] {
+			if !t.script.onlySingleBonds(s) {
+				continue
+			}
+			carried = shapeWords
+		}
 		for _, w := range words {
-			for _, own := range ownWords {
-				if w == own || strings.HasSuffix(own, " ") && strings.HasPrefix(w, own) {
-					right[key] = append(right[key], w)
-				}
+			if startsAs(w, carried) {
+				right[key] = append(right[key], w)
 			}
 		}
 	}
+}
+
+func startsAs(word string, list []string) bool {
+	for _, own := range list {
+		if word == own || strings.HasSuffix(own, " ") && strings.HasPrefix(word, own) {
+			return true
+		}
+	}
+	return false
+}
+
+// onlySingleBonds says that an atom makes and breaks single bonds only.
+func (s *script) onlySingleBonds(slot int) bool {
+	for _, e := range s.bonds {
+		if (e.a == slot || e.b == slot) && (e.order[0] > 1 || e.order[1] > 1) {
+			return false
+		}
+	}
+	return true
 }
 
 // narrowProducts gives an atom written '*' among the products the elements its reactant side allows.
