@@ -35,7 +35,7 @@ type aromaticity struct {
 	neighbors [][]int32 // candidate rings that share exactly one bond
 	done      []bool    // candidate already in a fused system
 	count     []int32   // by atom or bond, zero between uses
-	bondRings [][2]int32
+	system    []int32   // rings of the fused system at hand
 	arena     []int32
 }
 
@@ -301,11 +301,8 @@ func (p *perceiver) linkCandidates() {
 func (p *perceiver) fusedSystem(start int32) {
 	ar := &p.aromatic
 	ar.done[start] = true
-	if len(ar.neighbors[start]) == 0 {
-		p.tryRings([]int32{start})
-		return
-	}
-	system := []int32{start}
+	system := append(ar.system[:0], start)
+	defer func() { ar.system = system }()
 	for i := 0; i < len(system); i++ {
 		for _, j := range ar.neighbors[system[i]] {
 			if !ar.done[j] {
@@ -338,6 +335,12 @@ const maxSets = 200_000
 // first ring by rings later in the system (S. Wernicke's ESU enumeration).
 func (p *perceiver) connectedSets(system []int32, size int) {
 	ar := &p.aromatic
+	if size == 1 {
+		for i := range system {
+			p.tryRings(system[i : i+1])
+		}
+		return
+	}
 	order := make([]int32, len(ar.rings))
 	for i, r := range system {
 		order[r] = int32(i)

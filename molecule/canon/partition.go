@@ -133,7 +133,7 @@ func (r *refiner) collect(p *partition, s int32) bool {
 // towards the old cell agree, so that the first new cell follows from the others.
 func (r *refiner) split(p *partition, s int32) {
 	k := r.keys
-	if len(k) <= 24 {
+	if len(k) <= 48 {
 		for i := 1; i < len(k); i++ {
 			x := k[i]
 			j := i

@@ -125,7 +125,7 @@ func (r *reader) bracketAtom() error {
 		for range a.Hydrogens {
 			k.add(molecule.LigandHydrogen)
 		}
-		r.markOf[r.prev] = int32(len(r.marks))
+		r.atoms[r.prev].mark = int32(len(r.marks))
 		r.marks = append(r.marks, k)
 	}
 	return nil

@@ -40,11 +40,8 @@ type reader struct {
 	text      string
 	i         int
 	b         molecule.Builder
-	lower     []bool   // atom written in lower case
-	atomAt    []int32  // atom -> position in the text
-	bondAt    []int32  // bond -> position
-	bondDir   []int8   // bond -> 1 for '/' and -1 for '\' as seen from its A to its B
-	markOf    []int32  // atom -> index in marks, -1 none
+	atoms     []written // per atom
+	bonds     []writtenBond
 	branches  []branch // atoms to return to at ')'
 	closures  []closure
 	openCount int
@@ -54,6 +51,19 @@ type reader struct {
 	bond      uint8
 	bondPos   int32
 	prev      int32 // atom that the next one is bonded to, -1 none
+}
+
+// written is where and how an atom stands in the text.
+type written struct {
+	at    int32 // position
+	mark  int32 // index in marks, -1 none
+	lower bool  // lower case
+}
+
+// writtenBond is where a bond stands, and 1 for '/' and -1 for '\' as seen from its A to its B.
+type writtenBond struct {
+	at  int32
+	dir int8
 }
 
 type branch struct {
@@ -80,8 +90,7 @@ func (r *reader) reset(text string) {
 	r.text, r.i = text, 0
 	r.b.Atoms, r.b.Bonds = r.b.Atoms[:0], r.b.Bonds[:0]
 	r.b.Centers, r.b.DoubleBonds = r.b.Centers[:0], r.b.DoubleBonds[:0]
-	r.lower, r.atomAt, r.markOf = r.lower[:0], r.atomAt[:0], r.markOf[:0]
-	r.bondAt, r.bondDir = r.bondAt[:0], r.bondDir[:0]
+	r.atoms, r.bonds = r.atoms[:0], r.bonds[:0]
 	r.branches, r.marks = r.branches[:0], r.marks[:0]
 	if r.openCount != 0 {
 		clear(r.closures)
@@ -155,22 +164,25 @@ func (r *reader) place(err error, to []int32) error {
 	}
 	switch {
 	case e.Atom >= 0:
-		return r.fail(int(r.atomAt[original(e.Atom, to)]), "%s", e.Text)
+		return r.fail(int(r.atoms[original(e.Atom, to)].at), "%s", e.Text)
 	case e.Bond >= 0 && to == nil:
-		return r.fail(int(r.bondAt[e.Bond]), "%s", e.Text)
+		return r.fail(int(r.bonds[e.Bond].at), "%s", e.Text)
 	}
 	return r.fail(0, "%s", e.Text)
 }
 
 // checkLower refuses lower-case atoms outside rings.
 func (r *reader) checkLower(m *molecule.Molecule, to []int32) error {
-	for a, l := range r.lower {
+	for a := range r.atoms {
+		if !r.atoms[a].lower {
+			continue
+		}
 		n := a
-		if l && to != nil {
+		if to != nil {
 			n = int(to[a])
 		}
-		if l && !m.InRing(n) {
-			return r.fail(int(r.atomAt[a]), "a lower-case (aromatic) atom must lie in a ring")
+		if !m.InRing(n) {
+			return r.fail(int(r.atoms[a].at), "a lower-case (aromatic) atom must lie in a ring")
 		}
 	}
 	return nil
@@ -287,12 +299,10 @@ func (r *reader) finish() error {
 func (r *reader) addAtom(a molecule.Atom, lower bool, position int) {
 	at := int32(len(r.b.Atoms))
 	r.b.Atoms = append(r.b.Atoms, a)
-	r.lower = append(r.lower, lower)
-	r.atomAt = append(r.atomAt, int32(position))
-	r.markOf = append(r.markOf, -1)
+	r.atoms = append(r.atoms, written{int32(position), -1, lower})
 	if r.prev >= 0 {
 		r.addBond(r.prev, at, r.bond, position)
-		if k := r.markOf[r.prev]; k >= 0 {
+		if k := r.atoms[r.prev].mark; k >= 0 {
 			r.marks[k].add(at)
 		}
 	}
@@ -306,7 +316,7 @@ func (r *reader) addBond(a, b int32, symbol uint8, position int) {
 	switch symbol {
 	case bondDefault:
 		order = 1
-		if r.lower[a] && (r.lower[b] || r.star(b)) || r.star(a) && (r.lower[b] || r.star(b)) {
+		if r.atoms[a].lower && (r.atoms[b].lower || r.star(b)) || r.star(a) && (r.atoms[b].lower || r.star(b)) {
 			order = molecule.OrderAromatic // Build makes it single outside rings
 		}
 	case bondUp, bondDown:
@@ -317,8 +327,7 @@ func (r *reader) addBond(a, b int32, symbol uint8, position int) {
 		r.anyDir = true
 	}
 	r.b.Bonds = append(r.b.Bonds, molecule.Bond{A: a, B: b, Order: order})
-	r.bondAt = append(r.bondAt, int32(position))
-	r.bondDir = append(r.bondDir, dir)
+	r.bonds = append(r.bonds, writtenBond{int32(position), dir})
 }
 
 // star says that a is the unknown atom, which takes part in aromatic rings as needed.
@@ -350,7 +359,7 @@ func (r *reader) ringDigit() error {
 	if !c.open {
 		*c = closure{true, r.prev, bond, int32(at)}
 		r.openCount++
-		if k := r.markOf[r.prev]; k >= 0 {
+		if k := r.atoms[r.prev].mark; k >= 0 {
 			r.marks[k].add(int32(-10 - n))
 			r.marks[k].digits++
 		}
@@ -392,7 +401,7 @@ func (r *reader) closeRing(c *closure, n int, bond uint8, at int) error {
 		}
 	}
 	r.addBond(c.atom, r.prev, symbol, at)
-	if k := r.markOf[c.atom]; k >= 0 {
+	if k := r.atoms[c.atom].mark; k >= 0 {
 		m := &r.marks[k]
 		for i := range m.ligands[:m.count] {
 			if m.ligands[i] == int32(-10-n) {
@@ -400,7 +409,7 @@ func (r *reader) closeRing(c *closure, n int, bond uint8, at int) error {
 			}
 		}
 	}
-	if k := r.markOf[r.prev]; k >= 0 {
+	if k := r.atoms[r.prev].mark; k >= 0 {
 		r.marks[k].add(c.atom)
 		r.marks[k].digits++
 	}

@@ -47,14 +47,15 @@ type side struct {
 // addDoubleBonds reads the directions around each double bond.
 func (r *reader) addDoubleBonds() error {
 	sides := map[int32][]side{}
-	for i, d := range r.bondDir {
+	for i := range r.bonds {
+		d := r.bonds[i].dir
 		if d == 0 {
 			continue
 		}
 		x := r.b.Bonds[i]
 		// Written A then B: '/' puts B above A, and A below B.
-		sides[x.A] = append(sides[x.A], side{x.B, d > 0, r.bondAt[i]})
-		sides[x.B] = append(sides[x.B], side{x.A, d < 0, r.bondAt[i]})
+		sides[x.A] = append(sides[x.A], side{x.B, d > 0, r.bonds[i].at})
+		sides[x.B] = append(sides[x.B], side{x.A, d < 0, r.bonds[i].at})
 	}
 	for i := range r.b.Bonds {
 		x := r.b.Bonds[i]
