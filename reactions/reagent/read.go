@@ -109,6 +109,9 @@ func (w *wording) isWorkup(folded string) bool {
 // closePiece hands words without a substance after them to the one before them.
 func (r *reader) closePiece() {
 	r.flushUnknown()
+	if last := len(r.stage.Mentions) - 1; r.last < 0 {
+		r.last = last // 'aqueous ammonia, large excess': a piece of words belongs to what stands before it
+	}
 	if r.hasWords && r.last >= 0 && r.last < len(r.stage.Mentions) {
 		r.stage.Mentions[r.last].take(r.pending)
 	}
@@ -336,6 +339,15 @@ func (r *reader) splitWord(word string) []string {
 		}
 		if !slices.ContainsFunc(parts, func(part string) bool { return part == "" || !known(part) }) {
 			return parts
+		}
+	}
+	for i := 1; i < len(word)-1; i++ { // 'tert-butanol-water'
+		if word[i] == '-' {
+			_, left := r.nameAt(word[:i])
+			_, right := r.nameAt(word[i+1:])
+			if left && right {
+				return []string{word[:i], word[i+1:]}
+			}
 		}
 	}
 	return nil

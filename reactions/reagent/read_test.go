@@ -101,6 +101,15 @@ func TestMentionWords(t *testing.T) {
 	}
 }
 
+// TestWordsOfTheirOwn checks that a piece without a substance belongs to the one before it.
+func TestWordsOfTheirOwn(t *testing.T) {
+	d := table(t).Read("pyridine, piperidine, catalytic; aqueous ammonia, large excess; lithium aluminium hydride, 0.25 equivalent, cold", nil)
+	m := d.Stages[0].Mentions
+	if len(m) != 4 || m[0].Catalytic || !m[1].Catalytic || !m[2].Excess || m[3].Equivalents != 0.25 || m[3].Excess {
+		t.Errorf("got %+v", m)
+	}
+}
+
 // TestFactsOfActs checks the facts that follow from the substances.
 func TestFactsOfActs(t *testing.T) {
 	tb := table(t)
