@@ -141,12 +141,11 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 	for i, re := range s.Reactants {
 		key := m.children[slices.Index(m.option.order, i)]
 		smiles, name := w.Write(re.Molecule), w.Name(re.Molecule)
-		if number[key] == 0 { // the form of the shelf row
-			if mat := c.material(key); mat.OnShelf {
-				smiles = mat.SMILES
-				if mat.Name != "" {
-					name = mat.Name
-				}
+		if number[key] == 0 { // the form of the shelf row or of the item of From
+			mat := c.material(key)
+			smiles = mat.SMILES
+			if mat.Name != "" {
+				name = mat.Name
 			}
 		}
 		out.Reactants = append(out.Reactants, smiles)

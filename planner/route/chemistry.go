@@ -41,6 +41,7 @@ type chemistry struct {
 	from          []*molecule.Molecule
 	flatShelf     map[molecule.Key]*molecule.Molecule // shelf items by their key without stereo marks
 	floor         float64                             // no step weighs less
+	carbonPrice   float64                             // least price of one mol of carbon, for Cost
 	oneEnantiomer bool
 	guesser       *guesser
 
@@ -54,6 +55,9 @@ func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *ch
 	c := &chemistry{world: w, by: by, filter: f, from: from, molecules: map[search.Key]*molecule.Molecule{},
 		options: map[search.Key][][]option{}, materials: map[search.Key]*Material{}, flatShelf: map[molecule.Key]*molecule.Molecule{}}
 	c.floor = c.leastStep()
+	if by == Cost {
+		c.carbonPrice = c.cheapestCarbon()
+	}
 	c.guesser = newGuesser(w.Shelf, from)
 	for _, m := range w.Shelf {
 		if k := flatKey(m); c.flatShelf[k] == nil || !marked(m) {
@@ -133,6 +137,7 @@ func (c *chemistry) material(k search.Key) *Material {
 			found = other
 		}
 	}
+	found.sound()
 	c.mu.Lock()
 	defer c.mu.Unlock()
 	if c.materials[k] == nil {
@@ -283,8 +288,38 @@ const carbon = molecule.Element(6)
 
 func hasCarbon(m *molecule.Molecule) bool { return m.Formula().Count[carbon] > 0 }
 
-// Bound: every molecule that is made needs one step at least.
-func (c *chemistry) Bound(search.Key, uint8) (int, float64) { return 1, c.floor }
+// carbonMass is the molar mass of carbon in g/mol (IUPAC standard atomic weight, abridged).
+const carbonMass = 12.011
+
+// Bound: every molecule that is made needs one step at least. Its carbon comes from materials: their
+// mass is charged, and their price is at least that of the cheapest carbon on the shelf.
+func (c *chemistry) Bound(k search.Key, _ uint8) (int, float64) {
+	switch c.by {
+	case Waste:
+		return 1, carbonMass * float64(c.molecule(k).Formula().Count[carbon])
+	case Cost:
+		return 1, c.carbonPrice * float64(c.molecule(k).Formula().Count[carbon])
+	}
+	return 1, c.floor
+}
+
+// cheapestCarbon is the least price of one mol of carbon among the materials at hand.
+func (c *chemistry) cheapestCarbon() float64 {
+	least := math.Inf(1)
+	for _, list := range [][]*molecule.Molecule{c.world.Shelf, c.from} {
+		for _, m := range list {
+			if n := m.Formula().Count[carbon]; n > 0 {
+				mat := c.world.Materials.Molecule(m)
+				price, _ := mat.Price()
+				least = min(least, price/float64(n))
+			}
+		}
+	}
+	if math.IsInf(least, 1) {
+		return 0
+	}
+	return least
+}
 
 // Guess estimates the steps still needed from what the molecule has in common with what it could be
 // made from; it orders the work and proves nothing.

@@ -114,7 +114,10 @@ func (c *chemistry) restore(ctx context.Context, s *Step) error {
 func (c *chemistry) consumes(judged *reactions.Step, s *Step) bool {
 	for i, r := range judged.Reactants {
 		m, err := c.world.Read(s.Reactants[i])
-		if err != nil || m.SeenThroughKey() != r.Molecule.SeenThroughKey() {
+		if err != nil {
+			return false
+		}
+		if ok, _ := meets(m, r.Molecule); !ok {
 			return false
 		}
 	}

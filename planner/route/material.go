@@ -31,6 +31,19 @@ type Material struct {
 	HazardsKnown bool     // false: never looked up
 }
 
+// sound replaces masses that are not numbers, so that sums stay figures.
+func (m *Material) sound() {
+	if math.IsNaN(m.MolarMass) {
+		m.MolarMass = 0
+	}
+	if math.IsNaN(m.MassPerMol) {
+		m.MassPerMol, m.WaterPerMol = m.MolarMass, 0
+	}
+	if math.IsNaN(m.WaterPerMol) {
+		m.WaterPerMol = 0
+	}
+}
+
 // Price returns the price per mol used for ranking and whether it is known.
 func (m *Material) Price() (perMol float64, known bool) {
 	if math.IsNaN(m.PricePerMol) {

@@ -230,10 +230,21 @@ func (r *Route) writeMaterials(t *writer) {
 	for _, b := range r.ToBuy {
 		t.line("  not on the shelf: %s, %s (%s)", label(b.Name, b.SMILES), b.Needed, b.Why)
 	}
+	perStep := map[int]int{}
 	for _, a := range r.Alternatives {
-		t.line("  instead, in step %d: %s with %s, yield %s %%", a.Step, a.Name, strings.Join(a.Reagents, ", "), Percent(a.Yield))
+		if perStep[a.Step]++; perStep[a.Step] <= alternativesShown {
+			t.line("  instead, in step %d: %s with %s, yield %s %%", a.Step, a.Name, nameOr(strings.Join(a.Reagents, ", "), "no reagent"), Percent(a.Yield))
+		}
+	}
+	for i := range r.Steps {
+		if more := perStep[i+1] - alternativesShown; more > 0 {
+			t.line("  and %d more for step %d", more, i+1)
+		}
 	}
 }
+
+// alternativesShown is how many ways per step are printed; JSON has all.
+const alternativesShown = 3
 
 // label prefers a name to a structure.
 func label(name, smiles string) string {

@@ -187,6 +187,7 @@ func (w *World) named(name string) (Material, bool) {
 	if m, ok := w.Materials.Named(name); ok {
 		n = namedMaterial{m, true}
 	}
+	n.material.sound()
 	w.names.Store(name, n)
 	return n.material, n.known
 }
