@@ -15,6 +15,9 @@ func Near(word string, known []string) string {
 	return ""
 }
 
+// maxNear bounds the words for which near ones are looked for: nobody mistypes a longer one by a letter.
+const maxNear = 60
+
 // NearWords returns up to count words of known near word, the nearest first, ties in the order of
 // known. Words that word begins, or that begin word, count as near too.
 func NearWords(word string, known []string, count int) []string {
@@ -23,6 +26,9 @@ func NearWords(word string, known []string, count int) []string {
 		distance int
 	}
 	w := []rune(strings.ToLower(strings.TrimSpace(word)))
+	if len(w) > maxNear {
+		return nil
+	}
 	limit := max(1, len(w)/3)
 	var found []scored
 	for _, k := range known {
