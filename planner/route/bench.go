@@ -44,10 +44,13 @@ func LoadBench(path string) (*Bench, error) {
 	return &Bench{f.Coldest, f.Hottest, f.Has, f.Lacks, f.LargestFlask, f.NeedsApproval, f.Never}, nil
 }
 
-// can says whether the room can carry out a condition set: its temperature window is in reach at one
-// end at least, and nothing it needs is lacking.
+// reachC is how far, in C, the coldest bath may stay above the low end of a temperature window.
+const reachC = 5
+
+// can says whether the room can carry out a condition set: its bath reaches the low end of the
+// temperature window, its heating too, and nothing it needs is lacking.
 func (b *Bench) can(c *reactions.Conditions) bool {
-	if b.ColdestC != nil && c.Temperature[1] < *b.ColdestC {
+	if b.ColdestC != nil && c.Temperature[0] < *b.ColdestC-reachC {
 		return false
 	}
 	if b.HottestC != nil && c.Temperature[0] > *b.HottestC {

@@ -16,8 +16,10 @@ var page = template.Must(template.New("sheet").Funcs(template.FuncMap{
 	"role": roleText, "equiv": func(x float64) string { return positive(x, "%.3g") }, "molar": func(x float64) string { return positive(x, "%.2f") },
 	"mmol": positiveDigits, "percent": func(x float64) string { return digits(100 * x) }, "steps": joinInts, "have": haveText,
 	"none": orNone, "pictograms": pictograms,
-	"drawing": func(c Compound) template.HTML { return template.HTML(draw.SVG(c.Molecule, draw.Options{Title: shown(c)})) },
-	"short":   func(s string) string { return strings.TrimSpace(s) },
+	"drawing": func(c Compound) template.HTML {
+		return template.HTML(draw.SVG(c.Molecule, draw.Options{Title: shown(c)}))
+	},
+	"short": func(s string) string { return strings.TrimSpace(s) },
 	"ml": func(x float64) string {
 		if x <= 0 {
 			return ""
