@@ -5,8 +5,10 @@ import (
 	"strings"
 	"testing"
 
+	"shelfward/molecule/pattern"
 	"shelfward/molecule/smiles"
 	"shelfward/reactions/reagent"
+	"shelfward/rules"
 )
 
 func data(t testing.TB) *Data {
@@ -200,6 +202,67 @@ func TestCautions(t *testing.T) {
 	for _, text := range []string{d.StandingCaution(), d.ShortCaution()} {
 		if !strings.Contains(text, "risk assessment") || !strings.Contains(text, "safety data sheets") {
 			t.Errorf("the caution does not defer to people and data sheets: %q", text)
+		}
+	}
+}
+
+// TestGroupsExist checks that the functional groups named in incompatible.yaml stand in groups.yaml.
+func TestGroupsExist(t *testing.T) {
+	var file struct {
+		Groups []map[string]any `yaml:"groups"`
+	}
+	if err := rules.ReadInto(rules.Files(), "groups.yaml", &file); err != nil {
+		t.Fatal(err)
+	}
+	known := map[string]bool{}
+	for _, g := range file.Groups {
+		id, _ := g["id"].(string)
+		known[id] = true
+	}
+	for _, g := range data(t).groups {
+		for _, id := range g.groups {
+			if !known[id] {
+				t.Errorf("group %s: no functional group %q in groups.yaml", g.id, id)
+			}
+		}
+	}
+}
+
+// TestClashesByStructure finds clashes of compounds that no list names, by their groups.
+func TestClashesByStructure(t *testing.T) {
+	groups := pattern.NewGroups()
+	for id, text := range map[string]string{"ketone": "[C:1]=[O:2]", "acid-chloride": "[C:1](=[O:2])[Cl:3]", "azide": "[N:1]=[N+:2]=[N-:3]"} {
+		where := pattern.Where{}
+		if id == "ketone" {
+			where["1"] = []string{"carbon neighbours 2"}
+		}
+		if err := groups.Add(id, id, []string{text}, where, nil); err != nil {
+			t.Fatal(err)
+		}
+	}
+	mol := func(name, structure string) Substance {
+		m, err := smiles.Read(structure)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return Substance{Name: name, Molecule: m}
+	}
+	d := data(t)
+	for _, c := range []struct {
+		a, b  Substance
+		gives string
+	}{
+		{mol("a ketone", "CCCC(=O)CCC"), substance(t, "hydrogen peroxide"), "explosion"},
+		{mol("an acid chloride", "CCCCCCC(=O)Cl"), substance(t, "water"), "toxic gas"},
+		{mol("an azide", "CCCCCCCCN=[N+]=[N-]"), substance(t, "dichloromethane"), "explosion"},
+		{mol("a ketone", "CCCC(=O)CCC"), substance(t, "magnesium sulfate"), ""},
+	} {
+		clashes := d.Clashes([]Substance{c.a, c.b}, groups)
+		switch {
+		case c.gives == "" && len(clashes) > 0:
+			t.Errorf("%s and %s: got %s, want silence", c.a.Name, c.b.Name, clashes[0].Says())
+		case c.gives != "" && (len(clashes) != 1 || !slices.Contains(clashes[0].Gives, c.gives)):
+			t.Errorf("%s and %s: got %v, want %s", c.a.Name, c.b.Name, clashes, c.gives)
 		}
 	}
 }
