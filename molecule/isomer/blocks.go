@@ -6,7 +6,7 @@ import (
 )
 
 // maxBlocks bounds the number of different blocks, those that differ in hydrogens counted apart.
-const maxBlocks = 24
+const maxBlocks = 64
 
 // block is a compiled Block of two units or more.
 type block struct {
@@ -20,6 +20,28 @@ type requirement struct {
 	state     *state
 	hydrogens int8 // or AnyHydrogens
 	count     int
+}
+
+func (r *requirement) fits(st *state, hydrogens uint8) bool {
+	return r.state == st && (r.hydrogens == AnyHydrogens || uint8(r.hydrogens) == hydrogens)
+}
+
+// granted reports whether the units outside larger blocks, counted by have, suffice for all
+// requirements together: those with open hydrogens may not use up what the others need.
+func (c *compiled) granted(have func(r *requirement) int) bool {
+	for i := range c.required {
+		r := &c.required[i]
+		asked := 0
+		for _, o := range c.required {
+			if o.state == r.state && (r.hydrogens == AnyHydrogens || o.hydrogens == r.hydrogens) {
+				asked += o.count
+			}
+		}
+		if have(r) < asked {
+			return false
+		}
+	}
+	return true
 }
 
 // compileBlocks checks the pieces. A problem without blocks gets its largest piece of Contains as

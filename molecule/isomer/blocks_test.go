@@ -2,6 +2,8 @@ package isomer
 
 import (
 	"context"
+	"fmt"
+	"math/rand/v2"
 	"os"
 	"reflect"
 	"sort"
@@ -220,5 +222,61 @@ func TestWork(t *testing.T) {
 		if out.nodes != tc.nodes {
 			t.Errorf("%s with %s: %d prefixes, want %d", tc.formula, tc.blocks, out.nodes, tc.nodes)
 		}
+	}
+}
+
+// Random sets of blocks, hydrogens stated or open, against building everything.
+func TestRandomBlocks(t *testing.T) {
+	random := rand.New(rand.NewPCG(77, 5))
+	trials := 60
+	if os.Getenv("SHELFWARD_SLOW") != "" {
+		trials = 2000
+	}
+	formulas := []string{"C6H10O", "C5H8O2", "C4H7NO", "C6H10", "C6H8O", "C4H6N2", "C7H8", "C3H7NO2", "C4H4O2", "C5H7NO", "C8H12", "C4H6O3", "C5H5NO"}
+	pieces := append(append([]string{}, lawPieces...), "[CH2:1][CH2][CH2:1]", "[CH2:1][CH2:1][CH2:1]", "[OH:1][CH:1]=[CH:1]", "[CH2:1]=[CH2:1]",
+		"[NH2:1][CH:1]=O", "[CH3:2][CH2:1]", "[cH:1]1cc[cH:1]o1", "[CH3:3][CH3:3]", "[CH3:1][CH3:1]", "[cH:1]1ccc[nH]1", "[CH2:1]1[CH:1]=[CH:1]1", "[CH3:3][OH:1]")
+	all, names := map[string][]*Structure{}, map[string][]string{}
+	found := 0
+	for trial := 0; trial < trials; trial++ {
+		f := formulas[random.IntN(len(formulas))]
+		if all[f] == nil {
+			if _, err := Enumerate(context.Background(), Problem{Formula: formulaOf(t, f)}, Options{}, func(s *Structure) bool {
+				all[f], names[f] = append(all[f], s.Clone()), append(names[f], label(t, s))
+				return true
+			}); err != nil {
+				t.Fatal(err)
+			}
+		}
+		p := Problem{Formula: formulaOf(t, f)}
+		words := ""
+		for n := 1 + random.IntN(3); n > 0; n-- {
+			x := pieces[random.IntN(len(pieces))]
+			b := Block{lawPiece(t, x), 1 + random.IntN(5)/4}
+			open := random.IntN(3) == 0 && len(b.Piece.Atoms) < 5
+			for a := range b.Piece.Atoms {
+				if open && random.IntN(2) == 0 {
+					b.Piece.Atoms[a].Hydrogens = AnyHydrogens
+				}
+			}
+			p.Blocks = append(p.Blocks, b)
+			words += fmt.Sprint(b.Count, " ", x, b.Piece.Atoms, "; ")
+		}
+		var want []string
+		for i, s := range all[f] {
+			if holdsDisjoint(s, p.Blocks) {
+				want = append(want, names[f][i])
+			}
+		}
+		got := keys(t, p)
+		sort.Strings(want)
+		if len(want) > 0 {
+			found++
+		}
+		if !reflect.DeepEqual(got, want) && len(got)+len(want) > 0 {
+			t.Errorf("trial %d, %s, %s: %d structures, want %d; missing %v, too many %v", trial, f, words, len(got), len(want), minus(want, got), minus(got, want))
+		}
+	}
+	if found < trials/5 {
+		t.Errorf("only %d of %d trials had a solution", found, trials)
 	}
 }

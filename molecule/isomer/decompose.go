@@ -139,10 +139,10 @@ func (w *workspace) decomposition(s *search) bool {
 		return false
 	}
 	free := false // aromatic bonds outside the blocks
-	if s.rings > 0 && s.mayBeAromatic() {
+	if (s.rings > 0 || s.plan.ringed) && s.mayBeAromatic() {
 		w.perceive(s)
 		for _, l := range w.links {
-			if l.code >= inner && l.code != inner+2 && l.aromatic != (l.code == innerAromatic) {
+			if l.code >= inner && l.aromatic != (l.code == innerAromatic) {
 				return false // the block is not what it says: C=C that became part of an aromatic ring
 			}
 			free = free || l.aromatic && l.code < inner
@@ -242,6 +242,9 @@ func (w *workspace) largestCut(s *search) bool {
 			if b+1 < len(c.blocks) {
 				return choose(b+1, w.imageEnd[b], c.blocks[b+1].count, taken)
 			}
+			if !w.leavesEnough(s, taken) {
+				return true // not a cut: the blocks of one unit are missing
+			}
 			for i := range own {
 				if used[i] != own[i] {
 					return used[i] < own[i] // a cut that comes before or after s whatever its code
@@ -266,6 +269,19 @@ func (w *workspace) largestCut(s *search) bool {
 		return true
 	}
 	return choose(0, 0, c.blocks[0].count, 0)
+}
+
+// leavesEnough reports whether the units outside the set taken hold the blocks of one unit.
+func (w *workspace) leavesEnough(s *search, taken uint32) bool {
+	return s.plan.problem.granted(func(r *requirement) int {
+		n := 0
+		for u := 0; u < s.met; u++ {
+			if k := &s.plan.kinds[s.kind[u]]; taken>>u&1 == 0 && r.fits(k.state, k.hydrogens) {
+				n++
+			}
+		}
+		return n
+	})
 }
 
 // cutNotLarger compares the code of another cut into the same variants.

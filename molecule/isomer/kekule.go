@@ -157,7 +157,7 @@ func (s *search) isolatedRing(ring []uint8) bool {
 	return true
 }
 
-// mayBeAromatic reports whether a bond that the search made lies in a ring without a saturated carbon,
+// mayBeAromatic reports whether a bond not called aromatic lies in a ring without a saturated carbon,
 // the least that an aromatic ring needs, or bridges a block, which may lose its aromatic ring by that.
 func (s *search) mayBeAromatic() bool {
 	var fit uint32
@@ -178,7 +178,7 @@ func (s *search) mayBeAromatic() bool {
 			return true
 		}
 		for _, e := range s.adj[u][:s.deg[u]] {
-			if e.code < inner && int(e.to) > u && fit>>e.to&1 != 0 && s.joined(u, int(e.to), fit) {
+			if e.code != innerAromatic && int(e.to) > u && fit>>e.to&1 != 0 && s.joined(u, int(e.to), fit) {
 				return true
 			}
 		}
@@ -248,7 +248,7 @@ func (w *workspace) perceive(s *search) {
 	for i := range w.links {
 		l := &w.links[i]
 		if b := m.BondBetween(int(w.first[l.a]), int(w.first[l.b])); b >= 0 {
-			l.aromatic = m.Bond(b).Aromatic
+			l.aromatic = m.Bond(b).Aromatic && l.order < 3
 		}
 	}
 }

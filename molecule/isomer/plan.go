@@ -39,6 +39,7 @@ type plan struct {
 	local              bool // prefixes have more to meet than the code (sound)
 	blocks             []*variant
 	perBlock           []int // instances of each block
+	ringed             bool  // some block has a ring that is not aromatic by itself
 
 	problem *compiled
 }
@@ -264,6 +265,7 @@ func (p *plan) chooseRoot() {
 func (p *plan) setRings() {
 	inside := 0
 	for b, v := range p.blocks {
+		p.ringed = p.ringed || v.plainRing()
 		inside += p.perBlock[b] * v.rings()
 	}
 	p.minRings, p.maxRings = 0, maxUnits*4
@@ -308,26 +310,15 @@ func (ban BondBan) between(a, b molecule.Element) bondSet {
 
 // enough reports whether the pools hold the units that blocks of one unit ask for.
 func (c *compiled) enough(pools []pool) bool {
-	for i, r := range c.required {
-		have, asked := 0, 0
+	return c.granted(func(r *requirement) int {
+		have := 0
 		for _, pl := range pools {
-			if pl.state != r.state {
-				continue
-			}
 			for h, n := range pl.split {
-				if r.hydrogens == AnyHydrogens || int(r.hydrogens) == h {
+				if r.fits(pl.state, uint8(h)) {
 					have += n
 				}
 			}
 		}
-		for j, o := range c.required {
-			if o.state == r.state && (r.hydrogens == AnyHydrogens || o.hydrogens == r.hydrogens) && (j <= i || r.hydrogens == AnyHydrogens) {
-				asked += o.count
-			}
-		}
-		if have < asked {
-			return false
-		}
-	}
-	return true
+		return have
+	})
 }

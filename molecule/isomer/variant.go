@@ -28,6 +28,27 @@ type blockBond struct {
 
 func (v *variant) rings() int { return len(v.bonds) - len(v.units) + 1 }
 
+// plainRing reports whether a bond of v that is not aromatic lies in a ring of v.
+func (v *variant) plainRing() bool {
+	for i, out := range v.bonds {
+		if out.code == innerAromatic {
+			continue
+		}
+		seen := uint32(1) << out.a
+		for range v.units {
+			for j, b := range v.bonds {
+				if ends := uint32(1)<<b.a | 1<<b.b; j != i && seen&ends != 0 {
+					seen |= ends
+				}
+			}
+		}
+		if seen>>out.b&1 != 0 {
+			return true
+		}
+	}
+	return false
+}
+
 // cumulated reports whether a unit of v has two double bonds inside.
 func (v *variant) cumulated() bool {
 	var twos [maxUnits]int
