@@ -48,12 +48,13 @@ func findMobile(m *Molecule) *mobile {
 		}
 		return a
 	}
+	mate := w.doubleBonds()
 	for x := range m.atoms {
 		if !w.donor[x] {
 			continue
 		}
-		for y := range m.atoms {
-			if w.pi[y] && mobileElement(m.atoms[y].Element) && w.piece[x] == w.piece[y] && w.exchange(int32(x), int32(y)) {
+		for y, free := range w.exchanges(int32(x), mate) {
+			if free && w.pi[y] && mobileElement(m.atoms[y].Element) {
 				leader[find(int32(x))] = find(int32(y))
 				out.group[x], out.group[y] = 1, 1
 			}
@@ -140,16 +141,29 @@ func (w *mobileWork) pieces() {
 	}
 }
 
-// exchange says that the hydrogen of donor x can go to y: a matching covers x instead of y.
-func (w *mobileWork) exchange(x, y int32) bool {
+// doubleBonds is the matching that the double bonds make.
+func (w *mobileWork) doubleBonds() []int32 {
+	mate := make([]int32, len(w.m.atoms))
+	for a := range mate {
+		mate[a] = -1
+	}
+	for i := range w.m.bonds {
+		if x := &w.m.bonds[i]; x.Order == 2 && w.pi[x.A] && w.pi[x.B] {
+			mate[x.A], mate[x.B] = x.B, x.A
+		}
+	}
+	return mate
+}
+
+// exchanges marks the atoms that the hydrogen of donor x can go to, as far as bonds are concerned.
+func (w *mobileWork) exchanges(x int32, mate []int32) []bool {
 	for a := range w.role {
 		w.role[a] = matching.Absent
-		if w.piece[a] == w.piece[x] && (w.pi[a] && int32(a) != y || int32(a) == x) {
+		if w.pi[a] && w.piece[a] == w.piece[x] || int32(a) == x {
 			w.role[a] = matching.Required
 		}
 	}
-	_, alone := w.matcher.Match(w.m.first, w.m.neighbors, w.usable, w.role)
-	return alone == nil
+	return w.matcher.Reach(w.m.first, w.m.neighbors, w.usable, w.role, mate, x)
 }
 
 // number gives the groups their numbers, hydrogens and kinds.

@@ -18,8 +18,11 @@ func tautomer(m *Molecule, x, y int) *Molecule {
 	if !w.donor[x] || !w.pi[y] || !mobileElement(m.atoms[y].Element) || w.piece[x] != w.piece[y] {
 		return nil
 	}
-	if !w.exchange(int32(x), int32(y)) {
-		return nil
+	for a := range w.role {
+		w.role[a] = matching.Absent
+		if w.piece[a] == w.piece[x] && (w.pi[a] && a != y || a == x) {
+			w.role[a] = matching.Required
+		}
 	}
 	var mt matching.Matcher
 	mate, alone := mt.Match(m.first, m.neighbors, w.usable, w.role)

@@ -137,6 +137,36 @@ func (m *Matcher) augment(first []int32, nbrs []Neighbor, usable []bool, role []
 	return false
 }
 
+// Reach returns the vertices that an alternating path of even length leads to from the free vertex
+// root: those that could be free in its place. mate is a matching of the vertices with a role other
+// than Absent that leaves only root free among them. The result is valid until the next call.
+func (m *Matcher) Reach(first []int32, nbrs []Neighbor, usable []bool, role []Role, mate []int32, root int32) []bool {
+	m.grow(len(first) - 1)
+	copy(m.mate, mate)
+	for i := range m.parent {
+		m.parent[i], m.base[i], m.outer[i] = -1, int32(i), false
+	}
+	m.outer[root] = true
+	m.queue = append(m.queue[:0], root)
+	for i := 0; i < len(m.queue); i++ {
+		a := m.queue[i]
+		for _, nb := range nbrs[first[a]:first[a+1]] {
+			b := nb.Atom
+			switch {
+			case !usable[nb.Bond] || role[b] == Absent || m.base[a] == m.base[b] || m.mate[a] == b:
+			case b == root || m.mate[b] >= 0 && m.parent[m.mate[b]] >= 0:
+				m.contract(a, b, role)
+			case m.parent[b] < 0 && m.mate[b] >= 0:
+				m.parent[b] = a
+				c := m.mate[b]
+				m.outer[c] = true
+				m.queue = append(m.queue, c)
+			}
+		}
+	}
+	return m.outer
+}
+
 // flip exchanges matched and unmatched bonds from the free inner vertex b back to the root.
 func (m *Matcher) flip(b int32) {
 	for b >= 0 {

@@ -110,6 +110,46 @@ func TestAgainstForce(t *testing.T) {
 	}
 }
 
+// TestReach compares with matchings that leave another vertex free.
+func TestReach(t *testing.T) {
+	r := rand.New(rand.NewSource(12))
+	var m Matcher
+	tried := 0
+	for tried < 600 {
+		n := 3 + 2*r.Intn(4)
+		var edges [][2]int32
+		for i := int32(0); i < int32(n); i++ {
+			for j := int32(0); j < i; j++ {
+				if r.Intn(3) == 0 {
+					edges = append(edges, [2]int32{i, j})
+				}
+			}
+		}
+		role := make([]Role, n)
+		for i := range role {
+			role[i] = Required
+		}
+		first, nbrs, usable := pack(n, edges)
+		role[0] = Absent
+		mate, alone := m.Match(first, nbrs, usable, role)
+		if alone != nil {
+			continue
+		}
+		tried++
+		mate = append([]int32(nil), mate...)
+		role[0] = Required
+		reached := append([]bool(nil), m.Reach(first, nbrs, usable, role, mate, 0)...)
+		for v := 1; v < n; v++ {
+			role[v] = Absent
+			_, alone := m.Match(first, nbrs, usable, role)
+			role[v] = Required
+			if reached[v] != (alone == nil) {
+				t.Fatalf("edges %v matching %v: vertex %d reached %v", edges, mate, v, reached[v])
+			}
+		}
+	}
+}
+
 // check says that mate is a matching over the edges.
 func check(t *testing.T, edges [][2]int32, role []Role, mate []int32) {
 	t.Helper()
