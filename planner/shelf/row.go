@@ -269,6 +269,9 @@ func (it *Item) fillFrom(re *reagent.Reagent) {
 		it.Molecule, _ = re.Molecule()
 		it.SMILES, it.ReadAs = re.SMILES, "name"
 	}
+	if re.Form == "solution" && it.PurityFraction > 0 && !it.Strength.Known() {
+		return // the substance itself, where the list describes a solution of it
+	}
 	if !it.Strength.Known() && it.PurityFraction == 0 && re.Form == "solution" {
 		it.Strength = re.Strength
 	}

@@ -377,3 +377,31 @@ func FuzzResolve(f *testing.F) {
 		}
 	})
 }
+
+// TestSolidOfASolution: a row with a purity is the substance itself, even where the list of reagents
+// describes a solution; neither the solution's density nor its hazards belong to it.
+func TestSolidOfASolution(t *testing.T) {
+	it := Read("s.csv", []byte("name,purity,hazards\nsodium ethoxide,95,H251 H314"), known(t)).Items()[0]
+	if it.Strength.Known() || it.DensityGPerML != 0 || strings.Join(it.Hazards, " ") != "H251 H314" {
+		t.Errorf("got strength %v, density %g, hazards %v", it.Strength, it.DensityGPerML, it.Hazards)
+	}
+	it = Read("s.csv", []byte("name\nsodium ethoxide"), known(t)).Items()[0]
+	if it.Strength.String() != "21 % in ethanol" {
+		t.Errorf("a bare name is the usual solution: got %v", it.Strength)
+	}
+}
+
+// TestBuiltinForms lists the rows of the example shelf that took their strength from the list though
+// they give a structure of their own: they would be sold as something else than they say.
+func TestBuiltinForms(t *testing.T) {
+	data, err := os.ReadFile("../../rules/shelf.yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	lines := strings.Split(string(data), "\n")
+	for _, it := range builtin(t).Items() {
+		if line := lines[it.Line-1]; strings.Contains(line, "smiles:") && !strings.Contains(line, "strength:") && it.Strength.Known() {
+			t.Errorf("%s became %v", it.Name, it.Strength)
+		}
+	}
+}
