@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math/rand/v2"
+	"os"
 	"reflect"
 	"sort"
 	"strings"
@@ -42,7 +43,11 @@ func TestPruningLaw(t *testing.T) {
 			t.Fatal(err)
 		}
 	}
-	for trial := 0; trial < 250; trial++ {
+	trials := 250
+	if os.Getenv("SHELFWARD_SLOW") != "" {
+		trials = 4000
+	}
+	for trial := 0; trial < trials; trial++ {
 		f := formulas[random.IntN(len(formulas))]
 		p, words := randomEvidence(t, random, f)
 		var want []string
