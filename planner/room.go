@@ -8,6 +8,7 @@ import (
 	"sort"
 
 	"shelfward/molecule"
+	"shelfward/molecule/restricted"
 	"shelfward/molecule/smiles"
 	"shelfward/planner/route"
 	"shelfward/planner/sheet"
@@ -24,13 +25,11 @@ type Room struct {
 	Hazards  *hazard.Data
 	Shelf    *shelf.Shelf
 	Invented bool // some item comes from the built-in example shelf
-	Screen   Screen
+
+	Restricted *restricted.Screen
 
 	stock *stock
 }
-
-// Screen says whether a molecule must be declined; nil declines nothing.
-type Screen func(*molecule.Molecule) bool
 
 // Open loads the rules of fsys and the shelf files (none: the built-in example shelf); relative shelf
 // paths begin in dir. Errors name file and line.
@@ -50,6 +49,9 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 	if r.Shelf, err = shelf.Load(fsys, shelfFiles, dir, known); err != nil {
 		return nil, err
 	}
+	if r.Restricted, err = restricted.Load(fsys); err != nil {
+		return nil, err
+	}
 	r.Invented = len(shelfFiles) == 0
 	for _, f := range shelfFiles {
 		r.Invented = r.Invented || f == shelf.BuiltinName
@@ -61,7 +63,13 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 // World is the room as route planning sees it.
 func (r *Room) World() *route.World {
 	return &route.World{Book: r.Book, Transforms: r.Book.Transforms, Materials: r.stock, Shelf: r.Shelf.Molecules(),
-		Gravity: r.Hazards.Gravity, Name: r.Name, Declined: r.Screen, Write: smiles.Write, Read: smiles.Read}
+		Gravity: r.Hazards.Gravity, Name: r.Name, Declined: r.declined, Write: smiles.Write, Read: smiles.Read}
+}
+
+// declined says whether a route may not pass through m. What stands on the shelf is a reagent charged,
+// not an intermediate isolated.
+func (r *Room) declined(m *molecule.Molecule) bool {
+	return len(r.Shelf.Find(m)) == 0 && r.Restricted.Intermediate(m).Declined()
 }
 
 // Desk is the room as the route sheet sees it.

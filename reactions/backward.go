@@ -5,6 +5,7 @@ import (
 	"sort"
 
 	"shelfward/molecule"
+	"shelfward/molecule/pattern"
 )
 
 // Limits of the backward direction, per transform and target.
@@ -366,10 +367,11 @@ func (t *Transform) layPart(to []int32, part int, m partMatch, offset int32) {
 // completing lays the part on its co-product, numbered classes at the numbered atoms.
 func (x *undoer) completing(part int, m *molecule.Molecule, c coproduct, s site) partMatch {
 	pq := &x.t.part[backward][part]
-	matches := pq.matches(x.cache.of(m).Subject, func(q, a int) bool {
-		at, fixed := c.classAt[pq.query.Atoms[q].Class]
-		return !fixed || int(at) == a
-	})
+	matches := pq.matches(pattern.NewSubject(m, x.b.groups), // not the cached one: classAt counts atoms of m itself
+		func(q, a int) bool {
+			at, fixed := c.classAt[pq.query.Atoms[q].Class]
+			return !fixed || int(at) == a
+		})
 	if len(matches) == 0 {
 		return nil
 	}

@@ -1,6 +1,10 @@
 package reactions
 
-import "shelfward/molecule"
+import (
+	"slices"
+
+	"shelfward/molecule"
+)
 
 // stereo applies the relations of the script to one mapping, after its bonds have changed: additions
 // and eliminations with a sense (syn, anti) and double bonds made with a geometry (cis, trans).
@@ -86,9 +90,61 @@ func (e *editor) setGeometry(a, b int32, cis bool) {
 	if i < 0 || e.b.Bonds[i].Order != 2 {
 		return
 	}
-	if p, r := e.soleLigand(a, b), e.soleLigand(b, a); p >= 0 && r >= 0 {
+	if p, r := e.seniorLigand(a, b), e.seniorLigand(b, a); p >= 0 && r >= 0 {
 		e.markDouble(i, a, p, r, cis)
 	}
+}
+
+// seniorLigand is the ligand of a that ranks higher by the first CIP rule (atomic numbers, sphere by
+// sphere; IUPAC 2013 P-92.2, from memory), -1 where there is none or two of them rank alike.
+func (e *editor) seniorLigand(a, except int32) int32 {
+	l := e.heavyLigands(a, except)
+	switch len(l) {
+	case 1:
+		return l[0]
+	case 2:
+		for depth := 1; depth <= 5; depth++ {
+			switch x, y := e.sphere(l[0], a, depth), e.sphere(l[1], a, depth); {
+			case x > y:
+				return l[0]
+			case x < y:
+				return l[1]
+			}
+		}
+	}
+	return -1
+}
+
+// sphere writes the atomic numbers of the atoms at a distance from a ligand, highest first, away from the
+// atom it hangs on; a double bond counts its far atom twice.
+func (e *editor) sphere(ligand, from int32, depth int) string {
+	type place struct{ at, from int32 }
+	ring := []place{{ligand, from}}
+	for d := 1; d < depth; d++ {
+		var next []place
+		for _, p := range ring {
+			for _, b := range e.b.Bonds {
+				if b.Order == 0 || b.A != p.at && b.B != p.at {
+					continue
+				}
+				other := b.A + b.B - p.at
+				if other == p.from || e.dead[other] {
+					continue
+				}
+				for n := uint8(0); n < max(1, b.Order%4); n++ {
+					next = append(next, place{other, p.at})
+				}
+			}
+		}
+		ring = next
+	}
+	numbers := make([]byte, len(ring))
+	for i, p := range ring {
+		numbers[i] = byte(e.b.Atoms[p.at].Element)
+	}
+	slices.Sort(numbers)
+	slices.Reverse(numbers)
+	return string(numbers)
 }
 
 // markDouble marks bond i: p hangs on end a, r on the other end.

@@ -55,7 +55,11 @@ type Screen struct {
 var Builtin = sync.OnceValues(func() (*Screen, error) { return Load(rules.Files()) })
 
 // Target screens a target before anything is planned.
-func (s *Screen) Target(m *molecule.Molecule) Verdict { return s.screen(m, true) }
+func (s *Screen) Target(m *molecule.Molecule) Verdict { return s.screen(m, true, true) }
+
+// Product screens what a single step to be judged would make: listed compounds are refused as targets
+// are; energetic groups pass as in an intermediate, with the stop flag.
+func (s *Screen) Product(m *molecule.Molecule) Verdict { return s.screen(m, true, false) }
 
 // maxSeen bounds the cache of intermediates.
 const maxSeen = 1 << 20
@@ -71,7 +75,7 @@ func (s *Screen) Intermediate(m *molecule.Molecule) Verdict {
 	if ok {
 		return v
 	}
-	v = s.screen(m, false)
+	v = s.screen(m, false, false)
 	s.mu.Lock()
 	if len(s.seen) < maxSeen {
 		s.seen[key] = v
@@ -116,8 +120,9 @@ func newSubject(m *molecule.Molecule) *subject {
 	return &subject{pattern.NewSubject(m, acylGroups()), m.Formula()}
 }
 
-// screen runs all classes; the first refusal ends it.
-func (s *Screen) screen(m *molecule.Molecule, target bool) Verdict {
+// screen runs all classes; the first refusal ends it. listed: classes that hold for targets only count;
+// isolated: energetic groups are judged as in an isolated target.
+func (s *Screen) screen(m *molecule.Molecule, listed, isolated bool) Verdict {
 	parts := plain(m)
 	keys := make([]string, len(parts))
 	for i, p := range parts {
@@ -129,16 +134,16 @@ func (s *Screen) screen(m *molecule.Molecule, target bool) Verdict {
 			subjects = append(subjects, newSubject(p))
 		}
 	}
-	if !target && carbons(m) == 0 {
+	if !listed && carbons(m) == 0 {
 		return Verdict{} // a reagent that is bought, no intermediate of a route
 	}
 	var v Verdict
 	for i := range s.classes {
 		c := &s.classes[i]
-		if c.targetOnly && !target && c.refuse {
+		if c.targetOnly && !listed && c.refuse {
 			continue
 		}
-		outcome, flag := c.judge(keys, subjects, target, s.stopFlag)
+		outcome, flag := c.judge(keys, subjects, isolated, s.stopFlag)
 		if outcome == Refused && s.lets(c, keys) {
 			outcome, flag = Flagged, c.says
 		}

@@ -72,11 +72,14 @@ func (o *judgeOptions) run(c *cobra.Command, text string) error {
 	if err != nil {
 		return err
 	}
-	b, err := o.app.book()
+	fsys, err := o.app.ruleFiles()
 	if err != nil {
 		return err
 	}
-	fsys, err := o.app.ruleFiles()
+	if err := o.app.declineProducts(fsys, products); err != nil {
+		return err
+	}
+	b, err := o.app.book()
 	if err != nil {
 		return err
 	}

@@ -7,6 +7,8 @@ import (
 
 	"github.com/spf13/cobra"
 
+	"shelfward/molecule/restricted"
+	"shelfward/molecule/smiles"
 	"shelfward/reactions"
 	"shelfward/rules"
 )
@@ -97,8 +99,11 @@ func (app *App) rulesCheck(c *cobra.Command, ids []string) error {
 	} else if loadErr != nil {
 		return failWith(exitUsage, loadErr)
 	}
-	faults := 0
-	checked := 0
+	screen, err := restricted.Load(fsys)
+	if err != nil {
+		return failWith(exitUsage, err)
+	}
+	faults, checked := 0, 0
 	for _, t := range b.Transforms {
 		if len(ids) > 0 && !contains(ids, t.ID) {
 			continue
@@ -107,7 +112,8 @@ func (app *App) rulesCheck(c *cobra.Command, ids []string) error {
 			return err
 		}
 		checked++
-		for _, f := range b.Check(t) {
+		found := append(b.Check(t), refusedExamples(screen, t)...)
+		for _, f := range found {
 			faults++
 			fmt.Fprintln(app.Out, f)
 		}
@@ -117,6 +123,21 @@ func (app *App) rulesCheck(c *cobra.Command, ids []string) error {
 		return failWith(exitUsage, errSilent)
 	}
 	return nil
+}
+
+// refusedExamples finds examples that make what this program does not plan: such a rule is refused.
+func refusedExamples(screen *restricted.Screen, t *reactions.Transform) []reactions.Fault {
+	var faults []reactions.Fault
+	for _, ex := range t.Examples {
+		m, err := smiles.Read(ex.To)
+		if err != nil {
+			continue
+		}
+		if v := screen.Intermediate(m); v.Declined() {
+			faults = append(faults, reactions.Fault{Place: ex.File, Transform: t.ID, Text: "refused: the example makes a compound of the class " + v.Class})
+		}
+	}
+	return faults
 }
 
 func contains(list []string, x string) bool {

@@ -1,0 +1,82 @@
+package cli
+
+import (
+	"bytes"
+	"os"
+	"strings"
+	"testing"
+)
+
+// readmeCommands lists the lines of the README that begin with 'shelfward ' inside code blocks.
+func readmeCommands(t *testing.T) []string {
+	t.Helper()
+	data, err := os.ReadFile(root + "/README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	var list []string
+	inside := false
+	for _, line := range strings.Split(string(data), "\n") {
+		if strings.HasPrefix(line, "```") {
+			inside = !inside
+		} else if rest, ok := strings.CutPrefix(line, "shelfward "); ok && inside {
+			list = append(list, rest)
+		}
+	}
+	return list
+}
+
+// words splits a command line at spaces outside single quotes.
+func words(line string) []string {
+	var out []string
+	var now strings.Builder
+	quoted, any := false, false
+	for _, c := range line {
+		switch {
+		case c == '\'':
+			quoted, any = !quoted, true
+		case c == ' ' && !quoted:
+			if any {
+				out = append(out, now.String())
+			}
+			now.Reset()
+			any = false
+		default:
+			now.WriteRune(c)
+			any = true
+		}
+	}
+	if any {
+		out = append(out, now.String())
+	}
+	return out
+}
+
+// TestReadmeExamples runs every command of the README from the top of the repository. Searches are cut
+// short by --max-expanded where the line sets no limit of its own.
+func TestReadmeExamples(t *testing.T) {
+	commands := readmeCommands(t)
+	if len(commands) < 10 {
+		t.Fatalf("only %d examples found in README.md", len(commands))
+	}
+	here, err := os.Getwd()
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := os.Chdir(root); err != nil {
+		t.Fatal(err)
+	}
+	defer os.Chdir(here)
+	for _, line := range commands {
+		t.Run(line, func(t *testing.T) {
+			args := append(words(line), "--quiet")
+			var out, errOut bytes.Buffer
+			if status := Main(args, strings.NewReader("OCC ethanol\n"), &out, &errOut); status != exitDone {
+				t.Fatalf("status %d\n%s%s", status, out.String(), errOut.String())
+			}
+			if out.Len() == 0 {
+				t.Fatal("the command printed nothing")
+			}
+		})
+	}
+}
