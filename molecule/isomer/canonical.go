@@ -39,13 +39,14 @@ type judge struct {
 	deg   *[maxUnits]uint8
 	adj   *[maxUnits][maxDegree]edge
 	row   *[maxUnits]uint64
-	depth int // rows that stand; the bonds of units 0 to depth-1 are all known
+	depth int             // rows that stand; the bonds of units 0 to depth-1 are all known
+	spare *[maxUnits]tour // room for the tour that branches at each place
 }
 
 // largest reports whether no tour is known to beat rows 0 to depth-1, and keeps the rivals that are
 // not decided yet: a tour that fell behind once stays behind whatever rows follow.
 func (s *search) largest(depth int) bool {
-	j := judge{&s.kind, &s.deg, &s.adj, &s.row, depth}
+	j := judge{&s.kind, &s.deg, &s.adj, &s.row, depth, s.spare}
 	visited := uint32(1)<<depth - 1
 	i := depth - 1
 
@@ -137,8 +138,9 @@ func (t *tour) branch(j *judge, p int) outcome {
 	}
 	result := smaller
 	for q := p; q < end; q++ {
-		copied := *t
-		switch copied.take(j, p, int(t.unit[q])) {
+		next := &j.spare[p]
+		*next = *t
+		switch next.take(j, p, int(t.unit[q])) {
 		case larger:
 			return larger
 		case same:

@@ -179,7 +179,7 @@ func Enumerate(ctx context.Context, p Problem, opt Options, yield func(s *Struct
 
 // Size is the outcome of Estimate.
 type Size struct {
-	Structures float64 // estimated number of structures before Contains and Accept
+	Structures float64 // estimated number of structures before Accept
 	Error      float64 // standard error of it; heavy tails make it optimistic
 	Probes     int     // random descents made
 }

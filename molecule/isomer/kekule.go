@@ -16,12 +16,12 @@ func (w *workspace) plainKekule(s *search) bool {
 	switch {
 	case len(ring) == 0:
 		return true
-	case len(ring) == 4 && s.rings == 1:
+	case len(ring) == 4 && !several && s.loneRing(int(ring[0])):
 		return true // cyclobutadienes are not aromatic; their two forms are two compounds
 	case !several && len(ring) == 6 && s.isolatedRing(ring):
 		adj := s.adj
 		flip(&adj, &s.deg, ring)
-		j := judge{&s.kind, &s.deg, &adj, &s.row, s.plan.units}
+		j := judge{&s.kind, &s.deg, &adj, &s.row, s.plan.units, s.spare}
 		return !j.beats(s.plan.root, s.met)
 	}
 	w.write(s)
@@ -160,16 +160,7 @@ func (s *search) isolatedRing(ring []uint8) bool {
 // mayBeAromatic reports whether a bond not called aromatic lies in a ring without a saturated carbon,
 // the least that an aromatic ring needs, or bridges a block, which may lose its aromatic ring by that.
 func (s *search) mayBeAromatic() bool {
-	var fit uint32
-	for u := 0; u < s.met; u++ {
-		unsaturated := s.plan.kinds[s.kind[u]].state.element != carbon
-		for _, e := range s.adj[u][:s.deg[u]] {
-			unsaturated = unsaturated || e.code != 1 && e.code != inner
-		}
-		if unsaturated {
-			fit |= 1 << u
-		}
-	}
+	fit := s.unsaturated()
 	for u := 0; u < s.met; u++ {
 		if fit>>u&1 == 0 {
 			continue
@@ -184,6 +175,40 @@ func (s *search) mayBeAromatic() bool {
 		}
 	}
 	return false
+}
+
+// unsaturated returns the units that are not saturated carbons.
+func (s *search) unsaturated() (fit uint32) {
+	for u := 0; u < s.met; u++ {
+		open := s.plan.kinds[s.kind[u]].state.element != carbon
+		for _, e := range s.adj[u][:s.deg[u]] {
+			open = open || e.code != 1 && e.code != inner
+		}
+		if open {
+			fit |= 1 << u
+		}
+	}
+	return fit
+}
+
+// loneRing reports whether unsaturated units round u close one ring and no more.
+func (s *search) loneRing(u int) bool {
+	fit := s.unsaturated()
+	seen, front := uint32(1)<<u, uint32(1)<<u
+	units, ends := 0, 0
+	for front != 0 {
+		v := bits.TrailingZeros32(front)
+		front &= front - 1
+		units++
+		for _, e := range s.adj[v][:s.deg[v]] {
+			if next := uint32(1) << e.to & fit; next != 0 {
+				ends++
+				front |= next &^ seen
+				seen |= next
+			}
+		}
+	}
+	return ends/2 == units
 }
 
 // bridged reports whether four bonds or fewer lead from unit u of a block over units outside it to
@@ -267,7 +292,7 @@ type forms struct {
 // units have the given kinds and the links in the set inside are bonds of blocks.
 func (w *workspace) largestForm(s *search, kinds *[maxUnits]uint8, inside uint64) bool {
 	f := &forms{adj: s.adj, work: w, inside: inside, root: s.plan.root, units: s.met}
-	f.judge = judge{kinds, &s.deg, &f.adj, &s.row, s.plan.units}
+	f.judge = judge{kinds, &s.deg, &f.adj, &s.row, s.plan.units, s.spare}
 	var doubled, covered, outside uint32 // units with an aromatic double bond; with aromatic bonds inside and outside blocks
 	for i, l := range w.links {
 		ends := uint32(1<<l.a | 1<<l.b)

@@ -192,7 +192,7 @@ func (j *job) run(ctx context.Context, c *compiled, halt *atomic.Bool) {
 		}
 		return !halt.Load()
 	}
-	j.search.out = out
+	j.search.out, j.search.spare = out, new([maxUnits]tour)
 	j.search.visit(j.depth)
 	if len(k.ends) > 0 {
 		j.out <- k

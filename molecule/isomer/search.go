@@ -28,7 +28,7 @@ const (
 // edge is one end of a bond between units.
 type edge struct{ to, code uint8 }
 
-// search is the state of one descent. It is a plain value: copying it copies the descent.
+// search is the state of one descent. Copying it copies the descent.
 type search struct {
 	plan *plan
 	out  sink
@@ -55,6 +55,8 @@ type search struct {
 	rival [maxUnits + 1][maxUnits]uint32 // rival[d][k]: units that may stand in place of k without a smaller code so far
 	roots [maxUnits + 1]uint32           // the same for the first unit
 
+	spare *[maxUnits]tour // scratch: a copy of the search that is to run beside this one needs its own
+
 	code [maxUnits][maxUnits]uint8 // code[i][j]: closure from unit i to unit j as row i is written
 }
 
@@ -75,7 +77,7 @@ const (
 
 // start places the first unit.
 func (s *search) start(p *plan, out sink) {
-	*s = search{plan: p, out: out, excess: p.excess}
+	*s = search{plan: p, out: out, excess: p.excess, spare: new([maxUnits]tour)}
 	copy(s.left[:], p.count[:])
 	s.meet(p.root, 0)
 	if p.kinds[p.root].block >= 0 {
