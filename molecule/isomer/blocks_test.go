@@ -195,6 +195,17 @@ func minus(a, b []string) (list []string) {
 	return list
 }
 
+// Rings inside blocks count.
+func TestBlockRings(t *testing.T) {
+	p := Problem{Formula: formulaOf(t, "C9H12"), Blocks: readBlocks(t, "[cH:1]1ccccc1")}
+	for rings, want := range []int64{0, 2, 0} {
+		p.Rings = Exactly(rings)
+		if got := count(t, p); got != want {
+			t.Errorf("%d rings: %d structures, want %d", rings, got, want)
+		}
+	}
+}
+
 // The work done is pinned: prefixes visited, not seconds. A looser test would hide lost pruning.
 func TestWork(t *testing.T) {
 	for _, tc := range []struct {

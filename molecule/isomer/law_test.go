@@ -362,3 +362,12 @@ func TestKnownAppear(t *testing.T) {
 		}
 	}
 }
+
+// Memory stays flat: less than one allocation in ten structures.
+func TestFlat(t *testing.T) {
+	p := Problem{Formula: formulaOf(t, "C9H14")}
+	n := count(t, p)
+	if a := testing.AllocsPerRun(1, func() { count(t, p) }); a > float64(n)/10 {
+		t.Errorf("%.0f allocations for %d structures", a, n)
+	}
+}

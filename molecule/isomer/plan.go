@@ -229,6 +229,9 @@ func (c *compiled) plan(pools []pool, blocks []*variant, blockCount []int) *plan
 	p.linkSites()
 	p.chooseRoot()
 	p.setRings()
+	if p.maxRings < 0 || p.minRings > p.excess {
+		return nil // the blocks hold too many rings, or too few can be closed
+	}
 	p.setAllowed()
 	return p
 }
