@@ -133,13 +133,15 @@ func (b *bill) yields() {
 		}
 	}
 	last := len(b.list) - 1
-	b.route.LongestRun, b.route.OverallYield, b.route.WorstBranchYield = long[last].steps, long[last].yield, worst[last].yield
+	b.route.LongestRun, b.route.OverallYield, b.route.WorstBranchYield = long[last].steps, long[last].yield.tidy(), worst[last].yield.tidy()
 }
 
 // times multiplies low by low and high by high: a product of ranges, not a statistical interval.
 func (r Range) times(o Range) Range {
 	return Range{r.Low * o.Low, r.Usual * o.Usual, r.High * o.High}
 }
+
+func (r Range) tidy() Range { return Range{tidy(r.Low), tidy(r.Usual), tidy(r.High)} }
 
 // economy is the atom economy of the balanced sum of all steps: target over target and by-products,
 // since inputs are their sum (Trost, Science 1991, 254, 1471, from memory). Bases and other reagents
@@ -162,7 +164,7 @@ func (b *bill) economy(byEquation []float64) {
 			return
 		}
 	}
-	if economy := target / (target + waste); economy > 0 && !math.IsNaN(economy) {
+	if economy := tidy(target / (target + waste)); economy > 0 && !math.IsNaN(economy) {
 		b.route.AtomEconomy = &economy
 	}
 }
@@ -211,7 +213,7 @@ func (b *bill) sums() {
 		}
 	}
 	r.Materials.Price = math.Round(r.Materials.Price*100) / 100
-	r.Waste = WasteFigures{WithWater: (mass - molMass) / molMass, WithoutWater: (mass - water - molMass) / molMass}
+	r.Waste = WasteFigures{WithWater: tidy((mass - molMass) / molMass), WithoutWater: tidy((mass - water - molMass) / molMass)}
 	r.Hazard.Gravest = gravest(grave, 5)
 	for i := range r.Steps {
 		codes := map[string]int{}

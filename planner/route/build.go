@@ -2,6 +2,7 @@ package route
 
 import (
 	"fmt"
+	"math"
 	"slices"
 	"sort"
 	"strings"
@@ -130,7 +131,7 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 		Product: w.Write(s.Product), ProductName: w.Name(s.Product), ProductFormula: s.Product.Formula().String(), Molecule: s.Product,
 		Byproducts: []string{}, Reagents: []string{}, Solvents: []string{}, Hazards: []string{}, Cautions: []string{}, Objections: []Objection{},
 		Temperature: Span{set.Temperature[0], set.Temperature[1]}, Time: Span{set.Hours[0], set.Hours[1]},
-		Share: s.Share.String(), Yield: Range(y), Origin: set.Origin, Racemic: s.Racemic, Source: set.Source, Judged: s, Set: set}
+		Share: s.Share.String(), Yield: Range(y).tidy(), Origin: set.Origin, Racemic: s.Racemic, Source: set.Source, Judged: s, Set: set}
 	if out.Origin == "" {
 		out.Origin = "estimated"
 	}
@@ -173,7 +174,7 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 // tidy removes the noise of binary fractions from printed figures.
 func tidy(x float64) float64 {
 	const digits = 1e6
-	return float64(int64(x*digits+0.5)) / digits
+	return math.Round(x*digits) / digits
 }
 
 // lines describes the steps for the code: transform, conditions, reactants and product.
@@ -199,7 +200,7 @@ func (r *Route) alternatives(c *chemistry, list []making) {
 				continue
 			}
 			y, _ := yieldOf(o.step, o.conditions)
-			a := Alternative{Step: i + 1, Transform: o.step.Transform.ID, Name: o.step.Transform.Name, Conditions: o.conditions.ID, Reagents: []string{}, Yield: Range(y)}
+			a := Alternative{Step: i + 1, Transform: o.step.Transform.ID, Name: o.step.Transform.Name, Conditions: o.conditions.ID, Reagents: []string{}, Yield: Range(y).tidy()}
 			for _, g := range o.conditions.Reagents {
 				a.Reagents = append(a.Reagents, g.Name)
 			}

@@ -59,6 +59,7 @@ func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *ch
 		c.carbonPrice = c.cheapestCarbon()
 	}
 	c.guesser = newGuesser(w.Shelf, from)
+	c.guesser.lookAhead(w.Book, w.Shelf, from)
 	for _, m := range w.Shelf {
 		if k := flatKey(m); c.flatShelf[k] == nil || !marked(m) {
 			c.flatShelf[k] = m
@@ -67,34 +68,25 @@ func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *ch
 	return c
 }
 
-// leastStep is the least weight that any step under the loaded transforms can have.
+// leastStep is the least weight that any step under the loaded transforms can have: that of its
+// conditions alone, with the whole product wanted and nothing objected.
 func (c *chemistry) leastStep() float64 {
-	switch c.by {
-	case Cost, Waste:
-		return 0
-	case Hazard:
-		return hazardPoints[0]
+	if c.by == Cost || c.by == Waste {
+		return 0 // see Bound
 	}
 	least := math.Inf(1)
+	bare := &reactions.Step{}
 	for _, t := range c.world.Transforms {
 		for _, x := range t.Conditions {
-			y := x.Yield.Usual
-			if y <= 0 {
-				y = lowYield.Usual
+			if c.filter.conditions(x) {
+				least = min(least, c.world.variant(c.by, &option{step: bare, conditions: x}).Weight)
 			}
-			least = min(least, -math.Log(clampYield(y)))
 		}
 	}
 	if math.IsInf(least, 1) {
-		least = 0
+		return 0
 	}
-	switch c.by {
-	case Yield:
-		return least
-	case Steps:
-		return 1 + 0.01*(1+partYieldLoss*least)
-	}
-	return 1 + partYieldLoss*least
+	return least
 }
 
 // enter remembers a molecule under its exact key, or under that of the item of From that it counts

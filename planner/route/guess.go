@@ -1,7 +1,9 @@
 package route
 
 import (
+	"context"
 	"math/bits"
+	"slices"
 
 	"shelfward/molecule"
 )
@@ -91,7 +93,51 @@ func (p *profile) apart(q *profile) (only, lacks int) {
 // guesser estimates how far a molecule is from what it could be made from.
 type guesser struct {
 	shelf []*profile
-	owed  []*profile // per set of items owed: the profiles of the items added up
+	owed  []*profile             // per set of items owed: the profiles of the items added up
+	near  map[molecule.Key]uint8 // what one step from an item of From gives: the items that lead there
+}
+
+// forwardBook runs transforms forwards; *reactions.Book does.
+type forwardBook interface {
+	Products(ctx context.Context, start *molecule.Molecule, partners []*molecule.Molecule) ([]*molecule.Molecule, error)
+}
+
+// Partners that an item of From is tried with forwards: the smallest of the shelf.
+const (
+	mostPartners     = 24
+	mostPartnerAtoms = 9
+)
+
+// lookAhead finds what one step from the items of From gives, so that a molecule on the way is known as
+// such before it is opened.
+func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule) {
+	forward, ok := book.(forwardBook)
+	if !ok {
+		return
+	}
+	g.near = map[molecule.Key]uint8{}
+	partners := append(slices.Clone(from), smallest(shelf)...)
+	for i, m := range from {
+		list, err := forward.Products(context.Background(), m, partners)
+		if err != nil {
+			return
+		}
+		for _, p := range list {
+			g.near[p.FlatKey()] |= 1 << i
+		}
+	}
+}
+
+// smallest lists the carbon compounds of the shelf that are small enough to be everyday partners.
+func smallest(shelf []*molecule.Molecule) []*molecule.Molecule {
+	var list []*molecule.Molecule
+	for _, m := range shelf {
+		if m.NumAtoms() <= mostPartnerAtoms {
+			list = append(list, m)
+		}
+	}
+	slices.SortStableFunc(list, func(a, b *molecule.Molecule) int { return a.NumAtoms() - b.NumAtoms() })
+	return list[:min(len(list), mostPartners)]
 }
 
 func newGuesser(shelf, from []*molecule.Molecule) *guesser {
@@ -118,14 +164,18 @@ const (
 	guessMissing = 0.1
 	guessSurplus = 0.2
 	guessPerBond = 0.15 // for a molecule that resembles nothing on the shelf
+	guessFar     = 1.5  // what no single step from an item of From is known to give
 )
 
 // steps estimates the steps between m and what it is made from. It orders the work of the search and
 // proves nothing.
 func (g *guesser) steps(m *molecule.Molecule, owed uint8) float64 {
+	if owed != 0 && g.near[m.FlatKey()]&owed != 0 {
+		return 1
+	}
 	p := profileOf(m)
 	if owed != 0 {
-		return p.stepsFrom(g.owed[owed])
+		return max(guessFar, p.stepsFrom(g.owed[owed]))
 	}
 	least := 1 + guessPerBond*float64(m.NumBonds())
 	for _, q := range g.shelf {

@@ -188,9 +188,9 @@ func (r *run) stop(ctx context.Context) Stop {
 
 func (r *run) late() bool { return r.o.Time > 0 && time.Since(r.start) >= r.o.Time }
 
-// choose picks the nodes to open next. Until routes stand most of the batch follows the estimates, to
-// find a first route soon; then half of it, as long as the estimates promise something cheaper than
-// what stands. The rest follows the bounds, which is what proves. The first batches are small.
+// choose picks the nodes to open next. Until a route stands most of the batch follows the estimates, to
+// find one soon; then half of it until there are as many as wanted, then a quarter, as long as the
+// estimates promise something cheaper than what stands. The rest follows the bounds, which is what proves. The first batches are small.
 func (r *run) choose() []int32 {
 	size := batchSize
 	if r.sequence < 4 {
@@ -206,8 +206,10 @@ func (r *run) choose() []int32 {
 	switch {
 	case len(r.routes) == 0:
 		byGuess = (3*size + 3) / 4
-	case estimate < r.worst():
+	case len(r.routes) < r.o.Count:
 		byGuess = size / 2
+	case estimate < r.worst():
+		byGuess = size / 4
 	}
 	picked := r.g.pick(nil, byGuess, true)
 	picked = r.g.pick(picked, size-len(picked), false)
