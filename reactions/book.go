@@ -123,6 +123,7 @@ type expander struct {
 // rejectedStep remembers why a proposal was dropped.
 type rejectedStep struct {
 	t       *Transform
+	from    []*molecule.Molecule
 	reasons []Objection
 }
 
@@ -132,10 +133,19 @@ func (x *expander) expand(t *Transform) {
 		if step, reasons := d.step(); step != nil {
 			x.steps = append(x.steps, step)
 		} else if x.keepAll {
-			x.rejected = append(x.rejected, rejectedStep{t, reasons})
+			x.rejected = append(x.rejected, rejectedStep{t, moleculesOf(d.reactants, all(len(d.reactants))), reasons})
 		}
 		x.expandTogether(d)
 	}
+}
+
+// all lists the indices below n.
+func all(n int) []int {
+	out := make([]int, n)
+	for i := range out {
+		out[i] = i
+	}
+	return out
 }
 
 // draft is a proposal run forwards, before its condition sets are looked at.
