@@ -158,13 +158,14 @@ func newGuesser(shelf, from []*molecule.Molecule) *guesser {
 }
 
 // Parts of the estimate in steps: entries of the molecule that the start has not (a partner may bring
-// them), and entries of the start that must go. Chosen so that the published continuations of
-// textbook syntheses stand high among all continuations.
+// them), and entries of the start that must go. Their proportion was chosen so that the published
+// continuations of textbook syntheses stand high among all continuations; their size is several times
+// what is true, because a first route is found sooner when the search keeps to one line.
 const (
-	guessMissing = 0.1
-	guessSurplus = 0.2
-	guessPerBond = 0.15 // for a molecule that resembles nothing on the shelf
-	guessFar     = 1.5  // what no single step from an item of From is known to give
+	guessMissing = 0.25
+	guessSurplus = 0.5
+	guessPerBond = 0.4 // for a molecule that resembles nothing on the shelf
+	guessFar     = 1.5 // what no single step from an item of From is known to give
 )
 
 // steps estimates the steps between m and what it is made from. It orders the work of the search and

@@ -256,7 +256,8 @@ func label(name, smiles string) string {
 
 // Percent writes a range of fractions in whole per cents.
 func Percent(r Range) string {
-	return fmt.Sprintf("%.0f-%.0f-%.0f", 100*r.Low, 100*r.Usual, 100*r.High)
+	whole := func(x float64) float64 { return math.Floor(100*x + 0.5 + 1e-9) } // a half that binary fractions fall short of
+	return fmt.Sprintf("%.0f-%.0f-%.0f", whole(r.Low), whole(r.Usual), whole(r.High))
 }
 
 // span writes a temperature or time range once if both ends are the same.
