@@ -161,10 +161,15 @@ func (c *composer) rings(i int, left counts, unsat int, comp composition, system
 
 // ringPrior prefers common ring systems slightly.
 func ringPrior(b *buildingBlock) float32 {
-	if b.name == "benzene" {
+	switch b.name {
+	case "benzene":
 		return 0
+	case "pyridine", "furan", "thiophene", "pyrrole", "indole", "naphthalene", "quinoline", "imidazole", "pyrazole", "coumarin", "benzofuran", "pyrimidine", "thiazole":
+		return 0.8
+	case "isobenzofuran", "isothiazole", "indolizine", "1,3,5-triazine":
+		return 3
 	}
-	return 0.5
+	return 1.5
 }
 
 // functional chooses functional blocks from index i on.
@@ -202,7 +207,7 @@ func (c *composer) finish(left counts, unsat int, comp composition) {
 		sites += b.sites
 	}
 	comp.rings = unsat
-	comp.cost += 0.7 * float32(unsat)
+	comp.cost += 1.2 * float32(unsat)
 	comp.singles = left
 	carbons, hydrogens := left[iC], left[iH]
 	maxHetero := min(left[iO]+2*left[iN]+left[iS], hydrogens, 5)
@@ -278,7 +283,7 @@ func (c *composer) bandsCost(m *composition) float32 {
 		shown[b.shows] = true
 		hetero += b.heteroH
 		double = double || b.pi > 0 && !b.ringSystem
-		if b.ringSystem && hasExocyclic(b) {
+		if b.oxo > 0 {
 			shown["carbonyl"] = true
 		}
 	}
@@ -298,10 +303,6 @@ func (c *composer) bandsCost(m *composition) float32 {
 		cost += 3
 	}
 	return cost
-}
-
-func hasExocyclic(b *buildingBlock) bool {
-	return b.atoms[iO] > 0 && b.carbonH[0] > 0 && b.pi-b.rings > 3
 }
 
 // alkylWindows are the shift ranges of single carbons by hydrogens, with and without heteroatoms in

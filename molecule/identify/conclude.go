@@ -57,6 +57,9 @@ func (s *searcher) verdict(res *Result, list []kept, gap float64) (out []string)
 			out = append(out, fmt.Sprintf("Not settled: %s and %s fit about equally well.", first.SMILES, second))
 		}
 	}
+	if text := s.equals(res, list); text != "" {
+		out = append(out, text)
+	}
 	if len(first.Misfits) > 4 {
 		out = append(out, fmt.Sprintf("Even the first structure leaves %d observations unexplained or misplaced: the right one may be missing.", len(first.Misfits)))
 	}
@@ -64,6 +67,56 @@ func (s *searcher) verdict(res *Result, list []kept, gap float64) (out []string)
 		out = append(out, "Stereo: the evidence is silent on configuration; racemic or one hand is not decided, optical rotation would tell.")
 	}
 	return out
+}
+
+// equals counts the structures that fit about as well as the first, and how many of them a 13C
+// spectrum with attached hydrogens would leave.
+func (s *searcher) equals(res *Result, list []kept) string {
+	n := 0
+	for n < len(list) && list[n].score.total() < list[0].score.total()+1 {
+		n++
+	}
+	if n < 3 || n == len(list) && n >= keptStructures {
+		return ""
+	}
+	text := fmt.Sprintf("%d of them fit about as well as the first", n)
+	if words := commonCarbonyl(list[:n]); words != "" {
+		text += ", all " + words
+	}
+	if len(s.d.Carbon) == 0 {
+		classes := map[[4]int]int{}
+		most := 0
+		for _, k := range list[:n] {
+			var kinds [4]int
+			for a := range k.m.NumAtoms() {
+				if at := k.m.Atom(a); at.Element == 6 {
+					kinds[min(at.Hydrogens, 3)]++
+				}
+			}
+			classes[kinds]++
+			most = max(most, classes[kinds])
+		}
+		text += fmt.Sprintf("; a 13C spectrum with attached hydrogens would leave at most %d", most)
+	}
+	return text + "."
+}
+
+// commonCarbonyl names the carbonyl class that all structures of the list have, if any.
+func commonCarbonyl(list []kept) string {
+	name := ""
+	for i, k := range list {
+		this := ""
+		for _, b := range spectra.Predict(k.m).Bands {
+			if b.IsCarbonyl() {
+				this = b.Carbonyl.String()
+			}
+		}
+		if i > 0 && this != name || this == "" {
+			return ""
+		}
+		name = this
+	}
+	return name + "s"
 }
 
 // hasStereo reports a carbon with four different ligands.

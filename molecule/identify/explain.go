@@ -89,7 +89,7 @@ func (s *scorer) explainProton() (fits, misfits []string) {
 		for k := run.from; k < run.to; k++ {
 			g := &s.halfs[k]
 			h += g.h
-			if c := protonShift(x, g) - logRatio(g.spread, protonSpread); c > 2.2 {
+			if protonOff(x, g) > 2.2 {
 				ok = false
 				misfits = append(misfits, fmt.Sprintf("1H: %s observed, %.2f expected (spread %.2f)", x.Span, g.sig.MeanPPM, g.spread))
 			}

@@ -25,15 +25,27 @@ type pool struct {
 	list  []kept
 	keys  map[molecule.Key]bool
 	worst float32
+	best  float32
 }
 
 // keptStructures is how many candidates are scored again in full.
 const keptStructures = 400
 
-func newPool() *pool { return &pool{keys: map[molecule.Key]bool{}, worst: 1e9} }
+func newPool() *pool { return &pool{keys: map[molecule.Key]bool{}, worst: 1e9, best: 1e9} }
 
-// wants reports whether a score can still enter.
-func (p *pool) wants(total float32) bool { return total <= p.worst }
+// limit is the score above which nothing enters any more.
+func (p *pool) limit() float32 {
+	p.mu.Lock()
+	defer p.mu.Unlock()
+	return p.worst
+}
+
+// bestTotal is the least cost met so far.
+func (p *pool) bestTotal() float32 {
+	p.mu.Lock()
+	defer p.mu.Unlock()
+	return p.best
+}
 
 // offer adds m unless it is there already.
 func (p *pool) offer(m *molecule.Molecule, score parts) {
@@ -45,6 +57,7 @@ func (p *pool) offer(m *molecule.Molecule, score parts) {
 	}
 	p.keys[key] = true
 	p.list = append(p.list, kept{m: m, score: score})
+	p.best = min(p.best, score.total())
 	if len(p.list) >= 2*keptStructures {
 		p.shrink()
 	}
@@ -82,6 +95,8 @@ type searcher struct {
 	expectSeen bool
 	mu         sync.Mutex
 	generated  int64
+	// offset is how much worse the formula being searched fits than the first.
+	offset float32
 }
 
 func newSearcher(d *Data, opt Options, expect *molecule.Key) *searcher {
@@ -90,11 +105,12 @@ func newSearcher(d *Data, opt Options, expect *molecule.Key) *searcher {
 	return s
 }
 
-// take scores one generated structure.
-func (s *searcher) take(raw *isomer.Structure, allowed func(m *molecule.Molecule) bool) bool {
+// take scores one generated structure and returns what it costs, or a bound above which the scoring
+// was broken off. ok is false for a structure that does not meet the hard evidence.
+func (s *searcher) take(raw *isomer.Structure) (score float32, ok bool) {
 	m, err := raw.Materialise()
-	if err != nil || !s.d.meetsPieces(m) || allowed != nil && !allowed(m) {
-		return false
+	if err != nil || !s.d.meetsPieces(m) {
+		return 0, false
 	}
 	if s.expect != nil && m.FlatKey() == *s.expect {
 		s.mu.Lock()
@@ -102,73 +118,176 @@ func (s *searcher) take(raw *isomer.Structure, allowed func(m *molecule.Molecule
 		s.mu.Unlock()
 	}
 	sc := s.scorers.Get().(*scorer)
-	p := sc.score(m, false)
+	p, within := sc.scoreUnder(m, false, s.pool.limit()-s.offset)
+	p.formula = s.offset
 	s.scorers.Put(sc)
-	if s.pool.wants(p.total()) {
+	if within {
 		s.pool.offer(m, p)
 	}
-	return true
+	return p.total(), true
 }
 
 // exhaust builds every structure that meets the hard evidence.
 func (s *searcher) exhaust(ctx context.Context, p isomer.Problem) (isomer.Result, error) {
-	p.Accept = func(raw *isomer.Structure) bool { return s.take(raw, nil) }
+	p.Accept = func(raw *isomer.Structure) bool {
+		_, ok := s.take(raw)
+		return ok
+	}
 	r, err := isomer.Enumerate(ctx, p, isomer.Options{Workers: s.opt.Workers}, func(*isomer.Structure) bool { return true })
 	s.generated += r.Generated
 	return r, err
 }
 
 const (
-	// perSetLimit bounds the structures built from one set of blocks, buildLimit those of all sets.
-	perSetLimit = 40_000
-	buildLimit  = 700_000
+	// A first pass looks at sampleSize structures out of at most sampleReach of each arm; a second
+	// builds up to perArmLimit of the arms that looked best. buildLimit bounds all structures scored.
+	// Values of ours: a pass over the usual number of arms takes a few seconds.
+	sampleSize  = 120
+	sampleReach = 4_000
+	maxArms     = 240
+	perArmLimit = 60_000
+	buildLimit  = 500_000
+	// armWindow is how far behind the best structure so far an arm's best sample may lie for the arm to
+	// be built in full: a sample holds near relatives of every structure of its arm.
+	armWindow = 24
 )
 
-// assemble builds structures from sets of blocks, the likeliest sets first. It returns the number of
-// sets tried and found.
-func (s *searcher) assemble(ctx context.Context, f *molecule.Formula) (tried, found int, err error) {
+// arm is a set of blocks with one substitution pattern for each of its ring systems.
+type arm struct {
+	comp    *composition
+	choice  []int
+	best    float32 // best score met so far
+	sampled int64   // structures scored in the first pass
+	done    bool    // all were
+}
+
+// assemble builds structures from sets of blocks: a thin sample of every set first, then all of the
+// sets whose sample looked best. It returns how many sets were built in full, and how many there were.
+func (s *searcher) assemble(ctx context.Context, f *molecule.Formula) (full, found int, err error) {
 	target, ok := countsOf(f)
 	lib, err := loadLibrary()
 	if err != nil || !ok {
 		return 0, 0, err
 	}
 	c := &composer{lib: lib, d: s.d, target: target, unsat: int(f.Unsaturation())}
-	comps := c.compositions()
-	for i := range comps {
-		if ctx.Err() != nil || s.generated > buildLimit {
-			return i, len(comps), nil
+	arms := armsOf(c.compositions())
+	found = len(arms)
+	arms = arms[:min(found, maxArms)]
+	for i := range arms {
+		if ctx.Err() != nil {
+			arms = arms[:i]
+			break
 		}
-		if err := s.buildSet(ctx, f, &comps[i]); err != nil {
-			return i, len(comps), err
+		if err := s.sampleArm(ctx, f, &arms[i]); err != nil {
+			return 0, found, err
 		}
 	}
-	return len(comps), len(comps), nil
-}
-
-// buildSet runs the generator for every substitution pattern of the set's ring systems.
-func (s *searcher) buildSet(ctx context.Context, f *molecule.Formula, comp *composition) error {
-	choice := make([]int, len(comp.blocks))
-	var run func(at int) error
-	run = func(at int) error {
-		if ctx.Err() != nil {
-			return nil
+	slices.SortStableFunc(arms, func(a, b arm) int { return cmp.Compare(a.best, b.best) })
+	for i := range arms {
+		a := &arms[i]
+		if ctx.Err() != nil || s.generated > buildLimit || a.best > s.pool.bestTotal()+armWindow {
+			break
 		}
-		if at == len(comp.blocks) {
-			return s.buildOne(ctx, f, comp, choice)
-		}
-		from := 0
-		if at > 0 && comp.blocks[at] == comp.blocks[at-1] {
-			from = choice[at-1]
-		}
-		for k := from; k < len(comp.blocks[at].pieces); k++ {
-			choice[at] = k
-			if err := run(at + 1); err != nil {
-				return err
+		if !a.done {
+			if err := s.buildArm(ctx, f, a); err != nil {
+				return full, found, err
 			}
 		}
+		if a.done {
+			full++
+		}
+	}
+	return full, found, nil
+}
+
+// armsOf spreads sets over the substitution patterns of their ring systems.
+func armsOf(comps []composition) []arm {
+	var out []arm
+	for i := range comps {
+		comp := &comps[i]
+		choice := make([]int, len(comp.blocks))
+		var run func(at int)
+		run = func(at int) {
+			if at == len(comp.blocks) {
+				out = append(out, arm{comp: comp, choice: slices.Clone(choice), best: 1e9})
+				return
+			}
+			from := 0
+			if at > 0 && comp.blocks[at] == comp.blocks[at-1] {
+				from = choice[at-1]
+			}
+			for k := from; k < len(comp.blocks[at].pieces); k++ {
+				choice[at] = k
+				run(at + 1)
+			}
+		}
+		run(0)
+		if len(out) > 4*maxArms {
+			break
+		}
+	}
+	return out
+}
+
+// sampleArm scores a spread sample of the arm's structures.
+func (s *searcher) sampleArm(ctx context.Context, f *molecule.Formula, a *arm) error {
+	p := problemOf(f, s.d.Valences, a.comp, a.choice)
+	size, err := isomer.Estimate(ctx, p, 40, 1)
+	if ctx.Err() != nil {
 		return nil
 	}
-	return run(0)
+	if err != nil {
+		return fmt.Errorf("building from blocks: %w", err)
+	}
+	every := uint64(max(1, min(size.Structures, sampleReach)/sampleSize))
+	acyl, at := acylOf(a.comp), uint64(0)
+	p.Accept = func(raw *isomer.Structure) bool {
+		at++
+		// every n-th on average, not in step with the generator
+		if every > 1 && (at*0x9e3779b97f4a7c15)>>32%every != 0 || countAcyl(raw) != acyl {
+			return true
+		}
+		if score, ok := s.take(raw); ok {
+			a.best = min(a.best, score)
+			a.sampled++
+		}
+		return true
+	}
+	r, err := isomer.Enumerate(ctx, p, isomer.Options{Workers: 1, MaxStructures: sampleReach}, func(*isomer.Structure) bool { return true })
+	if err != nil && ctx.Err() == nil {
+		return fmt.Errorf("building from blocks: %w", err)
+	}
+	a.done = r.Complete && every == 1
+	s.generated += a.sampled
+	return nil
+}
+
+// buildArm scores every structure of the arm, up to a limit.
+func (s *searcher) buildArm(ctx context.Context, f *molecule.Formula, a *arm) error {
+	p := problemOf(f, s.d.Valences, a.comp, a.choice)
+	acyl := acylOf(a.comp)
+	p.Accept = func(raw *isomer.Structure) bool {
+		if countAcyl(raw) != acyl {
+			return false
+		}
+		_, ok := s.take(raw)
+		return ok
+	}
+	r, err := isomer.Enumerate(ctx, p, isomer.Options{Workers: s.opt.Workers, MaxStructures: perArmLimit}, func(*isomer.Structure) bool { return true })
+	if err != nil && ctx.Err() == nil {
+		return fmt.Errorf("building from blocks: %w", err)
+	}
+	a.done = r.Complete
+	s.generated += max(r.Generated-a.sampled, 0)
+	return nil
+}
+
+func acylOf(comp *composition) int {
+	acyl := 0
+	for _, b := range comp.blocks {
+		acyl += b.acyl
+	}
+	return acyl
 }
 
 // problemOf writes a set of blocks as a problem for the generator.
@@ -209,23 +328,6 @@ func problemOf(f *molecule.Formula, v isomer.Valences, comp *composition, choice
 		}
 	}
 	return p
-}
-
-func (s *searcher) buildOne(ctx context.Context, f *molecule.Formula, comp *composition, choice []int) error {
-	p := problemOf(f, s.d.Valences, comp, choice)
-	acyl := 0
-	for _, b := range comp.blocks {
-		acyl += b.acyl
-	}
-	p.Accept = func(raw *isomer.Structure) bool {
-		return countAcyl(raw) == acyl && s.take(raw, nil)
-	}
-	r, err := isomer.Enumerate(ctx, p, isomer.Options{Workers: s.opt.Workers, MaxStructures: perSetLimit}, func(*isomer.Structure) bool { return true })
-	if err != nil {
-		return fmt.Errorf("building from blocks: %w", err)
-	}
-	s.generated += r.Generated
-	return nil
 }
 
 // countAcyl counts C=O carbons that also carry O, N, S or a halogen by a single bond: a set of blocks

@@ -31,6 +31,7 @@ func (d *Data) inferHard(f *molecule.Formula, p *isomer.Problem) []Assumption {
 	for _, t := range d.LacksText {
 		say("lacks "+t, "stated in the case file")
 	}
+	d.inferCarbonyl(f, p, say)
 	if kinds, lines, ok := d.carbonKinds(); ok {
 		switch {
 		case lines == int(f.Count[6]):
@@ -48,7 +49,6 @@ func (d *Data) inferHard(f *molecule.Formula, p *isomer.Problem) []Assumption {
 			say("every kind of carbon seen is there at least once", "kinds of carbon stated with the 13C lines")
 		}
 	}
-	d.inferCarbonyl(f, p, say)
 	return out
 }
 
@@ -85,17 +85,24 @@ func (d *Data) inferCarbonyl(f *molecule.Formula, p *isomer.Problem, say func(wh
 		return
 	}
 	at := d.Carbon[line].Span.String()
+	what, hydrogens := "a ketone or aldehyde C=O", isomer.AnyHydrogens
+	switch d.Carbon[line].Attached {
+	case 0:
+		what, hydrogens = "a ketone C=O", 0
+	case 1:
+		what, hydrogens = "an aldehyde CHO", 1
+	}
 	switch band := d.carbonylBand(); {
 	case f.Unsaturation() == 1:
-		say("a ketone or aldehyde C=O", "a 13C line at %s ppm with one degree of unsaturation and no N or S", at)
+		say(what+", and no ring or other multiple bond", "a 13C line at %s ppm with one degree of unsaturation and no N or S", at)
 	case band != "":
-		say("a ketone or aldehyde C=O", "a 13C line at %s ppm, a strong band at %s cm-1, no N or S", at, band)
+		say(what, "a 13C line at %s ppm, a strong band at %s cm-1, no N or S", at, band)
 	default:
 		return
 	}
 	p.Contains = append(p.Contains, isomer.Piece{
 		Name:  "C=O",
-		Atoms: []isomer.PieceAtom{{Element: 6, Hydrogens: isomer.AnyHydrogens}, {Element: 8, Hydrogens: 0}},
+		Atoms: []isomer.PieceAtom{{Element: 6, Hydrogens: hydrogens}, {Element: 8, Hydrogens: 0}},
 		Bonds: []isomer.PieceBond{{A: 0, B: 1, Order: 2}},
 	})
 }

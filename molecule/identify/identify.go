@@ -13,6 +13,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 	"time"
 
 	"shelfward/molecule"
@@ -64,7 +65,7 @@ func Identify(ctx context.Context, d *Data, opt Options) (*Result, error) {
 	}
 	res.Formula = formulas[0].String()
 	res.Unsaturation = formulas[0].Unsaturation()
-	res.Groups = d.judgeGroups(&formulas[0])
+	res.Groups = d.judgeGroups(&formulas[0].Formula)
 
 	var expect *molecule.Key
 	if opt.Expect != nil {
@@ -79,16 +80,22 @@ func Identify(ctx context.Context, d *Data, opt Options) (*Result, error) {
 	return res, nil
 }
 
+// likelyFormula is a formula with its drop in log-likelihood against the first.
+type likelyFormula struct {
+	molecule.Formula
+	behind float64
+}
+
 // chooseFormulas lists the formulas and returns those to build structures for: the first, and any
 // that the evidence hardly tells from it.
-func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]molecule.Formula, error) {
+func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]likelyFormula, error) {
 	if d.Formula != nil {
 		res.Formulas = append(res.Formulas, FormulaLine{Formula: d.Formula.String(), MolarMass: d.Formula.MolarMass(), Reasons: []string{"given"}})
 		if u := d.Formula.Unsaturation(); u < 0 || u != math.Floor(u) {
 			res.Doubts = append(res.Doubts, fmt.Sprintf("%s has an unsaturation of %v: no neutral closed-shell molecule has this formula.", d.Formula, u))
 			return nil, nil
 		}
-		return []molecule.Formula{*d.Formula}, nil
+		return []likelyFormula{{*d.Formula, 0}}, nil
 	}
 	ev := formula.Evidence{MolecularIon: d.MolecularIon, MolarMass: d.MolarMass, Exact: d.Exact, Peaks: d.Peaks}
 	if d.Elements != nil {
@@ -114,7 +121,7 @@ func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]molecule.Form
 		return nil, err
 	}
 	res.Doubts = append(res.Doubts, r.Doubts...)
-	var use []molecule.Formula
+	var use []likelyFormula
 	for i, c := range r.Candidates {
 		if d.Elements != nil && d.Elements.NoOthers && !d.onlyListed(&c.Formula) {
 			continue
@@ -125,7 +132,7 @@ func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]molecule.Form
 		}
 		res.Formulas = append(res.Formulas, FormulaLine{Formula: c.Formula.String(), MolarMass: c.MolarMass, Error: c.Error, Reasons: reasons})
 		if len(use) == 0 || c.Penalty < r.Candidates[0].Penalty+3 && len(use) < 3 && i < 4 {
-			use = append(use, c.Formula)
+			use = append(use, likelyFormula{c.Formula, c.Penalty - r.Candidates[0].Penalty})
 		}
 	}
 	if len(res.Formulas) > 20 {
@@ -148,13 +155,15 @@ func (d *Data) onlyListed(f *molecule.Formula) bool {
 }
 
 // search builds the structures: all of them where that is possible, else from blocks.
-func (s *searcher) search(ctx context.Context, res *Result, formulas []molecule.Formula) error {
+func (s *searcher) search(ctx context.Context, res *Result, formulas []likelyFormula) error {
 	res.Complete = true
 	for i := range formulas {
-		if i > 0 && len(formulas) > 1 {
-			res.Complete = false // lesser formulas are searched only as a cross-check
+		f := &formulas[i]
+		if i > 0 && float64(s.pool.bestTotal())-f.behind < s.goodFit() {
+			continue // the first formula has a structure that fits well
 		}
-		if err := s.searchFormula(ctx, res, &formulas[i], i); err != nil {
+		s.offset = float32(f.behind)
+		if err := s.searchFormula(ctx, res, &f.Formula, i); err != nil {
 			return err
 		}
 	}
@@ -162,15 +171,59 @@ func (s *searcher) search(ctx context.Context, res *Result, formulas []molecule.
 	return nil
 }
 
+// countSteps writes behind each inference how many structures it leaves, where counting is quick: the
+// formula alone, then with the group inferred, then with the kinds of carbon.
+func (s *searcher) countSteps(ctx context.Context, f *molecule.Formula, p *isomer.Problem, assumed []Assumption) {
+	bare := isomer.Problem{Formula: *f, Valences: p.Valences}
+	size, err := isomer.Estimate(ctx, bare, 300, 1)
+	if err != nil || size.Structures > 60_000 {
+		return
+	}
+	note := func(q isomer.Problem, has func(Assumption) bool) {
+		r, err := isomer.Enumerate(ctx, q, isomer.Options{Workers: s.opt.Workers}, func(*isomer.Structure) bool { return true })
+		if err != nil || !r.Complete {
+			return
+		}
+		for i := range assumed {
+			if has(assumed[i]) {
+				assumed[i].Why += fmt.Sprintf("; leaves %d structures", r.Generated)
+				return
+			}
+		}
+	}
+	note(bare, func(a Assumption) bool { return strings.HasSuffix(a.What, "valences") })
+	if len(p.Contains) > 0 {
+		bare.Contains = p.Contains
+		note(bare, func(a Assumption) bool { return strings.Contains(a.What, "C=O") || strings.Contains(a.What, "CHO") })
+	}
+	if p.Carbons != bare.Carbons {
+		bare.Carbons = p.Carbons
+		note(bare, func(a Assumption) bool {
+			return strings.Contains(a.What, "CH3") || strings.Contains(a.What, "kind of carbon")
+		})
+	}
+}
+
+// goodFit is a cost that a right structure seldom exceeds: about one unit for each signal.
+func (s *searcher) goodFit() float64 {
+	return 4 + float64(len(s.d.Carbon)+len(s.d.Proton)) + 0.5*float64(len(s.d.Bands)+len(s.d.Peaks))
+}
+
 func (s *searcher) searchFormula(ctx context.Context, res *Result, f *molecule.Formula, at int) error {
 	p := isomer.Problem{Formula: *f, Valences: s.d.Valences}
 	assumed := s.d.inferHard(f, &p)
 	if at == 0 {
+		s.countSteps(ctx, f, &p, assumed)
 		res.Assumed = append(res.Assumed, assumed...)
 	}
 	size, err := isomer.Estimate(ctx, p, 600, 1)
-	if err != nil {
+	if err != nil && ctx.Err() == nil {
 		return err
+	}
+	if ctx.Err() != nil {
+		res.Complete = false
+		res.Doubts = append(res.Doubts, "Time ran out before structures of "+f.String()+" were built.")
+		return nil
 	}
 	if size.Structures <= exhaustiveLimit {
 		r, err := s.exhaust(ctx, p)
@@ -184,12 +237,12 @@ func (s *searcher) searchFormula(ctx context.Context, res *Result, f *molecule.F
 		return nil
 	}
 	res.Complete = false
-	tried, found, err := s.assemble(ctx, f)
+	full, found, err := s.assemble(ctx, f)
 	if err != nil {
 		return err
 	}
 	if at == 0 {
-		res.Doubts = append(res.Doubts, fmt.Sprintf("%s has too many structures to build them all (about %s): likely ones were put together from building blocks (%d of %d sets of blocks tried); a structure outside these sets was not considered.", f, roundNumber(size.Structures), tried, found))
+		res.Doubts = append(res.Doubts, fmt.Sprintf("%s has too many structures to build them all (about %s): likely ones were put together from building blocks (%d of %d arrangements of blocks built in full); a structure outside these was not considered.", f, roundNumber(size.Structures), full, found))
 	}
 	return nil
 }
@@ -207,7 +260,9 @@ func (s *searcher) rank(res *Result, opt Options) {
 	sc := newScorer(s.d)
 	list := s.pool.list
 	for i := range list {
+		behind := list[i].score.formula
 		list[i].score = sc.score(list[i].m, true)
+		list[i].score.formula = behind
 		if list[i].text == "" {
 			list[i].text = smiles.Write(list[i].m)
 		}

@@ -69,7 +69,8 @@ type buildingBlock struct {
 	sites   int // free valences
 	carbonH [4]int
 	heteroH int
-	acyl    int
+	acyl    int // C=O carbons that also carry O, N, S or a halogen
+	oxo     int // C=O carbons
 	shows   string
 	cost    float32
 	carbon  []window
@@ -88,7 +89,6 @@ type blockFile struct {
 		Piece     rules.Text  `yaml:"piece" need:"piece: '[OH:1][CH:1]=O'"`
 		Carbons   [][]float64 `yaml:"carbons"`
 		Hydrogens [][]float64 `yaml:"hydrogens"`
-		Acyl      int         `yaml:"acyl"`
 		Shows     string      `yaml:"shows"`
 		Cost      float64     `yaml:"cost"`
 		Source    string      `yaml:"source" need:"source: textbook"`
@@ -123,7 +123,7 @@ func readLibrary() (*library, error) {
 		if err != nil {
 			return nil, r.Piece.Errorf(rules.PathOf(fsys, name), "%v", err)
 		}
-		b.acyl, b.shows, b.cost = r.Acyl, r.Shows, float32(r.Cost)
+		b.shows, b.cost = r.Shows, float32(r.Cost)
 		for _, w := range r.Carbons {
 			b.carbon = append(b.carbon, window{float32(w[0]), float32(w[1]), 1})
 		}
@@ -138,13 +138,11 @@ func readLibrary() (*library, error) {
 	}
 	for _, s := range systems {
 		for k := range maxRingSites + 1 {
-			b, err := ringBlock(s, k)
+			blocks, err := ringBlocks(s, k)
 			if err != nil {
 				return nil, err
 			}
-			if b != nil {
-				lib.rings = append(lib.rings, b)
-			}
+			lib.rings = append(lib.rings, blocks...)
 		}
 	}
 	return lib, nil
@@ -180,6 +178,12 @@ func (b *buildingBlock) count(m *molecule.Molecule) {
 		b.atoms[iH] += h
 		if at.Element == 6 {
 			b.carbonH[min(h, 3)]++
+			if oxo, acyl := carbonylAt(m, a); oxo {
+				b.oxo++
+				if acyl {
+					b.acyl++
+				}
+			}
 		} else {
 			b.heteroH += h
 		}
@@ -199,9 +203,21 @@ func (b *buildingBlock) count(m *molecule.Molecule) {
 	b.pi += b.rings
 }
 
-// ringBlock makes the block of a ring system with k groups: one piece for each substitution pattern.
-// It returns nil where the system has fewer places.
-func ringBlock(s spectra.RingSystem, k int) (*buildingBlock, error) {
+// carbonylAt reports whether carbon a has a double-bonded O, and beside it a single-bonded O, N, S or
+// halogen.
+func carbonylAt(m *molecule.Molecule, a int) (oxo, acyl bool) {
+	for _, nb := range m.Neighbors(a) {
+		el, order := m.Atom(int(nb.Atom)).Element, m.Bond(int(nb.Bond)).Order
+		oxo = oxo || el == 8 && order == 2
+		acyl = acyl || el != 6 && order == 1
+	}
+	return oxo, acyl
+}
+
+// ringBlocks makes the blocks of a ring system with k groups: one piece for each substitution
+// pattern, the patterns with a group on nitrogen in a block of their own. None where the system has
+// fewer places.
+func ringBlocks(s spectra.RingSystem, k int) ([]*buildingBlock, error) {
 	var places []int
 	for a := range s.Molecule.NumAtoms() {
 		if s.Molecule.Atom(a).Hydrogens > 0 {
@@ -211,13 +227,15 @@ func ringBlock(s spectra.RingSystem, k int) (*buildingBlock, error) {
 	if k > len(places) || k == 0 || len(places) > 8 && k > 3 || s.Name != "benzene" && k > 4 {
 		return nil, nil
 	}
-	b := &buildingBlock{name: s.Name, ringSystem: true}
+	var blocks []*buildingBlock
 	seen := map[molecule.Key]bool{}
 	chosen := make([]int, k)
 	var choose func(at, from int) error
 	choose = func(at, from int) error {
 		if at == k {
-			return b.addPattern(s, chosen, seen)
+			var err error
+			blocks, err = addPattern(blocks, s, chosen, seen)
+			return err
 		}
 		for i := from; i < len(places); i++ {
 			chosen[at] = places[i]
@@ -230,12 +248,15 @@ func ringBlock(s spectra.RingSystem, k int) (*buildingBlock, error) {
 	if err := choose(0, 0); err != nil {
 		return nil, err
 	}
-	b.ringWindows(s, k)
-	return b, nil
+	for _, b := range blocks {
+		b.ringWindows(s, k)
+	}
+	return blocks, nil
 }
 
-// addPattern adds the piece with free valences on the chosen atoms unless an equivalent one is there.
-func (b *buildingBlock) addPattern(s spectra.RingSystem, chosen []int, seen map[molecule.Key]bool) error {
+// addPattern adds the piece with free valences on the chosen atoms to the block of its kind, unless an
+// equivalent one is there.
+func addPattern(blocks []*buildingBlock, s spectra.RingSystem, chosen []int, seen map[molecule.Key]bool) ([]*buildingBlock, error) {
 	marked, classed := s.Molecule.Builder(), s.Molecule.Builder()
 	for _, a := range chosen {
 		marked.Atoms[a].Isotope = 200
@@ -243,25 +264,30 @@ func (b *buildingBlock) addPattern(s spectra.RingSystem, chosen []int, seen map[
 	}
 	m, err := marked.Build()
 	if err != nil {
-		return err
+		return nil, err
 	}
 	if seen[m.FlatKey()] {
-		return nil
+		return blocks, nil
 	}
 	seen[m.FlatKey()] = true
 	m, err = classed.Build()
 	if err != nil {
-		return err
+		return nil, err
 	}
 	p, err := isomer.PieceOf(fmt.Sprintf("%s with %d groups", s.Name, len(chosen)), m)
 	if err != nil {
-		return err
+		return nil, err
 	}
-	if len(b.pieces) == 0 {
-		b.count(m)
+	fresh := &buildingBlock{name: s.Name, ringSystem: true}
+	fresh.count(m)
+	for _, b := range blocks {
+		if b.carbonH == fresh.carbonH && b.heteroH == fresh.heteroH {
+			b.pieces = append(b.pieces, p)
+			return blocks, nil
+		}
 	}
-	b.pieces = append(b.pieces, p)
-	return nil
+	fresh.pieces = []isomer.Piece{p}
+	return append(blocks, fresh), nil
 }
 
 // ringWindows gives the ranges in which the ring's carbons and hydrogens may stand.
@@ -280,6 +306,8 @@ func (b *buildingBlock) ringWindows(s spectra.RingSystem, k int) {
 	}
 	hydrogens = min(hydrogens, b.carbonH[1])
 	with := min(k, carbons)
-	b.carbon = append(b.carbon, window{lowC - 14, highC + 9, carbons - with}, window{lowC - 12, highC + 36, with})
+	// a free place is moved by its ortho and para groups (two ortho O: -28), a place with a group by that
+	upField := float32(min(k, 3))
+	b.carbon = append(b.carbon, window{lowC - 6 - 12*upField, highC + 9, carbons - with}, window{lowC - 8 - 11*upField, highC + 36, with})
 	b.proton = append(b.proton, window{lowH - 0.95, highH + 1.1, hydrogens})
 }

@@ -12,6 +12,7 @@ type half struct {
 	sig    *spectra.ProtonSignal
 	h      float32
 	spread float32
+	at     int // row in the table of fits
 }
 
 const (
@@ -39,17 +40,47 @@ func (s *scorer) protonCost(fine bool) float32 {
 		if g.MaySplit {
 			n := float32(g.Hydrogens) / 2
 			sp := max(g.SpreadPPM, 0.28)
-			s.halfs = append(s.halfs, half{g, n, sp}, half{g, n, sp})
+			s.halfs = append(s.halfs, half{g, n, sp, 0}, half{g, n, sp, 0})
 			continue
 		}
-		s.halfs = append(s.halfs, half{g, float32(g.Hydrogens), g.SpreadPPM})
+		s.halfs = append(s.halfs, half{g, float32(g.Hydrogens), g.SpreadPPM, 0})
 	}
 	s.scaleIntegrals(total, exch)
+	s.fillFits()
 	s.exch = exch
 	s.place, s.bestPlace = s.place[:0], s.bestPlace[:0]
 	best := float32(math.Inf(1))
 	s.placeExchanging(exch, 0, 0, fine, &best)
 	return best
+}
+
+// pairFit is how one set suits one signal: by place, by shape, and by shape as one of several there.
+type pairFit struct{ shift, shape float32 }
+
+// fillFits compares every set with every signal once.
+func (s *scorer) fillFits() {
+	n, k := len(s.halfs), len(s.proton)
+	if cap(s.fits) < n*k {
+		s.fits = make([]pairFit, n*k)
+	}
+	s.fits = s.fits[:n*k]
+	for i := range s.halfs {
+		g := &s.halfs[i]
+		g.at = i
+		if i > 0 && s.halfs[i-1].sig == g.sig {
+			copy(s.fits[i*k:(i+1)*k], s.fits[(i-1)*k:i*k])
+			continue
+		}
+		wide := logRatio(g.spread, protonSpread)
+		for j := range s.proton {
+			x := &s.proton[j]
+			f := pairFit{protonOff(x, g) + wide, 7}
+			if f.shift < 14 {
+				f.shape = shapeFit(x, g.sig)
+			}
+			s.fits[i*k+j] = f
+		}
+	}
 }
 
 // scaleIntegrals sets the capacity of every observed signal in hydrogens of the candidate.
@@ -196,15 +227,15 @@ func (s *scorer) alignProtons() float32 {
 				if capacity >= 0 && sum > capacity+3.5 {
 					break
 				}
-				shiftCost += protonShift(x, g)
-				count := i - r
-				if count == 1 {
-					shapeCost = shapeFit(x, g.sig)
-				} else {
-					shapeCost = s.runShape(x, r, i)
-				}
-				if shiftCost > best-cost[(j-1)*w] && shiftCost > 60 {
+				fit := &s.fits[g.at*k+j-1]
+				shiftCost += fit.shift
+				if shiftCost > 50 {
 					break
+				}
+				if i-r == 1 {
+					shapeCost = fit.shape
+				} else {
+					shapeCost = s.runShape(x, j-1, r, i)
 				}
 				c := cost[(j-1)*w+r] + shiftCost + shapeCost
 				if capacity >= 0 {
@@ -232,8 +263,8 @@ func (s *scorer) emptySignal(capacity float32) float32 {
 	return protonExtra + 0.5*protonPerH*min(capacity, 6)
 }
 
-// protonShift compares the place of a set with a signal or range.
-func protonShift(x *Proton, g *half) float32 {
+// protonOff compares the place of a set with a signal or range.
+func protonOff(x *Proton, g *half) float32 {
 	off := float32(0)
 	mean := g.sig.MeanPPM
 	if mean < float32(x.Low) {
@@ -241,11 +272,12 @@ func protonShift(x *Proton, g *half) float32 {
 	} else if mean > float32(x.High) {
 		off = mean - float32(x.High)
 	}
-	return tailed(off/g.spread) + logRatio(g.spread, protonSpread)
+	return tailed(off / g.spread)
 }
 
 // runShape judges a signal that holds the sets r to i-1.
-func (s *scorer) runShape(x *Proton, r, i int) float32 {
+func (s *scorer) runShape(x *Proton, j, r, i int) float32 {
+	k := len(s.proton)
 	n := float32(i - r - 1)
 	switch x.Shape {
 	case "m", "", "br":
@@ -253,19 +285,19 @@ func (s *scorer) runShape(x *Proton, r, i int) float32 {
 	}
 	// the two hydrogens of one CH2 under one shape are simply a CH2
 	same := true
-	for k := r + 1; k < i; k++ {
-		same = same && s.halfs[k].sig == s.halfs[r].sig
+	for q := r + 1; q < i; q++ {
+		same = same && s.halfs[q].sig == s.halfs[r].sig
 	}
 	if same {
-		return shapeFit(x, s.halfs[r].sig)
+		return s.fits[s.halfs[r].at*k+j].shape
 	}
 	c := float32(0)
-	for k := r; k < i; k++ {
-		if s.halfs[k].sig.Aromatic {
+	for q := r; q < i; q++ {
+		if s.halfs[q].sig.Aromatic {
 			c += 0.25 // strongly coupled rings collapse
 			continue
 		}
-		c += 0.5 * shapeFit(x, s.halfs[k].sig)
+		c += 0.5 * s.fits[s.halfs[q].at*k+j].shape
 	}
 	return c + protonCoincide*n
 }
@@ -307,7 +339,7 @@ func shapeFit(x *Proton, g *spectra.ProtonSignal) float32 {
 		}
 		return 0.9
 	}
-	lines := shapes[x.Shape]
+	lines := x.lines
 	seen := 0
 	for _, k := range lines {
 		seen += k

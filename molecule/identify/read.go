@@ -60,6 +60,7 @@ type Proton struct {
 	Shape    string
 	J        []float64
 	H, Ratio float64
+	lines    []int // splitting by partners, from Shape
 	// Solvent names a residual solvent or water that the signal agrees with; such a signal is left out
 	// of the score, not out of sight.
 	Solvent string

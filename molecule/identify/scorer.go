@@ -32,6 +32,7 @@ type scorer struct {
 	back  []int8
 	frags []spectra.Fragment
 	halfs []half
+	fits  []pairFit // by set, then signal
 	caps  []float32
 	exch  []*spectra.ProtonSignal
 	// place and bestPlace: signal of each exchanging set, -1 unseen; being tried, and the best found
@@ -41,9 +42,12 @@ type scorer struct {
 // parts are the shares of a score.
 type parts struct {
 	carbon, proton, infrared, mass, prior float32
+	formula                               float32 // how much worse the formula fits than the first
 }
 
-func (s parts) total() float32 { return s.carbon + s.proton + s.infrared + s.mass + s.prior }
+func (s parts) total() float32 {
+	return s.carbon + s.proton + s.infrared + s.mass + s.prior + s.formula
+}
 
 func newScorer(d *Data) *scorer {
 	s := &scorer{d: d, pred: spectra.NewPredictor()}
@@ -56,6 +60,7 @@ func newScorer(d *Data) *scorer {
 		if h.Solvent != "" {
 			continue
 		}
+		h.lines = shapes[h.Shape]
 		s.proton = append(s.proton, h)
 		s.hSum += h.H
 		s.ratioSum += h.Ratio
@@ -70,22 +75,38 @@ func newScorer(d *Data) *scorer {
 
 // score judges m. fine also tries other orders of the 1H assignment and the mass spectrum.
 func (s *scorer) score(m *molecule.Molecule, fine bool) parts {
+	p, _ := s.scoreUnder(m, fine, 1e9)
+	return p
+}
+
+// lowestRest is about the best that the rest of a score can still bring (narrow spreads count as a
+// gain).
+const lowestRest = 3
+
+// scoreUnder stops early, with ok false, once the score cannot stay under limit.
+func (s *scorer) scoreUnder(m *molecule.Molecule, fine bool, limit float32) (p parts, ok bool) {
 	s.pred.Predict(m, &s.p)
 	var out parts
 	out.prior = s.pred.Strangeness(m)
 	if len(s.carbon) > 0 {
 		out.carbon = s.carbonCost(nil)
 	}
+	if len(s.d.Bands) > 0 {
+		out.infrared = s.infraredCost(nil)
+	}
+	if out.total() > limit+lowestRest {
+		return out, false
+	}
 	if len(s.proton) > 0 {
 		out.proton = s.protonCost(fine)
 	}
-	if len(s.d.Bands) > 0 {
-		out.infrared = s.infraredCost(nil)
+	if out.total() > limit {
+		return out, false
 	}
 	if len(s.d.Peaks) > 0 {
 		out.mass = s.massCost(m, nil)
 	}
-	return out
+	return out, true
 }
 
 // tailed is the drop in log-likelihood at z standard deviations under Student's t with four degrees

@@ -28,6 +28,7 @@ var (
 	oddYnol       = Oddity{"OH or NH on C#C", 6}
 	oddBicycle    = Oddity{"small rings sharing a bond", 2.5}
 	oddBridgehead = Oddity{"a bridgehead double bond", 6}
+	oddCyclophane = Oddity{"a short bridge between meta or para places of an aromatic ring", 9}
 	oddSystem     = Oddity{"an aromatic ring system without table", 1.2}
 	oddThial      = Oddity{"a C=S outside thioamides and their kin", 2.5}
 )
@@ -86,7 +87,44 @@ func (p *Predictor) eachOddity(m *molecule.Molecule, yield func(o *Oddity, times
 	if small > 0 {
 		yield(&oddSmallRing, small)
 	}
+	if p.shortBridge() {
+		yield(&oddCyclophane, 1)
+	}
 	p.bridgeheads(m, yield)
+}
+
+// shortBridge reports a ring under ten members, not aromatic itself, that runs through three or more
+// atoms of one aromatic ring.
+func (p *Predictor) shortBridge() bool {
+	for _, r := range p.ringOf {
+		if len(r) > 9 || p.allAromatic(r) {
+			continue
+		}
+		for _, q := range p.ringOf {
+			if !p.allAromatic(q) {
+				continue
+			}
+			shared := 0
+			for _, x := range r {
+				if inRingList(q, int(x)) {
+					shared++
+				}
+			}
+			if shared > 2 {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+func (p *Predictor) allAromatic(r []int32) bool {
+	for _, x := range r {
+		if !p.aromatic[x] {
+			return false
+		}
+	}
+	return true
 }
 
 // shareBond reports whether two rings have at least two atoms in common.
