@@ -1,15 +1,32 @@
 package molecule
 
+// SeparateCharges returns m with pentavalent nitrogen (CN(=O)=O, CN=N#N) drawn with charges, the form
+// that patterns and rules are written in; m itself if there is none. Readers of files and texts call
+// it. Atom and bond indices are kept.
+func (m *Molecule) SeparateCharges() *Molecule {
+	if !m.pentavalent {
+		return m
+	}
+	b := m.Builder()
+	c := newChargeWork(b)
+	for a := range b.Atoms {
+		if b.Atoms[a].Element == 7 {
+			c.pentavalent(int32(a))
+		}
+	}
+	n, err := b.Build()
+	if err != nil {
+		return m
+	}
+	return n
+}
+
 // chargeForms rewrites the ways of drawing one compound with and without charges to one of them:
 // nitro groups, N-oxides, azides and diazo compounds charge-separated; sulfoxides, sulfones,
 // phosphine oxides and phosphorus and sulfur ylides with double bonds. It reports whether b changed.
 // Hydrogens must be counts, not AutoHydrogens.
 func chargeForms(b *Builder) bool {
-	c := &chargeWork{b: b, nbs: make([][]Neighbor, len(b.Atoms))}
-	for i, x := range b.Bonds {
-		c.nbs[x.A] = append(c.nbs[x.A], Neighbor{Atom: x.B, Bond: int32(i)})
-		c.nbs[x.B] = append(c.nbs[x.B], Neighbor{Atom: x.A, Bond: int32(i)})
-	}
+	c := newChargeWork(b)
 	for a := range b.Atoms {
 		switch b.Atoms[a].Element {
 		case 7:
@@ -26,6 +43,15 @@ type chargeWork struct {
 	b       *Builder
 	nbs     [][]Neighbor
 	changed bool
+}
+
+func newChargeWork(b *Builder) *chargeWork {
+	c := &chargeWork{b: b, nbs: make([][]Neighbor, len(b.Atoms))}
+	for i, x := range b.Bonds {
+		c.nbs[x.A] = append(c.nbs[x.A], Neighbor{Atom: x.B, Bond: int32(i)})
+		c.nbs[x.B] = append(c.nbs[x.B], Neighbor{Atom: x.A, Bond: int32(i)})
+	}
+	return c
 }
 
 func (c *chargeWork) valence(a int32) int {

@@ -64,6 +64,7 @@ type Molecule struct {
 	bondRing    []int32 // bond -> size of its smallest ring, 0 none
 	centers     []Center
 	doubleBonds []DoubleBond
+	pentavalent bool // some nitrogen has five bonds
 
 	exact, flat, seen atomic.Pointer[identity] // made when first asked for
 }

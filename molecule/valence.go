@@ -127,6 +127,7 @@ func (p *perceiver) checkValence(a int) error {
 	if x.Element == 7 && x.Charge == 0 && total > 3 {
 		// Pentavalent nitrogen is a way to draw nitro groups, N-oxides and azides; it has multiple bonds.
 		if total == 5 && p.sum[a] > int16(p.m.Degree(a)) {
+			p.m.pentavalent = true
 			return nil
 		}
 		most = 3

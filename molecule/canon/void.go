@@ -7,11 +7,12 @@ package canon
 func (w *Worker) DropVoid(g *Graph) (keepCenter, keepAxis []bool) {
 	h := *g
 	centerAt, axisAt := w.dropTwins(g, &h)
-	for w.suspect(&h) {
-		if !w.dropOne(&h, &centerAt, &axisAt) {
-			break
+	v := voidWork{w: w, h: &h, centerAt: centerAt, axisAt: axisAt, left: maxWork / max(1, len(g.Colours)*len(g.Colours))}
+	if v.suspects() {
+		for v.dropOne() {
 		}
 	}
+	centerAt, axisAt = v.centerAt, v.axisAt
 	if len(h.Centers) == len(g.Centers) && len(h.Axes) == len(g.Axes) {
 		return nil, nil
 	}
@@ -57,73 +58,93 @@ func (w *Worker) dropTwins(g, h *Graph) (centerAt, axisAt []int) {
 	return centerAt, axisAt
 }
 
-// suspect says that some mark of g has ligands which the flat refinement cannot tell apart; where
-// it can, every mark counts: the sign relative to the flat order is an invariant of the atom, and
-// flipping one changes how often it occurs.
-func (w *Worker) suspect(g *Graph) bool {
-	if len(g.Centers)+len(g.Axes) == 0 {
-		return false
-	}
-	flat := *g
-	flat.Centers, flat.Axes = nil, nil
-	r := &w.search.r
-	r.g = &flat
-	w.search.grow(0)
-	p := &w.search.level[0]
-	r.start(p)
-	r.refine(p)
-	for i := range g.Centers {
-		if g.Centers[i].sign(p.cell) == 0 {
-			return true
-		}
-	}
-	for i := range g.Axes {
-		if g.Axes[i].sign(p.cell) == 0 {
-			return true
-		}
-	}
-	return false
+// maxWork bounds the labellings spent on one graph, times the square of its atoms, which is what one
+// costs in a ring of equal centres: thousands of labellings for any molecule on a shelf, about a
+// second for a hostile one (a ring of hundreds of centres), whose void marks then stay.
+const maxWork = 2_000_000
+
+// voidWork is the search for void marks in h.
+type voidWork struct {
+	w                *Worker
+	h                *Graph
+	centerAt, axisAt []int  // where the marks of h stand in the given graph
+	center, axis     []bool // mark of h can be void
+	left             int    // labellings left
 }
 
-// dropOne drops the first void mark of h in canonical order and reports whether there was one.
-func (w *Worker) dropOne(h *Graph, centerAt, axisAt *[]int) bool {
-	base := w.Label(h)
-	found, at, axis := int32(1<<30), -1, false
+// suspects finds the marks with ligands which the flat refinement cannot tell apart, and reports
+// whether there are any. The others always count: the sign relative to the flat order is an
+// invariant of the atom, and flipping one changes how often it occurs.
+func (v *voidWork) suspects() bool {
+	h := v.h
+	if len(h.Centers)+len(h.Axes) == 0 {
+		return false
+	}
+	flat := *h
+	flat.Centers, flat.Axes = nil, nil
+	r := &v.w.search.r
+	r.g = &flat
+	v.w.search.grow(0)
+	p := &v.w.search.level[0]
+	r.start(p)
+	r.refine(p)
+	any := false
+	v.center, v.axis = make([]bool, len(h.Centers)), make([]bool, len(h.Axes))
+	for i := range h.Centers {
+		v.center[i] = h.Centers[i].sign(p.cell) == 0
+		any = any || v.center[i]
+	}
+	for i := range h.Axes {
+		v.axis[i] = h.Axes[i].sign(p.cell) == 0
+		any = any || v.axis[i]
+	}
+	return any
+}
+
+// dropOne drops the first void mark of h in canonical order, centres first, and reports whether
+// there was one. Of marks on equivalent atoms one stands for all.
+func (v *voidWork) dropOne() bool {
+	h := v.h
+	base := v.w.Label(h)
+	tried := map[[2]int32]bool{}
+	found, at := int32(1<<30), -1
 	for i := range h.Centers {
 		c := &h.Centers[i]
-		if base.Ranks[c.Atom] >= found {
+		place := [2]int32{base.Orbits[c.Atom], -1}
+		if !v.center[i] || base.Ranks[c.Atom] >= found || tried[place] || v.left == 0 {
 			continue
 		}
+		tried[place] = true
+		v.left--
 		c.Clockwise = !c.Clockwise
-		if w.Label(h).Hash == base.Hash {
+		if v.w.Label(h).Hash == base.Hash {
 			found, at = base.Ranks[c.Atom], i
 		}
 		c.Clockwise = !c.Clockwise
 	}
+	if at >= 0 {
+		h.Centers = append(h.Centers[:at], h.Centers[at+1:]...)
+		v.centerAt = append(v.centerAt[:at], v.centerAt[at+1:]...)
+		v.center = append(v.center[:at], v.center[at+1:]...)
+		return true
+	}
 	for i := range h.Axes {
 		x := &h.Axes[i]
-		if at >= 0 && !axis {
-			break // centres come first
-		}
 		rank := min(base.Ranks[x.A], base.Ranks[x.B])
-		if rank >= found {
+		if !v.axis[i] || rank >= found || v.left == 0 {
 			continue
 		}
+		v.left--
 		x.Together = !x.Together
-		if w.Label(h).Hash == base.Hash {
-			found, at, axis = rank, i, true
+		if v.w.Label(h).Hash == base.Hash {
+			found, at = rank, i
 		}
 		x.Together = !x.Together
 	}
-	switch {
-	case at < 0:
-		return false
-	case axis:
+	if at >= 0 {
 		h.Axes = append(h.Axes[:at], h.Axes[at+1:]...)
-		*axisAt = append((*axisAt)[:at], (*axisAt)[at+1:]...)
-	default:
-		h.Centers = append(h.Centers[:at], h.Centers[at+1:]...)
-		*centerAt = append((*centerAt)[:at], (*centerAt)[at+1:]...)
+		v.axisAt = append(v.axisAt[:at], v.axisAt[at+1:]...)
+		v.axis = append(v.axis[:at], v.axis[at+1:]...)
 	}
-	return true
+	return at >= 0
 }

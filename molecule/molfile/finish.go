@@ -35,6 +35,7 @@ func (b *block) finish() (*Record, error) {
 		b.record.Coordinates = keepHeavy(m, b.record.Coordinates, spare.NumAtoms())
 		b.record.Molecule = spare
 	}
+	b.record.Molecule = b.record.Molecule.SeparateCharges()
 	return &b.record, nil
 }
 

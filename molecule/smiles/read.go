@@ -127,7 +127,10 @@ func (r *reader) read(text string) (*molecule.Molecule, error) {
 	if err != nil {
 		return nil, r.place(err, nil)
 	}
-	return m, r.checkLower(m, nil)
+	if err := r.checkLower(m, nil); err != nil {
+		return nil, err
+	}
+	return m.SeparateCharges(), nil
 }
 
 // buildWithHydrogens folds hydrogen atoms into counts; atoms move up by it.
@@ -140,7 +143,7 @@ func (r *reader) buildWithHydrogens() (*molecule.Molecule, error) {
 	if err := r.checkLower(m, at); err != nil {
 		return nil, err
 	}
-	return m.FoldSpareHydrogens(), nil
+	return m.FoldSpareHydrogens().SeparateCharges(), nil
 }
 
 // original finds the atom of the text that became atom a; to maps old to new, nil when nothing moved.

@@ -16,7 +16,7 @@ func TestSpecification(t *testing.T) {
 		// 3.1 atoms
 		{"[U] [U]", "U"}, {"[Pb]", "Pb"}, {"[He]", "He"}, {"[*]", "*"}, {"[CH4] C", "CH4"}, {"[ClH] Cl", "ClH"}, {"[ClH1] Cl", "ClH"},
 		{"[Cl-]", "Cl-"}, {"[OH1-] [OH-]", "HO-"}, {"[Cu+2] [Cu++]", "Cu(2+)"}, {"[13CH4]", "CH4"}, {"[2H+]", "H+"}, {"[238U]", "U"},
-		{"N", "H3N"}, {"Cl", "ClH"}, {"[OH3+]", "H3O+"}, {"[NH4+]", "H4N+"}, {"[O-][N+](=O)C", "CH3NO2"}, {"[CH2:2]=C C=C", "C2H4"},
+		{"N", "H3N"}, {"Cl", "ClH"}, {"[OH3+]", "H3O+"}, {"[NH4+]", "H4N+"}, {"[O-][N+](=O)C O=N(=O)C", "CH3NO2"}, {"CN=[N+]=[N-] CN=N#N", "CH3N3"}, {"[O-][n+]1ccccc1 O=n1ccccc1", "C5H5NO"}, {"[CH2:2]=C C=C", "C2H4"},
 		{"[Na+].[Cl-]", "ClNa"}, {"[H+]", "H+"}, {"[H][H]", "H2"}, {"[H]C([H])([H])[H] C", "CH4"}, {"[SiH4]", "H4Si"}, {"[PH5]", "H5P"},
 		// 3.2 bonds
 		{"CC C-C", "C2H6"}, {"C=C", "C2H4"}, {"C#N N#C", "CHN"}, {"CCO OCC C(O)C", "C2H6O"}, {"O=C=O", "CO2"}, {"[Ga+]$[As-]", "AsGa"},
@@ -136,6 +136,8 @@ func TestLargeInput(t *testing.T) {
 		{"binary", "C" + string([]byte{0, 1, 2, 0xff}), "expected"},
 		{"long conjugated chain", "C" + strings.Repeat("/C=C", 600) + "/C", ""},
 		{"many stereocentres", "C" + strings.Repeat("[C@H](O)", 600) + "C", ""},
+		{"ring of 60 equal centres", "O[C@H]1" + strings.Repeat("[C@H](O)", 58) + "[C@H]1O", ""},
+		{"ring of 62 mixed centres", "O[C@H]1" + strings.Repeat("[C@H](O)[C@@H](O)[C@H](O)[C@H](O)", 15) + "[C@H]1O", ""},
 		{"dendrimer", dendrimer(7), ""},
 		{"300 components", strings.TrimSuffix(strings.Repeat("CCO.", 300), "."), ""},
 		{"graphene", graphene(14, 14), ""},

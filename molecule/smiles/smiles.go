@@ -55,6 +55,7 @@ func (e *Error) Caret() string {
 // Read reads one SMILES; errors are *Error and point at the character. Blanks around the text are
 // allowed. Explicit hydrogen atoms become hydrogen counts except where they mean more: isotopes,
 // charged ones, molecular hydrogen, bridges, and the only mark-bearing neighbour of an imine end.
+// Nitrogen written with five bonds (CN(=O)=O) comes out charge-separated (C[N+](=O)[O-]).
 func Read(text string) (*molecule.Molecule, error) {
 	r := readers.Get().(*reader)
 	m, err := r.read(text)
