@@ -2,6 +2,7 @@ package molecule_test
 
 import (
 	"bufio"
+	"math/rand"
 	"os"
 	"strings"
 	"testing"
@@ -60,6 +61,41 @@ func TestSeenThroughDifferent(t *testing.T) {
 		a, b := readMolecule(t, p[0]), readMolecule(t, p[1])
 		if a.SeenThroughKey() == b.SeenThroughKey() {
 			t.Errorf("%s and %s must not match: %s (free forms %s, %s)", p[0], p[1], p[2], smiles.Write(a.FreeForm()), smiles.Write(b.FreeForm()))
+		}
+	}
+}
+
+// TestSeenThroughNumbering: the key does not depend on the numbering, nor does the free form.
+func TestSeenThroughNumbering(t *testing.T) {
+	for _, path := range []string{"../testdata/identity/same.tsv", "../testdata/identity/different.tsv"} {
+		for i, p := range pairs(t, path) {
+			for _, text := range p[:2] {
+				m := readMolecule(t, text)
+				for seed := range int64(4) {
+					n := renumber(t, m, rand.New(rand.NewSource(seed+int64(i))))
+					if n.SeenThroughKey() != m.SeenThroughKey() || n.FreeForm().Key() != m.FreeForm().Key() {
+						t.Errorf("%s: another key or free form (%s, %s) for another numbering", text, smiles.Write(n.FreeForm()), smiles.Write(m.FreeForm()))
+					}
+				}
+			}
+		}
+	}
+}
+
+func TestFreeForm(t *testing.T) {
+	for _, c := range []struct{ text, want string }{
+		{"CC(=O)O", "CC(=O)O"}, {"[Na+].[Cl-]", "[Na+].[Cl-]"}, {"CC(=O)[O-].[Na+]", "CC(=O)O"}, {"C[NH3+].[Cl-]", "CN"}, {"C[N+](C)(C)C.[I-]", "C[N+](C)(C)C"},
+		{"[O-]c1ccc([NH3+])cc1", "Oc1ccc(N)cc1"}, {"C[N+](C)(C)CC(=O)[O-]", "C[N+](C)(C)CC(=O)[O-]"}, {"[Li+].[CH3-]", "[Li]C"}, {"[K+].[K+].[O-]C(=O)C(=O)[O-]", "OC(=O)C(=O)O"},
+		{"C=O.[Na+].[Cl-]", "C=O.[Na+].[Cl-]"}, {"CC(=O)[O-].C[NH3+]", "CC(=O)O.CN"}, {"C[S-].[Na+]", "CS"}, {"[Na+].[O-][N+](=O)c1ccccc1", "[Na+].[O-][N+](=O)c1ccccc1"},
+		{"CC(=O)[O-].[Cu+]", "CC(=O)[O-].[Cu+]"}, {"[Na+].[Na+].[Na+].[O-]P([O-])([O-])=O", "[Na+].[Na+].[Na+].[O-]P([O-])([O-])=O"}, {"Cl.NCC(=O)OC", "NCC(=O)OC"},
+		{"Cl.CC(=O)OC", "Cl.CC(=O)OC"}, {"[Mg+2].[Cl-].[CH-]=C", "C=C[Mg]Cl"}, {"C1=CC=C[CH-]1.[Na+]", "[Na]C1C=CC=C1"},
+	} {
+		m := readMolecule(t, c.text)
+		if got, want := smiles.Write(m.FreeForm()), smiles.Write(readMolecule(t, c.want)); got != want {
+			t.Errorf("%s: free form %s, want %s", c.text, got, want)
+		}
+		if f := m.FreeForm(); f.FreeForm().Key() != f.Key() {
+			t.Errorf("%s: the free form %s has another free form", c.text, smiles.Write(f))
 		}
 	}
 }
