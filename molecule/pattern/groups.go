@@ -95,12 +95,14 @@ func (g *Groups) Name(id string) string {
 }
 
 func (s *Subject) fill(g int) *groupAtoms {
-	ga := &s.member[g]
-	if ga.known {
-		return ga
+	if s.member == nil {
+		s.member = make([]*groupAtoms, len(s.groups.list))
 	}
-	ga.known = true // set first: a group can only ask for earlier groups
-	ga.in = make([]bool, s.M.NumAtoms())
+	if s.member[g] != nil {
+		return s.member[g]
+	}
+	ga := &groupAtoms{in: make([]bool, s.M.NumAtoms())}
+	s.member[g] = ga // set first: a group can only ask for earlier groups
 	for qi, q := range s.groups.list[g].Queries {
 		core := s.groups.list[g].core[qi]
 		q.Each(s, func(to Mapping) bool {

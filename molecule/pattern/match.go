@@ -8,12 +8,11 @@ type Subject struct {
 	M      *molecule.Molecule
 	groups *Groups
 	count  [119]uint16  // atoms per element, a quick refusal
-	member []groupAtoms // per group, filled on first use
+	member []*groupAtoms // per group, filled on first use; nil before any group was asked for
 }
 
 // groupAtoms holds the instances of one group in one molecule.
 type groupAtoms struct {
-	known     bool
 	in        []bool
 	instances [][]int32
 }
@@ -23,9 +22,6 @@ func NewSubject(m *molecule.Molecule, groups *Groups) *Subject {
 	s := &Subject{M: m, groups: groups}
 	for a := 0; a < m.NumAtoms(); a++ {
 		s.count[m.Atom(a).Element]++
-	}
-	if groups != nil {
-		s.member = make([]groupAtoms, len(groups.list))
 	}
 	return s
 }
