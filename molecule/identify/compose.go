@@ -14,6 +14,7 @@ type composition struct {
 	sp3     [4]int           // single carbons by hydrogens
 	heteroH int              // hydrogens on single O, N and S
 	rings   int              // rings formed by joining blocks
+	best    float32          // best score of a structure sampled from it
 	cost    float32          // how badly the evidence fits, from wide shift ranges alone
 }
 
@@ -309,7 +310,7 @@ func (c *composer) bandsCost(m *composition) float32 {
 // the molecule; wide, common practice.
 var alkylWindows = [2][4]window{
 	{{15, 72, 0}, {10, 66, 0}, {3, 62, 0}, {0, 35, 0}},
-	{{18, 128, 0}, {12, 113, 0}, {5, 102, 0}, {-2, 62, 0}},
+	{{18, 128, 0}, {12, 116, 0}, {5, 105, 0}, {-3, 62, 0}},
 }
 
 // carbonCost matches observed lines with carbons whose range holds them: earliest end first.
@@ -381,7 +382,8 @@ func (c *composer) carbonCost(m *composition) float32 {
 	return cost
 }
 
-var alkylProtons = [4]window{{}, {0.6, 7.3, 0}, {0.2, 5.9, 0}, {0.2, 4.4, 0}}
+// a methylene between two O stands near 6.0 (benzodioxoles), a methine with three groups near 6.8
+var alkylProtons = [4]window{{}, {0.6, 7.4, 0}, {0.2, 6.3, 0}, {0.2, 4.4, 0}}
 
 // protonCost matches observed hydrogens with the ranges of the blocks.
 func (c *composer) protonCost(m *composition) float32 {

@@ -144,9 +144,13 @@ const (
 	// Values of ours: a pass over the usual number of arms takes a few seconds.
 	sampleSize  = 120
 	sampleReach = 4_000
-	maxArms     = 240
-	perArmLimit = 60_000
-	buildLimit  = 500_000
+	maxArms     = 260
+	// patternStep puts the later substitution patterns of a set behind the first ones of the next sets;
+	// siblingBehind is where patterns that were not sampled stand behind the best sample of their set.
+	patternStep   = 0.3
+	siblingBehind = 5
+	perArmLimit   = 60_000
+	buildLimit    = 500_000
 	// armWindow is how far behind the best structure so far an arm's best sample may lie for the arm to
 	// be built in full: a sample holds near relatives of every structure of its arm.
 	armWindow = 24
@@ -155,6 +159,7 @@ const (
 // arm is a set of blocks with one substitution pattern for each of its ring systems.
 type arm struct {
 	comp    *composition
+	order   float32 // cost of the set and place among its patterns
 	choice  []int
 	best    float32 // best score met so far
 	sampled int64   // structures scored in the first pass
@@ -172,15 +177,19 @@ func (s *searcher) assemble(ctx context.Context, f *molecule.Formula) (full, fou
 	c := &composer{lib: lib, d: s.d, target: target, unsat: int(f.Unsaturation())}
 	arms := armsOf(c.compositions())
 	found = len(arms)
-	arms = arms[:min(found, maxArms)]
-	for i := range arms {
+	for i := range arms[:min(found, maxArms)] {
 		if ctx.Err() != nil {
-			arms = arms[:i]
 			break
 		}
 		if err := s.sampleArm(ctx, f, &arms[i]); err != nil {
 			return 0, found, err
 		}
+		arms[i].comp.best = min(arms[i].comp.best, arms[i].best)
+	}
+	for i := range arms[min(found, maxArms):] {
+		// other patterns of a set stand near those sampled
+		a := &arms[maxArms+i]
+		a.best = a.comp.best + siblingBehind
 	}
 	slices.SortStableFunc(arms, func(a, b arm) int { return cmp.Compare(a.best, b.best) })
 	for i := range arms {
@@ -205,11 +214,14 @@ func armsOf(comps []composition) []arm {
 	var out []arm
 	for i := range comps {
 		comp := &comps[i]
+		comp.best = 1e9
+		index := 0
 		choice := make([]int, len(comp.blocks))
 		var run func(at int)
 		run = func(at int) {
 			if at == len(comp.blocks) {
-				out = append(out, arm{comp: comp, choice: slices.Clone(choice), best: 1e9})
+				out = append(out, arm{comp: comp, order: comp.cost + patternStep*float32(index), choice: slices.Clone(choice), best: 1e9})
+				index++
 				return
 			}
 			from := 0
@@ -222,10 +234,11 @@ func armsOf(comps []composition) []arm {
 			}
 		}
 		run(0)
-		if len(out) > 4*maxArms {
+		if len(out) > 20*maxArms {
 			break
 		}
 	}
+	slices.SortStableFunc(out, func(a, b arm) int { return cmp.Compare(a.order, b.order) })
 	return out
 }
 

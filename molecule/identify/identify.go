@@ -39,6 +39,10 @@ const SettledMargin = 4.5
 // exhaustiveLimit is the largest estimated number of structures that are all built and scored.
 const exhaustiveLimit = 450_000
 
+// blocksFirst is the estimated number above which likely structures are built from blocks before all
+// structures are.
+const blocksFirst = 60_000
+
 // Identify runs the whole chain. A result without candidates says why in Nothing. The error is for
 // evidence that makes no sense and for a context that ended before anything was found.
 func Identify(ctx context.Context, d *Data, opt Options) (*Result, error) {
@@ -226,6 +230,13 @@ func (s *searcher) searchFormula(ctx context.Context, res *Result, f *molecule.F
 		return nil
 	}
 	if size.Structures <= exhaustiveLimit {
+		if size.Structures > blocksFirst {
+			// should time run out before all are built, the likely ones are there
+			if _, _, err := s.assemble(ctx, f); err != nil {
+				return err
+			}
+			s.generated = 0
+		}
 		r, err := s.exhaust(ctx, p)
 		if err != nil {
 			return err

@@ -123,6 +123,7 @@ const (
 	carbonNoH      = 2.5
 	carbonExtra    = 5.0
 	carbonDoubled  = 3.0
+	carbonSplit    = 0.5
 	carbonAttached = 6.0
 	// spreads are measured against this one, so that a vague prediction does not win by being vague
 	carbonSpread = 2.0
@@ -225,7 +226,11 @@ func (s *scorer) alignCarbon(lines []spectra.CarbonLine, obs []Carbon, pairs *[]
 				best, how = c, 3
 			}
 			if l.Count > 1 && back[i*w+j-1] == 0 {
-				if c := cost[i*w+j-1] + fit + carbonDoubled; c < best {
+				double := float32(carbonDoubled)
+				if l.MaySplit {
+					double = carbonSplit
+				}
+				if c := cost[i*w+j-1] + fit + double; c < best {
 					best, how = c, 4
 				}
 			}

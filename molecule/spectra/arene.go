@@ -102,6 +102,9 @@ func (p *Predictor) areneCarbon(a int) shift {
 			spread += 3
 		}
 		mean += weight * p.t.benzene[g][rel]
+		if at == a && rel == ipso {
+			mean += p.chelateIpso(a, x)
+		}
 		if p.ringFused(at, x) {
 			mean += p.fusedEffect(rel, at, x)
 			spread += 0.5
@@ -114,6 +117,33 @@ func (p *Predictor) areneCarbon(a int) shift {
 		spread += 0.25 * float32(total-2)
 	}
 	return shift{mean, spread}
+}
+
+// chelateIpso moves the two ring carbons between which a hydrogen bridge OH...O=C or NH...O=C stands.
+func (p *Predictor) chelateIpso(a, x int) float32 {
+	if p.carbonyl[x] != noCarbonyl && !p.aromatic[x] {
+		switch p.orthoDonor(a) {
+		case oxygen:
+			return p.t.chelateOH.acylIpso
+		case nitrogen:
+			return p.t.chelateNH.acylIpso
+		}
+		return 0
+	}
+	if p.hyd[x] == 0 || p.el[x] != oxygen && p.el[x] != nitrogen {
+		return 0
+	}
+	for _, nb := range p.nb[a] {
+		for _, nb2 := range p.nb[nb.Atom] {
+			if y := int(nb2.Atom); p.aromatic[nb.Atom] && !p.aromatic[y] && p.carbonyl[y] != noCarbonyl {
+				if p.el[x] == oxygen {
+					return p.t.chelateOH.donorIpso
+				}
+				return p.t.chelateNH.donorIpso
+			}
+		}
+	}
+	return 0
 }
 
 // ringFused reports whether the bond from aromatic atom at to x closes a ring fused to the arene.

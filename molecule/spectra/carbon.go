@@ -380,6 +380,12 @@ func (p *Predictor) methylCorrection(a, x int) float32 {
 func (p *Predictor) carbonylCarbon(a int) shift {
 	row := &p.t.carbonyl[p.carbonyl[a]]
 	mean, spread := row.carbon.mean, row.carbon.spread
+	switch p.chelated(a) {
+	case oxygen:
+		mean += p.t.chelateOH.carbonyl
+	case nitrogen:
+		mean += p.t.chelateNH.carbonyl
+	}
 	if p.ring[a] > 0 {
 		if v, ok := p.ringValue(a, p.t.ringCarbon); ok && v > 100 {
 			mean, spread = v, max(spread, 2)

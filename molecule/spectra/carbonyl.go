@@ -274,3 +274,39 @@ func (p *Predictor) aromaticCarbonyl(a int) Carbonyl {
 	}
 	return arKetone
 }
+
+// chelated returns the kind of group ortho to the aryl that carries carbonyl a, whose hydrogen bridges
+// to the O: oxygen for OH, nitrogen for NH, 0 for none.
+func (p *Predictor) chelated(a int) uint8 {
+	for _, nb := range p.nb[a] {
+		if x := int(nb.Atom); p.aromatic[x] && !p.aromatic[a] {
+			if el := p.orthoDonor(x); el != 0 {
+				return el
+			}
+		}
+	}
+	return 0
+}
+
+// orthoDonor looks for OH or NH on the ring atoms beside x.
+func (p *Predictor) orthoDonor(x int) uint8 {
+	found := uint8(0)
+	for _, nb := range p.nb[x] {
+		if !p.aromatic[nb.Atom] {
+			continue
+		}
+		for _, nb2 := range p.nb[nb.Atom] {
+			y := int(nb2.Atom)
+			if p.aromatic[y] || p.hyd[y] == 0 {
+				continue
+			}
+			switch p.el[y] {
+			case oxygen:
+				return oxygen
+			case nitrogen:
+				found = nitrogen
+			}
+		}
+	}
+	return found
+}

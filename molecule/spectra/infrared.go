@@ -183,6 +183,12 @@ func (p *Predictor) bands(out []Band) []Band {
 func (p *Predictor) addCarbonylBand(a int, c Carbonyl, out []Band) []Band {
 	row := &p.t.carbonyl[c]
 	mean := row.bandCM1
+	switch p.chelated(a) {
+	case oxygen:
+		mean += p.t.chelateOH.band
+	case nitrogen:
+		mean += p.t.chelateNH.band
+	}
 	switch size := p.ring[a]; {
 	case c >= arLactone:
 	case size == 4:
@@ -197,7 +203,18 @@ func (p *Predictor) addCarbonylBand(a int, c Carbonyl, out []Band) []Band {
 			return out
 		}
 	}
-	return append(out, Band{feature: carbonylBand, Carbonyl: c, LowCM1: mean - 2*row.width, HighCM1: mean + 2*row.width, MeanCM1: mean, WidthCM1: row.width, Strength: Strong, Missed: 4})
+	add := func(mean, width, missed float32) {
+		out = append(out, Band{feature: carbonylBand, Carbonyl: c, LowCM1: mean - 2*width, HighCM1: mean + 2*width, MeanCM1: mean, WidthCM1: width, Strength: Strong, Missed: missed})
+	}
+	add(mean, row.width, 4)
+	// two coupled C=O: the second band of anhydrides lies some 65 lower, that of cyclic imides 60 higher
+	switch {
+	case c == anhydride:
+		add(mean-62, row.width, 1.5)
+	case c == imide && p.ring[a] == 5:
+		add(mean+60, row.width, 0.3)
+	}
+	return out
 }
 
 // atomFeatures marks the features that begin at atom a.

@@ -21,6 +21,9 @@ type CarbonLine struct {
 	Hydrogens uint8 // attached to each
 	// MeanPPM and SpreadPPM (one standard deviation) of the shift.
 	MeanPPM, SpreadPPM float32
+	// MaySplit says that two carbons counted as equivalent need not be: methyl groups on one atom of a
+	// molecule with a centre of chirality.
+	MaySplit bool
 }
 
 // ProtonSignal is one set of equivalent hydrogens on carbon, or of exchanging ones on O, N or S.
@@ -80,8 +83,26 @@ next:
 		s := p.carbonShift(a)
 		out = append(out, CarbonLine{Atom: int32(a), Count: 1, Hydrogens: p.hyd[a], MeanPPM: s.mean, SpreadPPM: s.spread})
 	}
+	if p.hasCentre() {
+		for i := range out {
+			l := &out[i]
+			l.MaySplit = l.Count == 2 && l.Hydrogens == 3 && p.sharedNeighbour(int(l.Atom))
+		}
+	}
 	slices.SortStableFunc(out, func(x, y CarbonLine) int { return cmp.Compare(y.MeanPPM, x.MeanPPM) })
 	return out
+}
+
+// sharedNeighbour reports whether the methyl a and an equivalent one hang on the same atom.
+func (p *Predictor) sharedNeighbour(a int) bool {
+	for _, nb := range p.nb[a] {
+		for _, nb2 := range p.nb[nb.Atom] {
+			if int(nb2.Atom) != a && p.class[nb2.Atom] == p.class[a] {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // protonSignals groups the hydrogens by the symmetry class of their carrier, down field first; the

@@ -110,7 +110,7 @@ func (p *Predictor) acylGroup(from, x int) Group {
 
 // alkylGroup names an sp3 carbon by its hydrogens and what else it carries.
 func (p *Predictor) alkylGroup(from, x int) Group {
-	var nO, nEsterO, nN, nS, nHal, nF, nAr, nCO, nC int
+	var nO, nEsterO, nN, nAcylN, nS, nHal, nF, nAr, nCO, nC int
 	next := -1
 	for _, nb := range p.nb[x] {
 		y := int(nb.Atom)
@@ -125,6 +125,9 @@ func (p *Predictor) alkylGroup(from, x int) Group {
 			}
 		case el == nitrogen:
 			nN++
+			if g := p.nitrogenGroup(x, y); g == NHCOR || g == NRing || g == NImine {
+				nAcylN++
+			}
 		case el == sulfur:
 			nS++
 		case isHalogen(el):
@@ -156,8 +159,12 @@ func (p *Predictor) alkylGroup(from, x int) Group {
 		return CH2OCO
 	case nO == 1:
 		return [4]Group{CR2O, CHRO, CH2O, CH2O}[h]
+	case nAcylN > 0 && h == 2:
+		return CH2NCO
 	case nN > 0 && h == 2:
 		return CH2N
+	case nN > 0 && h == 1:
+		return CHRN
 	case nS > 0 && h == 2:
 		return CH2S
 	case nAr > 0 && h == 2:

@@ -160,6 +160,13 @@ type carbonylFile struct {
 		Size6   float64 `yaml:"size6"`
 		Lactam5 float64 `yaml:"lactam5"`
 	} `yaml:"ring_band"`
+	Chelate map[string]struct {
+		sourced  `yaml:",inline"`
+		Carbonyl float64 `yaml:"carbonyl"`
+		Donor    float64 `yaml:"donor_ipso"`
+		Acyl     float64 `yaml:"acyl_ipso"`
+		Band     float64 `yaml:"band"`
+	} `yaml:"chelate"`
 }
 
 // shift is a table value with its spread (one standard deviation), both in ppm.
@@ -202,8 +209,13 @@ type tables struct {
 	ion                                                             [numProcesses]float32
 	furtherCO, furtherEthene, furtherEthyne, furtherWater, furtherH float32
 	carbonyl                                                        [numCarbonyls]carbonylRow
+	chelateOH, chelateNH                                            chelate
 	ringBand                                                        [4]float32 // size 4, 5, 6; lactam of 5
 }
+
+// chelate is the effect of a hydrogen bridge from OH or NH to an ortho acyl group: on the carbonyl
+// carbon, the ring carbons of donor and acyl (ppm) and the C=O band (cm-1).
+type chelate struct{ carbonyl, donorIpso, acylIpso, band float32 }
 
 // carbonylRow is one class of carbonyl: 13C shift and band with spreads.
 type carbonylRow struct {
@@ -463,6 +475,10 @@ func (t *tables) readCarbonyls(fsys fs.FS) error {
 			return err
 		}
 		t.carbonyl[c] = carbonylRow{r.Class.Value, shift{float32(r.Carbon[0]), float32(r.Carbon[1])}, float32(r.Band[0]), float32(r.Band[1]), float32(r.Alpha), float32(r.Hetero)}
+	}
+	for name, into := range map[string]*chelate{"OH": &t.chelateOH, "NH": &t.chelateNH} {
+		c := f.Chelate[name]
+		*into = chelate{float32(c.Carbonyl), float32(c.Donor), float32(c.Acyl), float32(c.Band)}
 	}
 	t.ringBand = [4]float32{float32(f.RingBand.Size4), float32(f.RingBand.Size5), float32(f.RingBand.Size6), float32(f.RingBand.Lactam5)}
 	for c, row := range t.carbonyl {
