@@ -2,6 +2,7 @@ package reactions
 
 import (
 	"errors"
+	"sync"
 
 	"shelfward/molecule"
 	"shelfward/molecule/pattern"
@@ -54,6 +55,10 @@ type editor struct {
 	lost     links     // ligands that an atom lost
 	gained   links     // and gained
 	course   []coursed // stereo course of the atoms that the script names
+
+	sum, arom, degree             []int // scratch of bondSums
+	label, root, index, bondIndex []int32
+	builders                      []molecule.Builder
 }
 
 // links lists pairs of an atom and a ligand; an edit touches a handful of atoms.
@@ -85,7 +90,9 @@ type fragments map[int]*molecule.Molecule // class -> fragment whose first atom 
 // edit applies the script to p once per mapping (slot -> pool atom, -1 where the slot is not found)
 // and returns the connected pieces, those with found atoms and the rest alike.
 func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments) ([]piece, error) {
-	e := &editor{s: s, d: d, p: p}
+	e := editors.Get().(*editor)
+	defer editors.Put(e)
+	e.reset(s, d, p)
 	e.load()
 	for _, to := range mappings {
 		to = append([]int32(nil), to...)
@@ -112,24 +119,38 @@ func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments)
 	return e.pieces()
 }
 
+// editors keeps the scratch of edits: the search makes hundreds for every molecule that it opens.
+var editors = sync.Pool{New: func() any { return new(editor) }}
+
+// reset empties the scratch for another edit. Nothing that pieces keep lies in it.
+func (e *editor) reset(s *script, d direction, p *pool) {
+	e.s, e.d, e.p = s, d, p
+	e.b.Atoms, e.b.Bonds = e.b.Atoms[:0], e.b.Bonds[:0]
+	e.b.Centers, e.b.DoubleBonds = e.b.Centers[:0], e.b.DoubleBonds[:0]
+	e.lost, e.gained, e.course = e.lost[:0], e.gained[:0], e.course[:0]
+}
+
+// zeroed returns a slice of n zero values in the room of old.
+func zeroed[T any](old []T, n int) []T {
+	if cap(old) < n {
+		return make([]T, n, n+8)
+	}
+	old = old[:n]
+	clear(old)
+	return old
+}
+
 // load copies the molecules into one builder. Aromatic bonds are given as such only where the script
 // changes an aromatic bond; otherwise the Kekulé form kept by the molecule serves as it is.
 func (e *editor) load() {
 	aromatic := e.s.changesAromatic()
-	bonds := 0
-	for _, m := range e.p.molecules {
-		bonds += m.NumBonds()
-	}
-	const room = 8 // atoms and bonds that an edit usually adds
-	e.b.Atoms = make([]molecule.Atom, 0, e.p.atoms+room)
-	e.b.Bonds = make([]molecule.Bond, 0, bonds+room)
-	e.hBefore, e.sumBefor = make([]int, e.p.atoms), make([]int, e.p.atoms)
+	e.hBefore, e.sumBefor = zeroed(e.hBefore, e.p.atoms), zeroed(e.sumBefor, e.p.atoms)
 	for i, m := range e.p.molecules {
 		e.loadMolecule(m, e.p.offset[i], aromatic)
 	}
-	e.dead = make([]bool, len(e.b.Atoms))
-	e.touched = make([]bool, len(e.b.Atoms))
-	e.newSlot = make([]int, len(e.b.Atoms))
+	e.dead = zeroed(e.dead, len(e.b.Atoms))
+	e.touched = zeroed(e.touched, len(e.b.Atoms))
+	e.newSlot = zeroed(e.newSlot, len(e.b.Atoms))
 }
 
 func (e *editor) loadMolecule(m *molecule.Molecule, off int32, aromatic bool) {
@@ -461,7 +482,8 @@ func lowestValence(el molecule.Element, sum int) int {
 // bondSums returns per atom the sum of the orders of plain bonds, the number of aromatic bonds and the degree.
 func (e *editor) bondSums() (sum, arom, degree []int) {
 	n := len(e.b.Atoms)
-	sum, arom, degree = make([]int, n), make([]int, n), make([]int, n)
+	e.sum, e.arom, e.degree = zeroed(e.sum, n), zeroed(e.arom, n), zeroed(e.degree, n)
+	sum, arom, degree = e.sum, e.arom, e.degree
 	for _, b := range e.b.Bonds {
 		if b.Order == 0 {
 			continue
@@ -557,7 +579,8 @@ func isMetal(el molecule.Element) bool {
 // pieces builds the connected pieces that are left.
 func (e *editor) pieces() ([]piece, error) {
 	n := len(e.b.Atoms)
-	label := make([]int32, n)
+	e.label = zeroed(e.label, n)
+	label := e.label
 	for i := range label {
 		label[i] = int32(i)
 	}
@@ -584,7 +607,8 @@ func (e *editor) pieces() ([]piece, error) {
 // number turns the roots of the union into piece numbers, written into label; it returns their count.
 func (e *editor) number(find func(int32) int32, label []int32) int {
 	count := 0
-	piece := make([]int32, len(label))
+	e.root = zeroed(e.root, len(label))
+	piece := e.root
 	for a := range label {
 		if e.dead[a] {
 			continue
@@ -605,9 +629,10 @@ func (e *editor) number(find func(int32) int32, label []int32) int {
 
 // build freezes the pieces; label gives the piece of every atom.
 func (e *editor) build(count int, label []int32) ([]piece, error) {
-	builders := make([]molecule.Builder, count)
+	builders := e.emptyBuilders(count)
 	out := make([]piece, count)
-	index := make([]int32, len(label))
+	e.index = zeroed(e.index, len(label))
+	index := e.index
 	for a := range e.b.Atoms {
 		if e.dead[a] {
 			continue
@@ -620,7 +645,8 @@ func (e *editor) build(count int, label []int32) ([]piece, error) {
 		}
 		out[p].from = append(out[p].from, from)
 	}
-	bondIndex := make([]int32, len(e.b.Bonds))
+	e.bondIndex = zeroed(e.bondIndex, len(e.b.Bonds))
+	bondIndex := e.bondIndex
 	for i, b := range e.b.Bonds {
 		bondIndex[i] = -1
 		if b.Order == 0 || e.dead[b.A] || e.dead[b.B] {
@@ -637,6 +663,18 @@ func (e *editor) build(count int, label []int32) ([]piece, error) {
 		out[i].m = m
 	}
 	return out, nil
+}
+
+// emptyBuilders returns count builders without atoms, their room kept from edit to edit.
+func (e *editor) emptyBuilders(count int) []molecule.Builder {
+	for len(e.builders) < count {
+		e.builders = append(e.builders, molecule.Builder{})
+	}
+	for i := range e.builders[:count] {
+		b := &e.builders[i]
+		b.Atoms, b.Bonds, b.Centers, b.DoubleBonds = b.Atoms[:0], b.Bonds[:0], b.Centers[:0], b.DoubleBonds[:0]
+	}
+	return e.builders[:count]
 }
 
 func (e *editor) copyMarks(builders []molecule.Builder, label, index, bondIndex []int32) {

@@ -7,7 +7,7 @@ import "shelfward/molecule"
 type Subject struct {
 	M      *molecule.Molecule
 	groups *Groups
-	count  [119]uint16  // atoms per element, a quick refusal
+	count  [119]uint16   // atoms per element, a quick refusal
 	member []*groupAtoms // per group, filled on first use; nil before any group was asked for
 }
 
