@@ -1,0 +1,4 @@
+package name
+
+// nameFusion names two ortho-fused rings by fusion nomenclature (P-25.2); false if it does not know how.
+func (w *writer) nameFusion(s *ringSystem) bool { return false }
