@@ -85,13 +85,35 @@ type candidate struct {
 }
 
 func (j *judge) add(m *molecule.Molecule) {
-	for _, part := range m.Split() {
+	parts := m.Split()
+	j.addSalts(parts)
+	for _, part := range parts {
 		if part.NumAtoms() == 1 && isMetal(part.Atom(0).Element) && part.Atom(0).Charge > 0 {
 			continue // the cation of a salt
 		}
 		j.reactants = append(j.reactants, j.b.subject(part.FreeForm()))
 	}
 	j.reactants = distinct(j.reactants)
+}
+
+// addSalts pairs ions by charge: potassium iodide or sodium methoxide among the materials is a reagent,
+// though its free form is what the transforms see.
+func (j *judge) addSalts(parts []*molecule.Molecule) {
+	if j.table == nil {
+		return
+	}
+	for _, cation := range parts {
+		for _, anion := range parts {
+			if q := cation.Formula().Charge; q <= 0 || anion.Formula().Charge != -q {
+				continue
+			}
+			if salt := molecule.Join(cation, anion); salt != nil {
+				if r, ok := j.table.ByMolecule(salt); ok {
+					j.mentions = append(j.mentions, mention(r, false))
+				}
+			}
+		}
+	}
 }
 
 // passive acts do nothing to a molecule by themselves.
