@@ -222,6 +222,39 @@ func (t *Table) ActMeaning(act string) (string, bool) {
 	return m, ok
 }
 
+// asIons returns a metal halide or oxide drawn with bonds as its ions; nil if it has no such bond. Bonds
+// of a metal to carbon or hydrogen stay.
+func asIons(m *molecule.Molecule) *molecule.Molecule {
+	b := m.Builder()
+	cut, any := make([]bool, len(b.Bonds)), false
+	for i, bond := range b.Bonds {
+		metal, other := int(bond.A), int(bond.B)
+		if !b.Atoms[metal].Element.IsMetal() {
+			metal, other = other, metal
+		}
+		switch b.Atoms[other].Element {
+		case 8, 9, 17, 35, 53:
+		default:
+			continue
+		}
+		if !b.Atoms[metal].Element.IsMetal() || bond.Order != 1 {
+			continue
+		}
+		b.Atoms[metal].Charge++
+		b.Atoms[other].Charge--
+		cut[i], any = true, true
+	}
+	if !any {
+		return nil
+	}
+	b.RemoveBonds(cut)
+	ions, err := b.Build()
+	if err != nil {
+		return nil
+	}
+	return ions
+}
+
 // structures is the index of reagents by structure.
 type structures struct{ exact, seenThrough map[molecule.Key]*Reagent }
 
@@ -242,6 +275,9 @@ func (t *Table) indexStructures() structures {
 			continue
 		}
 		put(index.exact, m.Key(), r)
+		if ions := asIons(m); ions != nil {
+			put(index.exact, ions.Key(), r) // copper(I) chloride, drawn with a bond or as ions
+		}
 		if m.FreeForm().Key() == m.Key() {
 			put(index.seenThrough, m.SeenThroughKey(), r)
 		} else {
