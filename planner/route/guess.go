@@ -93,8 +93,8 @@ func (p *profile) apart(q *profile) (only, lacks int) {
 // guesser estimates how far a molecule is from what it could be made from.
 type guesser struct {
 	shelf []*profile
-	owed  []*profile             // per set of items owed: the profiles of the items added up
-	near  map[molecule.Key]uint8 // what one step from an item of From gives: the items that lead there
+	owed  []*profile                // per set of items owed: the profiles of the items added up
+	near  [2]map[molecule.Key]uint8 // what one and two steps from an item of From give: the items that lead there
 }
 
 // forwardBook runs transforms forwards; *reactions.Book does.
@@ -106,6 +106,7 @@ type forwardBook interface {
 const (
 	mostPartners     = 24
 	mostPartnerAtoms = 9
+	mostSecond       = 60 // products of the first step that are taken one step on, alone
 )
 
 // lookAhead finds what one step from the items of From gives, so that a molecule on the way is known as
@@ -115,15 +116,25 @@ func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule) {
 	if !ok {
 		return
 	}
-	g.near = map[molecule.Key]uint8{}
+	g.near[0], g.near[1] = map[molecule.Key]uint8{}, map[molecule.Key]uint8{}
 	partners := append(slices.Clone(from), smallest(shelf)...)
 	for i, m := range from {
-		list, err := forward.Products(context.Background(), m, partners)
+		first, err := forward.Products(context.Background(), m, partners)
 		if err != nil {
 			return
 		}
-		for _, p := range list {
-			g.near[p.FlatKey()] |= 1 << i
+		for k, p := range first {
+			g.near[0][p.FlatKey()] |= 1 << i
+			if k >= mostSecond {
+				continue
+			}
+			second, err := forward.Products(context.Background(), p, nil)
+			if err != nil {
+				return
+			}
+			for _, q := range second {
+				g.near[1][q.FlatKey()] |= 1 << i
+			}
 		}
 	}
 }
@@ -171,8 +182,12 @@ const (
 // steps estimates the steps between m and what it is made from. It orders the work of the search and
 // proves nothing.
 func (g *guesser) steps(m *molecule.Molecule, owed uint8) float64 {
-	if owed != 0 && g.near[m.FlatKey()]&owed != 0 {
-		return 1
+	if owed != 0 {
+		for i, near := range g.near {
+			if near[m.FlatKey()]&owed != 0 {
+				return float64(1 + i)
+			}
+		}
 	}
 	p := profileOf(m)
 	if owed != 0 {
