@@ -2,7 +2,9 @@ package identify
 
 import (
 	"fmt"
+	"maps"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -165,9 +167,6 @@ type ExactEvidence struct {
 	PPM float64    `yaml:"ppm"`
 }
 
-// exactList reads one accurate mass or a list of them.
-type exactList []ExactEvidence
-
 // MassEvidence is what mass spectra gave.
 type MassEvidence struct {
 	rules.Place
@@ -180,7 +179,7 @@ type MassEvidence struct {
 	File         rules.Text     `yaml:"file"`
 }
 
-// Bands is the list of infrared bands as written.
+// Infrared is the list of infrared bands as written.
 type Infrared struct {
 	Bands  []BandEvidence
 	Listed rules.Text
@@ -190,69 +189,64 @@ type Infrared struct {
 
 // BandEvidence is one band.
 type BandEvidence struct {
-	At       Span       `yaml:"at" need:"at: 1712"`
-	Strength rules.Text `yaml:"strength"`
-	Shape    rules.Text `yaml:"shape"`
+	At       Span
+	Strength rules.Text
+	Shape    rules.Text
 }
 
 // UnmarshalYAML reads a list of bands, or {bands: [...], listed: all, text: ..., file: ...}.
 func (ir *Infrared) UnmarshalYAML(n *yaml.Node) error {
-	if n.Kind == yaml.SequenceNode {
-		return decodeNode(n, &ir.Bands)
+	switch n.Kind {
+	case yaml.SequenceNode:
+		return ir.readBands(n)
+	case yaml.MappingNode:
+		return eachKey(n, "infrared", map[string]func(*yaml.Node) error{
+			"bands": ir.readBands, "listed": ir.Listed.UnmarshalYAML, "text": ir.Text.UnmarshalYAML, "file": ir.File.UnmarshalYAML,
+		})
 	}
-	var m struct {
-		Bands  []BandEvidence `yaml:"bands"`
-		Listed rules.Text     `yaml:"listed"`
-		Text   rules.Text     `yaml:"text"`
-		File   rules.Text     `yaml:"file"`
+	return at(n, "infrared: expected a list of bands such as - {at: 1712, strength: strong}, or keys bands, listed, text, file")
+}
+
+func (ir *Infrared) readBands(n *yaml.Node) error {
+	if n.Kind != yaml.SequenceNode {
+		return at(n, "bands: expected a list such as - {at: 1712, strength: strong}")
 	}
-	if err := decodeNode(n, &m); err != nil {
-		return err
+	for _, item := range n.Content {
+		var b BandEvidence
+		if item.Kind != yaml.MappingNode {
+			return at(item, "expected a band such as {at: 1712, strength: strong}")
+		}
+		err := eachKey(item, "a band", map[string]func(*yaml.Node) error{
+			"at": b.At.UnmarshalYAML, "strength": b.Strength.UnmarshalYAML, "shape": b.Shape.UnmarshalYAML,
+		})
+		if err != nil {
+			return err
+		}
+		if !b.At.Set {
+			return at(item, "a band needs a place, such as at: 1712")
+		}
+		ir.Bands = append(ir.Bands, b)
 	}
-	ir.Bands, ir.Listed, ir.Text, ir.File = m.Bands, m.Listed, m.Text, m.File
 	return nil
 }
 
-// decodeNode decodes a node strictly with the lines of the whole file kept.
-func decodeNode(n *yaml.Node, out any) error {
-	data, err := yaml.Marshal(n)
-	if err != nil {
-		return err
-	}
-	err = rules.Decode("", data, out)
-	list, ok := err.(rules.ErrorList)
-	if !ok {
-		return err
-	}
-	for _, e := range list {
-		e.Line, e.Column = lineOf(n, data, e.Line), 0
-	}
-	return list
-}
-
-// lineOf maps a line of the remarshalled text back to the file: the n-th scalar of the text is the
-// n-th scalar of the node.
-func lineOf(n *yaml.Node, data []byte, line int) int {
-	var again yaml.Node
-	if yaml.Unmarshal(data, &again) != nil || len(again.Content) == 0 {
-		return n.Line
-	}
-	found := n.Line
-	var walk func(a, b *yaml.Node) bool
-	walk = func(a, b *yaml.Node) bool {
-		if b.Line > line {
-			return false
+// eachKey hands the values of a mapping to readers by key; other keys are errors.
+func eachKey(n *yaml.Node, what string, readers map[string]func(*yaml.Node) error) error {
+	for i := 0; i+1 < len(n.Content); i += 2 {
+		key, val := n.Content[i], n.Content[i+1]
+		read, ok := readers[key.Value]
+		if !ok {
+			known := slices.Sorted(maps.Keys(readers))
+			return at(key, "%s: unknown key %q; known: %s", what, key.Value, strings.Join(known, ", "))
 		}
-		found = a.Line
-		for i := range b.Content {
-			if i < len(a.Content) && !walk(a.Content[i], b.Content[i]) {
-				return false
+		if err := read(val); err != nil {
+			if _, placed := err.(*rules.Error); placed {
+				return err
 			}
+			return at(val, "%s: %v", key.Value, err)
 		}
-		return true
 	}
-	walk(n, again.Content[0])
-	return found
+	return nil
 }
 
 // Spectrum is a 1H or 13C list as written.

@@ -306,7 +306,7 @@ func acylOf(comp *composition) int {
 // problemOf writes a set of blocks as a problem for the generator.
 func problemOf(f *molecule.Formula, v isomer.Valences, comp *composition, choice []int) isomer.Problem {
 	p := isomer.Problem{Formula: *f, Valences: v, NoSmallRing: true}
-	carbons, hetero, rings, oxidised := comp.sp3, comp.heteroH, comp.rings, false
+	carbons, hetero, rings, oxidised, imine := comp.sp3, comp.heteroH, comp.rings, false, false
 	for i, b := range comp.blocks {
 		piece := b.pieces[choice[i]]
 		if n := len(p.Blocks); n > 0 && i > 0 && comp.blocks[i-1] == b && choice[i-1] == choice[i] {
@@ -319,16 +319,26 @@ func problemOf(f *molecule.Formula, v isomer.Valences, comp *composition, choice
 		}
 		hetero += b.heteroH
 		rings += b.rings
+		imine = imine || b.shows == "imine"
 		oxidised = oxidised || b.atoms[iS] > 0 && b.atoms[iO] > 0
 	}
 	for h := range carbons {
 		p.Carbons[h] = isomer.Exactly(carbons[h])
 	}
 	p.OnHetero, p.Rings = isomer.Exactly(hetero), isomer.Exactly(rings)
-	ban := func(a, b molecule.Element) { p.Bonds = append(p.Bonds, isomer.BondBan{A: a, B: b}) }
+	ban := func(a, b molecule.Element) {
+		for _, blk := range p.Blocks { // a ban also holds inside blocks
+			if hasBond(&blk.Piece, a, b) {
+				return
+			}
+		}
+		p.Bonds = append(p.Bonds, isomer.BondBan{A: a, B: b})
+	}
 	ban(8, 8)
 	ban(7, 8)
-	ban(7, 7)
+	if !imine {
+		ban(7, 7) // with C=N blocks N-substituted azoles and hydrazones must be reached
+	}
 	if !oxidised {
 		ban(8, 16)
 		ban(7, 16)
@@ -341,6 +351,17 @@ func problemOf(f *molecule.Formula, v isomer.Valences, comp *composition, choice
 		}
 	}
 	return p
+}
+
+// hasBond reports a bond between two elements inside a piece.
+func hasBond(p *isomer.Piece, a, b molecule.Element) bool {
+	for _, x := range p.Bonds {
+		e, f := p.Atoms[x.A].Element, p.Atoms[x.B].Element
+		if e == a && f == b || e == b && f == a {
+			return true
+		}
+	}
+	return false
 }
 
 // countAcyl counts C=O carbons that also carry O, N, S or a halogen by a single bond: a set of blocks

@@ -171,7 +171,7 @@ func (w *walk) enter(from, x, dist int) {
 		w.beyond(from, x, dist+1)
 	case COR, CORConj:
 		w.beyond(from, x, dist+1)
-	case COOR, CON, COS:
+	case COOR, CON, CONR2, COS:
 		if w.methyl && dist == 1 {
 			return
 		}

@@ -28,6 +28,7 @@ const (
 	secAmide
 	tertAmide
 	arAmide
+	arTertAmide
 	enAmide
 	formamide
 	carbamate
@@ -49,7 +50,7 @@ var carbonylNames = [numCarbonyls]string{
 	"none", "saturated aldehyde", "aromatic aldehyde", "enal", "saturated ketone", "aryl ketone", "diaryl ketone", "enone",
 	"cross-conjugated ketone", "ynone", "alpha-dicarbonyl", "saturated acid", "aromatic acid", "enoic acid", "formate",
 	"saturated ester", "aromatic ester", "enoate ester", "aryl or vinyl ester", "aryl ester of an aromatic acid",
-	"primary amide", "secondary amide", "tertiary amide", "aromatic amide", "enamide of an unsaturated acid", "formamide",
+	"primary amide", "secondary amide", "tertiary amide", "aromatic amide", "tertiary aromatic amide", "enamide of an unsaturated acid", "formamide",
 	"carbamate", "urea", "carbonate", "acid halide", "anhydride", "imide", "thioester", "quinone",
 	"lactone inside an aromatic ring", "ketone inside an aromatic ring", "lactam inside an aromatic ring", "other carbonyl",
 }
@@ -203,6 +204,8 @@ func (p *Predictor) amideOf(a int, s carbonylSides) Carbonyl {
 	switch {
 	case p.hyd[a] > 0:
 		return formamide
+	case s.aryl > 0 && p.hyd[n] == 0:
+		return arTertAmide
 	case s.aryl > 0:
 		return arAmide
 	case s.vinyl > 0 || s.alkynyl > 0:

@@ -41,6 +41,7 @@ const (
 	COOR
 	COORConj
 	CON
+	CONR2
 	COCl
 	COS
 	CN
@@ -78,7 +79,7 @@ const (
 var groupNames = [numGroups]string{
 	"H", "alkyl", "CH3", "CH2R", "CHR2", "CR3", "CH2Ar", "CH2CO", "CH2O", "CH2OCO", "CHRO", "CR2O", "CHO2", "CHRCO", "CH2CH2X",
 	"CH2Hal", "CH2N", "CH2NCO", "CHRN", "CH2S", "CF3", "ring-alkyl", "vinyl", "vinyl-conj", "alkynyl", "aryl", "CHO", "COR", "COR-conj", "COAr",
-	"COOH", "COOH-conj", "COOR", "COOR-conj", "CON", "COCl", "COS", "CN", "C=N", "F", "Cl", "Br", "I", "OH", "OR", "OAr", "OVinyl", "OCOR", "OCOAr",
+	"COOH", "COOH-conj", "COOR", "COOR-conj", "CON", "CONR2", "COCl", "COS", "CN", "C=N", "F", "Cl", "Br", "I", "OH", "OR", "OAr", "OVinyl", "OCOR", "OCOAr",
 	"NH2", "NR2", "NAr", "N-ring", "NHCOR", "NR3+", "NO2", "N=", "SH", "SR", "SAr", "SCOR", "SOR", "SO2R", "SO2NR2", "other",
 }
 
@@ -93,7 +94,7 @@ var general = [numGroups]Group{
 	CH2CH2X: CH2R, CH2Hal: CH2R, CH2N: CH2R, CH2NCO: CH2N, CHRN: CHR2, CH2S: CH2R, CF3: CR3,
 	VinylConj: Vinyl, CImine: Vinyl, CORConj: COR, COAr: COR, COOHConj: COOH, COORConj: COOR, COS: COR,
 	OAr: OR, OVinyl: OAr, OCOAr: OCOR, OH: OR, NH2: NR2, NAr: NR2, NRing: NAr, NImine: NR2, NHCOR: NR2, NR3: NR2,
-	SH: SR, SAr: SR, SCOR: SR, SOR: SR, SO2NR2: SO2R, COCl: COR, Aldehyde: COR, Other: None,
+	SH: SR, SAr: SR, SCOR: SR, SOR: SR, SO2NR2: SO2R, CONR2: CON, COCl: COR, Aldehyde: COR, Other: None,
 }
 
 // groupByName finds a group by its table name.

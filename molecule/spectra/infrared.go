@@ -193,7 +193,7 @@ func (p *Predictor) addCarbonylBand(a int, c Carbonyl, out []Band) []Band {
 	case c >= arLactone:
 	case size == 4:
 		mean += p.t.ringBand[0]
-	case size == 5 && (c == secAmide || c == tertAmide || c == arAmide || c == enAmide):
+	case size == 5 && (c == secAmide || c == tertAmide || c == arAmide || c == arTertAmide || c == enAmide):
 		mean += p.t.ringBand[3]
 	case size == 5 && c != imide && c != anhydride:
 		mean += p.t.ringBand[1]
@@ -303,7 +303,7 @@ func (p *Predictor) doubleFeatures(a int, has *[numFeatures]bool) {
 		if c == satEster && p.isAcetyl(a) {
 			has[acetateCO] = true
 		}
-	case c == primAmide || c == secAmide || c == tertAmide || c == arAmide || c == enAmide:
+	case c == primAmide || c == secAmide || c == tertAmide || c == arAmide || c == arTertAmide || c == enAmide:
 		has[amideCN] = true
 	}
 	if p.carbonyl[a] != noCarbonyl {

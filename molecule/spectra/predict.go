@@ -22,7 +22,7 @@ type CarbonLine struct {
 	// MeanPPM and SpreadPPM (one standard deviation) of the shift.
 	MeanPPM, SpreadPPM float32
 	// MaySplit says that two carbons counted as equivalent need not be: methyl groups on one atom of a
-	// molecule with a centre of chirality.
+	// molecule with a centre of chirality, alkyl groups on the N of a tertiary amide.
 	MaySplit bool
 }
 
@@ -83,11 +83,10 @@ next:
 		s := p.carbonShift(a)
 		out = append(out, CarbonLine{Atom: int32(a), Count: 1, Hydrogens: p.hyd[a], MeanPPM: s.mean, SpreadPPM: s.spread})
 	}
-	if p.hasCentre() {
-		for i := range out {
-			l := &out[i]
-			l.MaySplit = l.Count == 2 && l.Hydrogens == 3 && p.sharedNeighbour(int(l.Atom))
-		}
+	chiral := p.hasCentre()
+	for i := range out {
+		l := &out[i]
+		l.MaySplit = l.Count == 2 && (chiral && l.Hydrogens == 3 && p.sharedNeighbour(int(l.Atom)) || p.onAmideN(int(l.Atom)))
 	}
 	slices.SortStableFunc(out, func(x, y CarbonLine) int { return cmp.Compare(y.MeanPPM, x.MeanPPM) })
 	return out
@@ -103,6 +102,43 @@ func (p *Predictor) sharedNeighbour(a int) bool {
 		}
 	}
 	return false
+}
+
+// onAmideN reports an sp3 carbon one or two bonds from the N of a tertiary amide that carries two
+// equivalent groups: rotation about C-N is slow, the groups differ.
+func (p *Predictor) onAmideN(a int) bool {
+	if p.sp[a] != single {
+		return false
+	}
+	for _, nb := range p.nb[a] {
+		x := int(nb.Atom)
+		if p.amideN(x, p.class[a]) {
+			return true
+		}
+		if p.el[x] != carbon || p.sp[x] != single {
+			continue
+		}
+		for _, nb2 := range p.nb[x] {
+			if p.amideN(int(nb2.Atom), p.class[x]) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// amideN reports an acylated N without hydrogen that carries two atoms of the class.
+func (p *Predictor) amideN(n int, class uint64) bool {
+	if p.el[n] != nitrogen || p.hyd[n] > 0 || p.aromatic[n] || !p.carbonylBeside(n) {
+		return false
+	}
+	same := 0
+	for _, nb := range p.nb[n] {
+		if p.class[nb.Atom] == class {
+			same++
+		}
+	}
+	return same == 2
 }
 
 // protonSignals groups the hydrogens by the symmetry class of their carrier, down field first; the
@@ -191,7 +227,7 @@ func (p *Predictor) addSignal(a int, chiral bool, out []ProtonSignal) []ProtonSi
 	}
 	v := p.protonHere(a)
 	s.MeanPPM, s.SpreadPPM = v.mean, v.spread
-	s.MaySplit = p.hyd[a] == 2 && p.sp[a] == single && (chiral || p.ring[a] > 0 && p.ring[a] < 8)
+	s.MaySplit = p.sp[a] == single && p.onAmideN(a) || p.hyd[a] == 2 && p.sp[a] == single && (chiral || p.ring[a] > 0 && p.ring[a] < 8)
 	return append(out, s)
 }
 

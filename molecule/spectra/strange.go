@@ -93,11 +93,11 @@ func (p *Predictor) eachOddity(m *molecule.Molecule, yield func(o *Oddity, times
 	p.bridgeheads(m, yield)
 }
 
-// shortBridge reports a ring under ten members, not aromatic itself, that runs through three or more
+// shortBridge reports a ring under fourteen members, not aromatic itself, that runs through three or more
 // atoms of one aromatic ring.
 func (p *Predictor) shortBridge() bool {
 	for _, r := range p.ringOf {
-		if len(r) > 9 || p.allAromatic(r) {
+		if len(r) > 13 || p.allAromatic(r) {
 			continue
 		}
 		for _, q := range p.ringOf {

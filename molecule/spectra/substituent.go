@@ -81,6 +81,8 @@ func (p *Predictor) acylGroup(from, x int) Group {
 		return COCl
 	case s.sulfurs > 0:
 		return COS
+	case s.nitrogens > 0 && p.hyd[s.nitrogen] == 0:
+		return CONR2
 	case s.nitrogens > 0:
 		return CON
 	case s.oh > 0:
@@ -238,7 +240,13 @@ func (p *Predictor) oxygenGroup(from, x int) Group {
 	}
 	for _, nb := range p.nb[x] {
 		y := int(nb.Atom)
-		if y == from || p.el[y] != carbon {
+		if y == from {
+			continue
+		}
+		if p.el[y] == phosphor || p.el[y] == sulfur && p.doubleTo(y, oxygen) >= 0 {
+			return OCOR // esters of phosphorus and sulfur acids shift much as carboxylic ones do
+		}
+		if p.el[y] != carbon {
 			continue
 		}
 		switch p.sp[y] {
