@@ -28,6 +28,7 @@ type Room struct {
 
 	Restricted *restricted.Screen
 
+	guide *sheet.Guide
 	stock *stock
 }
 
@@ -52,6 +53,9 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 	if r.Restricted, err = restricted.Load(fsys); err != nil {
 		return nil, err
 	}
+	if r.guide, err = sheet.LoadGuide(fsys, r.Reagents); err != nil {
+		return nil, err
+	}
 	r.Invented = len(shelfFiles) == 0
 	for _, f := range shelfFiles {
 		r.Invented = r.Invented || f == shelf.BuiltinName
@@ -74,7 +78,8 @@ func (r *Room) declined(m *molecule.Molecule) bool {
 
 // Desk is the room as the route sheet sees it.
 func (r *Room) Desk() *sheet.Desk {
-	return &sheet.Desk{Book: r.Book, Materials: r.stock, Reagents: r.Reagents, Hazards: r.Hazards, Name: r.Name, Read: smiles.Read}
+	return &sheet.Desk{Book: r.Book, Materials: r.stock, Supplied: r.stock.Supplied, Reagents: r.Reagents, Hazards: r.Hazards, Guide: r.guide,
+		Name: r.Name, Read: smiles.Read}
 }
 
 // Name returns a name of m from the shelf or the list of reagents, "" if none is known.

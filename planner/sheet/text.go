@@ -5,14 +5,13 @@ import (
 	"io"
 	"math"
 	"strings"
-	"text/tabwriter"
 	"unicode/utf8"
 )
 
 // textWidth is the width of wrapped lines: one A4 page in 10 pt.
-const textWidth = 100
+const textWidth = 98
 
-// Text prints the sheet as plain text, one block per step.
+// Text prints the sheet as plain text, one block per step, no line wider than 100 characters.
 func (s *Sheet) Text(w io.Writer) error {
 	p := &printer{w: w}
 	s.textHead(p)
@@ -20,10 +19,10 @@ func (s *Sheet) Text(w io.Writer) error {
 		s.textStep(p, &s.Steps[i])
 	}
 	p.rule('=')
-	p.wrap("", "CAUTION  "+s.Caution)
+	p.wrap("CAUTION  ", s.Caution)
 	p.line("")
-	p.line("prepared ______________________   checked ______________________   approved ______________________")
-	p.line("emergency contact ______________________   building, room, hood ______________________")
+	p.line("prepared ____________________   checked ____________________   approved ____________________")
+	p.line("date ____________   building, room, hood ____________________   emergency number ______________")
 	return p.err
 }
 
@@ -33,31 +32,32 @@ type printer struct {
 	err error
 }
 
+// line prints a line; spaces that must not break have done their work by now.
 func (p *printer) line(format string, args ...any) {
 	if p.err == nil {
-		_, p.err = fmt.Fprintf(p.w, format+"\n", args...)
+		_, p.err = io.WriteString(p.w, strings.ReplaceAll(fmt.Sprintf(format, args...), noBreak, " ")+"\n")
 	}
 }
 
 func (p *printer) rule(c byte) { p.line("%s", strings.Repeat(string(c), textWidth)) }
 
-// wrap prints a paragraph behind a label; further lines are indented by its width.
-func (p *printer) wrap(label, text string) {
-	indent := strings.Repeat(" ", utf8.RuneCountInString(label))
-	line := label
-	for _, word := range strings.Fields(text) {
-		if utf8.RuneCountInString(line)+1+utf8.RuneCountInString(word) > textWidth && strings.TrimSpace(line) != "" {
-			p.line("%s", strings.TrimRight(line, " "))
-			line = indent
-		}
-		if line != "" && !strings.HasSuffix(line, " ") {
-			line += " "
-		}
-		line += word
-	}
-	p.line("%s", strings.TrimRight(line, " "))
+// part is a heading inside a step.
+func (p *printer) part(name string) {
+	p.line("-- %s %s", name, strings.Repeat("-", textWidth-4-utf8.RuneCountInString(name)))
 }
 
+// wrap prints a paragraph behind a label; further lines are indented by its width.
+func (p *printer) wrap(label, text string) {
+	width := textWidth - utf8.RuneCountInString(label)
+	for i, l := range fold(text, width) {
+		if i > 0 {
+			label = strings.Repeat(" ", utf8.RuneCountInString(label))
+		}
+		p.line("%s", strings.TrimRight(label+l, " "))
+	}
+}
+
+// list prints one paragraph per item, the label before the first.
 func (p *printer) list(label string, items []string) {
 	for i, text := range items {
 		if i > 0 {
@@ -69,26 +69,55 @@ func (p *printer) list(label string, items []string) {
 
 func (s *Sheet) textHead(p *printer) {
 	p.rule('=')
-	p.line("ROUTE SHEET %s   %d steps, longest run %d   shelfward %s%s", s.Code, len(s.Steps), s.LongestRun, s.Version, printedText(s.Printed))
+	p.line("ROUTE SHEET %s   %s, longest run %d   shelfward %s%s", s.Code, stepCount(len(s.Steps)), s.LongestRun, s.Version, printedText(s.Printed))
 	p.rule('=')
 	for _, d := range s.Doubts {
-		p.wrap("DOUBT  ", d)
+		p.wrap("DOUBT         ", d)
 	}
 	if s.Invented {
-		p.line("Stock, places and prices of the shelf used here are INVENTED examples.")
+		p.wrap("DOUBT         ", "Stock, places and prices of the shelf used here are INVENTED examples.")
 	}
-	p.line("target       %s, %s, %.2f g/mol", shown(s.Target), s.Target.Formula, s.Target.MolarMass)
-	p.line("structure    %s", s.Target.SMILES)
-	p.line("aim          %s (%s mmol) of isolated product", grams(s.MakeG), digits(s.MakeMmol))
-	p.line("comes out    %s if every step comes out low, %s if every step comes out high", grams(s.LowG), grams(s.HighG))
-	p.line("yield        %.0f %% overall (%.0f to %.0f; product of step ranges, not a statistical interval)",
-		100*s.Yield.Usual, 100*s.Yield.Low, 100*s.Yield.High)
-	p.list("evidence     ", s.Evidence)
-	p.line("signal word  %s   pictograms %s", orNone(s.Label.Signal), pictograms(s))
-	p.list("gravest      ", s.Gravest)
-	p.list("watched      ", s.Watched)
+	p.wrap("target        ", targetText(s))
+	p.wrap("structure     ", s.Target.SMILES)
+	p.wrap("aim           ", fmt.Sprintf("%s (%s mmol) of isolated product", grams(s.MakeG), digits(s.MakeMmol)))
+	p.wrap("comes out     ", comesOutText(s))
+	p.wrap("yield         ", yieldText(s))
+	p.list("evidence      ", s.Evidence)
+	p.wrap("signal word   ", orNone(s.Label.Signal)+"; pictograms: "+pictograms(s))
+	p.list("gravest       ", s.Gravest)
+	if len(s.Unknown) > 0 {
+		p.wrap("UNKNOWN       ", unknownText(s))
+	}
+	p.list("watched       ", s.Watched)
 	p.line("")
 	s.textStock(p)
+}
+
+func stepCount(n int) string {
+	if n == 1 {
+		return "1 step"
+	}
+	return fmt.Sprintf("%d steps", n)
+}
+
+func targetText(s *Sheet) string {
+	if s.Target.Name == "" {
+		return fmt.Sprintf("no name known; %s, %.2f g/mol", s.Target.Formula, s.Target.MolarMass)
+	}
+	return fmt.Sprintf("%s, %s, %.2f g/mol", s.Target.Name, s.Target.Formula, s.Target.MolarMass)
+}
+
+func comesOutText(s *Sheet) string {
+	return fmt.Sprintf("%s if every step comes out low, %s if every step comes out high (later charges cut to what came out); to be sure of %s charge %.2g times the amounts of the first steps, see 'to be sure'",
+		grams(s.LowG), grams(s.HighG), grams(s.MakeG), s.SureFactor)
+}
+
+func yieldText(s *Sheet) string {
+	return fmt.Sprintf("%s %% overall (%s to %s; product of step ranges, not a statistical interval)", percent(s.Yield.Usual), percent(s.Yield.Low), percent(s.Yield.High))
+}
+
+func unknownText(s *Sheet) string {
+	return "hazards that nobody has looked up: " + strings.Join(s.Unknown, ", ") + "; treat as toxic, get the data sheet first"
 }
 
 func printedText(t string) string {
@@ -113,47 +142,52 @@ func pictograms(s *Sheet) string {
 	return orNone(strings.Join(out, ", "))
 }
 
-func (s *Sheet) textStock(p *printer) {
-	p.line("To have ready (as supplied; 'to be sure' if every step comes out low)")
-	tw := tabwriter.NewWriter(p.w, 0, 4, 2, ' ', tabwriter.AlignRight)
-	fmt.Fprintln(tw, "steps\tneeds\t\tto be sure\ton the shelf\t")
-	var rows []string
-	for _, l := range s.Stock {
-		volume := ""
-		if l.VolumeML > 0 {
-			volume = millilitres(l.VolumeML)
-		}
-		mass, sure := "as needed", ""
-		if l.MassG > 0 {
-			mass, sure = grams(l.MassG), grams(l.SureG)
-		}
-		fmt.Fprintf(tw, "%s\t%s\t%s\t%s\t%s\t\n", joinInts(l.Steps), mass, volume, sure, haveText(l))
-		rows = append(rows, l.Name+casText(l.CAS))
-	}
-	s.flushBeside(p, tw, rows)
-}
+var stockColumns = []column{{"material, as supplied", 37, false}, {"steps", 6, false}, {"needs", 9, true}, {"", 8, true}, {"to be sure", 10, true}, {"on the shelf", 23, true}}
 
-// flushBeside is a plain flush: names go into their own column at the right so that numbers align.
-func (s *Sheet) flushBeside(p *printer, tw *tabwriter.Writer, names []string) {
-	if err := tw.Flush(); err != nil && p.err == nil {
-		p.err = err
+func (s *Sheet) textStock(p *printer) {
+	p.line("To have ready; 'to be sure' if every step comes out low")
+	var rows [][]string
+	for i := range s.Stock {
+		l := &s.Stock[i]
+		mass, volume, sure := l.needs()
+		rows = append(rows, []string{l.Name + casText(l.CAS) + formText(l.Form), joinInts(l.Steps), mass, volume, sure, haveText(l)})
 	}
-	for i, n := range names {
-		p.line("  %2d. %s", i+1, n)
-	}
+	p.table(stockColumns, rows)
 	p.line("")
 }
 
-func haveText(l StockLine) string {
+// needs writes mass, volume and the amount to be sure of a stock line.
+func (l *StockLine) needs() (mass, volume, sure string) {
+	if l.VolumeML > 0 {
+		volume = millilitres(l.VolumeML)
+	}
 	switch {
-	case l.ShortG > 0:
-		return fmt.Sprintf("%s  SHORT by %s", grams(l.HaveG), grams(l.ShortG))
+	case l.ByVolume && l.VolumeML > 0:
+		return "", volume, millilitres(l.SureML)
+	case l.MassG > 0:
+		return grams(l.MassG), volume, grams(l.SureG)
+	case l.VolumeML > 0:
+		return "", volume, millilitres(l.SureML)
+	}
+	return "as needed", "", ""
+}
+
+func haveText(l *StockLine) string {
+	have := "amount not stated"
+	switch {
+	case l.Water && !l.OnShelf:
+		return "deionised"
 	case !l.OnShelf:
 		return "to buy"
-	case math.IsNaN(l.HaveG):
-		return "amount not stated"
+	case l.ByVolume && !math.IsNaN(l.HaveML):
+		have = millilitres(l.HaveML)
+	case !l.ByVolume && !math.IsNaN(l.HaveG):
+		have = grams(l.HaveG)
 	}
-	return grams(l.HaveG)
+	if l.Short != "" {
+		return have + " SHORT by " + l.Short
+	}
+	return have
 }
 
 func casText(cas string) string {
@@ -173,7 +207,7 @@ func joinInts(list []int) string {
 
 func (s *Sheet) textStep(p *printer, st *Step) {
 	p.rule('=')
-	p.line("STEP %d of %d   %s   (%s)   weakest origin of its figures: %s (%s)", st.Number, len(s.Steps), st.Name, st.Transform, st.OriginMark, st.Origin)
+	p.wrap(fmt.Sprintf("STEP %d of %d  ", st.Number, len(s.Steps)), fmt.Sprintf("%s   (%s; route %s)", st.Name, st.Transform, s.Code))
 	p.rule('=')
 	for _, o := range st.Objections {
 		p.wrap("DOUBT  ", o)
@@ -181,56 +215,107 @@ func (s *Sheet) textStep(p *printer, st *Step) {
 	for _, f := range st.Flags {
 		p.wrap("STOP   ", f)
 	}
+	p.wrap("", equation(st))
+	p.line("")
+	p.part("DO")
+	textCharges(p, st)
+	p.list("hazard   ", st.Hazards)
+	for i, o := range st.Operations {
+		p.wrap(fmt.Sprintf("%2d [ ]   ", i+1), o)
+	}
+	for _, h := range st.Holds {
+		p.wrap("HOLD [ ] ", h.Ask+". If not: "+h.Otherwise+".")
+	}
+	p.wrap("yield    ", expectText(st))
+	p.line("record   start ________ end ________ highest temp. ______ colour ________ crude ______ pure ______")
+	p.line("         what went otherwise ______________________________________________________ initials ____")
+	p.line("")
+	p.part("KNOW")
+	for _, x := range st.knowParts() {
+		p.list(pad(x.Name, 11, false), x.Lines)
+	}
+	p.line("")
+}
+
+// part of the second side of a step.
+type part struct {
+	Name  string
+	Lines []string
+}
+
+// knowParts lists the second side in its order; empty parts are left out.
+func (st *Step) knowParts() (out []part) {
+	for _, x := range []part{{"origin", []string{originText(st)}}, {"controls", st.Controls}, {"mixture", st.Mixture}, {"watch", st.Watch}, {"crude may", st.Crude},
+		{"waste", st.Waste}, {"emergency", st.Emergency}, {"source", st.Sources}} {
+		if len(x.Lines) > 0 {
+			out = append(out, x)
+		}
+	}
+	return out
+}
+
+func originText(st *Step) string {
+	return fmt.Sprintf("weakest of the figures of this step: %s (%s). P published for this substrate, O own runs, N published for a near one, C usual for the class, E estimated",
+		st.OriginMark, st.Origin)
+}
+
+func equation(st *Step) string {
 	var from []string
 	for _, c := range st.From {
 		from = append(from, shown(c))
 	}
-	p.wrap("", strings.Join(from, " + ")+"  ->  "+shown(st.Product))
-	p.line("")
-	p.line("-- DO %s", strings.Repeat("-", textWidth-6))
-	textCharges(p, st)
-	p.list("hazard  ", st.Hazards)
-	for i, o := range st.Operations {
-		p.wrap(fmt.Sprintf("%2d [ ]  ", i+1), o)
-	}
-	for _, h := range st.Holds {
-		p.wrap("HOLD [ ]  ", h)
-	}
-	p.line("yield   %s expected (%s to %s; %.0f-%.0f-%.0f %%, %s); theory %s", grams(st.ExpectG), grams(st.ExpectLowG), grams(st.ExpectHighG),
-		100*st.Yield.Low, 100*st.Yield.Usual, 100*st.Yield.High, st.OriginMark, grams(st.TheoryG))
-	if st.NextNeedsG > 0 {
-		p.line("        later steps take %s", grams(st.NextNeedsG))
-	}
-	p.line("record  start ________ end ________ highest temperature ________ colour ____________ crude ________ pure ________")
-	p.line("")
-	p.line("-- KNOW %s", strings.Repeat("-", textWidth-8))
-	p.list("controls  ", st.Controls)
-	p.list("mixture   ", st.Mixture)
-	p.list("watch     ", st.Watch)
-	p.list("crude     ", st.Crude)
-	p.list("waste     ", st.Waste)
-	p.list("emergency ", st.Emergency)
-	p.list("source    ", st.Sources)
-	p.line("")
+	return strings.Join(from, " + ") + "  ->  " + shown(st.Product)
 }
+
+func expectText(st *Step) string {
+	text := fmt.Sprintf("%s expected, %s if low, %s if high (%s-%s-%s %%, %s); theory %s", grams(st.ExpectG), grams(st.ExpectLowG), grams(st.ExpectHighG),
+		percent(st.Yield.Low), percent(st.Yield.Usual), percent(st.Yield.High), st.OriginMark, grams(st.TheoryG))
+	if st.NextNeedsG > 0 {
+		text += fmt.Sprintf("; later steps take %s", grams(st.NextNeedsG))
+	}
+	return text + fmt.Sprintf("; to be sure multiply every charge by %.3g", st.SureFactor)
+}
+
+var chargeColumns = []column{{"", 1, false}, {"material, as supplied", 37, false}, {"M", 7, true}, {"equiv", 6, true}, {"mmol", 6, true}, {"mass", 8, true}, {"volume", 8, true},
+	{"weighed", 9, true}, {"lot", 7, true}}
 
 func textCharges(p *printer, st *Step) {
-	tw := tabwriter.NewWriter(p.w, 0, 4, 2, ' ', 0)
-	fmt.Fprintln(tw, "role\tmaterial\tM\tequiv\tmmol\tmass\tvolume\tlot\tweighed")
-	for _, c := range st.Charges {
-		fmt.Fprintf(tw, "%s\t%s\t%s\t%s\t%s\t%s\t%s\t______\t______\n", roleText(c), c.Name+casText(c.CAS)+formText(c.Form),
-			positive(c.MolarMass, "%.2f"), positive(c.Equiv, "%.3g"), positiveDigits(c.Mmol), massText(c), volumeText(c))
+	var rows [][]string
+	role := ""
+	for i := range st.Charges {
+		c := &st.Charges[i]
+		if c.Role != role {
+			role = c.Role
+			rows = append(rows, []string{roleHeads[role]})
+		}
+		mark := ""
+		if c.Limiting {
+			mark = "*"
+		}
+		rows = append(rows, []string{mark, chargeName(c), molarText(c), positive(c.Equiv, "%.3g"), positiveDigits(c.Mmol), massText(c), volumeText(c), "________", "______"})
 	}
-	if err := tw.Flush(); err != nil && p.err == nil {
-		p.err = err
-	}
+	p.table(chargeColumns, rows)
+	p.line("* limiting.  m = n M / w,  V = m / d or n / c,  w = purity or strength")
+	p.line("")
 }
 
-func roleText(c Charge) string {
-	if c.Limiting {
-		return c.Role + " (limiting)"
+var roleHeads = map[string]string{roleReactant: "reactants", roleReagent: "reagents", roleCatalyst: "catalysts, initiators", roleSolvent: "solvents", roleWorkup: "work-up"}
+
+// chargeName is the first cell of a charge: name, number, form, notes.
+func chargeName(c *Charge) string {
+	text := c.Name + casText(c.CAS)
+	if c.FromStep > 0 {
+		text += fmt.Sprintf(", from step %d", c.FromStep)
+	} else if c.Role != roleWorkup {
+		text += formText(c.Form)
 	}
-	return c.Role
+	if c.IfNeeded {
+		text += " (if needed)"
+	}
+	if c.Note != "" {
+		text += " (" + c.Note + ")"
+	}
+	return text
 }
 
 func formText(form string) string {
@@ -247,6 +332,14 @@ func positive(x float64, format string) string {
 	return fmt.Sprintf(format, x)
 }
 
+// molarText leaves out the molar mass of work-up materials: nobody needs it.
+func molarText(c *Charge) string {
+	if c.Role == roleWorkup {
+		return ""
+	}
+	return positive(c.MolarMass, "%.2f")
+}
+
 func positiveDigits(x float64) string {
 	if x <= 0 {
 		return ""
@@ -254,17 +347,19 @@ func positiveDigits(x float64) string {
 	return digits(x)
 }
 
-func massText(c Charge) string {
-	if c.MassG <= 0 {
-		if c.Role == "work-up" {
-			return "as needed"
-		}
+func massText(c *Charge) string {
+	switch {
+	case c.MassG > 0:
+		return grams(c.MassG)
+	case c.VolumeML > 0:
 		return ""
+	case c.Role == roleWorkup:
+		return "to need"
 	}
-	return grams(c.MassG)
+	return "unknown"
 }
 
-func volumeText(c Charge) string {
+func volumeText(c *Charge) string {
 	if c.VolumeML <= 0 {
 		return ""
 	}
