@@ -3,8 +3,10 @@ package route
 import (
 	"context"
 	"encoding/json"
+	"errors"
 	"fmt"
 	"os"
+	"strings"
 
 	"shelfward/reactions"
 )
@@ -38,7 +40,32 @@ func Load(path string) (*Plan, error) {
 	if p.Target.SMILES == "" {
 		return nil, fmt.Errorf("%s: not a plan file: no target", path)
 	}
+	for i := range p.Routes {
+		if err := p.Routes[i].whole(); err != nil {
+			return nil, fmt.Errorf("%s: damaged plan: route %d: %w", path, i+1, err)
+		}
+	}
 	return &p, nil
+}
+
+// whole checks what printing takes for granted of a route that was read from a file: lists of equal
+// length, and figures for every step.
+func (r *Route) whole() error {
+	if r.Code == "" {
+		return errors.New("the key code is missing")
+	}
+	for i := range r.Steps {
+		s := &r.Steps[i]
+		switch {
+		case s.Transform == "" || s.Product == "":
+			return fmt.Errorf("step %d: transform and product were expected", i+1)
+		case len(s.Reactants) == 0:
+			return fmt.Errorf("step %d: no reactants", i+1)
+		case len(s.ReactantNames) != len(s.Reactants) || len(s.Equivalents) != len(s.Reactants):
+			return fmt.Errorf("step %d: %d reactants, %d names and %d equivalents; as many of each were expected", i+1, len(s.Reactants), len(s.ReactantNames), len(s.Equivalents))
+		}
+	}
+	return nil
 }
 
 // Route returns the route with a code, or with a number from 1 in a list that is at hand; "" is the
@@ -59,7 +86,7 @@ func (p *Plan) Route(name string) (*Route, error) {
 	for i := range p.Routes {
 		codes[i] = p.Routes[i].Code
 	}
-	return nil, fmt.Errorf("no route %q in the plan%s", name, near(name, codes))
+	return nil, fmt.Errorf("no route %q in the plan; its codes: %s", name, strings.Join(codes, ", "))
 }
 
 // Restore brings back the judged steps and the condition sets behind a plan that was read from a file,

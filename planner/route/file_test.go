@@ -30,7 +30,9 @@ func TestPlanFile(t *testing.T) {
 	if err := q.Restore(t.Context(), avoidWorld(t)); err != nil || q.Routes[0].Steps[0].Judged == nil || q.Routes[0].Steps[0].Set == nil {
 		t.Errorf("restore: %v", err)
 	}
-	for name, text := range map[string]string{"no plan": "{}", "no json": "routes", "newer": `{"version": 99, "target": {"smiles": "C"}}`} {
+	for name, text := range map[string]string{"no plan": "{}", "no json": "routes", "newer": `{"version": 99, "target": {"smiles": "C"}}`,
+		"damaged": `{"version": 1, "target": {"smiles": "C"}, "routes": [{"code": "x", "steps": [{"transform": "a", "product": "C", "reactants": ["C"]}]}]}`,
+		"no code": `{"version": 1, "target": {"smiles": "C"}, "routes": [{}]}`} {
 		os.WriteFile(path, []byte(text), 0o600)
 		if _, err := Load(path); err == nil || !strings.Contains(err.Error(), path) {
 			t.Errorf("%s: %v", name, err)

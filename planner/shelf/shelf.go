@@ -120,6 +120,17 @@ func Load(fsys fs.FS, files []string, dir string, known *Known) (*Shelf, error) 
 	return New(items, &withNames), nil
 }
 
+// Check reads one file as Load does, and reports every row.
+func Check(fsys fs.FS, path string, known *Known) (*Report, error) {
+	builtin, err := Builtin(fsys, known)
+	if err != nil {
+		return nil, err
+	}
+	withNames := *known
+	withNames.builtin = builtin.Items()
+	return ReadFile(path, &withNames)
+}
+
 // ReadFile reads a shelf file from disk.
 func ReadFile(path string, known *Known) (*Report, error) {
 	info, err := os.Stat(path)

@@ -18,7 +18,7 @@ type compareOptions struct {
 func newCompareCommand(app *App) *cobra.Command {
 	o := &compareOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "compare TARGET", Short: "the routes, or the first from each start, side by side", Args: cobra.ExactArgs(1),
+		Use: "compare TARGET", Short: "the routes, or the first from each start, side by side", Args: exactly(1),
 		Long:    "TARGET is as for routes, or a plan file written by `routes --out`.\n" + exitHelp,
 		Example: "  shelfward compare testdata/demo/lure-4.yaml\n  shelfward compare 'CCCC(C)C(=O)CC' --each-from propanal --each-from 'ethyl propanoate'",
 		RunE:    func(c *cobra.Command, args []string) error { return o.run(c.Context(), args[0]) },
@@ -29,7 +29,7 @@ func newCompareCommand(app *App) *cobra.Command {
 }
 
 func (o *compareOptions) run(ctx context.Context, text string) error {
-	j, err := o.app.openJob(ctx, text)
+	j, err := o.app.openFor(ctx, text, func(doubts []string) any { return compare.FromPlan(emptyPlan(doubts)) })
 	if err != nil {
 		return err
 	}

@@ -2,18 +2,22 @@ package cli
 
 import (
 	"bufio"
+	"bytes"
+	"context"
 	"errors"
 	"fmt"
 	"io"
 	"os"
 	"path/filepath"
-	"runtime"
+	"slices"
 	"strings"
 	"sync"
 
 	"github.com/spf13/cobra"
 
 	"shelfward/molecule"
+	"shelfward/molecule/draw"
+	"shelfward/molecule/molfile"
 	"shelfward/molecule/smiles"
 )
 
@@ -27,35 +31,66 @@ type convertOptions struct {
 func newConvertCommand(app *App) *cobra.Command {
 	o := &convertOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, formula, name, svg", Args: cobra.ExactArgs(1),
-		Long:    "Reads a .smi, .mol, .sdf or .rxn file ('-' is standard input, SMILES) and prints one line per record:\nvalue, tab, title. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" + exitHelp,
-		Example: "  shelfward convert shelf.smi --to smiles\n  echo 'OCC ethanol' | shelfward convert - --to formula",
+		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, formula, svg", Args: exactly(1),
+		Long: "Reads a .smi, .mol, .sdf or .rxn file; '-' is standard input. To smiles and formula it prints one line per record:\n" +
+			"value, tab, title. A .rxn file becomes one line of reaction SMILES, or its molecules in the order reactants, agents,\n" +
+			"products. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" +
+			"SD, mol and SVG output leave failed records out.\n" + exitHelp,
+		Example: "  shelfward convert shelf.smi --to smiles\n  echo 'OCC ethanol' | shelfward convert - --to formula\n  shelfward convert drawing.sdf --to smiles",
 		RunE: func(c *cobra.Command, args []string) error {
 			o.file = args[0]
-			return o.run()
+			return o.run(c.Context())
 		},
 	}
-	cmd.Flags().StringVar(&o.to, "to", "smiles", "smiles, mol, sdf, formula, name or svg")
+	cmd.Flags().StringVar(&o.to, "to", "smiles", formatNames)
 	return cmd
 }
 
-// lineFormats write one line per record.
-var lineFormats = map[string]func(*molecule.Molecule) string{
-	"smiles":  smiles.Write,
-	"formula": func(m *molecule.Molecule) string { return m.Formula().String() },
+// formatNames lists the values of --to.
+const formatNames = "smiles, mol, sdf, formula or svg"
+
+// formats turn one record into its text. The line formats give a value for 'value, tab, title'; the
+// others give a whole block of lines.
+var formats = map[string]struct {
+	write func(*molfile.Record) (string, error)
+	line  bool
+}{
+	"smiles":  {func(r *molfile.Record) (string, error) { return smiles.Write(r.Molecule), nil }, true},
+	"formula": {func(r *molfile.Record) (string, error) { return r.Molecule.Formula().String(), nil }, true},
+	"mol":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.Write) }, false},
+	"sdf":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteSD) }, false},
+	"svg": {func(r *molfile.Record) (string, error) {
+		return draw.SVG(r.Molecule, draw.Options{Title: r.Title}) + "\n", nil
+	}, false},
 }
 
-func (o *convertOptions) run() error {
-	write, ok := lineFormats[o.to]
-	if !ok {
-		return usageError("--to %s: smiles, mol, sdf, formula, name or svg was expected", o.to)
+// molText writes a record with the coordinates it came with, or with those of our own picture.
+func molText(r *molfile.Record, write func(io.Writer, *molfile.Record) error) (string, error) {
+	whole := *r
+	if whole.Coordinates == nil {
+		for _, p := range draw.Layout(r.Molecule) {
+			whole.Coordinates = append(whole.Coordinates, molfile.Point{X: p.X, Y: p.Y})
+		}
+	}
+	var text strings.Builder
+	err := write(&text, &whole)
+	return text.String(), err
+}
+
+func (o *convertOptions) run(ctx context.Context) error {
+	if _, ok := formats[o.to]; !ok {
+		return usageError("--to %s: %s was expected", o.to, formatNames)
 	}
 	in, closeIn, err := o.app.open(o.file)
 	if err != nil {
 		return err
 	}
 	defer closeIn()
-	return o.lines(in, write)
+	src, err := o.source(in)
+	if err != nil {
+		return err
+	}
+	return o.convert(ctx, src)
 }
 
 // open opens a file or standard input; a folder is refused.
@@ -86,82 +121,127 @@ func plainReason(err error) error {
 	return err
 }
 
-// maxLine is the longest line of a SMILES file that is read; a longer one is a failed record.
-const maxLine = 1 << 20
-
-// batchLines is how many lines one worker takes at a time.
-const batchLines = 512
-
-// converted is the answer for one line.
-type converted struct{ value, title, trouble string }
-
-// lines converts a SMILES file: batches run in parallel and are printed in order.
-func (o *convertOptions) lines(in io.Reader, write func(*molecule.Molecule) string) error {
-	workers := o.app.Workers
-	if workers <= 0 {
-		workers = runtime.GOMAXPROCS(0)
+// source chooses the reader by the name of the file; standard input is looked at.
+func (o *convertOptions) source(in io.Reader) (source, error) {
+	reader := bufio.NewReaderSize(in, 1<<16)
+	switch strings.ToLower(filepath.Ext(o.file)) {
+	case ".mol", ".sdf", ".sd":
+		return &molSource{in: molfile.NewReader(reader)}, nil
+	case ".rxn":
+		return o.reactionSource(reader)
 	}
+	if o.file == "-" {
+		head, _ := reader.Peek(1 << 12)
+		switch {
+		case bytes.HasPrefix(head, []byte("$RXN")):
+			return o.reactionSource(reader)
+		case bytes.Contains(head, []byte("V2000\n")), bytes.Contains(head, []byte("V2000\r")):
+			return &molSource{in: molfile.NewReader(reader)}, nil
+		}
+	}
+	return &lineSource{in: reader}, nil
+}
+
+func (o *convertOptions) reactionSource(in io.Reader) (source, error) {
+	r, err := molfile.ReadReaction(in)
+	if err != nil {
+		return nil, usageError("%s: %v", fileLabel(o.file), err)
+	}
+	if o.to == "smiles" {
+		line := joinRecords(r.Reactants) + ">" + joinRecords(r.Agents) + ">" + joinRecords(r.Products)
+		return &listSource{items: []item{{done: &converted{value: line, title: r.Title}}}}, nil
+	}
+	var items []item
+	for _, list := range [][]*molfile.Record{r.Reactants, r.Agents, r.Products} {
+		for _, rec := range list {
+			items = append(items, item{record: rec, title: rec.Title})
+		}
+	}
+	return &listSource{items: items}, nil
+}
+
+func joinRecords(list []*molfile.Record) string {
+	var ms []*molecule.Molecule
+	for _, r := range list {
+		ms = append(ms, r.Molecule)
+	}
+	return joinSMILES(ms)
+}
+
+// convert reads batches, works on them in parallel and prints them in order.
+func (o *convertOptions) convert(ctx context.Context, src source) error {
+	workers := o.app.workers()
 	out := bufio.NewWriterSize(o.app.Out, 1<<16)
 	defer out.Flush()
-	reader := bufio.NewReaderSize(in, 1<<16)
+	object := convertJSON{Records: []recordJSON{}, Doubts: []string{}}
 	record, failed := 0, 0
 	for done := false; !done; {
-		var batches [][]string
+		var batches [][]item
 		for len(batches) < workers*4 && !done {
-			var lines []string
-			lines, done = readLines(reader)
-			batches = append(batches, lines)
+			var items []item
+			items, done = src.next(batchItems)
+			batches = append(batches, items)
 		}
-		for _, r := range convertBatches(batches, write, workers) {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		for _, r := range o.batches(batches, workers) {
 			record++
-			fmt.Fprintf(out, "%s\t%s\n", r.value, r.title)
 			if r.trouble != "" {
 				failed++
-				fmt.Fprintf(o.app.ErrOut, "shelfward: %s: record %d: %s\n", filepath.Base(o.file), record, r.trouble)
+				fmt.Fprintf(o.app.ErrOut, "shelfward: %s: record %d: %s\n", fileLabel(o.file), record, r.trouble)
+			}
+			if o.app.JSON {
+				object.Records = append(object.Records, recordJSON{r.value, r.title})
+			} else if err := o.print(out, r); err != nil {
+				return err
 			}
 		}
+	}
+	if _, mol := src.(*molSource); mol && record == 0 {
+		return usageError("%s: expected a molfile, found nothing", fileLabel(o.file))
 	}
 	if failed > 0 {
 		return failWith(exitUsage, errSilent)
 	}
+	if o.app.JSON {
+		return printJSON(out, object)
+	}
 	return nil
 }
 
-// readLines reads up to batchLines lines; a line beyond maxLine is cut so that it fails as a record.
-func readLines(r *bufio.Reader) (lines []string, done bool) {
-	var line []byte
-	for len(lines) < batchLines {
-		chunk, err := r.ReadSlice('\n')
-		if len(line) <= maxLine {
-			line = append(line, chunk...)
-		}
-		if err == bufio.ErrBufferFull {
-			continue
-		}
-		if err != nil && len(line) == 0 {
-			return lines, true
-		}
-		lines = append(lines, strings.TrimRight(string(line), "\r\n"))
-		line = line[:0]
-		if err != nil {
-			return lines, true
-		}
-	}
-	return lines, false
+// convertJSON is the object of convert --json.
+type convertJSON struct {
+	Records []recordJSON `json:"records"`
+	Doubts  []string     `json:"doubts"`
 }
 
-func convertBatches(batches [][]string, write func(*molecule.Molecule) string, workers int) []converted {
+type recordJSON struct {
+	Value string `json:"value"`
+	Title string `json:"title"`
+}
+
+func (o *convertOptions) print(w io.Writer, r converted) error {
+	if !formats[o.to].line {
+		_, err := io.WriteString(w, r.value)
+		return err
+	}
+	_, err := fmt.Fprintf(w, "%s\t%s\n", r.value, r.title)
+	return err
+}
+
+func (o *convertOptions) batches(batches [][]item, workers int) []converted {
 	results := make([][]converted, len(batches))
 	var wg sync.WaitGroup
 	next := make(chan int)
-	for w := 0; w < workers; w++ {
+	for range workers {
 		wg.Add(1)
 		go func() {
 			defer wg.Done()
 			for i := range next {
 				results[i] = make([]converted, len(batches[i]))
-				for k, line := range batches[i] {
-					results[i][k] = convertLine(line, write)
+				for k, it := range batches[i] {
+					results[i][k] = it.convert(formats[o.to].write)
 				}
 			}
 		}()
@@ -171,24 +251,5 @@ func convertBatches(batches [][]string, write func(*molecule.Molecule) string, w
 	}
 	close(next)
 	wg.Wait()
-	var all []converted
-	for _, r := range results {
-		all = append(all, r...)
-	}
-	return all
-}
-
-func convertLine(line string, write func(*molecule.Molecule) string) converted {
-	if len(line) > maxLine {
-		return converted{trouble: fmt.Sprintf("the line is longer than %d characters", maxLine)}
-	}
-	text, title := strings.TrimSpace(line), ""
-	if i := strings.IndexAny(text, " \t"); i >= 0 {
-		text, title = text[:i], strings.TrimSpace(text[i+1:])
-	}
-	m, err := smiles.Read(text)
-	if err != nil {
-		return converted{title: title, trouble: err.Error()}
-	}
-	return converted{value: write(m), title: title}
+	return slices.Concat(results...)
 }

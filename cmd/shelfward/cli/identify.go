@@ -24,7 +24,7 @@ type identifyOptions struct {
 func newIdentifyCommand(app *App) *cobra.Command {
 	o := &identifyOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "identify CASE.yaml", Short: "evidence to formulas, groups and ranked candidate structures", Args: cobra.ExactArgs(1),
+		Use: "identify CASE.yaml", Short: "evidence to formulas, groups and ranked candidate structures", Args: exactly(1),
 		Long: "Reads combustion analysis, mass, IR and NMR evidence from a case file. Hard evidence excludes structures and is\n" +
 			"listed under 'assumed'; everything else only ranks them.\n" + exitHelp,
 		Example: "  shelfward identify testdata/demo/lure-4.yaml\n  shelfward identify testdata/demo/lure-4-thin.yaml --count 5",
@@ -38,13 +38,13 @@ func newIdentifyCommand(app *App) *cobra.Command {
 
 func (o *identifyOptions) run(ctx context.Context, path string) error {
 	if o.count < 1 || o.time <= 0 {
-		return usageError("--count and --time must be more than nothing")
+		return usageError("--count %d --time %v: both must be more than zero", o.count, o.time)
 	}
 	opt := identify.Options{Count: o.count, Time: o.time}
 	if o.expect != "" {
 		m, err := smiles.Read(o.expect)
 		if err != nil {
-			return usageError("--expect: %v", err)
+			return usageError("--expect %s: %v", quoted(o.expect), err)
 		}
 		opt.Expect = m
 	}
@@ -88,6 +88,9 @@ func printIdentified(w io.Writer, j *job, path string) {
 	}
 	if r.Nothing != "" {
 		fmt.Fprintln(w, "Nothing found: "+r.Nothing)
+	}
+	if r.Formula == "" {
+		return
 	}
 	fmt.Fprintf(w, "\nformula: %s, unsaturation %.3g\n", r.Formula, r.Unsaturation)
 	printFormulas(w, r)

@@ -1,7 +1,6 @@
 package cli
 
 import (
-	"bufio"
 	"encoding/json"
 	"fmt"
 	"io"
@@ -23,9 +22,9 @@ type judgeOptions struct {
 func newJudgeCommand(app *App) *cobra.Command {
 	o := &judgeOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "judge 'A.B>>C'", Short: "is this one step sound? names the reaction, the expected product, the objections", Args: cobra.ExactArgs(1),
-		Long: "Judges one step written as reaction SMILES ('-' reads it from standard input). --with takes the conditions as\n" +
-			"a chemist would write them. The status is 0 whatever the verdict.\n" + exitHelp,
+		Use: "judge 'A.B>>C'", Short: "is this one step sound? names the reaction, the expected product, the objections", Args: exactly(1),
+		Long: "Judges one step: reaction SMILES, a .rxn file, or '-' for either of them on standard input. --with takes the\n" +
+			"conditions as a chemist would write them. The status is 0 whatever the verdict.\n" + exitHelp,
 		Example: "  shelfward judge 'CCCCBr.[C-]#N.[Na+]>>CCCCC#N' --with 'dimethyl sulfoxide'\n" +
 			"  shelfward judge 'CCC(=O)OCC.CCCC(C)Br>>CCCC(C)C(=O)CC' --with 'magnesium; diethyl ether'",
 		RunE: func(c *cobra.Command, args []string) error { return o.run(c, args[0]) },
@@ -61,14 +60,7 @@ type objectionJSON struct {
 }
 
 func (o *judgeOptions) run(c *cobra.Command, text string) error {
-	if text == "-" {
-		line, err := bufio.NewReader(io.LimitReader(o.app.In, maxLine)).ReadString('\n')
-		if err != nil && line == "" {
-			return usageError("standard input: a reaction such as A.B>>C was expected")
-		}
-		text = strings.TrimSpace(line)
-	}
-	reactants, products, err := readReaction(text)
+	reactants, products, err := o.app.reaction(text)
 	if err != nil {
 		return err
 	}
@@ -97,32 +89,6 @@ func (o *judgeOptions) run(c *cobra.Command, text string) error {
 	}
 	printJudgement(o.app.Out, reactants, products, j)
 	return nil
-}
-
-// readReaction reads 'A.B>>C'; what stands between the two '>' is read with the reactants.
-func readReaction(text string) (reactants, products []*molecule.Molecule, err error) {
-	sides := strings.Split(text, ">")
-	if len(sides) != 3 {
-		return nil, nil, usageError("%q: a reaction 'A.B>>C' was expected", text)
-	}
-	for i, side := range sides {
-		if strings.TrimSpace(side) == "" {
-			if i != 1 {
-				return nil, nil, usageError("%q: the %s side is empty", text, [3]string{"left", "", "right"}[i])
-			}
-			continue
-		}
-		m, err := smiles.Read(strings.TrimSpace(side))
-		if err != nil {
-			return nil, nil, usageError("%v", err)
-		}
-		if i == 2 {
-			products = append(products, m)
-		} else {
-			reactants = append(reactants, m)
-		}
-	}
-	return reactants, products, nil
 }
 
 func printJSON(w io.Writer, v any) error {

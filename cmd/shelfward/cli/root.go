@@ -13,6 +13,7 @@ import (
 	"strings"
 
 	"github.com/spf13/cobra"
+	"github.com/spf13/pflag"
 
 	"shelfward/rules"
 )
@@ -54,8 +55,20 @@ func failWith(status int, err error) error {
 	return &statusError{status, err}
 }
 
+// quoted shortens a long text for a message and puts it in quotation marks.
+func quoted(text string) string {
+	const most = 60
+	if r := []rune(text); len(r) > most {
+		text = string(r[:most]) + "..."
+	}
+	return fmt.Sprintf("%q", text)
+}
+
 // errSilent ends a command with a status after everything has been said.
 var errSilent = errors.New("")
+
+// maxWorkers bounds --workers: more than any bench computer has cores, few enough to start at once.
+const maxWorkers = 256
 
 // App holds what every command shares: streams and the flags that stand everywhere.
 type App struct {
@@ -82,33 +95,82 @@ func Main(args []string, in io.Reader, out, errOut io.Writer) int {
 	return app.report(root.ExecuteContext(ctx))
 }
 
-// report prints an error as one line and turns it into a status.
+// report prints an error as one line a mistake and turns it into a status.
 func (app *App) report(err error) int {
 	if err == nil {
 		return exitDone
 	}
 	status := exitFailure
 	var se *statusError
-	if errors.As(err, &se) {
+	switch {
+	case errors.As(err, &se):
 		status = se.status
-	} else if isCobraUsage(err) {
-		status = exitUsage
+	case errors.Is(err, context.Canceled):
+		err = errors.New("interrupted before anything was found")
 	}
-	if text := strings.TrimSpace(err.Error()); text != "" {
-		fmt.Fprintln(app.ErrOut, "shelfward: "+text)
+	for _, line := range strings.Split(strings.TrimSpace(err.Error()), "\n") {
+		if line != "" {
+			fmt.Fprintln(app.ErrOut, "shelfward: "+line)
+		}
 	}
 	return status
 }
 
-// isCobraUsage recognises the flag and argument errors of the command library, which have no type.
-func isCobraUsage(err error) bool {
-	for _, start := range []string{"unknown command", "unknown flag", "unknown shorthand", "flag needs an argument", "invalid argument", "accepts ", "requires at least", "bad flag syntax", "required flag"} {
-		if strings.HasPrefix(err.Error(), start) {
-			return true
+// nothing ends a command that found nothing, status 3. The reason belongs to the result: it goes to
+// standard output, under --json inside object, which the caller has filled with it.
+func (app *App) nothing(object any, reason string) error {
+	if app.JSON {
+		if err := printJSON(app.Out, object); err != nil {
+			return err
+		}
+	} else {
+		fmt.Fprintln(app.Out, reason)
+	}
+	return failWith(exitNothing, errSilent)
+}
+
+// exactly asks for n arguments and says in the command's own words what was expected.
+func exactly(n int) cobra.PositionalArgs {
+	return func(c *cobra.Command, args []string) error {
+		if len(args) == n {
+			return nil
+		}
+		return usageError("expected `%s`, found %d arguments instead of %d; a text with spaces or brackets belongs in single quotes", c.UseLine(), len(args), n)
+	}
+}
+
+// subcommandOnly is the run function of a command that does nothing by itself: bare it shows its help,
+// with an unknown word it says which words there are.
+func subcommandOnly(c *cobra.Command, args []string) error {
+	if len(args) == 0 {
+		return c.Help()
+	}
+	var names []string
+	for _, sub := range c.Commands() {
+		if sub.IsAvailableCommand() && sub.Name() != "help" && sub.Name() != "completion" {
+			names = append(names, sub.Name())
 		}
 	}
-	return false
+	near := ""
+	if list := rules.NearWords(args[0], names, 1); len(list) > 0 {
+		near = fmt.Sprintf(" (did you mean %q?)", list[0])
+	}
+	return usageError("unknown command %q for %s%s; expected one of %s", args[0], c.CommandPath(), near, strings.Join(names, ", "))
 }
+
+// flagError turns the library's complaint about a flag into a usage error in plain words.
+func flagError(_ *cobra.Command, err error) error {
+	text := err.Error()
+	var invalid *pflag.InvalidValueError
+	if errors.As(err, &invalid) {
+		f := invalid.GetFlag()
+		text = fmt.Sprintf("--%s: %q: expected %s", f.Name, invalid.GetValue(), flagKinds[f.Value.Type()])
+	}
+	return usageError("%s", text)
+}
+
+// flagKinds says what a flag of a type takes.
+var flagKinds = map[string]string{"int": "a whole number", "duration": "a time such as 10s or 2m", "bool": "true or false"}
 
 func (app *App) rootCommand() *cobra.Command {
 	root := &cobra.Command{
@@ -118,7 +180,16 @@ func (app *App) rootCommand() *cobra.Command {
 		Version:       Version,
 		SilenceErrors: true,
 		SilenceUsage:  true,
+		Args:          cobra.ArbitraryArgs,
+		RunE:          subcommandOnly,
+		PersistentPreRunE: func(*cobra.Command, []string) error {
+			if app.Workers < 0 || app.Workers > maxWorkers {
+				return usageError("--workers: expected 0 (one per core) to %d, found %d", maxWorkers, app.Workers)
+			}
+			return nil
+		},
 	}
+	root.SetFlagErrorFunc(flagError)
 	root.SetVersionTemplate("shelfward {{.Version}}\n")
 	f := root.PersistentFlags()
 	f.StringArrayVar(&app.Shelves, "shelf", nil, "shelf file (repeatable; replaces the built-in example shelf, 'built-in' adds it back)")

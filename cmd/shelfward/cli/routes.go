@@ -4,17 +4,15 @@ import (
 	"context"
 	"fmt"
 	"os"
+	"regexp"
 	"time"
 
 	"github.com/spf13/cobra"
 
 	"shelfward/molecule"
-	"shelfward/molecule/smiles"
 	"shelfward/planner/route"
 	"shelfward/planner/search"
 )
-
-func writeSMILES(m *molecule.Molecule) string { return smiles.Write(m) }
 
 // planFlags are the wishes shared by routes, compare, sheet and run.
 type planFlags struct {
@@ -46,12 +44,40 @@ func (f *planFlags) bind(cmd *cobra.Command) {
 	fl.StringVar(&f.bench, "bench", "", "bench file: what the room can do")
 }
 
+// maxMaxSteps bounds --max-steps: no route on paper is longer, and the search keeps a table per step left.
+const maxMaxSteps = 40
+
+// hazardCode tells an H code among the words of --avoid.
+var hazardCode = regexp.MustCompile(`^[Hh][0-9]{3}[A-Za-z]*$`)
+
+// check refuses numbers that mean nothing.
+func (f *planFlags) check() error {
+	switch {
+	case f.count < 1:
+		return usageError("--count %d: 1 or more was expected", f.count)
+	case f.maxSteps < 1 || f.maxSteps > maxMaxSteps:
+		return usageError("--max-steps %d: 1 to %d was expected", f.maxSteps, maxMaxSteps)
+	case f.time <= 0:
+		return usageError("--time %v: more than 0s was expected", f.time)
+	case f.maxExpanded < 0:
+		return usageError("--max-expanded %d: 1 or more was expected, or 0 for no limit", f.maxExpanded)
+	}
+	return nil
+}
+
 // options turns flags and case file into planning options.
 func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OneEnantiomer: f.oneEnantiomer,
 		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.time, MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
-	if f.count < 1 || f.maxSteps < 1 || f.time <= 0 || f.maxExpanded < 0 {
-		return o, usageError("--count, --max-steps and --time must be more than nothing")
+	if err := f.check(); err != nil {
+		return o, err
+	}
+	for _, word := range f.avoid {
+		if hazardCode.MatchString(word) {
+			if err := j.room.Hazards.CheckCode("H" + word[1:]); err != nil {
+				return o, usageError("--avoid: %v", err)
+			}
+		}
 	}
 	by, err := route.ParseRankBy(f.rankBy)
 	if err != nil {
@@ -149,7 +175,7 @@ type routesOptions struct {
 func newRoutesCommand(app *App) *cobra.Command {
 	o := &routesOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "routes TARGET", Short: "ranked routes to a target from the shelf or from given starting materials", Args: cobra.ExactArgs(1),
+		Use: "routes TARGET", Short: "ranked routes to a target from the shelf or from given starting materials", Args: exactly(1),
 		Long: "TARGET is SMILES, a name, synonym or CAS number on the shelf, or a case file (.yaml). With --from every route\n" +
 			"consumes every item given.\n" + exitHelp,
 		Example: "  shelfward routes 'CCCC(C)C(=O)CC'\n  shelfward routes testdata/demo/lure-4.yaml --avoid H360\n  shelfward routes cyclohexanone --make-anyway --count 3",
@@ -162,7 +188,7 @@ func newRoutesCommand(app *App) *cobra.Command {
 }
 
 func (o *routesOptions) run(ctx context.Context, text string) error {
-	j, err := o.app.openJob(ctx, text)
+	j, err := o.app.openFor(ctx, text, func(doubts []string) any { return emptyPlan(doubts) })
 	if err != nil {
 		return err
 	}
@@ -201,6 +227,11 @@ func (app *App) header(j *job) {
 	}
 }
 
+// emptyPlan is the object of a search that had no target to begin with.
+func emptyPlan(doubts []string) *route.Plan {
+	return &route.Plan{From: []string{}, Avoided: []string{}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Doubts: doubts}
+}
+
 // nothingFound turns a plan without routes into status 3; the reason has been printed.
 func nothingFound(p *route.Plan) error {
 	if len(p.Routes) == 0 {
@@ -212,7 +243,7 @@ func nothingFound(p *route.Plan) error {
 func (o *routesOptions) save(p *route.Plan) error {
 	if o.out != "" {
 		if err := p.Save(o.out); err != nil {
-			return usageError("--out: %v", err)
+			return usageError("--out %s: cannot write: %v", o.out, plainReason(err))
 		}
 	}
 	if o.graph == "" {

@@ -1,8 +1,10 @@
 package cli
 
 import (
+	"context"
 	"errors"
 	"fmt"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -15,23 +17,26 @@ import (
 
 func newRulesCommand(app *App) *cobra.Command {
 	cmd := &cobra.Command{
-		Use:   "rules",
-		Short: "The transforms: list, show, check, new",
-		Long:  "The textbook transforms that the planner searches with.\n" + exitHelp,
+		Use: "rules", Short: "the transforms: list, show, check, new", Args: cobra.ArbitraryArgs, RunE: subcommandOnly,
+		Long:    "The textbook transforms that the planner searches with.\n" + exitHelp,
+		Example: "  shelfward rules list ozon\n  shelfward rules check --rules my-rules",
 	}
 	cmd.AddCommand(&cobra.Command{
-		Use: "list [WORD]", Short: "list the transforms, or those whose id, name or family holds a word", Args: cobra.MaximumNArgs(1),
+		Use: "list [WORD]", Short: "list the transforms, or those whose id, name or family holds a word", Args: cobra.ArbitraryArgs,
+		Long:    "Lists id, family and name of every transform loaded.\n" + exitHelp,
 		Example: "  shelfward rules list\n  shelfward rules list ozon",
 		RunE:    func(_ *cobra.Command, args []string) error { return app.rulesList(strings.Join(args, " ")) },
 	}, &cobra.Command{
-		Use: "show ID", Short: "show one transform with its conditions", Args: cobra.ExactArgs(1),
+		Use: "show ID", Short: "show one transform with its conditions", Args: exactly(1),
+		Long:    "Shows the parts, the condition sets, the source and the file of a transform.\n" + exitHelp,
 		Example: "  shelfward rules show fischer-esterification",
 		RunE:    func(_ *cobra.Command, args []string) error { return app.rulesShow(args[0]) },
 	}, &cobra.Command{
 		Use: "check [ID]...", Short: "check the rules and run their examples in both directions",
+		Long:    "Prints one line for each mistake: file, line, transform and what was expected. With --rules and without an ID only\nthe transforms of those folders are run.\n" + exitHelp,
 		Example: "  shelfward rules check\n  shelfward rules check --rules my-rules",
-		RunE:    func(c *cobra.Command, args []string) error { return app.rulesCheck(c, args) },
-	})
+		RunE:    func(c *cobra.Command, args []string) error { return app.rulesCheck(c.Context(), args) },
+	}, newRulesNewCommand(app))
 	return cmd
 }
 
@@ -48,23 +53,43 @@ func (app *App) book() (*reactions.Book, error) {
 	return b, nil
 }
 
+// rulesJSON is the object of rules list and show --json.
+type rulesJSON struct {
+	Transforms []ruleJSON `json:"transforms"`
+	Doubts     []string   `json:"doubts"`
+}
+
+type ruleJSON struct {
+	ID     string `json:"id"`
+	Name   string `json:"name"`
+	Family string `json:"family"`
+	File   string `json:"file"`
+	Text   string `json:"text,omitempty"` // show only
+}
+
 func (app *App) rulesList(word string) error {
 	b, err := app.book()
 	if err != nil {
 		return err
 	}
-	n := 0
+	object := rulesJSON{[]ruleJSON{}, []string{}}
 	for _, t := range b.Transforms {
-		if !strings.Contains(strings.ToLower(t.ID+" "+t.Name+" "+t.Family), strings.ToLower(word)) {
-			continue
+		if strings.Contains(strings.ToLower(t.ID+" "+t.Name+" "+t.Family), strings.ToLower(word)) {
+			object.Transforms = append(object.Transforms, ruleJSON{ID: t.ID, Name: t.Name, Family: t.Family, File: t.File})
 		}
-		n++
+	}
+	if len(object.Transforms) == 0 {
+		reason := fmt.Sprintf("no transform holds %q", word)
+		object.Doubts = append(object.Doubts, reason)
+		return app.nothing(object, reason)
+	}
+	if app.JSON {
+		return printJSON(app.Out, object)
+	}
+	for _, t := range object.Transforms {
 		fmt.Fprintf(app.Out, "%-44s  %-34s  %s\n", t.ID, t.Family, t.Name)
 	}
-	if n == 0 {
-		return failWith(exitNothing, fmt.Errorf("no transform holds %q", word))
-	}
-	fmt.Fprintf(app.Out, "%d transforms\n", n)
+	fmt.Fprintf(app.Out, "%d transforms\n", len(object.Transforms))
 	return nil
 }
 
@@ -75,51 +100,92 @@ func (app *App) rulesShow(id string) error {
 	}
 	t := b.Transform(id)
 	if t == nil {
-		ids := make([]string, len(b.Transforms))
-		for i, x := range b.Transforms {
-			ids[i] = x.ID
-		}
-		return usageError("no transform %q; near: %s", id, strings.Join(rules.NearWords(id, ids, 3), ", "))
+		return usageError("no transform %q%s", id, nearIDs(b, id))
 	}
-	reactions.Describe(app.Out, t)
-	return nil
+	if !app.JSON {
+		reactions.Describe(app.Out, t)
+		return nil
+	}
+	var text strings.Builder
+	reactions.Describe(&text, t)
+	return printJSON(app.Out, rulesJSON{[]ruleJSON{{t.ID, t.Name, t.Family, t.File, text.String()}}, []string{}})
 }
 
-func (app *App) rulesCheck(c *cobra.Command, ids []string) error {
+// nearIDs is the tail of a message about an unknown id.
+func nearIDs(b *reactions.Book, id string) string {
+	ids := make([]string, len(b.Transforms))
+	for i, x := range b.Transforms {
+		ids[i] = x.ID
+	}
+	near := rules.NearWords(id, ids, 3)
+	if len(near) == 0 {
+		return "; `shelfward rules list` names them all"
+	}
+	return "; near: " + strings.Join(near, ", ")
+}
+
+func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 	fsys, err := app.ruleFiles()
 	if err != nil {
 		return err
 	}
 	b, loadErr := reactions.Load(fsys)
 	var list rules.ErrorList
-	if errors.As(loadErr, &list) {
-		for _, e := range list {
-			fmt.Fprintln(app.Out, e)
-		}
-	} else if loadErr != nil {
+	if loadErr != nil && !errors.As(loadErr, &list) {
 		return failWith(exitUsage, loadErr)
+	}
+	for _, id := range ids {
+		if b.Transform(id) == nil && len(list) == 0 {
+			return usageError("no transform %q%s", id, nearIDs(b, id))
+		}
 	}
 	screen, err := restricted.Load(fsys)
 	if err != nil {
 		return failWith(exitUsage, err)
 	}
-	faults, checked := 0, 0
+	var lines []string
+	for _, e := range list {
+		lines = append(lines, e.Error())
+	}
+	checked := 0
 	for _, t := range b.Transforms {
-		if len(ids) > 0 && !contains(ids, t.ID) {
+		if !app.wantsCheck(t, ids) {
 			continue
 		}
-		if err := c.Context().Err(); err != nil {
+		if err := ctx.Err(); err != nil {
 			return err
 		}
 		checked++
-		found := append(b.Check(t), refusedExamples(screen, t)...)
-		for _, f := range found {
-			faults++
-			fmt.Fprintln(app.Out, f)
+		for _, f := range append(b.Check(t), refusedExamples(screen, t)...) {
+			lines = append(lines, f.String())
 		}
 	}
-	fmt.Fprintf(app.Out, "%d transforms checked, %d faults, %d load errors\n", checked, faults, len(list))
-	if faults+len(list) > 0 {
+	return app.printCheck(checked, lines)
+}
+
+// wantsCheck picks the transforms to run: those named, else those of the user's folders, else all.
+func (app *App) wantsCheck(t *reactions.Transform, ids []string) bool {
+	if len(ids) > 0 {
+		return slices.Contains(ids, t.ID)
+	}
+	return len(app.RuleDirs) == 0 || !strings.HasPrefix(t.File, "rules/"+rules.TransformFolder+"/")
+}
+
+// printCheck writes the mistakes: on standard output, but with --json, which prints no object beside
+// status 2, as messages.
+func (app *App) printCheck(checked int, mistakes []string) error {
+	if app.JSON && len(mistakes) == 0 {
+		return printJSON(app.Out, map[string]any{"checked": checked, "mistakes": []string{}, "doubts": []string{}})
+	}
+	w := app.Out
+	if app.JSON {
+		w = app.ErrOut
+	}
+	for _, line := range mistakes {
+		fmt.Fprintln(w, line)
+	}
+	fmt.Fprintf(w, "%d transforms checked, %d mistakes\n", checked, len(mistakes))
+	if len(mistakes) > 0 {
 		return failWith(exitUsage, errSilent)
 	}
 	return nil
@@ -138,13 +204,4 @@ func refusedExamples(screen *restricted.Screen, t *reactions.Transform) []reacti
 		}
 	}
 	return faults
-}
-
-func contains(list []string, x string) bool {
-	for _, y := range list {
-		if x == y {
-			return true
-		}
-	}
-	return false
 }

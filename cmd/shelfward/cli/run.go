@@ -3,8 +3,10 @@ package cli
 import (
 	"context"
 	"fmt"
+	"io"
 	"os"
 	"path/filepath"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -24,7 +26,7 @@ type runOptions struct {
 func newRunCommand(app *App) *cobra.Command {
 	o := &runOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "run CASE.yaml", Short: "the whole job: evidence, target, ranked routes, route sheet", Args: cobra.ExactArgs(1),
+		Use: "run CASE.yaml", Short: "the whole job: evidence, target, ranked routes, route sheet", Args: exactly(1),
 		Long: "Identifies the target from the evidence of a case file, plans and compares routes and prints the sheet of the first.\n" +
 			"Where the evidence does not settle the target it prints candidates, the next measurement and outline routes for the\n" +
 			"first two, and no amounts. --out writes the parts as files.\n" + exitHelp,
@@ -52,13 +54,13 @@ func (o *runOptions) run(ctx context.Context, path string) error {
 	if err != nil {
 		return err
 	}
+	p, err := o.app.plan(ctx, j, opt) // a declined target ends here, before anything is printed
+	if err != nil {
+		return err
+	}
 	if !o.app.JSON && j.found != nil {
 		printIdentified(o.app.Out, j, path)
 		fmt.Fprintln(o.app.Out)
-	}
-	p, err := o.app.plan(ctx, j, opt)
-	if err != nil {
-		return err
 	}
 	if o.app.JSON {
 		return o.asJSON(j, p, opt.MakeMol)
@@ -104,10 +106,10 @@ func (o *runOptions) files(j *job, p *route.Plan, makeMol float64) error {
 		return nil
 	}
 	if err := os.MkdirAll(o.out, 0o755); err != nil {
-		return usageError("--out: %v", plainReason(err))
+		return usageError("--out %s: cannot make this folder: %v", o.out, plainReason(err))
 	}
 	if err := p.Save(filepath.Join(o.out, "plan.json")); err != nil {
-		return usageError("--out: %v", err)
+		return usageError("--out %s: cannot write: %v", o.out, plainReason(err))
 	}
 	if makeMol == 0 || len(p.Routes[0].Steps) == 0 {
 		return nil
@@ -142,52 +144,93 @@ func (o *runOptions) asJSON(j *job, p *route.Plan, makeMol float64) error {
 
 // unsettled prints candidates and outline routes of the first two, no amounts.
 func (o *runOptions) unsettled(ctx context.Context, j *job, path string) error {
-	if o.app.JSON {
-		return printJSON(o.app.Out, map[string]any{"identify": j.found, "plan": nil,
-			"doubts": append(append([]string{}, j.found.Doubts...), "the evidence does not settle the target: no amounts")})
-	}
-	printIdentified(o.app.Out, j, path)
-	if len(j.found.Candidates) == 0 {
-		return failWith(exitNothing, errSilent)
-	}
-	fmt.Fprintln(o.app.Out, "\nThe target is not settled: outline routes for the first two candidates, no amounts.")
-	for i, c := range j.found.Candidates {
-		if i == 2 {
-			break
-		}
-		if err := o.outline(ctx, j, c.SMILES); err != nil {
+	outlines := []outlineJSON{}
+	for i := 0; i < len(j.found.Candidates) && i < 2; i++ {
+		one, err := o.outline(ctx, j, j.found.Candidates[i].SMILES)
+		if err != nil {
 			return err
 		}
+		outlines = append(outlines, one)
+	}
+	if o.app.JSON {
+		doubts := append([]string{"the evidence does not settle the target: no amounts"}, j.found.Doubts...)
+		if err := printJSON(o.app.Out, map[string]any{"identify": j.found, "plan": nil, "outlines": outlines, "doubts": doubts}); err != nil {
+			return err
+		}
+	} else {
+		printIdentified(o.app.Out, j, path)
+		printOutlines(o.app.Out, outlines)
+	}
+	if len(j.found.Candidates) == 0 {
+		return failWith(exitNothing, errSilent)
 	}
 	return nil
 }
 
-func (o *runOptions) outline(ctx context.Context, j *job, text string) error {
+// outlineJSON holds the routes to one candidate, without amounts.
+type outlineJSON struct {
+	Target string             `json:"target"`
+	Echo   string             `json:"-"`
+	Note   string             `json:"note"` // why there is no route; empty otherwise
+	Routes []outlineRouteJSON `json:"routes"`
+}
+
+type outlineRouteJSON struct {
+	Code  string   `json:"code"`
+	Steps []string `json:"steps"`
+}
+
+func (o *runOptions) outline(ctx context.Context, j *job, text string) (outlineJSON, error) {
+	out := outlineJSON{Target: text, Routes: []outlineRouteJSON{}}
 	m, err := smiles.Read(text)
 	if err != nil {
-		return err
+		return out, err
 	}
 	one := *j
 	one.target, one.name, one.readAs = m, j.room.Name(m), "a candidate"
+	out.Echo = one.echo()
+	if v := j.room.Restricted.Target(m); v.Declined() {
+		out.Note = v.Text
+		return out, nil
+	}
 	opt, err := o.app.options(&one, &o.flags)
 	if err != nil {
-		return err
+		return out, err
 	}
 	opt.MakeMol, opt.Count = 0, 2
 	p, err := o.app.plan(ctx, &one, opt)
 	if err != nil {
-		return err
+		return out, err
 	}
-	fmt.Fprintln(o.app.Out, "\n"+one.echo())
 	for _, r := range p.Routes {
-		fmt.Fprintf(o.app.Out, "  %s:", r.Code)
+		line := outlineRouteJSON{Code: r.Code, Steps: []string{}}
 		for _, s := range r.Steps {
-			fmt.Fprintf(o.app.Out, " %d %s;", s.Number, s.Name)
+			line.Steps = append(line.Steps, s.Name)
 		}
-		fmt.Fprintln(o.app.Out)
+		out.Routes = append(out.Routes, line)
 	}
 	if len(p.Routes) == 0 {
-		fmt.Fprintln(o.app.Out, "  no route was found")
+		out.Note = "no route was found"
 	}
-	return nil
+	return out, nil
+}
+
+func printOutlines(w io.Writer, outlines []outlineJSON) {
+	if len(outlines) == 0 {
+		return
+	}
+	fmt.Fprintln(w, "\nThe target is not settled: outline routes for the first two candidates, no amounts.")
+	for _, one := range outlines {
+		fmt.Fprintln(w, "\n"+one.Echo)
+		for _, r := range one.Routes {
+			if len(r.Steps) == 0 {
+				fmt.Fprintf(w, "  %s: on the shelf already\n", r.Code)
+				continue
+			}
+			fmt.Fprintf(w, "  %s: %s\n", r.Code, strings.Join(r.Steps, ", then "))
+		}
+		if one.Note != "" {
+			fmt.Fprintln(w, "  "+one.Note)
+		}
+	}
 }

@@ -2,27 +2,30 @@ package cli
 
 import (
 	"fmt"
-	"os"
 	"strings"
 	"text/tabwriter"
 
 	"github.com/spf13/cobra"
 
+	"shelfward/planner"
 	"shelfward/planner/shelf"
-	"shelfward/reactions/hazard"
-	"shelfward/reactions/reagent"
 )
 
 func newShelfCommand(app *App) *cobra.Command {
-	cmd := &cobra.Command{Use: "shelf", Short: "what is on the shelf: list, find, check", Long: "The shelf: the built-in example, or the files given with --shelf.\n" + exitHelp}
+	cmd := &cobra.Command{Use: "shelf", Short: "what is on the shelf: list, find, check", Args: cobra.ArbitraryArgs, RunE: subcommandOnly,
+		Long:    "The shelf: the built-in example, or the files given with --shelf.\n" + exitHelp,
+		Example: "  shelfward shelf list\n  shelfward shelf check testdata/demo/lure-shelf.csv"}
 	cmd.AddCommand(&cobra.Command{
-		Use: "list", Short: "list the shelf", Args: cobra.NoArgs, Example: "  shelfward shelf list\n  shelfward shelf list --shelf testdata/demo/lure-shelf.csv",
+		Use: "list", Short: "list the shelf", Args: exactly(0),
+		Long: "Lists every item with structure, amount, strength, hazards and place.\n" + exitHelp, Example: "  shelfward shelf list\n  shelfward shelf list --shelf testdata/demo/lure-shelf.csv",
 		RunE: func(*cobra.Command, []string) error { return app.shelfList("") },
 	}, &cobra.Command{
-		Use: "find WORD", Short: "find items by name, synonym, CAS number or structure", Args: cobra.ExactArgs(1), Example: "  shelfward shelf find propanal",
+		Use: "find WORD", Short: "find items by name, synonym, CAS number or structure", Args: exactly(1),
+		Long: "WORD is a name or a part of one, a synonym, a CAS number or SMILES.\n" + exitHelp, Example: "  shelfward shelf find propanal",
 		RunE: func(_ *cobra.Command, args []string) error { return app.shelfList(args[0]) },
 	}, &cobra.Command{
-		Use: "check FILE", Short: "check a shelf file row by row", Args: cobra.ExactArgs(1), Example: "  shelfward shelf check testdata/demo/lure-shelf.csv",
+		Use: "check FILE", Short: "check a shelf file row by row", Args: exactly(1),
+		Long: "Says for each row how it was read, and for each mistake the line and what was expected.\n" + exitHelp, Example: "  shelfward shelf check testdata/demo/lure-shelf.csv",
 		RunE: func(_ *cobra.Command, args []string) error { return app.shelfCheck(args[0]) },
 	})
 	return cmd
@@ -37,7 +40,8 @@ func (app *App) shelfList(word string) error {
 	if word != "" {
 		items = findItems(room.Shelf, word)
 		if len(items) == 0 {
-			return failWith(exitNothing, fmt.Errorf("nothing on the shelf is called %q", word))
+			reason := fmt.Sprintf("nothing on the shelf is called %q", word)
+			return app.nothing(shelfJSON(nil, reason), reason)
 		}
 	}
 	if app.JSON {
@@ -97,13 +101,13 @@ func hazardText(it *shelf.Item) string {
 	return strings.Join(it.Hazards, " ")
 }
 
-func shelfJSON(items []*shelf.Item) map[string]any {
+func shelfJSON(items []*shelf.Item, doubts ...string) map[string]any {
 	list := []any{}
 	for _, it := range items {
 		list = append(list, map[string]any{"name": it.Name, "cas": it.CAS, "smiles": it.SMILES, "amount": it.Amount.String(),
 			"strength": strengthText(it), "hazards": append([]string{}, it.Hazards...), "hazards_known": it.HazardsKnown, "location": it.Location})
 	}
-	return map[string]any{"items": list, "doubts": []string{}}
+	return map[string]any{"items": list, "doubts": append([]string{}, doubts...)}
 }
 
 func (app *App) shelfCheck(path string) error {
@@ -114,32 +118,51 @@ func (app *App) shelfCheck(path string) error {
 	if err != nil {
 		return err
 	}
-	reagents, err := reagent.Load(fsys)
+	rep, err := planner.CheckShelf(fsys, path)
 	if err != nil {
 		return failWith(exitUsage, err)
 	}
-	hazards, err := hazard.Load(fsys, reagents)
-	if err != nil {
-		return failWith(exitUsage, err)
-	}
-	rep, err := shelf.ReadFile(path, &shelf.Known{Reagents: reagents, Hazards: hazards})
-	if err != nil {
-		if os.IsNotExist(err) {
-			return usageError("%s: no such file", path)
+	w := app.Out
+	if app.JSON {
+		if len(rep.Errs) == 0 {
+			return printJSON(app.Out, checkJSON(rep))
 		}
-		return failWith(exitUsage, err)
+		w = app.ErrOut // status 2 prints no object
 	}
 	for _, row := range rep.Rows {
 		if it := row.Item; it != nil {
-			fmt.Fprintf(app.Out, "%s:%d: %s read from its %s: %s\n", path, it.Line, it.Name, it.ReadAs, it.SMILES)
+			fmt.Fprintf(w, "%s:%d: %s\n", path, it.Line, readingText(it))
 		}
 	}
 	for _, e := range rep.Errs {
-		fmt.Fprintln(app.Out, e)
+		fmt.Fprintln(w, e)
 	}
-	fmt.Fprintf(app.Out, "%d rows read, %d mistakes\n", len(rep.Items()), len(rep.Errs))
+	fmt.Fprintf(w, "%d rows read, %d mistakes\n", len(rep.Items()), len(rep.Errs))
 	if len(rep.Errs) > 0 {
 		return failWith(exitUsage, errSilent)
 	}
 	return nil
+}
+
+// readingText says how a row was read.
+func readingText(it *shelf.Item) string {
+	name := it.Name
+	if name == "" {
+		name = it.SMILES
+	}
+	switch {
+	case it.Molecule == nil:
+		return name + ": no structure is known for this name; the item is kept as a reagent by name only"
+	case it.Name == "":
+		return fmt.Sprintf("%s read from its %s", name, it.ReadAs)
+	}
+	return fmt.Sprintf("%s read from its %s: %s", name, it.ReadAs, it.SMILES)
+}
+
+func checkJSON(rep *shelf.Report) map[string]any {
+	rows := []any{}
+	for _, it := range rep.Items() {
+		rows = append(rows, map[string]any{"line": it.Line, "name": it.Name, "read_as": it.ReadAs, "smiles": it.SMILES, "text": readingText(it)})
+	}
+	return map[string]any{"rows": rows, "doubts": []string{}}
 }

@@ -13,6 +13,7 @@ import (
 
 	"shelfward/molecule"
 	"shelfward/molecule/identify"
+	"shelfward/molecule/smiles"
 	"shelfward/planner"
 	"shelfward/planner/route"
 	"shelfward/planner/shelf"
@@ -76,7 +77,7 @@ func (app *App) openJob(ctx context.Context, text string) (*job, error) {
 }
 
 func (j *job) setTarget(text string) error {
-	rd, err := j.room.Shelf.Resolve(text)
+	rd, err := j.read(text)
 	if err != nil {
 		return failWith(exitUsage, err)
 	}
@@ -84,12 +85,32 @@ func (j *job) setTarget(text string) error {
 	return checkWhole(j.target, text)
 }
 
-// checkWhole refuses what cannot be planned: a text of several molecules, unknown atoms.
+// read resolves a text; an error of the line notation, which knows only the column, gets the text.
+func (j *job) read(text string) (shelf.Reading, error) {
+	rd, err := j.room.Shelf.Resolve(text)
+	var bad *smiles.Error
+	if errors.As(err, &bad) {
+		err = fmt.Errorf("%s: %w", quoted(text), err)
+	}
+	return rd, err
+}
+
+// checkWhole refuses what cannot be planned: unknown atoms, and several neutral molecules in one text.
+// Salts are one compound.
 func checkWhole(m *molecule.Molecule, text string) error {
 	for a := 0; a < m.NumAtoms(); a++ {
 		if m.Atom(a).Element == 0 {
-			return usageError("%s: the structure holds an unknown atom '*'; a whole molecule was expected", text)
+			return usageError("%s: the structure holds an unknown atom '*'; a whole molecule was expected", quoted(text))
 		}
+	}
+	neutral := 0
+	for _, part := range m.Split() {
+		if f := part.Formula(); f.Charge == 0 && f.Count[6] > 0 {
+			neutral++
+		}
+	}
+	if neutral > 1 {
+		return usageError("%s: %d molecules in one text; one was expected", quoted(text), neutral)
 	}
 	return nil
 }
@@ -180,11 +201,11 @@ func (j *job) readWishes(path string) error {
 }
 
 func (j *job) resolve(text string) (*molecule.Molecule, error) {
-	rd, err := j.room.Shelf.Resolve(text)
+	rd, err := j.read(text)
 	if err != nil {
 		return nil, err
 	}
-	return rd.Molecule, nil
+	return rd.Molecule, checkWhole(rd.Molecule, text)
 }
 
 // openCase reads a case file and settles its target: the one it names, or the structure that the
@@ -198,9 +219,36 @@ func (app *App) openCase(ctx context.Context, path string, o identify.Options) (
 		return nil, err
 	}
 	if j.target == nil {
-		return nil, failWith(exitNothing, fmt.Errorf("%s: the evidence does not settle the target; see `shelfward identify %s`, or name it with target:", path, path))
+		return nil, &unsettledError{path: path, found: j.found}
 	}
 	return j, nil
+}
+
+// unsettledError is the answer of a command that needs one target to a case that leaves several.
+type unsettledError struct {
+	path  string
+	found *identify.Result
+}
+
+func (e *unsettledError) Error() string {
+	if e.found.Nothing != "" {
+		return fmt.Sprintf("%s: no structure fits the evidence: %s", e.path, e.found.Nothing)
+	}
+	return fmt.Sprintf("%s: the evidence does not settle the target; see `shelfward identify %s`, or name it with target:", e.path, e.path)
+}
+
+// doubts are those of the identification with the reason at the head.
+func (e *unsettledError) doubts() []string { return append([]string{e.Error()}, e.found.Doubts...) }
+
+// openFor reads TARGET for a command; a case that settles on nothing ends it with status 3 and, under
+// --json, with the command's empty object.
+func (app *App) openFor(ctx context.Context, text string, empty func(doubts []string) any) (*job, error) {
+	j, err := app.openJob(ctx, text)
+	var open *unsettledError
+	if errors.As(err, &open) {
+		return nil, app.nothing(empty(open.doubts()), open.Error())
+	}
+	return j, err
 }
 
 // settle finds the target of a case; it stays nil where the evidence leaves it open.
@@ -271,7 +319,8 @@ func (app *App) identify(ctx context.Context, j *job, o identify.Options) error 
 		if errors.Is(err, context.Canceled) {
 			return err
 		}
-		return failWith(exitNothing, err)
+		res = &identify.Result{Formulas: []identify.FormulaLine{}, Groups: []identify.GroupVerdict{}, Candidates: []identify.Candidate{},
+			Assumed: []identify.Assumption{}, Doubts: append([]string{}, j.data.Doubts...), Nothing: err.Error()}
 	}
 	j.found = res
 	return nil
@@ -288,7 +337,7 @@ func (app *App) workers() int {
 func molOf(text string, target *molecule.Molecule) (float64, error) {
 	a, err := shelf.ParseAmount(text)
 	if err != nil {
-		return 0, fmt.Errorf("%v; an amount such as 5 g, 20 mmol or 1 kg was expected", err)
+		return 0, fmt.Errorf("%s: an amount such as 5 g, 20 mmol or 1 kg was expected", quoted(text))
 	}
 	switch {
 	case a.Mol > 0:
@@ -304,7 +353,7 @@ func (j *job) echo() string {
 	f := j.target.Formula()
 	name := j.name
 	if name == "" {
-		name = writeSMILES(j.target)
+		name = smiles.Write(j.target)
 	}
 	return fmt.Sprintf("target: %s, %s, %.2f g/mol, read as %s", name, f, f.MolarMass(), j.readAs)
 }
