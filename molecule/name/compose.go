@@ -121,16 +121,12 @@ func prefixes(list []affix, noLocants bool) string {
 			if g[0].compound {
 				word = groupMultiplier(n) + enclose(word)
 			} else if n > 1 {
-				word = enclose(multiplier(n) + word)
+				word = enclose(times(n, word))
 			} else {
 				word = enclose(word)
 			}
 		} else if n > 1 {
-			if strings.HasPrefix(word, "tert-") {
-				word = multiplier(n) + "-" + word
-			} else {
-				word = multiplier(n) + word
-			}
+			word = times(n, word)
 		}
 		if !noLocants {
 			locants := make([]string, n)
@@ -145,6 +141,14 @@ func prefixes(list []affix, noLocants bool) string {
 		out += word
 	}
 	return out
+}
+
+// times puts the simple multiplying prefix before a substituent: "dimethyl", "di-tert-butyl".
+func times(n int, word string) string {
+	if strings.HasPrefix(word, "tert-") {
+		return multiplier(n) + "-" + word
+	}
+	return multiplier(n) + word
 }
 
 // grouped collects equal names, sorted by alphabet, each sorted by locant.

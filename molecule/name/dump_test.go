@@ -36,6 +36,18 @@ func TestDump(t *testing.T) {
 		name := ""
 		if m, err := smiles.Read(fields[0]); err == nil {
 			name = Of(m)
+			if name == "" && os.Getenv("SHELFWARD_UNREAD") != "" && nameable(m) {
+				if n := written(m); n != "" {
+					r, err := Read(n)
+					why := "read as another"
+					if err != nil {
+						why = err.Error()
+					} else {
+						why += " " + smiles.Write(r)
+					}
+					fmt.Fprintf(os.Stderr, "%s | %s | %s\n", fields[0], n, why)
+				}
+			}
 		}
 		fmt.Fprintf(out, "%s\t%s\n", fields[0], name)
 	}

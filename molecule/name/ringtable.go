@@ -2,6 +2,7 @@ package name
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 	"sync"
@@ -23,6 +24,8 @@ type ringEntry struct {
 
 // tables is what rules/names.yaml holds, ready for use.
 type tables struct {
+	ringWords [256][]ringWord
+	words     *vocabulary
 	rings     map[string][]*ringEntry // by signature
 	ringNamed map[string]*ringEntry
 	retained  map[string]string // Hantzsch-Widman name -> retained name
@@ -44,8 +47,9 @@ var loaded = sync.OnceValue(func() *tables {
 // load reads rules/names.yaml.
 func load() (*tables, error) {
 	var file struct {
-		Sources  []rules.Text `yaml:"sources"`
-		Retained []struct {
+		vocabularyFile `yaml:",inline"`
+		Sources        []rules.Text `yaml:"sources"`
+		Retained       []struct {
 			Name   string `yaml:"name" need:"name: furan"`
 			System string `yaml:"system" need:"system: oxole"`
 		} `yaml:"retained_rings"`
@@ -73,7 +77,11 @@ func load() (*tables, error) {
 	if err := rules.ReadInto(rules.Files(), "names.yaml", &file); err != nil {
 		return nil, err
 	}
-	t := &tables{rings: map[string][]*ringEntry{}, ringNamed: map[string]*ringEntry{}, retained: map[string]string{}, system: map[string]string{},
+	words, err := file.vocabularyFile.compile()
+	if err != nil {
+		return nil, err
+	}
+	t := &tables{words: words, rings: map[string][]*ringEntry{}, ringNamed: map[string]*ringEntry{}, retained: map[string]string{}, system: map[string]string{},
 		whole: map[molecule.Key]string{}, read: map[string]*molecule.Molecule{}, ions: map[molecule.Key]string{}, ionNamed: map[string]*molecule.Molecule{}}
 	for _, r := range file.Retained {
 		t.retained[r.System] = r.Name
@@ -119,7 +127,18 @@ func load() (*tables, error) {
 			t.ionNamed[n] = m
 		}
 	}
+	t.listRingWords()
 	return t, nil
+}
+
+// sortRingWords puts the longest words first.
+func sortRingWords(list []ringWord) {
+	slices.SortFunc(list, func(x, y ringWord) int {
+		if len(x.word) != len(y.word) {
+			return len(y.word) - len(x.word)
+		}
+		return strings.Compare(x.word, y.word)
+	})
 }
 
 // newRingEntry makes an entry from a SMILES whose atoms stand in the order of their locants. Without

@@ -9,4 +9,7 @@ func saltName(m *molecule.Molecule) string { return "" }
 func (w *writer) polyolEster(s spec) string { return "" }
 
 // readsBack says whether the name is one that this package reads as m.
-func readsBack(name string, m *molecule.Molecule) bool { return true }
+func readsBack(name string, m *molecule.Molecule) bool {
+	r, err := Read(name)
+	return err == nil && r.FlatKey() == m.FlatKey()
+}

@@ -68,7 +68,7 @@ func (p *plan) bare(w *writer, list []affix) bool {
 	}
 	substitutable := false
 	for _, g := range p.places {
-		substitutable = substitutable || len(g.nitrogens) > 0
+		substitutable = substitutable || len(g.nitrogens) > 0 || g.chain == "amido" || g.chain == "sulfonamido"
 	}
 	if onNitrogen > 0 {
 		return false
@@ -271,7 +271,16 @@ func (p *plan) withSuffix(w *writer, base string, bare bool) (name, tail string)
 			locants += "(" + p.addedList(a) + ")"
 		}
 	}
-	return addSuffix(base, locants, multiplier(len(p.places))+form), tail
+	return addSuffix(base, locants, multiplied(len(p.places), form)), tail
+}
+
+// multiplied puts the multiplying prefix before a suffix: "diol", "tetrol" (P-16.7.1).
+func multiplied(n int, form string) string {
+	m := multiplier(n)
+	if form[0] == 'o' || form[0] == 'a' {
+		m = strings.TrimSuffix(m, "a")
+	}
+	return m + form
 }
 
 // soleSuffix says whether the suffix needs no locant though others are given: methanamine, ethanamine

@@ -1,0 +1,533 @@
+package name
+
+import (
+	"errors"
+	"fmt"
+	"slices"
+	"strings"
+
+	"shelfward/molecule"
+)
+
+// assembly is a molecule in the making; Atom.Hydrogens is the number of free valences left.
+type assembly struct {
+	molecule.Builder
+	spare []int // free valences per atom
+}
+
+// errParts are the reasons why well-formed words do not make a molecule.
+var (
+	errValence = errors.New("too many groups on one atom")
+	errDouble  = errors.New("the double bonds of the ring cannot be placed: hydro prefixes or an indicated hydrogen are missing")
+)
+
+func (b *assembly) add(e molecule.Element) int {
+	b.spare = append(b.spare, normalValence(e))
+	return b.AddAtom(molecule.Atom{Element: e})
+}
+
+func normalValence(e molecule.Element) int {
+	switch e {
+	case 6, 14, 32, 50:
+		return 4
+	case 7, 15, 33, 5:
+		return 3
+	case 8, 16, 34, 52:
+		return 2
+	}
+	return 1
+}
+
+func (b *assembly) join(x, y, order int) error {
+	b.AddBond(x, y, uint8(order))
+	b.spare[x] -= order
+	b.spare[y] -= order
+	if b.spare[x] < 0 || b.spare[y] < 0 {
+		return errValence
+	}
+	return nil
+}
+
+// copyTemplate adds the atoms of t; skipFirst lets its first atom be one that exists already.
+func (b *assembly) copyTemplate(t *template, first int) []int {
+	at := make([]int, len(t.atoms))
+	for i, x := range t.atoms {
+		if i == 0 && first >= 0 {
+			at[0] = first
+			continue
+		}
+		at[i] = b.AddAtom(molecule.Atom{Element: x.Element, Charge: x.Charge})
+		b.spare = append(b.spare, int(x.Hydrogens))
+	}
+	for _, x := range t.bonds {
+		b.AddBond(at[x.A], at[x.B], x.Order)
+		if first >= 0 {
+			for _, y := range []int32{x.A, x.B} {
+				if y == 0 {
+					b.spare[first] -= int(x.Order)
+				}
+			}
+		}
+	}
+	return at
+}
+
+// piece is a unit built into an assembly.
+type piece struct {
+	locants []string // of the atoms below
+	atoms   []int
+	esters  []int // atoms that ester groups hang on
+	free    []int // atoms with free valences
+	order   int
+	rings   positions // skeleton positions saturated on purpose
+}
+
+func (q *piece) find(locant string) (int, bool) {
+	for i, l := range q.locants {
+		if l == locant {
+			return q.atoms[i], true
+		}
+	}
+	return 0, false
+}
+
+func (q *piece) label(locant string, atom int) {
+	if locant != "" {
+		q.locants = append(q.locants, locant)
+		q.atoms = append(q.atoms, atom)
+	}
+}
+
+func (q *piece) labelAll(locants []string, atoms []int) {
+	for i, l := range locants {
+		q.label(l, atoms[i])
+	}
+}
+
+// maxBuilt bounds the atoms of a molecule that is read.
+const maxBuilt = 600
+
+// build adds u to b.
+func (b *assembly) build(u *unit) (*piece, error) {
+	if len(b.Atoms) > maxBuilt {
+		return nil, fmt.Errorf("more than %d atoms", maxBuilt)
+	}
+	q := &piece{order: max(1, u.order)}
+	var err error
+	switch {
+	case u.parent != nil:
+		at := b.copyTemplate(u.parent, -1)
+		q.labelAll(u.parent.locants, at)
+		for _, e := range u.parent.esters {
+			q.esters = append(q.esters, at[e])
+		}
+		if u.parent.free >= 0 {
+			q.free = []int{at[u.parent.free]}
+		}
+		err = b.suffixes(u, q)
+	case u.root != nil:
+		err = b.acidRoot(u, q)
+	default:
+		err = b.hydride(u, q)
+	}
+	if err != nil {
+		return nil, err
+	}
+	if err := b.freeValences(u, q); err != nil {
+		return nil, err
+	}
+	return q, b.substituents(u, q)
+}
+
+// freeValences finds the atoms of yl endings and holds their valences back.
+func (b *assembly) freeValences(u *unit, q *piece) error {
+	for _, l := range u.free {
+		a, ok := q.find(l)
+		if l == "" {
+			a, ok = b.firstSpare(q, q.order)
+		}
+		if !ok {
+			return fmt.Errorf("locant %s does not exist", l)
+		}
+		q.free = append(q.free, a)
+	}
+	for _, a := range q.free {
+		if b.spare[a] -= q.order; b.spare[a] < 0 {
+			return errValence
+		}
+	}
+	return nil
+}
+
+// firstSpare is the first atom of q with n free valences.
+func (b *assembly) firstSpare(q *piece, n int) (int, bool) {
+	for _, a := range q.atoms {
+		if b.spare[a] >= n {
+			return a, true
+		}
+	}
+	return 0, false
+}
+
+// substituents hangs the items of u on q.
+func (b *assembly) substituents(u *unit, q *piece) error {
+	for _, it := range u.items {
+		for i := range it.count {
+			r, err := b.build(it.unit)
+			if err != nil {
+				return err
+			}
+			if len(r.free) != 1 || len(r.esters) > 0 {
+				return errors.New("a prefix that is no substituent")
+			}
+			a, ok := 0, false
+			if len(it.locants) == 0 {
+				a, ok = b.firstSpare(q, r.order)
+			} else {
+				a, ok = q.find(it.locants[i])
+			}
+			if !ok {
+				if len(it.locants) > 0 {
+					return fmt.Errorf("locant %s does not exist", it.locants[i])
+				}
+				return errValence
+			}
+			b.spare[r.free[0]] += r.order
+			if err := b.join(a, r.free[0], r.order); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+// acidRoot builds acetic acid and the like: the acid of the root with its OH changed to what the ending says.
+func (b *assembly) acidRoot(u *unit, q *piece) error {
+	t := u.root
+	drop := make([]bool, len(t.atoms))
+	var ends []int
+	next := func(a int, e molecule.Element, order uint8) int {
+		for _, x := range t.bonds {
+			if x.Order != order || x.Aromatic {
+				continue
+			}
+			if int(x.A) == a && t.atoms[x.B].Element == e {
+				return int(x.B)
+			}
+			if int(x.B) == a && t.atoms[x.A].Element == e {
+				return int(x.A)
+			}
+		}
+		return -1
+	}
+	for a, x := range t.atoms {
+		if x.Element != 6 {
+			continue
+		}
+		double, single := next(a, 8, 2), next(a, 8, 1)
+		if double >= 0 && single >= 0 && t.atoms[single].Hydrogens == 1 {
+			drop[double], drop[single] = true, true
+			ends = append(ends, a)
+		}
+	}
+	at := make([]int, len(t.atoms))
+	for i, x := range t.atoms {
+		at[i] = -1
+		if drop[i] {
+			continue
+		}
+		at[i] = b.AddAtom(molecule.Atom{Element: x.Element})
+		spare := int(x.Hydrogens)
+		if slices.Contains(ends, i) {
+			spare += 3
+		}
+		b.spare = append(b.spare, spare)
+	}
+	// The acid carbon comes last: a prefix without locant never stands on it.
+	for _, acid := range []bool{false, true} {
+		for i := range t.atoms {
+			if !drop[i] && slices.Contains(ends, i) == acid {
+				q.label(t.locants[i], at[i])
+			}
+		}
+	}
+	for _, x := range t.bonds {
+		if !drop[x.A] && !drop[x.B] {
+			b.AddBond(at[x.A], at[x.B], x.Order)
+		}
+	}
+	for _, a := range ends {
+		if err := b.suffixAt(u.ending, at[a], t.locants[a], q, len(ends) > 1); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// suffixAt puts the suffix t on atom a (for an end suffix: a is its first atom). Nitrogen locants get
+// the locant of the host behind the N where the suffix occurs several times.
+func (b *assembly) suffixAt(t *template, a int, host string, q *piece, several bool) error {
+	var at []int
+	if t.end {
+		at = b.copyTemplate(t, a)
+		if b.spare[a] < 0 {
+			return errValence
+		}
+	} else {
+		at = b.copyTemplate(t, -1)
+		if t.free >= 0 && t.free == 0 {
+			// The template leaves one valence for the host and one for what the radical hangs on.
+			b.spare[at[0]] = max(b.spare[at[0]], 2)
+		}
+		if err := b.join(a, at[0], t.order); err != nil {
+			return err
+		}
+	}
+	for i, l := range t.locants {
+		if l != "" && several {
+			l = "N" + host + strings.TrimPrefix(l, "N")
+		}
+		q.label(l, at[i])
+	}
+	for _, e := range t.esters {
+		q.esters = append(q.esters, at[e])
+	}
+	if t.free >= 0 {
+		q.free = append(q.free, at[t.free])
+	}
+	return nil
+}
+
+// suffixes puts the suffixes of u on q.
+func (b *assembly) suffixes(u *unit, q *piece) error {
+	for _, s := range u.suffixes {
+		if s.end {
+			if u.skeleton == nil || s.count > 2 || len(s.locants) > 0 {
+				return fmt.Errorf("%s does not fit its parent", s.name)
+			}
+			ends := []int{0, len(u.skeleton.elements) - 1}[:s.count]
+			if s.count == 2 && ends[1] == 0 {
+				return errValence
+			}
+			for _, i := range ends {
+				if err := b.suffixAt(s.template, q.atoms[i], q.locants[i], q, s.count > 1); err != nil {
+					return err
+				}
+			}
+			continue
+		}
+		for i := range s.count {
+			a, ok, host := 0, false, ""
+			if len(s.locants) == 0 {
+				a, ok = b.firstSpare(q, s.order)
+				for k, x := range q.atoms {
+					if x == a {
+						host = q.locants[k]
+						break
+					}
+				}
+			} else {
+				host = s.locants[i]
+				a, ok = q.find(host)
+			}
+			if !ok {
+				return fmt.Errorf("locant %s does not exist", host)
+			}
+			if err := b.suffixAt(s.template, a, host, q, s.count > 1); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+// hydride builds a parent from its skeleton.
+func (b *assembly) hydride(u *unit, q *piece) error {
+	s := u.skeleton
+	at := make([]int, len(s.elements))
+	for i, e := range s.elements {
+		at[i] = b.add(e)
+		q.label(s.locants[i], at[i])
+	}
+	order := make([]int, len(s.bonds))
+	for i := range order {
+		order[i] = 1
+	}
+	if s.mancude {
+		if err := mancudeBonds(u, order); err != nil {
+			return err
+		}
+	} else if err := multipleBonds(u, order); err != nil {
+		return err
+	}
+	for i, x := range s.bonds {
+		if err := b.join(at[x[0]], at[x[1]], order[i]); err != nil {
+			return err
+		}
+	}
+	return b.suffixes(u, q)
+}
+
+// multipleBonds sets the orders that ene and yne endings say.
+func multipleBonds(u *unit, order []int) error {
+	s := u.skeleton
+	if len(u.hydro)+u.hydros+len(u.indicated)+len(u.added) > 0 {
+		return errors.New("hydro prefixes and indicated hydrogen need a ring named with its double bonds")
+	}
+	place := func(l string) int { return slices.Index(s.locants, l) }
+	for k, m := range u.multiple {
+		i, j := k, k+1
+		if m.from == "" {
+			if len(u.multiple) > 1 {
+				return errors.New("locants of the double bonds are missing")
+			}
+		} else {
+			i = place(m.from)
+			j = i + 1
+			if j == len(s.elements) {
+				j = 0
+			}
+			if m.to != "" {
+				j = place(m.to)
+			}
+		}
+		found := false
+		for b, x := range s.bonds {
+			if i >= 0 && j >= 0 && (x[0] == i && x[1] == j || x[0] == j && x[1] == i) {
+				order[b], found = m.order, true
+			}
+		}
+		if !found {
+			return fmt.Errorf("there is no bond at locant %s", m.from)
+		}
+	}
+	return nil
+}
+
+// mancudeBonds places the double bonds of a ring with the most double bonds, less hydro and indicated hydrogen.
+func mancudeBonds(u *unit, order []int) error {
+	s := u.skeleton
+	n := len(s.elements)
+	if n > maxRingAtoms || len(u.multiple) > 0 {
+		return errDouble
+	}
+	k := &mancude{next: make([]positions, n)}
+	for i, e := range s.elements {
+		if e != 8 && e != 16 && e != 34 && e != 52 {
+			k.capable |= 1 << uint(i)
+		}
+	}
+	for _, x := range s.bonds {
+		k.next[x[0]] |= 1 << uint(x[1])
+		k.next[x[1]] |= 1 << uint(x[0])
+	}
+	saturated, err := u.saturatedPositions(k)
+	if err != nil {
+		return err
+	}
+	rest := k.capable &^ saturated
+	pairs, ok := k.match(rest)
+	if !ok {
+		return errDouble
+	}
+	for b, x := range s.bonds {
+		if y, ok := pairs[x[0]]; ok && y == x[1] {
+			order[b] = 2
+		}
+	}
+	return nil
+}
+
+// saturatedPositions collects what the name says and completes what it leaves out: hydro prefixes
+// without locants that saturate everything, an indicated hydrogen that everyone knows (pyrrole).
+func (u *unit) saturatedPositions(k *mancude) (positions, error) {
+	s := u.skeleton
+	var set positions
+	for _, list := range [][]string{u.indicated, u.added, u.hydro} {
+		for _, l := range list {
+			i := slices.Index(s.locants, l)
+			if i < 0 {
+				return 0, fmt.Errorf("locant %s does not exist", l)
+			}
+			set |= 1 << uint(i)
+		}
+	}
+	for _, x := range u.suffixes {
+		if x.order == 2 {
+			for _, l := range x.locants {
+				if i := slices.Index(s.locants, l); i >= 0 {
+					set |= 1 << uint(i)
+				}
+			}
+		}
+	}
+	if u.order == 2 {
+		for _, l := range u.free {
+			if i := slices.Index(s.locants, l); i >= 0 {
+				set |= 1 << uint(i)
+			}
+		}
+	}
+	spare := k.capable.size() - 2*k.pairs(k.capable)
+	if u.hydros > 0 && len(u.hydro) == 0 {
+		if u.hydros+spare != k.capable.size() {
+			return 0, errors.New("locants of the hydro prefixes are missing")
+		}
+		return k.capable, nil
+	}
+	if !k.perfect(k.capable&^set) && spare > 0 && len(u.indicated) == 0 {
+		left := k.capable.size() - set.size() - 2*k.pairs(k.capable&^set)
+		done := false
+		for _, nitrogen := range []bool{true, false} {
+			subsets(k.capable&^set, left, func(y positions) {
+				for _, i := range y.list() {
+					if nitrogen && s.elements[i] != 7 {
+						return
+					}
+				}
+				if !done && k.perfect(k.capable&^set&^y) {
+					set |= y
+					done = true
+				}
+			})
+			if done {
+				break
+			}
+		}
+	}
+	return set, nil
+}
+
+// match pairs off set whole: position -> partner.
+func (k *mancude) match(set positions) (map[int]int, bool) {
+	if !k.perfect(set) {
+		return nil, false
+	}
+	pairs := map[int]int{}
+	for set != 0 {
+		i := set.list()[0]
+		done := false
+		for _, j := range (k.next[i] & set).list() {
+			if rest := set &^ (1<<uint(i) | 1<<uint(j)); k.perfect(rest) {
+				pairs[i], pairs[j] = j, i
+				set, done = rest, true
+				break
+			}
+		}
+		if !done {
+			return nil, false
+		}
+	}
+	return pairs, true
+}
+
+// finish freezes b: the free valences left are hydrogens.
+func (b *assembly) finish() (*molecule.Molecule, error) {
+	for a := range b.Atoms {
+		if b.spare[a] < 0 {
+			return nil, errValence
+		}
+		b.Atoms[a].Hydrogens = uint8(b.spare[a])
+	}
+	return b.Build()
+}
