@@ -56,7 +56,7 @@ type judge struct {
 	with      reagent.Description
 	described bool
 	reactants []*subject
-	extra     []*subject // carbon compounds named only among the conditions
+	extra     []*subject // substances named only among the conditions, solvents apart
 	claimed   []*molecule.Molecule
 	mentions  []mentioned
 	found     []candidate // transforms that give the claimed product
@@ -128,7 +128,7 @@ func (j *judge) readReagents() {
 				active := !st.Workup && !m.Note && (i == 0 || !quenches(m.Reagent))
 				j.mentions = append(j.mentions, mention(m.Reagent, active))
 			}
-			if mol := mentionMolecule(m); mol != nil && carbons(mol) > 0 {
+			if mol := mentionMolecule(m); mol != nil && !onlySolvent(m.Reagent) {
 				j.extra = append(j.extra, j.b.subject(mol.FreeForm()))
 			}
 		}
@@ -155,6 +155,19 @@ func quenches(r *reagent.Reagent) bool {
 	return false
 }
 
+// onlySolvent says that a reagent does nothing but dissolve or dry.
+func onlySolvent(r *reagent.Reagent) bool {
+	if r == nil {
+		return false
+	}
+	for _, a := range r.Acts {
+		if !passive(a) {
+			return false
+		}
+	}
+	return true
+}
+
 func mentionMolecule(m reagent.Mention) *molecule.Molecule {
 	if m.Reagent == nil {
 		return m.Molecule
@@ -178,7 +191,7 @@ func mention(r *reagent.Reagent, active bool) mentioned {
 	return m
 }
 
-// tryAll runs every transform on the reactants alone, then with the carbon compounds among the conditions.
+// tryAll runs every transform on the reactants alone, then with the substances named among the conditions.
 func (j *judge) tryAll(ctx context.Context) error {
 	pools := [][]*subject{j.reactants}
 	if len(j.extra) > 0 {

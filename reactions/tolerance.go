@@ -36,6 +36,7 @@ type groupLevel struct {
 	group string
 	level level
 	why   string
+	kind  Kind
 }
 
 type sourceTolerance struct {
@@ -45,6 +46,7 @@ type sourceTolerance struct {
 		Name   string            `yaml:"name" need:"name: Grignard reagent in ether"`
 		Groups map[string]string `yaml:"groups"`
 		Why    map[string]string `yaml:"why"`
+		Kinds  map[string]string `yaml:"kinds"` // where the objection is about more than the group: site
 		Source sourceNote        `yaml:"source"`
 	} `yaml:"media"`
 }
@@ -75,7 +77,7 @@ func (l *loader) loadTolerance() {
 			case !l.groups.Has(g):
 				l.errs = append(l.errs, src.Place.Errorf("no group %q in rules/groups.yaml%s", g, didYouMean(g, l.groups.IDs())))
 			case lv != survives:
-				m.groups = append(m.groups, groupLevel{g, lv, src.Why[g]})
+				m.groups = append(m.groups, groupLevel{g, lv, src.Why[g], kindOf(src.Kinds[g])})
 			}
 		}
 		sort.Slice(m.groups, func(i, j int) bool { return m.groups[i].group < m.groups[j].group })
@@ -86,6 +88,14 @@ func (l *loader) loadTolerance() {
 		l.media.media[m.id] = m
 		l.media.order = append(l.media.order, m.id)
 	}
+}
+
+// kindOf reads the kind of an objection; empty means that the group reacts.
+func kindOf(word string) Kind {
+	if word == "" {
+		return KindGroup
+	}
+	return Kind(word)
 }
 
 // objections lists what the media do to the groups of s that do not overlap the atoms marked busy.
@@ -124,7 +134,7 @@ func freeInstances(s *pattern.Subject, group string, busy []bool) int {
 }
 
 func (m *medium) objection(gl groupLevel, name string) Objection {
-	o := Objection{Kind: KindGroup, Source: m.source, Fatal: gl.level >= reacts}
+	o := Objection{Kind: gl.kind, Source: m.source, Fatal: gl.level >= reacts}
 	switch gl.level {
 	case competes:
 		o.Text = fmt.Sprintf("the %s may react too (%s)", name, m.name)
