@@ -153,7 +153,7 @@ const (
 	buildLimit    = 500_000
 	// armWindow is how far behind the best structure so far an arm's best sample may lie for the arm to
 	// be built in full: a sample holds near relatives of every structure of its arm.
-	armWindow = 24
+	armWindow = 20
 )
 
 // arm is a set of blocks with one substitution pattern for each of its ring systems.
