@@ -18,7 +18,7 @@ var pageText string
 var page = template.Must(template.New("sheet").Funcs(template.FuncMap{
 	"add": func(a, b int) int { return a + b }, "grams": grams, "digits": digits, "shown": shown, "cas": casText, "form": formText, "steps": joinInts,
 	"mass": func(c Charge) string { return massText(&c) }, "volume": func(c Charge) string { return volumeText(&c) }, "charge": func(c Charge) string { return chargeName(&c) },
-	"equiv": func(x float64) string { return positive(x, "%.3g") }, "molar": func(c Charge) string { return molarText(&c) }, "mmol": positiveDigits,
+	"equiv": func(x float64) string { return positive(x, "%.3g") }, "molar": func(x float64) string { return positive(x, "%.2f") }, "workup": func(s Step) string { return workupText(&s) }, "mmol": positiveDigits,
 	"stock": stockCells, "have": func(l StockLine) string { return haveText(&l) }, "none": orNone, "pictograms": pictograms,
 	"target": targetText, "comesOut": comesOutText, "yield": yieldText, "unknown": unknownText, "expect": func(s Step) string { return expectText(&s) },
 	"know": func(s Step) []part { return s.knowParts() }, "count": stepCount, "groups": func(s Step) []chargeGroup { return s.groups() },
@@ -45,6 +45,9 @@ type chargeGroup struct {
 func (st *Step) groups() (out []chargeGroup) {
 	role := ""
 	for _, c := range st.Charges {
+		if c.Role == roleWorkup {
+			continue // told in one line
+		}
 		if c.Role != role {
 			role = c.Role
 			out = append(out, chargeGroup{Head: roleHeads[role]})

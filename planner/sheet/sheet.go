@@ -104,8 +104,7 @@ type Step struct {
 	Product                          Compound
 	From                             []Compound
 	Charges                          []Charge
-	Operations                       []string
-	Holds                            []Hold
+	Tasks                            []Task   // operations and hold points in the order of the bench
 	Flags                            []string // stop flags: settle these before anything is charged
 	Hazards                          []string // at most five lines
 	Controls                         []string
@@ -127,8 +126,15 @@ type Step struct {
 	NextNeedsG                       float64 // g that later steps charge, 0 for the last
 }
 
-// Hold is a point where work stops until the question is answered.
-type Hold struct{ Ask, Otherwise string }
+// Task is one numbered operation, or a hold point: work stops until what it says is true.
+type Task struct {
+	Number    int // of the operation, 0 for a hold point
+	Text      string
+	Otherwise string // what to do if a hold point is not met
+}
+
+// Hold reports whether the task is a hold point.
+func (t Task) Hold() bool { return t.Number == 0 }
 
 // Charge is one row of the charge table.
 type Charge struct {

@@ -3,9 +3,7 @@ package sheet
 import (
 	"fmt"
 	"math"
-	"regexp"
 	"slices"
-	"strconv"
 	"strings"
 
 	"shelfward/molecule"
@@ -57,106 +55,6 @@ func (w *writer) step(i int) (Step, error) {
 	w.chargeReagents(&s, set, full)
 	w.do(&s, set, full)
 	return s, w.know(&s, src, set, full)
-}
-
-// do fills the numbered operations and the hold points.
-func (w *writer) do(s *Step, set *reactions.Conditions, full float64) {
-	add := func(format string, args ...any) { s.Operations = append(s.Operations, fmt.Sprintf(format, args...)) }
-	add("%s", setUp(s, set))
-	if set.Order != "" {
-		add("%s", set.Order)
-	} else {
-		add("Charge in the order of the table.")
-	}
-	add("Keep at %s inside for %s (figures %s). Outside the window: stop the feed, cool, wait.", temperatureText(set.Temperature), hoursText(set.Hours), s.ConditionMark)
-	if set.Watch != "" {
-		add("Take a sample. %s", set.Watch)
-	}
-	firstG := full * s.Charges[0].Equiv * s.From[0].MolarMass
-	for _, l := range set.Workup {
-		add("%s", withVolumes(l, firstG))
-	}
-	add("Weigh, label with route, step and date, keep a sample for the spectra.")
-	w.holds(s)
-}
-
-// setUp is the first operation: vessel, condenser, what the room must have.
-func setUp(s *Step, set *reactions.Conditions) string {
-	flask := s.Flask + " flask"
-	if s.Flask == "" {
-		flask = "No bench flask is large enough: split the batch. For each part: flask"
-	}
-	parts := []string{flask, "stirrer", "thermometer in the mixture"}
-	for _, c := range s.Charges {
-		if b := boils(&c); c.Role == roleSolvent && set.Temperature[1] > b-5 {
-			parts = append(parts, fmt.Sprintf("reflux condenser (%s boils at %.0f °C)", c.Name, b))
-			break
-		}
-	}
-	if len(set.Gas) > 0 {
-		parts = append(parts, "open gas outlet")
-	}
-	return "Set up: " + strings.Join(append(parts, set.Needs...), ", ") + "."
-}
-
-// boils is the boiling point of a charge in C, +Inf if it is not known.
-func boils(c *Charge) float64 {
-	if c.Reagent == nil || c.Reagent.BoilsC == nil {
-		return math.Inf(1)
-	}
-	return *c.Reagent.BoilsC
-}
-
-var perGram = regexp.MustCompile(`(\d+(?:\.\d+)?) mL per g of (?:the )?(?:substrate|product|reactant|starting material)`)
-
-// withVolumes writes the volume at this scale behind every '10 mL per g of substrate'.
-func withVolumes(text string, firstG float64) string {
-	return perGram.ReplaceAllStringFunc(text, func(found string) string {
-		x, err := strconv.ParseFloat(perGram.FindStringSubmatch(found)[1], 64)
-		if err != nil {
-			return found
-		}
-		return fmt.Sprintf("%s (here %s)", found, millilitres(x*firstG))
-	})
-}
-
-func (w *writer) holds(s *Step) {
-	add := func(ask, otherwise string) { s.Holds = append(s.Holds, Hold{ask, otherwise}) }
-	at := func(when string) {
-		for i := range w.desk.Guide.Holds {
-			h := &w.desk.Guide.Holds[i]
-			if h.At.Value == when && slices.ContainsFunc(s.Charges, func(c Charge) bool {
-				return c.Role != roleWorkup && !(when == "end" && c.spent()) && does(&c, h.Acts)
-			}) {
-				add(h.Says, h.Otherwise)
-			}
-		}
-	}
-	var limits string
-	for _, c := range s.Charges {
-		if c.Limiting {
-			limits = c.Name
-		}
-	}
-	add("Identity and amount of the limiting material ("+limits+") checked", "do not start")
-	at("start")
-	at("run")
-	add("Conversion complete by the watch lines", "wait one more half of the time, then stop and ask")
-	at("end")
-	if names := peroxideFormers(s.Charges); len(names) > 0 {
-		add("Peroxide strip negative before "+strings.Join(names, ", ")+" is distilled or taken down; a tenth stays behind", "do not distil, do not take down; hand over as peroxide waste")
-	}
-	add(fmt.Sprintf("Product shown to be %s, M = %.2f g/mol (spectra, mass)", s.Product.Formula, s.Product.MolarMass), "keep the batch apart, do not carry it on")
-}
-
-// peroxideFormers lists the charges that form peroxides on standing, each once.
-func peroxideFormers(charges []Charge) (names []string) {
-	for _, c := range charges {
-		if c.Reagent != nil && c.Reagent.Peroxides != "" && !slices.Contains(names, c.Name) {
-			names = append(names, c.Name)
-		}
-	}
-	return names
 }
 
 // know fills the second side of a step.

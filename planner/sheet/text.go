@@ -220,11 +220,12 @@ func (s *Sheet) textStep(p *printer, st *Step) {
 	p.part("DO")
 	textCharges(p, st)
 	p.list("hazard   ", st.Hazards)
-	for i, o := range st.Operations {
-		p.wrap(fmt.Sprintf("%2d [ ]   ", i+1), o)
-	}
-	for _, h := range st.Holds {
-		p.wrap("HOLD [ ] ", h.Ask+". If not: "+h.Otherwise+".")
+	for _, t := range st.Tasks {
+		if t.Hold() {
+			p.wrap("HOLD [ ] ", t.Text+". If not: "+t.Otherwise+".")
+		} else {
+			p.wrap(fmt.Sprintf("%4d [ ] ", t.Number), t.Text)
+		}
 	}
 	p.wrap("yield    ", expectText(st))
 	p.line("record   start ________ end ________ highest temp. ______ colour ________ crude ______ pure ______")
@@ -284,6 +285,9 @@ func textCharges(p *printer, st *Step) {
 	role := ""
 	for i := range st.Charges {
 		c := &st.Charges[i]
+		if c.Role == roleWorkup {
+			continue // told in one line
+		}
 		if c.Role != role {
 			role = c.Role
 			rows = append(rows, []string{roleHeads[role]})
@@ -292,21 +296,35 @@ func textCharges(p *printer, st *Step) {
 		if c.Limiting {
 			mark = "*"
 		}
-		rows = append(rows, []string{mark, chargeName(c), molarText(c), positive(c.Equiv, "%.3g"), positiveDigits(c.Mmol), massText(c), volumeText(c), "________", "______"})
+		rows = append(rows, []string{mark, chargeName(c), positive(c.MolarMass, "%.2f"), positive(c.Equiv, "%.3g"), positiveDigits(c.Mmol), massText(c), volumeText(c), "________", "______"})
 	}
 	p.table(chargeColumns, rows)
+	if text := workupText(st); text != "" {
+		p.wrap("work-up, to need: ", text)
+	}
 	p.line("* limiting.  m = n M / w,  V = m / d or n / c,  w = purity or strength")
 	p.line("")
 }
 
-var roleHeads = map[string]string{roleReactant: "reactants", roleReagent: "reagents", roleCatalyst: "catalysts, initiators", roleSolvent: "solvents", roleWorkup: "work-up"}
+var roleHeads = map[string]string{roleReactant: "reactants", roleReagent: "reagents", roleCatalyst: "catalysts, initiators", roleSolvent: "solvents"}
+
+// workupText lists the work-up materials.
+func workupText(st *Step) string {
+	var names []string
+	for _, c := range st.Charges {
+		if c.Role == roleWorkup {
+			names = append(names, c.Name)
+		}
+	}
+	return strings.Join(names, ", ")
+}
 
 // chargeName is the first cell of a charge: name, number, form, notes.
 func chargeName(c *Charge) string {
 	text := c.Name + casText(c.CAS)
 	if c.FromStep > 0 {
 		text += fmt.Sprintf(", from step %d", c.FromStep)
-	} else if c.Role != roleWorkup {
+	} else {
 		text += formText(c.Form)
 	}
 	if c.IfNeeded {
@@ -332,14 +350,6 @@ func positive(x float64, format string) string {
 	return fmt.Sprintf(format, x)
 }
 
-// molarText leaves out the molar mass of work-up materials: nobody needs it.
-func molarText(c *Charge) string {
-	if c.Role == roleWorkup {
-		return ""
-	}
-	return positive(c.MolarMass, "%.2f")
-}
-
 func positiveDigits(x float64) string {
 	if x <= 0 {
 		return ""
@@ -353,8 +363,6 @@ func massText(c *Charge) string {
 		return grams(c.MassG)
 	case c.VolumeML > 0:
 		return ""
-	case c.Role == roleWorkup:
-		return "to need"
 	}
 	return "unknown"
 }

@@ -127,12 +127,16 @@ func stepJSON(st *sheet.Step) map[string]any {
 		charges = append(charges, map[string]any{"role": c.Role, "name": c.Name, "cas": c.CAS, "form": c.Form, "from_step": c.FromStep, "equivalents": c.Equiv, "mmol": c.Mmol,
 			"mass_g": c.MassG, "volume_ml": c.VolumeML, "hazards": append([]string{}, c.Hazards...), "hazards_known": c.Known, "limiting": c.Limiting})
 	}
-	holds := []any{}
-	for _, h := range st.Holds {
-		holds = append(holds, map[string]any{"ask": h.Ask, "otherwise": h.Otherwise})
+	operations, holds := []string{}, []any{}
+	for _, t := range st.Tasks {
+		if t.Hold() {
+			holds = append(holds, map[string]any{"ask": t.Text, "otherwise": t.Otherwise})
+		} else {
+			operations = append(operations, t.Text)
+		}
 	}
 	lists := func(list []string) []string { return append([]string{}, list...) }
-	return map[string]any{"number": st.Number, "transform": st.Transform, "name": st.Name, "charges": charges, "operations": lists(st.Operations), "holds": holds,
+	return map[string]any{"number": st.Number, "transform": st.Transform, "name": st.Name, "charges": charges, "operations": operations, "holds": holds,
 		"flags": lists(st.Flags), "objections": lists(st.Objections), "origin": st.Origin, "mixture": lists(st.Mixture), "controls": lists(st.Controls), "waste": lists(st.Waste),
 		"crude": lists(st.Crude), "watch": lists(st.Watch), "expected_g": []float64{st.ExpectLowG, st.ExpectG, st.ExpectHighG}, "theory_g": st.TheoryG, "sure_factor": st.SureFactor}
 }
