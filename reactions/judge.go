@@ -91,9 +91,38 @@ func (j *judge) add(m *molecule.Molecule) {
 		if part.NumAtoms() == 1 && isMetal(part.Atom(0).Element) && part.Atom(0).Charge > 0 {
 			continue // the cation of a salt
 		}
-		j.reactants = append(j.reactants, j.b.subject(part.FreeForm()))
+		j.reactants = append(j.reactants, j.b.subject(protonated(part.FreeForm())))
 	}
 	j.reactants = distinct(j.reactants)
+}
+
+// protonated turns a simple inorganic anion alone (hydrogensulfide, azide, chloride) into its acid: the
+// transforms are written in free forms.
+func protonated(m *molecule.Molecule) *molecule.Molecule {
+	if m.Formula().Charge >= 0 || carbons(m) > 0 {
+		return m
+	}
+	b := m.Builder()
+	for i := range b.Atoms {
+		for ; b.Atoms[i].Charge < 0 && !positiveNeighbour(m, i); b.Atoms[i].Charge++ {
+			b.Atoms[i].Hydrogens++
+		}
+	}
+	out, err := b.Build()
+	if err != nil {
+		return m
+	}
+	return out
+}
+
+// positiveNeighbour says that a charge belongs to a charge-separated form, as in azide.
+func positiveNeighbour(m *molecule.Molecule, a int) bool {
+	for _, n := range m.Neighbors(a) {
+		if m.Atom(int(n.Atom)).Charge > 0 {
+			return true
+		}
+	}
+	return false
 }
 
 // addSalts pairs ions by charge: potassium iodide or sodium methoxide among the materials is a reagent,
@@ -129,7 +158,11 @@ func (j *judge) readReagents() {
 				j.mentions = append(j.mentions, mention(m.Reagent, active))
 			}
 			if mol := mentionMolecule(m); mol != nil && !onlySolvent(m.Reagent) {
-				j.extra = append(j.extra, j.b.subject(mol.FreeForm()))
+				for _, part := range mol.Split() {
+					if part.NumAtoms() > 1 || !isMetal(part.Atom(0).Element) {
+						j.extra = append(j.extra, j.b.subject(protonated(part.FreeForm())))
+					}
+				}
 			}
 		}
 	}
@@ -555,6 +588,10 @@ func (j *judge) strongestOther() *candidate {
 func (j *judge) concludeNothing(out *Judgement) {
 	rival := j.strongestOther()
 	switch {
+	case !j.described: // without conditions nothing runs instead
+		out.Verdict = Unknown
+		out.Objections = append(out.Objections, Objection{Kind: KindNoTransform,
+			Text: "no loaded transform leads from these materials to this product"})
 	case rival != nil:
 		out.Verdict = Unsound
 		out.Transforms = []*Transform{rival.t}

@@ -143,7 +143,10 @@ func (m *medium) objection(gl groupLevel, name string) Objection {
 	default:
 		o.Text = fmt.Sprintf("the %s reacts before the wanted group (%s)", name, m.name)
 	}
-	if gl.why != "" {
+	switch {
+	case gl.why != "" && gl.kind != KindGroup:
+		o.Text = gl.why
+	case gl.why != "":
 		o.Text += ": " + gl.why
 	}
 	return o
