@@ -123,13 +123,13 @@ func TestRaise(t *testing.T) {
 }
 
 // TestIntermediates: azides and diazo compounds with six carbons for each group pass with a stop flag,
-// smaller ones do not; peroxides and listed precursors are declined as targets only.
+// smaller ones do not; peroxides are declined as targets only; a listed precursor is not made on the way either.
 func TestIntermediates(t *testing.T) {
 	s := screen(t)
 	for structure, want := range map[string]Outcome{
 		"CCCCCCCCN=[N+]=[N-]": Flagged, "CCCCCN=[N+]=[N-]": Refused, "[N-]=[N+]=NCCCCCCCCN=[N+]=[N-]": Refused, "[N-]=[N+]=NCCCCCCCCCCCCN=[N+]=[N-]": Flagged,
 		"[N-]=[N+]=CC(=O)C1CCCCC1": Flagged, "[N-]=[N+]=CC(C)=O": Refused, "[Na+].[N-]=[N+]=[N-]": Pass, "N=[N+]=[N-]": Pass, "C#N": Pass,
-		"CC(C)(C)OO": Pass, "OC(=O)Cc1ccccc1": Pass, "CCO[N+](=O)[O-]": Refused, "CC(N)Cc1ccccc1": Refused,
+		"CC(C)(C)OO": Pass, "OC(=O)Cc1ccccc1": Refused, "CCO[N+](=O)[O-]": Refused, "CC(N)Cc1ccccc1": Refused,
 	} {
 		v := s.Intermediate(read(t, structure))
 		if v.Outcome != want {

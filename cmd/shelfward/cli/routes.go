@@ -146,7 +146,10 @@ func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan,
 		return app.planFromAny(ctx, j, o)
 	}
 	p, err := route.Make(ctx, j.room.World(), j.target, o)
-	return p, failWith(exitUsage, err)
+	if err != nil {
+		return nil, failWith(exitUsage, err)
+	}
+	return p, app.declineLeftOut(ctx, j, p, o)
 }
 
 // planFromAny keeps the plan of the start whose first route weighs least.

@@ -198,9 +198,9 @@ func (o *runOptions) outline(ctx context.Context, j *job, text string) (outlineJ
 		return out, err
 	}
 	opt.MakeMol, opt.Count = 0, 2
-	p, err := o.app.plan(ctx, &one, opt)
+	p, err := route.Make(ctx, one.room.World(), m, opt)
 	if err != nil {
-		return out, err
+		return out, failWith(exitUsage, err)
 	}
 	for _, r := range p.Routes {
 		line := outlineRouteJSON{Code: r.Code, Steps: []string{}}
@@ -210,7 +210,7 @@ func (o *runOptions) outline(ctx context.Context, j *job, text string) (outlineJ
 		out.Routes = append(out.Routes, line)
 	}
 	if len(p.Routes) == 0 {
-		out.Note = "no route was found"
+		out.Note = strings.Join(append([]string{"no route was found"}, p.Doubts...), ": ")
 	}
 	return out, nil
 }

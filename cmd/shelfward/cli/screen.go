@@ -1,11 +1,15 @@
 package cli
 
 import (
+	"context"
 	"fmt"
 	"io/fs"
+	"time"
 
 	"shelfward/molecule"
 	"shelfward/molecule/restricted"
+	"shelfward/molecule/smiles"
+	"shelfward/planner/route"
 )
 
 // declinedJSON is all that --json prints of a declined target.
@@ -47,6 +51,38 @@ func (app *App) declineProducts(fsys fs.FS, products []*molecule.Molecule) error
 func (app *App) decline(s *restricted.Screen, m *molecule.Molecule) error {
 	if v := s.Target(m); v.Declined() {
 		return app.declined(v)
+	}
+	return nil
+}
+
+// secondLook bounds the search that tells 'no route' from 'no route but through restricted compounds'.
+const secondLook = 5 * time.Second
+
+// declineLeftOut ends with status 4 when a search that left steps out found nothing, and one without the
+// screen finds routes: then every route passes through a restricted intermediate. Of those routes only
+// their number and the class of the intermediate are told.
+func (app *App) declineLeftOut(ctx context.Context, j *job, p *route.Plan, o route.Options) error {
+	if len(p.Routes) > 0 || p.Search.LeftOut == 0 || ctx.Err() != nil {
+		return nil
+	}
+	world := j.room.World()
+	world.Declined = nil
+	o.Time, o.Progress = min(o.Time, secondLook), nil
+	all, err := route.Make(ctx, world, j.target, o)
+	if err != nil {
+		return failWith(exitUsage, err)
+	}
+	for _, r := range all.Routes {
+		for _, s := range r.Steps {
+			m, err := smiles.Read(s.Product)
+			if err != nil {
+				return err
+			}
+			if v := j.room.Restricted.Intermediate(m); v.Declined() {
+				v.Text = fmt.Sprintf("No route is shown. %s Class: %s. The official list is published by %s.", j.room.Restricted.LeftOut(len(all.Routes)), v.Class, v.Publisher)
+				return app.declined(v)
+			}
+		}
 	}
 	return nil
 }
