@@ -412,14 +412,14 @@ func mancudeBonds(u *unit, order []int) error {
 		return errDouble
 	}
 	k := &mancude{next: make([]positions, n)}
-	for i, e := range s.elements {
-		if e != 8 && e != 16 && e != 34 && e != 52 {
-			k.capable |= 1 << uint(i)
-		}
-	}
 	for _, x := range s.bonds {
 		k.next[x[0]] |= 1 << uint(x[1])
 		k.next[x[1]] |= 1 << uint(x[0])
+	}
+	for i, e := range s.elements {
+		if k.next[i].size() < normalValence(e) {
+			k.capable |= 1 << uint(i)
+		}
 	}
 	saturated, err := u.saturatedPositions(k)
 	if err != nil {

@@ -34,6 +34,10 @@ func (w *writer) mancudeOf(s *ringSystem) *mancude {
 		switch w.element(a) {
 		case 8, 16, 34, 52:
 			continue
+		case 7, 15, 33, 5:
+			if w.ringDegree(a) > 2 && w.plain(a) {
+				continue
+			}
 		}
 		k.capable |= 1 << uint(i)
 	}

@@ -159,22 +159,7 @@ var heteroOrder = []molecule.Element{8, 16, 34, 52, 7, 15, 33, 14, 32, 50, 5}
 
 // heteroKey is compared to find the numbering with low locants for heteroatoms: all together, then
 // in order of seniority.
-func (w *writer) heteroKey(order []int32) []int {
-	var all, each []int
-	for i, a := range order {
-		if w.element(a) != 6 {
-			all = append(all, i)
-		}
-	}
-	for _, e := range heteroOrder {
-		for i, a := range order {
-			if w.element(a) == e {
-				each = append(each, i)
-			}
-		}
-	}
-	return append(all, each...)
-}
+func (w *writer) heteroKey(order []int32) []int { return heteroKeyOf(order, w.element) }
 
 // lowestOrders keeps the numberings with the least key.
 func lowestOrders(orders [][]int32, key func([]int32) []int) [][]int32 {
