@@ -8,6 +8,7 @@ import (
 	"sort"
 
 	"shelfward/molecule"
+	"shelfward/molecule/name"
 	"shelfward/molecule/restricted"
 	"shelfward/molecule/smiles"
 	"shelfward/planner/route"
@@ -46,7 +47,7 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 	if r.Book, err = reactions.Load(fsys); err != nil {
 		return nil, err
 	}
-	known := &shelf.Known{Reagents: r.Reagents, Hazards: r.Hazards}
+	known := &shelf.Known{Reagents: r.Reagents, Hazards: r.Hazards, Structure: readName, Name: systematicName}
 	if r.Shelf, err = shelf.Load(fsys, shelfFiles, dir, known); err != nil {
 		return nil, err
 	}
@@ -82,7 +83,23 @@ func (r *Room) Desk() *sheet.Desk {
 		Name: r.Name, Read: smiles.Read}
 }
 
-// Name returns a name of m from the shelf or the list of reagents, "" if none is known.
+// readName reads a systematic name.
+func readName(text string) (*molecule.Molecule, bool) {
+	m, err := name.Read(text)
+	return m, err == nil
+}
+
+// systematicName writes the name of a constitution; a molecule with stereo marks has none here, since a
+// name without them would say less than the structure.
+func systematicName(m *molecule.Molecule) string {
+	if len(m.Centers())+len(m.DoubleBonds()) > 0 {
+		return ""
+	}
+	return name.Of(m)
+}
+
+// Name returns a name of m from the shelf or the list of reagents, or its systematic name; "" if none is
+// known.
 func (r *Room) Name(m *molecule.Molecule) string {
 	for _, it := range r.Shelf.Find(m) {
 		if it.Name != "" && it.Molecule.Key() == m.Key() {
@@ -92,7 +109,7 @@ func (r *Room) Name(m *molecule.Molecule) string {
 	if re, ok := r.Reagents.ByExact(m); ok {
 		return re.Name
 	}
-	return ""
+	return systematicName(m)
 }
 
 // stock answers route.Materials from the shelf first, then from the list of reagents.
