@@ -7,6 +7,7 @@ import (
 	"sort"
 	"strings"
 
+	"shelfward/molecule"
 	"shelfward/planner/search"
 	"shelfward/reactions"
 )
@@ -129,7 +130,7 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 	out := Step{Number: number[m.key], Transform: s.Transform.ID, Name: s.Transform.Name, Conditions: set.ID,
 		Together: []string{}, Reactants: []string{}, ReactantNames: []string{}, Equivalents: []float64{}, MadeBy: []int{},
 		Product: w.Write(s.Product), ProductName: w.Name(s.Product), ProductFormula: s.Product.Formula().String(), Molecule: s.Product,
-		Byproducts: []string{}, Reagents: []string{}, Solvents: []string{}, Hazards: []string{}, Cautions: []string{}, Objections: []Objection{},
+		Byproducts: []string{}, ByproductNames: []string{}, Reagents: []string{}, Solvents: []string{}, Hazards: []string{}, Cautions: []string{}, Objections: []Objection{},
 		Temperature: Span{set.Temperature[0], set.Temperature[1]}, Time: Span{set.Hours[0], set.Hours[1]},
 		Share: s.Share.String(), Yield: Range(y).tidy(), Origin: set.Origin, Racemic: s.Racemic, Source: set.Source, Judged: s, Set: set}
 	if out.Origin == "" {
@@ -157,6 +158,7 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 	}
 	for _, b := range s.Byproducts {
 		out.Byproducts = append(out.Byproducts, w.Write(b.Molecule))
+		out.ByproductNames = append(out.ByproductNames, w.called(b.Molecule))
 	}
 	for _, g := range set.Reagents {
 		out.Reagents = append(out.Reagents, g.Name)
@@ -287,4 +289,12 @@ func (r *Route) stereoDoubt(c *chemistry, p *Plan, add func(string, ...any)) {
 			return
 		}
 	}
+}
+
+// called is the name of a molecule, or its formula where it has none: metal salts and the like.
+func (w *World) called(m *molecule.Molecule) string {
+	if name := w.Name(m); name != "" {
+		return name
+	}
+	return m.Formula().String()
 }

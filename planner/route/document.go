@@ -40,6 +40,7 @@ type Step struct {
 	ProductName    string      `json:"product_name"`
 	ProductFormula string      `json:"product_formula"`
 	Byproducts     []string    `json:"byproducts"`
+	ByproductNames []string    `json:"byproduct_names"` // or formulas
 	Reagents       []string    `json:"reagents"`
 	Solvents       []string    `json:"solvents"`
 	Temperature    Span        `json:"temperature"`

@@ -216,7 +216,7 @@ func (s *Step) write(t *writer) {
 	t.line("     %s; %s, %s", s.with(), span(s.Temperature, "C"), span(s.Time, "h"))
 	t.line("     yield %s %% (%s)", Percent(s.Yield), letters[s.Origin])
 	if len(s.Byproducts) > 0 {
-		t.line("     sets free: %s", strings.Join(s.Byproducts, ", "))
+		t.line("     sets free: %s", strings.Join(s.ByproductNames, ", "))
 	}
 	if len(s.Hazards) > 0 {
 		t.line("     hazards charged: %s", strings.Join(s.Hazards[:min(len(s.Hazards), 8)], " "))
