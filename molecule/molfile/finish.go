@@ -22,8 +22,9 @@ func (b *block) finish() (*Record, error) {
 		return nil, b.buildError(err, to)
 	}
 	b.record.Molecule = m
-	b.record.Coordinates = b.points
-	if to != nil {
+	if b.record.Coordinates = b.points; b.undrawn() {
+		b.record.Coordinates = nil
+	} else if to != nil {
 		b.record.Coordinates = make([]Point, m.NumAtoms())
 		for old, n := range to {
 			if n >= 0 {
@@ -32,11 +33,23 @@ func (b *block) finish() (*Record, error) {
 		}
 	}
 	if spare := m.FoldSpareHydrogens(); spare != m {
-		b.record.Coordinates = keepHeavy(m, b.record.Coordinates, spare.NumAtoms())
+		if b.record.Coordinates != nil {
+			b.record.Coordinates = keepHeavy(m, b.record.Coordinates, spare.NumAtoms())
+		}
 		b.record.Molecule = spare
 	}
 	b.record.Molecule = b.record.Molecule.SeparateCharges()
 	return &b.record, nil
+}
+
+// undrawn says that all atoms lie in one place: the file has no coordinates.
+func (b *block) undrawn() bool {
+	for _, p := range b.points {
+		if p != (Point{}) {
+			return false
+		}
+	}
+	return true
 }
 
 // keepHeavy drops the coordinates of hydrogens that were folded late.
@@ -55,11 +68,13 @@ func keepHeavy(m *molecule.Molecule, points []Point, left int) []Point {
 
 // setHydrogens fixes the counts that are not to be filled: given valences, radicals, metals.
 func (b *block) setHydrogens() {
-	sum := make([]int, len(b.b.Atoms))
+	sum, aromatic := make([]int, len(b.b.Atoms)), make([]int, len(b.b.Atoms))
 	for _, x := range b.b.Bonds {
 		order := int(x.Order)
 		if x.Order == molecule.OrderAromatic {
 			order = 1
+			aromatic[x.A]++
+			aromatic[x.B]++
 		}
 		sum[x.A] += order
 		sum[x.B] += order
@@ -70,7 +85,7 @@ func (b *block) setHydrogens() {
 		case v == 15 || x.Element.IsMetal() || x.Element == 0 || x.Element == 1:
 			x.Hydrogens = 0
 		case v > 0:
-			x.Hydrogens = uint8(max(0, v-sum[a]))
+			x.Hydrogens = uint8(max(0, v-sum[a]-aromatic[a]/2)) // an aromatic bond counts as one and a half
 		case b.radical[a] > 0:
 			x.Hydrogens = uint8(max(0, int(molecule.FilledHydrogens(*x, sum[a]))-b.radical[a]))
 		}

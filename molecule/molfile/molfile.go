@@ -1,7 +1,7 @@
-// Package molfile reads and writes V2000 molfiles and SD files, and reads V2000 reaction files
+// Package molfile reads and writes molfiles, SD files and reaction files in the forms V2000 and V3000
 // (BIOVIA, CTfile Formats). Records are streamed; an error names record and line, and reading goes
 // on with the next record. Stereo comes from wedges and 2D or 3D coordinates, or from atom parities
-// where all coordinates are zero. V3000 files and query atoms or bonds are refused with a message.
+// where all coordinates are zero. Query atoms or bonds are refused with a message.
 package molfile
 
 import (
@@ -23,8 +23,9 @@ type Record struct {
 	Line        int // line of the file where the record starts, from 1
 	Title       string
 	Molecule    *molecule.Molecule
-	Coordinates []Point // one per atom of Molecule
+	Coordinates []Point // one per atom of Molecule; nil where the file has none
 	Fields      []Field // in file order; empty for a plain molfile
+	Relative    bool    // a V3000 group says that the centres are known relative to each other only
 }
 
 // Field returns the value of the first field with the name, and whether there is one.

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"os"
 	"strings"
 	"testing"
 
@@ -143,7 +144,7 @@ func TestErrorsAndRecovery(t *testing.T) {
 		line          int // inside the record
 	}{
 		{"x\n\n\nnonsense\n", "counts of atoms", 4},
-		{"x\n\n\n  1  0  0  0  0  0  0  0  0  0999 V3000\n", "V3000", 4},
+		{"x\n\n\n  1  0  0  0  0  0  0  0  0  0999 V3000\n", "BEGIN CTAB", 5},
 		{"x\n\n\n  2  1  0\n" + row(0, 0, 0, "C", "") + row(0, 0, 0, "C", "") + "  1  3  1  0\nM  END\n", "names atom 3", 7},
 		{"x\n\n\n  2  1  0\n" + row(0, 0, 0, "C", "") + row(0, 0, 0, "C", "") + "  1  2  8  0\nM  END\n", "bond type 8", 7},
 		{"x\n\n\n  1  0  0\n" + row(0, 0, 0, "Xx", "") + "M  END\n", "element symbol", 5},
@@ -245,7 +246,7 @@ func TestReadReaction(t *testing.T) {
 		t.Errorf("read %+v", r)
 	}
 	for _, c := range []struct{ text, message string }{
-		{"", "$RXN"}, {"$RXN V3000\n", "V3000"}, {"$RXN\n\n\n\n  x  1\n", "counts"}, {"$RXN\n\n\n\n  1  1\n" + part, "$MOL"}, {methane, "expected $RXN"},
+		{"", "$RXN"}, {"$RXN V3000\n\n\n\n", "COUNTS"}, {"$RXN\n\n\n\n  x  1\n", "counts"}, {"$RXN\n\n\n\n  1  1\n" + part, "$MOL"}, {methane, "expected $RXN"},
 	} {
 		if _, err := ReadReaction(strings.NewReader(c.text)); err == nil || !strings.Contains(err.Error(), c.message) {
 			t.Errorf("%q: %v, want %q", c.text, err, c.message)
@@ -257,6 +258,13 @@ func FuzzReader(f *testing.F) {
 	f.Add(methane + "$$$$\n" + star("I", 1))
 	f.Add(star("H", 6) + "> <A>\nb\n$$$$\n")
 	f.Add("$RXN\n\n\n\n  1  1\n$MOL\n" + methane)
+	for _, path := range []string{"testdata/reference.sdf", "testdata/reference_3.rxn"} {
+		text, err := os.ReadFile(path)
+		if err != nil {
+			f.Fatal(err)
+		}
+		f.Add(string(text[:min(len(text), 12_000)]))
+	}
 	f.Fuzz(func(t *testing.T, text string) {
 		r := NewReader(strings.NewReader(text))
 		for n := 0; n < 1000; n++ {

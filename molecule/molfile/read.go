@@ -158,7 +158,10 @@ func (b *block) read() error {
 		return err
 	}
 	if strings.Contains(counts, "V3000") {
-		return b.fail("a V3000 table; only V2000 is read, most programs can save as that")
+		if err := b.table3(); err != nil {
+			return err
+		}
+		return b.properties()
 	}
 	atoms, ok1 := column(counts, 0, 3)
 	bonds, ok2 := column(counts, 3, 6)
@@ -220,23 +223,8 @@ func (b *block) atom() error {
 		*v = x
 	}
 	a := molecule.Atom{Hydrogens: molecule.AutoHydrogens}
-	symbol := strings.TrimSpace(s[31:min(34, len(s))])
-	switch {
-	case symbol == "D", symbol == "T":
-		a.Element, a.Isotope = 1, 2
-		if symbol == "T" {
-			a.Isotope = 3
-		}
-	case symbol == "*", symbol == "A", strings.HasPrefix(symbol, "R"):
-		if e, ok := molecule.ElementBySymbol(symbol); ok {
-			a.Element = e // Rb, Ru, Rh, Re, Ra, Rn
-		}
-	default:
-		e, ok := molecule.ElementBySymbol(symbol)
-		if !ok {
-			return b.fail("expected an element symbol in columns 32-34, found %q", symbol)
-		}
-		a.Element = e
+	if err := b.symbol(&a, strings.TrimSpace(s[31:min(34, len(s))])); err != nil {
+		return err
 	}
 	var n [6]int
 	for i, c := range []int{34, 36, 39, 48, 60, 42} { // mass difference, charge, parity, valence, class, hydrogen count
@@ -269,6 +257,28 @@ func (b *block) atom() error {
 	return nil
 }
 
+// symbol sets the element of a, and the isotope for D and T; a place holder is the unknown atom.
+func (b *block) symbol(a *molecule.Atom, symbol string) error {
+	switch {
+	case symbol == "D", symbol == "T":
+		a.Element, a.Isotope = 1, 2
+		if symbol == "T" {
+			a.Isotope = 3
+		}
+	case symbol == "*", symbol == "A", strings.HasPrefix(symbol, "R"):
+		if e, ok := molecule.ElementBySymbol(symbol); ok {
+			a.Element = e // Rb, Ru, Rh, Re, Ra, Rn
+		}
+	default:
+		e, ok := molecule.ElementBySymbol(symbol)
+		if !ok {
+			return b.fail("expected an element symbol, found %q", clip(symbol))
+		}
+		a.Element = e
+	}
+	return nil
+}
+
 // commonMass is the nearest whole mass of the most abundant isotope.
 func commonMass(e molecule.Element) int { return int(e.MonoisotopicMassDa() + 0.5) }
 
@@ -290,17 +300,24 @@ func (b *block) bond() error {
 			return b.fail("a bond names atom %d; the structure has atoms 1 to %d", a, len(b.b.Atoms))
 		}
 	}
-	order := uint8(n[2])
-	switch n[2] {
-	case 1, 2, 3:
-	case 4:
-		order = molecule.OrderAromatic
-	default:
-		return b.fail("bond type %d; expected 1, 2, 3 or 4 (aromatic)", n[2])
+	order, err := b.order(n[2])
+	if err != nil {
+		return err
 	}
 	b.b.AddBond(n[0]-1, n[1]-1, order)
 	b.stereo = append(b.stereo, n[3])
 	return nil
+}
+
+// order translates a bond type.
+func (b *block) order(kind int) (uint8, error) {
+	switch kind {
+	case 1, 2, 3:
+		return uint8(kind), nil
+	case 4:
+		return molecule.OrderAromatic, nil
+	}
+	return 0, b.fail("bond type %d; expected 1, 2, 3 or 4 (aromatic)", kind)
 }
 
 // properties reads the lines up to M  END.

@@ -217,13 +217,22 @@ func (g *geometry) wavy(a int32) bool {
 	return false
 }
 
+// beside returns a ligand of the double bond end a, a hydrogen only where it is the only one.
 func (g *geometry) beside(a, partner int32) (int32, bool) {
+	hydrogen := int32(-1)
 	for _, nb := range g.nbs[a] {
-		if nb.Atom != partner && g.b.Bonds[nb.Bond].Order == 1 {
+		if nb.Atom == partner || g.b.Bonds[nb.Bond].Order != 1 {
+			continue
+		}
+		if x := g.b.Atoms[nb.Atom]; x.Element != 1 || x.Isotope != 0 {
 			return nb.Atom, true
 		}
+		if hydrogen >= 0 {
+			return 0, false // two hydrogens
+		}
+		hydrogen = nb.Atom
 	}
-	return 0, false
+	return hydrogen, hydrogen >= 0
 }
 
 // sameSide says whether p (at a) and q (at b) lie on one side of the line a-b: 1, -1, or 0 where

@@ -16,38 +16,52 @@ const maxV2000 = 999
 // maxCoordinate is the largest number that fits its ten columns with a sign and four decimals.
 const maxCoordinate = 9999.0
 
-// Write writes r as one molfile, without fields. Coordinates must be nil (all zero then, tetrahedral
-// marks as parities, double bond marks lost) or one point per atom in a plane; acyclic double bonds
-// drawn against their marks are turned over. Writing fails on structures above 999 atoms or bonds.
+// Write writes r as one molfile, without fields: V2000, or V3000 where there are more than 999 atoms
+// or bonds. Coordinates must be nil (all zero then, tetrahedral marks as parities, double bond marks
+// lost) or one point per atom. In a plane, acyclic double bonds drawn against their marks are turned
+// over, and wedges are placed; in space the places speak for themselves.
 func Write(w io.Writer, r *Record) error {
-	m := r.Molecule
-	if m.NumAtoms() > maxV2000 || m.NumBonds() > maxV2000 {
-		return fmt.Errorf("%d atoms and %d bonds; a V2000 molfile holds at most %d of each", m.NumAtoms(), m.NumBonds(), maxV2000)
+	if m := r.Molecule; m.NumAtoms() > maxV2000 || m.NumBonds() > maxV2000 {
+		return WriteV3000(w, r)
 	}
-	t := &table{m: m, points: make([]Point, m.NumAtoms()), stereo: make([]int, m.NumBonds()), from: make([]int32, m.NumBonds())}
-	if r.Coordinates != nil {
-		if len(r.Coordinates) != m.NumAtoms() {
-			return fmt.Errorf("%d points for %d atoms", len(r.Coordinates), m.NumAtoms())
-		}
-		for a, p := range r.Coordinates {
-			if max(math.Abs(p.X), math.Abs(p.Y), math.Abs(p.Z)) >= maxCoordinate {
-				return fmt.Errorf("atom %d lies at %g, %g, %g; a molfile holds coordinates below %g", a+1, p.X, p.Y, p.Z, maxCoordinate)
-			}
-		}
-		copy(t.points, r.Coordinates)
-		t.drawn = true
-		t.turnDoubleBonds()
-	}
-	for i := range t.from {
-		t.from[i] = m.Bond(i).A
-	}
-	if t.drawn {
-		t.markDoubleBonds()
-		t.placeWedges()
+	t, err := newTable(r)
+	if err != nil {
+		return err
 	}
 	out := bufio.NewWriter(w)
 	t.write(out, oneLine(r.Title))
 	return out.Flush()
+}
+
+// newTable places wedges and marks.
+func newTable(r *Record) (*table, error) {
+	m := r.Molecule
+	t := &table{m: m, points: make([]Point, m.NumAtoms()), stereo: make([]int, m.NumBonds()), from: make([]int32, m.NumBonds())}
+	for i := range t.from {
+		t.from[i] = m.Bond(i).A
+	}
+	if r.Coordinates == nil {
+		return t, nil
+	}
+	if len(r.Coordinates) != m.NumAtoms() {
+		return nil, fmt.Errorf("%d points for %d atoms", len(r.Coordinates), m.NumAtoms())
+	}
+	for a, p := range r.Coordinates {
+		if max(math.Abs(p.X), math.Abs(p.Y), math.Abs(p.Z)) >= maxCoordinate {
+			return nil, fmt.Errorf("atom %d lies at %g, %g, %g; a molfile holds coordinates below %g", a+1, p.X, p.Y, p.Z, maxCoordinate)
+		}
+		t.solid = t.solid || p.Z != 0
+	}
+	copy(t.points, r.Coordinates)
+	t.drawn = true
+	if !t.solid {
+		t.turnDoubleBonds()
+	}
+	t.markDoubleBonds()
+	if !t.solid {
+		t.placeWedges()
+	}
+	return t, nil
 }
 
 // WriteSD writes r as one record of an SD file, fields and $$$$ included.
@@ -89,23 +103,15 @@ type table struct {
 	m      *molecule.Molecule
 	points []Point
 	drawn  bool
+	solid  bool    // drawn in space
 	stereo []int   // per bond
 	from   []int32 // bond -> atom written first
 }
 
 func (t *table) write(out *bufio.Writer, title string) {
 	m := t.m
-	chiral := 0
-	if len(m.Centers()) > 0 {
-		chiral = 1
-	}
-	fmt.Fprintf(out, "%s\n  shelfward%s\n\n%3d%3d  0  0%3d  0  0  0  0  0999 V2000\n", title, t.dimension(), m.NumAtoms(), m.NumBonds(), chiral)
-	parity := make([]int, m.NumAtoms())
-	if !t.drawn {
-		for _, c := range m.Centers() {
-			parity[c.Atom] = parityOf(c)
-		}
-	}
+	fmt.Fprintf(out, "%s\n  shelfward%s\n\n%3d%3d  0  0%3d  0  0  0  0  0999 V2000\n", title, t.dimension(), m.NumAtoms(), m.NumBonds(), t.chiral())
+	parity := t.parities()
 	for a := range m.NumAtoms() {
 		x, p := m.Atom(a), t.points[a]
 		symbol := x.Element.Symbol()
@@ -121,9 +127,31 @@ func (t *table) write(out *bufio.Writer, title string) {
 	fmt.Fprintln(out, "M  END")
 }
 
+// chiral is the flag of the counts line: 1 where the marks are meant as they stand.
+func (t *table) chiral() int {
+	if len(t.m.Centers()) > 0 {
+		return 1
+	}
+	return 0
+}
+
+// parities returns the parity of each atom, where no drawing tells it.
+func (t *table) parities() []int {
+	parity := make([]int, t.m.NumAtoms())
+	if !t.drawn {
+		for _, c := range t.m.Centers() {
+			parity[c.Atom] = parityOf(c)
+		}
+	}
+	return parity
+}
+
 // dimension pads the program line so that the dimension code stands in columns 21-22; the date
 // before it is left blank, because equal input gives equal bytes.
 func (t *table) dimension() string {
+	if t.solid {
+		return "         3D"
+	}
 	if t.drawn {
 		return "         2D"
 	}
