@@ -1,0 +1,104 @@
+package reactions
+
+import (
+	"strings"
+
+	"shelfward/reactions/reagent"
+)
+
+// match compares a condition set with the description: every reagent that is not optional must be
+// there, by name or by what it does; what else is there and active stays unexplained.
+func (j *judge) match(t *Transform, c *Conditions) candidate {
+	s := candidate{t: t, c: c, matched: true}
+	if !j.described {
+		return s
+	}
+	explained := make([]bool, len(j.mentions))
+	for _, ch := range c.Reagents {
+		hit := false
+		for i := range j.mentions {
+			if j.serves(&j.mentions[i], ch) {
+				hit, explained[i] = true, true
+			}
+		}
+		if hit && !ch.Optional {
+			s.served++
+		}
+		if !hit && !ch.Optional {
+			s.missing = append(s.missing, ch.Name)
+		}
+	}
+	for _, sol := range c.Solvents {
+		for i := range j.mentions {
+			if r := j.find(sol.Name); r != nil && r == j.mentions[i].r {
+				explained[i] = true
+			}
+		}
+	}
+	for _, name := range c.WorkupMaterials {
+		for i := range j.mentions {
+			if r := j.find(name); r != nil && r == j.mentions[i].r {
+				explained[i] = true
+			}
+		}
+	}
+	for i, m := range j.mentions {
+		if m.active && !explained[i] {
+			s.unexplained = append(s.unexplained, m.r.Name)
+		}
+	}
+	s.matched = len(s.missing) == 0 && j.factsAllow(c, &s)
+	return s
+}
+
+func (j *judge) find(name string) *reagent.Reagent {
+	if j.table == nil {
+		return nil
+	}
+	r, known := j.names[name]
+	if !known {
+		r, _ = j.table.Named(name)
+		j.names[name] = r
+	}
+	return r
+}
+
+// serves says whether a mentioned substance can stand for a charge of the condition set.
+func (j *judge) serves(m *mentioned, ch Charge) bool {
+	r := j.find(ch.Name)
+	if r != nil && r == m.r {
+		return true
+	}
+	for _, act := range ch.Like {
+		if m.acts[act] {
+			return true
+		}
+	}
+	if len(ch.Like) > 0 || r == nil {
+		return false
+	}
+	for _, act := range r.Acts { // no list of like acts: the leading act decides
+		return !passive(act) && m.acts[act]
+	}
+	return false
+}
+
+// factsAllow looks at heat, cold, light and the like.
+func (j *judge) factsAllow(c *Conditions, s *candidate) bool {
+	for _, f := range c.NeverWith {
+		if j.with.Has(f) {
+			s.missing = append(s.missing, "not "+f)
+			return false
+		}
+	}
+	if len(c.OnlyWith) == 0 {
+		return true
+	}
+	for _, f := range c.OnlyWith {
+		if j.with.Has(f) {
+			return true
+		}
+	}
+	s.missing = append(s.missing, strings.Join(c.OnlyWith, " or "))
+	return false
+}
