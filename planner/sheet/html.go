@@ -21,7 +21,7 @@ var page = template.Must(template.New("sheet").Funcs(template.FuncMap{
 	"equiv": func(x float64) string { return positive(x, "%.3g") }, "molar": func(x float64) string { return positive(x, "%.2f") }, "workup": func(s Step) string { return workupText(&s) }, "mmol": positiveDigits,
 	"stock": stockCells, "have": func(l StockLine) string { return haveText(&l) }, "none": orNone, "pictograms": pictograms,
 	"target": targetText, "comesOut": comesOutText, "yield": yieldText, "unknown": unknownText, "expect": func(s Step) string { return expectText(&s) },
-	"know": func(s Step) []part { return s.knowParts() }, "count": stepCount, "groups": func(s Step) []chargeGroup { return s.groups() },
+	"know": func(s Step) []part { return s.knowParts() }, "count": stepCount, "charges": func(s Step) []Charge { return s.inFlask() },
 	"drawing": func(c Compound, widthMM, heightMM float64) template.HTML { return drawing(c, widthMM, heightMM) },
 }).Parse(pageText))
 
@@ -36,23 +36,12 @@ func stockCells(l StockLine) []string {
 	return []string{mass, volume, sure}
 }
 
-// chargeGroup is a run of charges with the same role.
-type chargeGroup struct {
-	Head    string
-	Charges []Charge
-}
-
-func (st *Step) groups() (out []chargeGroup) {
-	role := ""
+// inFlask are the charges of the table; work-up materials are told in one line.
+func (st *Step) inFlask() (out []Charge) {
 	for _, c := range st.Charges {
-		if c.Role == roleWorkup {
-			continue // told in one line
+		if c.Role != roleWorkup {
+			out = append(out, c)
 		}
-		if c.Role != role {
-			role = c.Role
-			out = append(out, chargeGroup{Head: roleHeads[role]})
-		}
-		out[len(out)-1].Charges = append(out[len(out)-1].Charges, c)
 	}
 	return out
 }

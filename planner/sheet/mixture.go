@@ -134,7 +134,7 @@ func (w *writer) strangers(i int) (list []hazard.Substance, where map[string]str
 			continue
 		}
 		for _, c := range w.out.Steps[k].Charges {
-			if c.FromStep == 0 && (c.Role == roleWorkup || c.Role == roleReagent || c.Role == roleCatalyst) {
+			if c.FromStep == 0 && !isWater(&c) && (c.Role == roleWorkup || c.Role == roleReagent || c.Role == roleCatalyst) {
 				add(hazard.Substance{Name: c.Name, Reagent: c.Reagent, Molecule: c.Molecule}, fmt.Sprintf("step %d", w.out.Steps[k].Number))
 			}
 		}

@@ -90,6 +90,7 @@ type StockLine struct {
 	OnShelf         bool
 	Water           bool // from the tap or the still, never bought
 	ByVolume        bool // a solution or a gas: measured in mL
+	Start           bool // gives carbon to a product: worth making if it runs short
 
 	molarMass float64
 	material  *route.Material

@@ -35,7 +35,7 @@ func (w *writer) stock() {
 }
 
 func newStockLine(c *Charge) StockLine {
-	line := StockLine{Name: c.Name, CAS: c.CAS, Form: c.Form, HaveG: math.NaN(), HaveML: math.NaN(), ByVolume: c.byVolume(), Water: isWater(c), material: c.material}
+	line := StockLine{Name: c.Name, CAS: c.CAS, Form: c.Form, HaveG: math.NaN(), HaveML: math.NaN(), ByVolume: c.byVolume(), Start: c.Role == roleReactant, Water: isWater(c), material: c.material}
 	if line.Water {
 		line.Form = ""
 	}
@@ -80,7 +80,7 @@ func (w *writer) compare(l *StockLine) {
 	text := fmt.Sprintf("%s: short by %s: %s of target with what is there (%s%s needed, the shelf has %s)", l.Name, l.Short,
 		shortly(w.out.MakeG*have/needs, false), write(needs), formOf(l.Form), write(have))
 	text += "; or buy"
-	if from := w.makeFrom(l); from != "" {
+	if from := w.makeFrom(l); l.Start && from != "" {
 		text += ", or make it from " + from
 	}
 	w.doubt("%s.", text)
@@ -88,11 +88,13 @@ func (w *writer) compare(l *StockLine) {
 
 // shortly writes an amount with two significant digits.
 func shortly(x float64, volume bool) string {
-	unit := "g"
+	unit, large := "g", "kg"
 	if volume {
-		unit = "mL"
+		unit, large = "mL", "L"
 	}
 	switch {
+	case x >= 995:
+		return fmt.Sprintf("%.1f %s", x/1000, large)
 	case x < 0.1:
 		return fmt.Sprintf("%.2g m%s", x*1000, unit)
 	case x < 9.95:

@@ -283,11 +283,7 @@ var chargeColumns = []column{{"", 1, false}, {"material, as supplied", 37, false
 func textCharges(p *printer, st *Step) {
 	var rows [][]string
 	role := ""
-	for i := range st.Charges {
-		c := &st.Charges[i]
-		if c.Role == roleWorkup {
-			continue // told in one line
-		}
+	for _, c := range st.inFlask() {
 		if c.Role != role {
 			role = c.Role
 			rows = append(rows, []string{roleHeads[role]})
@@ -296,11 +292,11 @@ func textCharges(p *printer, st *Step) {
 		if c.Limiting {
 			mark = "*"
 		}
-		rows = append(rows, []string{mark, chargeName(c), positive(c.MolarMass, "%.2f"), positive(c.Equiv, "%.3g"), positiveDigits(c.Mmol), massText(c), volumeText(c), "________", "______"})
+		rows = append(rows, []string{mark, chargeName(&c), positive(c.MolarMass, "%.2f"), positive(c.Equiv, "%.3g"), positiveDigits(c.Mmol), massText(&c), volumeText(&c), "________", "______"})
 	}
 	p.table(chargeColumns, rows)
 	if text := workupText(st); text != "" {
-		p.wrap("work-up, to need: ", text)
+		p.wrap("work-up, as needed: ", text)
 	}
 	p.line("* limiting.  m = n M / w,  V = m / d or n / c,  w = purity or strength")
 	p.line("")
