@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"slices"
 	"sync"
+	"time"
 
 	"shelfward/molecule"
 	"shelfward/molecule/isomer"
@@ -143,7 +144,7 @@ const (
 	// builds up to perArmLimit of the arms that looked best. buildLimit bounds all structures scored.
 	// Values of ours: a pass over the usual number of arms takes a few seconds.
 	sampleSize  = 120
-	sampleReach = 4_000
+	sampleReach = 3_000
 	maxArms     = 260
 	// patternStep puts the later substitution patterns of a set behind the first ones of the next sets;
 	// siblingBehind is where patterns that were not sampled stand behind the best sample of their set.
@@ -177,11 +178,13 @@ func (s *searcher) assemble(ctx context.Context, f *molecule.Formula) (full, fou
 	c := &composer{lib: lib, d: s.d, target: target, unsat: int(f.Unsaturation())}
 	arms := armsOf(c.compositions())
 	found = len(arms)
+	sampling, cancel := samplingContext(ctx)
+	defer cancel()
 	for i := range arms[:min(found, maxArms)] {
-		if ctx.Err() != nil {
-			break
+		if sampling.Err() != nil {
+			break // the likeliest sets come first; the rest of the time is for building
 		}
-		if err := s.sampleArm(ctx, f, &arms[i]); err != nil {
+		if err := s.sampleArm(sampling, f, &arms[i]); err != nil {
 			return 0, found, err
 		}
 		arms[i].comp.best = min(arms[i].comp.best, arms[i].best)
@@ -207,6 +210,16 @@ func (s *searcher) assemble(ctx context.Context, f *molecule.Formula) (full, fou
 		}
 	}
 	return full, found, nil
+}
+
+// samplingContext gives the first pass at most two fifths of the time left, so that a slow machine
+// still builds the sets that look best.
+func samplingContext(ctx context.Context) (context.Context, context.CancelFunc) {
+	end, ok := ctx.Deadline()
+	if !ok {
+		return context.WithCancel(ctx)
+	}
+	return context.WithTimeout(ctx, time.Until(end)*2/5)
 }
 
 // armsOf spreads sets over the substitution patterns of their ring systems.
@@ -245,7 +258,7 @@ func armsOf(comps []composition) []arm {
 // sampleArm scores a spread sample of the arm's structures.
 func (s *searcher) sampleArm(ctx context.Context, f *molecule.Formula, a *arm) error {
 	p := problemOf(f, s.d.Valences, a.comp, a.choice)
-	size, err := isomer.Estimate(ctx, p, 40, 1)
+	size, err := isomer.Estimate(ctx, p, 20, 1)
 	if ctx.Err() != nil {
 		return nil
 	}

@@ -64,7 +64,9 @@ func Identify(ctx context.Context, d *Data, opt Options) (*Result, error) {
 		return nil, err
 	}
 	if len(formulas) == 0 {
-		res.Nothing = "No molecular formula agrees with the evidence."
+		if res.Nothing == "" {
+			res.Nothing = "No molecular formula agrees with the evidence."
+		}
 		return res, nil
 	}
 	res.Formula = formulas[0].String()
@@ -99,6 +101,10 @@ func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]likelyFormula
 			res.Doubts = append(res.Doubts, fmt.Sprintf("%s has an unsaturation of %v: no neutral closed-shell molecule has this formula.", d.Formula, u))
 			return nil, nil
 		}
+		if why := d.contradicts(d.Formula); why != "" {
+			res.Nothing = why
+			return nil, nil
+		}
 		return []likelyFormula{{*d.Formula, 0}}, nil
 	}
 	ev := formula.Evidence{MolecularIon: d.MolecularIon, MolarMass: d.MolarMass, Exact: d.Exact, Peaks: d.Peaks}
@@ -122,7 +128,11 @@ func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]likelyFormula
 	ev.Score = sig.Score
 	r, err := formula.Find(ctx, ev)
 	if err != nil {
-		return nil, err
+		if ctx.Err() != nil {
+			return nil, err
+		}
+		res.Nothing = fmt.Sprintf("The evidence for the formula contradicts itself: %v.", err)
+		return nil, nil
 	}
 	res.Doubts = append(res.Doubts, r.Doubts...)
 	var use []likelyFormula
@@ -143,6 +153,37 @@ func (d *Data) chooseFormulas(ctx context.Context, res *Result) ([]likelyFormula
 		res.Formulas = res.Formulas[:20]
 	}
 	return use, nil
+}
+
+// contradicts says where a given formula clashes with what was measured: another nominal mass, or mass
+// percentages off by more than three tolerances.
+func (d *Data) contradicts(f *molecule.Formula) string {
+	if nominal := int(math.Round(f.MonoisotopicMass())); d.MolecularIon > 0 && d.MolecularIon != nominal {
+		return fmt.Sprintf("The formula %s (nominal mass %d) and the molecular ion %d contradict each other.", f, nominal, d.MolecularIon)
+	}
+	if m := f.MolarMass(); d.MolarMass > 0 && math.Abs(m-d.MolarMass) > 0.03*m {
+		return fmt.Sprintf("The formula %s (%.1f g/mol) and the molar mass %.1f contradict each other.", f, m, d.MolarMass)
+	}
+	if d.Elements == nil {
+		return ""
+	}
+	tolerance := d.Elements.Tolerance
+	if tolerance == 0 {
+		tolerance = 0.4
+	}
+	for _, a := range d.Elements.Analysis {
+		sum := 0.0
+		for _, p := range a.Percent {
+			sum += p
+		}
+		one := molecule.Formula{}
+		one.Count[a.Element] = f.Count[a.Element]
+		want, got := 100*one.MolarMass()/f.MolarMass(), sum/float64(len(a.Percent))
+		if math.Abs(want-got) > 3*tolerance {
+			return fmt.Sprintf("The formula %s (%s %.1f %%) and the combustion analysis (%s %.1f %%) contradict each other.", f, a.Element.Symbol(), want, a.Element.Symbol(), got)
+		}
+	}
+	return ""
 }
 
 // onlyListed reports that f holds no element but those of the combustion analysis, and oxygen.

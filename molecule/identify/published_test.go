@@ -235,3 +235,26 @@ func TestTimeOut(t *testing.T) {
 		t.Errorf("complete after 100 ms with %d structures", r.Generated)
 	}
 }
+
+// TestContradiction: evidence that contradicts itself gives no candidate and says why.
+func TestContradiction(t *testing.T) {
+	for _, text := range []string{
+		"evidence:\n  formula: C8H16O\n  mass:\n    molecular_ion: 100\n",
+		"evidence:\n  formula: C8H16O\n  elements: {C: 50.0, H: 6.0}\n",
+		"evidence:\n  formula: C8H15O\n",
+		"evidence:\n  formula: C3H6O\n  contains: ['C#N']\n",
+	} {
+		c, err := DecodeCase("x.yaml", []byte(text))
+		if err != nil {
+			t.Fatal(err)
+		}
+		d, err := c.Evidence.Read("x.yaml", nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		r, err := Identify(context.Background(), d, Options{})
+		if err != nil || r.Nothing == "" || len(r.Candidates) > 0 {
+			t.Errorf("%q: nothing %q, %d candidates, error %v", text, r.Nothing, len(r.Candidates), err)
+		}
+	}
+}
