@@ -9,6 +9,20 @@ import (
 	"shelfward/molecule/spectra"
 )
 
+// Check compares the evidence with one structure, in words: for a target that is stated, which the
+// evidence then only checks. The formula is compared as well.
+func (d *Data) Check(m *molecule.Molecule) (fits, misfits []string) {
+	fits, misfits = newScorer(d).explain(m)
+	f := m.Formula()
+	if why := d.contradicts(&f); why != "" {
+		misfits = append([]string{why}, misfits...)
+	}
+	if d.Formula != nil && d.Formula.String() != f.String() {
+		misfits = append([]string{fmt.Sprintf("formula %s given, the structure is %s", d.Formula, f)}, misfits...)
+	}
+	return fits, misfits
+}
+
 // explain says in words what fits and what does not.
 func (s *scorer) explain(m *molecule.Molecule) (fits, misfits []string) {
 	fits, misfits = []string{}, []string{}

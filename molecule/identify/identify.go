@@ -310,6 +310,7 @@ func roundNumber(x float64) string {
 // rank scores the kept structures in full and writes the result.
 func (s *searcher) rank(res *Result, opt Options) {
 	sc := newScorer(s.d)
+	s.pool.shrink() // the same structures whatever order they came in
 	list := s.pool.list
 	for i := range list {
 		behind := list[i].score.formula

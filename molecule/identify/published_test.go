@@ -258,3 +258,14 @@ func TestContradiction(t *testing.T) {
 		}
 	}
 }
+
+// TestCheck: the right target fits, a wrong one does not.
+func TestCheck(t *testing.T) {
+	d := readData(t, filepath.Join(demo, "lure-4.yaml"))
+	if fits, misfits := d.Check(readMolecule(t, "CCCC(C)C(=O)CC")); len(fits) == 0 || len(misfits) > 0 {
+		t.Errorf("right target: fits %v, misfits %v", fits, misfits)
+	}
+	if _, misfits := d.Check(readMolecule(t, "CCCCC(=O)CC")); len(misfits) == 0 {
+		t.Error("a target of another formula has no misfit")
+	}
+}
