@@ -18,6 +18,8 @@ type assembly struct {
 // errParts are the reasons why well-formed words do not make a molecule.
 var (
 	errValence = errors.New("too many groups on one atom")
+	errHydro   = errors.New("hydro prefixes and indicated hydrogen need a ring named with its double bonds")
+	errLocant  = errors.New("a locant is missing: more than one place is possible")
 	errDouble  = errors.New("the double bonds of the ring cannot be placed: hydro prefixes or an indicated hydrogen are missing")
 )
 
@@ -79,7 +81,8 @@ type piece struct {
 	esters  []int // atoms that ester groups hang on
 	free    []int // atoms with free valences
 	order   int
-	rings   positions // skeleton positions saturated on purpose
+	ends    []int // acid carbons: no prefix without locant stands on them
+	equal   bool  // one substituent needs no locant
 }
 
 func (q *piece) find(locant string) (int, bool) {
@@ -124,8 +127,15 @@ func (b *assembly) build(u *unit) (*piece, error) {
 		if u.parent.free >= 0 {
 			q.free = []int{at[u.parent.free]}
 		}
+		if len(u.hydro)+u.hydros+len(u.indicated)+len(u.added) > 0 {
+			return nil, errHydro
+		}
+		q.equal = equalParents[u.parent.name]
 		err = b.suffixes(u, q)
 	case u.root != nil:
+		if len(u.hydro)+u.hydros+len(u.indicated)+len(u.added) > 0 {
+			return nil, errHydro
+		}
 		err = b.acidRoot(u, q)
 	default:
 		err = b.hydride(u, q)
@@ -144,7 +154,9 @@ func (b *assembly) freeValences(u *unit, q *piece) error {
 	for _, l := range u.free {
 		a, ok := q.find(l)
 		if l == "" {
-			a, ok = b.firstSpare(q, q.order)
+			if a, ok = b.onlySpare(q, q.order); !ok {
+				return errLocant
+			}
 		}
 		if !ok {
 			return fmt.Errorf("locant %s does not exist", l)
@@ -159,18 +171,65 @@ func (b *assembly) freeValences(u *unit, q *piece) error {
 	return nil
 }
 
-// firstSpare is the first atom of q with n free valences.
-func (b *assembly) firstSpare(q *piece, n int) (int, bool) {
+// equalParents are parents of known structure whose places for a first substituent are all alike.
+var equalParents = map[string]bool{"benzene": true, "phenyl": true, "hydrazine": true, "diazene": true, "urea": true, "thiourea": true, "disiloxane": true, "hydrazinyl": true, "hydrazinylidene": true}
+
+// open lists the numbered atoms of q with n free valences, acid carbons left out.
+func (b *assembly) open(q *piece, n int) []int {
+	var list []int
 	for _, a := range q.atoms {
-		if b.spare[a] >= n {
-			return a, true
+		if b.spare[a] >= n && !slices.Contains(list, a) && !slices.Contains(q.ends, a) {
+			list = append(list, a)
 		}
+	}
+	// Prefixes without locant stand on the skeleton where it has a place: phenylmethanamine.
+	skeletal := list[:0:0]
+	for _, a := range list {
+		if c := q.locants[slices.Index(q.atoms, a)][0]; c >= '0' && c <= '9' {
+			skeletal = append(skeletal, a)
+		}
+	}
+	if len(skeletal) > 0 {
+		return skeletal
+	}
+	return list
+}
+
+// onlySpare is the atom that a group without locant stands on: the only one with n free valences, or
+// any where all are alike.
+func (b *assembly) onlySpare(q *piece, n int) (int, bool) {
+	list := b.open(q, n)
+	if len(list) == 1 {
+		return list[0], true
+	}
+	if len(list) > 0 && q.equal && list[0] == q.atoms[0] {
+		q.equal = false
+		return list[0], true
 	}
 	return 0, false
 }
 
+// fills says whether the prefixes without locants take every free valence of the numbered atoms.
+func (b *assembly) fills(u *unit, q *piece) bool {
+	free, taken := 0, 0
+	for _, a := range b.open(q, 1) {
+		free += b.spare[a]
+	}
+	for _, it := range u.items {
+		if len(it.locants) > 0 {
+			return false
+		}
+		taken += it.count * max(1, it.order)
+	}
+	return taken == free && len(u.items) == 1
+}
+
 // substituents hangs the items of u on q.
 func (b *assembly) substituents(u *unit, q *piece) error {
+	if len(u.free) > 0 && u.free[0] != "" || len(u.suffixes) > 0 && u.skeleton != nil && len(u.skeleton.elements) > 2 {
+		q.equal = false
+	}
+	fills := b.fills(u, q)
 	for _, it := range u.items {
 		for i := range it.count {
 			r, err := b.build(it.unit)
@@ -182,15 +241,16 @@ func (b *assembly) substituents(u *unit, q *piece) error {
 			}
 			a, ok := 0, false
 			if len(it.locants) == 0 {
-				a, ok = b.firstSpare(q, r.order)
+				if fills {
+					a, ok = b.open(q, r.order)[0], true
+				} else if a, ok = b.onlySpare(q, r.order); !ok {
+					return errLocant
+				}
 			} else {
 				a, ok = q.find(it.locants[i])
 			}
 			if !ok {
-				if len(it.locants) > 0 {
-					return fmt.Errorf("locant %s does not exist", it.locants[i])
-				}
-				return errValence
+				return fmt.Errorf("locant %s does not exist", it.locants[i])
 			}
 			b.spare[r.free[0]] += r.order
 			if err := b.join(a, r.free[0], r.order); err != nil {
@@ -243,12 +303,9 @@ func (b *assembly) acidRoot(u *unit, q *piece) error {
 		}
 		b.spare = append(b.spare, spare)
 	}
-	// The acid carbon comes last: a prefix without locant never stands on it.
-	for _, acid := range []bool{false, true} {
-		for i := range t.atoms {
-			if !drop[i] && slices.Contains(ends, i) == acid {
-				q.label(t.locants[i], at[i])
-			}
+	for i := range t.atoms {
+		if !drop[i] {
+			q.label(t.locants[i], at[i])
 		}
 	}
 	for _, x := range t.bonds {
@@ -257,6 +314,7 @@ func (b *assembly) acidRoot(u *unit, q *piece) error {
 		}
 	}
 	for _, a := range ends {
+		q.ends = append(q.ends, at[a])
 		if err := b.suffixAt(u.ending, at[a], t.locants[a], q, len(ends) > 1); err != nil {
 			return err
 		}
@@ -310,6 +368,7 @@ func (b *assembly) suffixes(u *unit, q *piece) error {
 				return errValence
 			}
 			for _, i := range ends {
+				q.ends = append(q.ends, q.atoms[i])
 				if err := b.suffixAt(s.template, q.atoms[i], q.locants[i], q, s.count > 1); err != nil {
 					return err
 				}
@@ -319,7 +378,12 @@ func (b *assembly) suffixes(u *unit, q *piece) error {
 		for i := range s.count {
 			a, ok, host := 0, false, ""
 			if len(s.locants) == 0 {
-				a, ok = b.firstSpare(q, s.order)
+				if len(s.locants) == 0 && len(b.open(q, s.order)) == 0 {
+					return errValence
+				}
+				if a, ok = b.onlySpare(q, s.order); !ok {
+					return errLocant
+				}
 				for k, x := range q.atoms {
 					if x == a {
 						host = q.locants[k]
@@ -365,21 +429,35 @@ func (b *assembly) hydride(u *unit, q *piece) error {
 			return err
 		}
 	}
+	q.equal = s.alike()
 	return b.suffixes(u, q)
+}
+
+// alike says whether the first substituent needs no locant: chains of two, rings of one kind of atom.
+func (s *skeleton) alike() bool {
+	if len(s.elements) == 2 && len(s.bonds) == 1 {
+		return true
+	}
+	for _, e := range s.elements {
+		if e != s.elements[0] {
+			return false
+		}
+	}
+	return len(s.bonds) == len(s.elements) && s.elements[0] == 6
 }
 
 // multipleBonds sets the orders that ene and yne endings say.
 func multipleBonds(u *unit, order []int) error {
 	s := u.skeleton
 	if len(u.hydro)+u.hydros+len(u.indicated)+len(u.added) > 0 {
-		return errors.New("hydro prefixes and indicated hydrogen need a ring named with its double bonds")
+		return errHydro
 	}
 	place := func(l string) int { return slices.Index(s.locants, l) }
 	for k, m := range u.multiple {
 		i, j := k, k+1
 		if m.from == "" {
-			if len(u.multiple) > 1 {
-				return errors.New("locants of the double bonds are missing")
+			if len(u.multiple) > 1 || !s.alike() && len(s.elements) > 3 || len(s.elements) > 2 && len(u.suffixes) > 0 && !u.suffixes[0].end {
+				return errLocant
 			}
 		} else {
 			i = place(m.from)

@@ -1,6 +1,7 @@
 package name
 
 import (
+	"slices"
 	"strings"
 )
 
@@ -108,6 +109,8 @@ func (p *parser) findUnit(i, end int, m mode) *unit {
 	}
 	if j < i {
 		j = i
+	} else if u := p.oldStyle(locants, j, end, m); u != nil {
+		return u
 	}
 	for _, mult := range p.multipliers(j, end) {
 		k := j + mult.length
@@ -147,6 +150,27 @@ func (p *parser) indicatedUnit(locants []string, j, end int, m mode) *unit {
 		u.indicated = append(u.indicated, strings.TrimSuffix(l, "H"))
 	}
 	return &u
+}
+
+// oldStyle reads names whose locants stand before the parent: 2-propanol, 1-hexene, 1,3-propanediol.
+func (p *parser) oldStyle(locants []string, j, end int, m mode) *unit {
+	tail := p.parentAt(j, end, m)
+	if tail == nil || tail.skeleton == nil {
+		return nil
+	}
+	u := *tail
+	if n := len(u.suffixes); n == 1 && u.suffixes[0].locants == nil && !u.suffixes[0].end && u.suffixes[0].count == len(locants) && (len(u.multiple) == 0 || u.multiple[0].from != "") {
+		u.suffixes = []suffix{{u.suffixes[0].template, locants, len(locants)}}
+		return &u
+	}
+	if len(u.multiple) == len(locants) && u.multiple[0].from == "" {
+		u.multiple = slices.Clone(u.multiple)
+		for k, l := range locants {
+			u.multiple[k].from = l
+		}
+		return &u
+	}
+	return nil
 }
 
 func (p *parser) skipHyphen(i int) int {

@@ -293,10 +293,28 @@ func (w *writer) oxyPrefix(a, from int32, order int) sub {
 	if c, ok := contracted[s.name]; ok {
 		return simple(c)
 	}
+	if c := contractedTail(s.name); c != "" {
+		return compound(c)
+	}
 	if s.name == "cyano" {
 		return simple("cyanato")
 	}
 	return compound(w.linked(s, "oxy"))
+}
+
+// contractedTail gives substituted alkyloxy prefixes with short names: 4-chlorophenoxy, 2-methylpropoxy.
+func contractedTail(name string) string {
+	if strings.HasSuffix(name, "tert-butyl") {
+		return ""
+	}
+	for _, tail := range []string{"phenyl", "methyl", "ethyl", "propyl", "butyl"} {
+		head, ok := strings.CutSuffix(name, tail)
+		if !ok || head == "" || tail == "ethyl" && strings.HasSuffix(head, "m") || strings.HasSuffix(head, "cyclo") {
+			continue
+		}
+		return head + contracted[tail]
+	}
+	return ""
 }
 
 // across is the other neighbour of a divalent atom.

@@ -2,6 +2,7 @@ package name
 
 import (
 	"fmt"
+	"regexp"
 	"slices"
 	"strings"
 	"unicode"
@@ -53,8 +54,14 @@ func read(text string) (*molecule.Molecule, error) {
 	if m := loaded().read[strings.ToLower(s)]; m != nil {
 		return m, nil
 	}
+	if stereoMark.MatchString(s) {
+		return nil, fmt.Errorf("marks of stereo (R, S, E, Z, cis, trans, D, L) are not read in names; write the SMILES")
+	}
 	return readWords(strings.Fields(s))
 }
+
+// stereoMark finds descriptors of stereo; plainText has made them lower case.
+var stereoMark = regexp.MustCompile(`\((\d+[a-z]?)?[rsez](,(\d+[a-z]?)?[rsez])*\)-|^(cis|trans|[dl]|dl|rac|\([+-]\))-`)
 
 // plainText brings dashes, primes, blanks and capitals to the forms that the parser knows.
 func plainText(text string) string {
@@ -88,6 +95,9 @@ func readWords(words []string) (*molecule.Molecule, error) {
 		}
 		if e, count := halideAtoms(last); count > 0 {
 			return readHalide(words[:len(words)-1], e, count)
+		}
+		if t := loaded().words.classes[last]; t != nil {
+			return readClass(words[:len(words)-1], t)
 		}
 	}
 	if len(words) > 1 {
@@ -195,6 +205,51 @@ func readHalide(words []string, e molecule.Element, count int) (*molecule.Molecu
 		if err := b.join(a, b.add(e), 1); err != nil {
 			return nil, err
 		}
+	}
+	return b.finish()
+}
+
+// readClass reads names of classes whose radicals are words of their own: "benzyl alcohol", "ethyl
+// methyl ketone", "diethyl ether".
+func readClass(words []string, t *template) (*molecule.Molecule, error) {
+	b := &assembly{}
+	at := b.copyTemplate(t, -1)
+	return b.hangWords(words, t, at)
+}
+
+// hangWords hangs the radicals of the words on the class 1 atoms of t, one free valence after the other.
+func (b *assembly) hangWords(words []string, t *template, at []int) (*molecule.Molecule, error) {
+	var places []int
+	for _, e := range t.esters {
+		for range b.spare[at[e]] {
+			places = append(places, at[e])
+		}
+	}
+	if t.single {
+		places = places[:1]
+	}
+	for _, w := range words {
+		it, err := esterRadicals(w)
+		if err != nil {
+			return nil, err
+		}
+		for range it.count {
+			r, err := b.build(it.unit)
+			if err != nil {
+				return nil, err
+			}
+			if len(r.free) != 1 || r.order != 1 || len(places) == 0 {
+				return nil, fmt.Errorf("%s does not fit %s", w, t.name)
+			}
+			b.spare[r.free[0]]++
+			if err := b.join(places[0], r.free[0], 1); err != nil {
+				return nil, err
+			}
+			places = places[1:]
+		}
+	}
+	if len(places) > 0 {
+		return nil, fmt.Errorf("%s needs more groups", t.name)
 	}
 	return b.finish()
 }

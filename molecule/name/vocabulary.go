@@ -16,6 +16,7 @@ type vocabularyFile struct {
 	Radicals []wordRow `yaml:"radicals"`
 	Parents  []wordRow `yaml:"parents"`
 	Roots    []rootRow `yaml:"acid_roots"`
+	Classes  []wordRow `yaml:"classes"`
 }
 
 type wordRow struct {
@@ -49,6 +50,7 @@ type template struct {
 	order   int      // order of the bond to what it hangs on
 	end     bool     // suffix: the first atom is the end of the chain
 	radical bool     // suffix: makes a radical
+	single  bool     // class word: one radical only, the other hydrogens stay (alcohol)
 	ester   string   // "O": only where the ester word says O
 }
 
@@ -58,6 +60,7 @@ type vocabulary struct {
 	radicals map[string]*template
 	parents  map[string][]*template
 	roots    map[string]*template
+	classes  map[string]*template // words behind radicals: alcohol, ether, ketone
 	// names, longest first, by first letter
 	suffixNames, radicalNames, parentNames, rootNames [256][]string
 }
@@ -70,6 +73,7 @@ func (r *wordRow) word() (*template, error) {
 	}
 	t.order = max(1, r.Order)
 	t.end = r.Kind == "end"
+	t.single = r.Kind == "single"
 	t.radical = r.Radical
 	t.ester = r.Ester
 	return t, nil
@@ -112,7 +116,7 @@ func newTemplate(name, text, locants string) (*template, error) {
 
 // compile makes the vocabulary.
 func (f *vocabularyFile) compile() (*vocabulary, error) {
-	v := &vocabulary{suffixes: map[string][]*template{}, radicals: map[string]*template{}, parents: map[string][]*template{}, roots: map[string]*template{}}
+	v := &vocabulary{suffixes: map[string][]*template{}, radicals: map[string]*template{}, parents: map[string][]*template{}, roots: map[string]*template{}, classes: map[string]*template{}}
 	for i := range f.Suffixes {
 		t, err := f.Suffixes[i].word()
 		if err != nil {
@@ -143,6 +147,13 @@ func (f *vocabularyFile) compile() (*vocabulary, error) {
 			return nil, r.Errorf("%s: %v", r.Root, err)
 		}
 		v.roots[r.Root] = t
+	}
+	for i := range f.Classes {
+		t, err := f.Classes[i].word()
+		if err != nil {
+			return nil, err
+		}
+		v.classes[t.name] = t
 	}
 	index(&v.suffixNames, v.suffixes)
 	index(&v.radicalNames, v.radicals)

@@ -83,7 +83,7 @@ func (p *plan) bare(w *writer, list []affix) bool {
 	case p.base == "hydroxylamine":
 		return false
 	case p.base != "":
-		return len(p.order) == 1 || total <= 1
+		return len(p.order) == 1 || total <= 1 || p.base == "diazene" && p.whole(w, list)
 	case p.ring != nil:
 		if p.ring.equal && total <= 1 && len(p.enes)+len(p.ynes) <= boolInt(total == 0) && p.hydro.hydro == 0 && p.hydro.indicated == 0 && p.hydro.added == 0 {
 			return true
@@ -116,7 +116,7 @@ func (p *plan) whole(w *writer, list []affix) bool {
 			return false
 		}
 	}
-	return isHaloPrefix(list[0].name)
+	return isHaloPrefix(list[0].name) || p.base == "diazene"
 }
 
 func isHaloPrefix(s string) bool {
@@ -214,7 +214,7 @@ func (p *plan) freeValence(w *writer, base string, bare bool) string {
 	if saturated && at == 0 && (p.ring == nil && p.base == "" || monocycle) {
 		return strings.TrimSuffix(base, "ane") + ending
 	}
-	if bare {
+	if bare || p.ring == nil && p.base == "" && len(p.order) == 2 && at == 0 {
 		return addSuffix(base, "", ending)
 	}
 	locant := p.locants[at]
