@@ -47,19 +47,20 @@ type chemistry struct {
 
 	mu        sync.RWMutex
 	molecules map[search.Key]*molecule.Molecule
-	options   map[search.Key][][]option // per molecule and edge
+	options   map[search.Key][][]option       // per molecule and edge
+	expanded  map[search.Key]search.Expansion // kept, because a second search may start over
 	materials map[search.Key]*Material
 }
 
 func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *chemistry {
 	c := &chemistry{world: w, by: by, filter: f, from: from, molecules: map[search.Key]*molecule.Molecule{},
-		options: map[search.Key][][]option{}, materials: map[search.Key]*Material{}, flatShelf: map[molecule.Key]*molecule.Molecule{}}
+		options: map[search.Key][][]option{}, expanded: map[search.Key]search.Expansion{}, materials: map[search.Key]*Material{}, flatShelf: map[molecule.Key]*molecule.Molecule{}}
 	c.floor = c.leastStep()
 	if by == Cost {
 		c.carbonPrice = c.cheapestCarbon()
 	}
 	c.guesser = newGuesser(w.Shelf, from)
-	c.guesser.lookAhead(w.Book, w.Shelf, from)
+	c.guesser.lookAhead(w.Book, w.Shelf, from, false)
 	for _, m := range w.Shelf {
 		if k := flatKey(m); c.flatShelf[k] == nil || !marked(m) {
 			c.flatShelf[k] = m
@@ -151,6 +152,22 @@ func (c *chemistry) stocked(m *molecule.Molecule) bool {
 // Expand groups the judged steps by what they consume: one edge per set of molecules, one variant per
 // step and condition set that the filter lets through.
 func (c *chemistry) Expand(ctx context.Context, k search.Key) (search.Expansion, error) {
+	c.mu.RLock()
+	known, ok := c.expanded[k]
+	c.mu.RUnlock()
+	if ok {
+		return known, nil
+	}
+	x, err := c.expand(ctx, k)
+	if err == nil {
+		c.mu.Lock()
+		c.expanded[k] = x
+		c.mu.Unlock()
+	}
+	return x, err
+}
+
+func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion, error) {
 	steps, err := c.world.Book.Expand(ctx, c.molecule(k), c.stocked)
 	if err != nil {
 		return search.Expansion{}, err

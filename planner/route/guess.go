@@ -93,8 +93,8 @@ func (p *profile) apart(q *profile) (only, lacks int) {
 // guesser estimates how far a molecule is from what it could be made from.
 type guesser struct {
 	shelf []*profile
-	owed  []*profile                // per set of items owed: the profiles of the items added up
-	near  [2]map[molecule.Key]uint8 // what one and two steps from an item of From give: the items that lead there
+	owed  []*profile               // per set of items owed: the profiles of the items added up
+	near  []map[molecule.Key]uint8 // what one, two ... steps from an item of From give: the items that lead there
 }
 
 // forwardBook runs transforms forwards; *reactions.Book does.
@@ -106,35 +106,64 @@ type forwardBook interface {
 const (
 	mostPartners     = 24
 	mostPartnerAtoms = 9
-	mostSecond       = 60 // products of the first step that are taken one step on, alone
+	mostOn           = 60  // products of one step that are taken one step on, with partners
+	mostOnAlone      = 200 // and alone
 )
 
-// lookAhead finds what one step from the items of From gives, so that a molecule on the way is known as
-// such before it is opened.
-func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule) {
+// ahead is what forward steps from one item of From have given so far.
+type ahead struct {
+	item  int
+	level [][]*molecule.Molecule // by number of steps
+	seen  map[molecule.Key]bool
+}
+
+// lookAhead finds what forward steps from the items of From give, so that a molecule on the way is known
+// as such before it is opened: one step with partners and a second alone; deeper takes the second with
+// partners and a third alone. It costs some hundred openings at most.
+func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule, deeper bool) {
 	forward, ok := book.(forwardBook)
 	if !ok {
 		return
 	}
-	g.near[0], g.near[1] = map[molecule.Key]uint8{}, map[molecule.Key]uint8{}
 	partners := append(slices.Clone(from), smallest(shelf)...)
+	g.near = nil
 	for i, m := range from {
-		first, err := forward.Products(context.Background(), m, partners)
+		a := &ahead{item: i, level: [][]*molecule.Molecule{{m}}, seen: map[molecule.Key]bool{m.FlatKey(): true}}
+		a.step(forward, partners, 1)
+		if deeper {
+			a.step(forward, partners, mostOn)
+		}
+		a.step(forward, nil, mostOnAlone)
+		g.remember(a)
+	}
+}
+
+// step takes up to most molecules of the last level one step on.
+func (a *ahead) step(forward forwardBook, partners []*molecule.Molecule, most int) {
+	var next []*molecule.Molecule
+	last := a.level[len(a.level)-1]
+	for _, m := range last[:min(len(last), most)] {
+		list, err := forward.Products(context.Background(), m, partners)
 		if err != nil {
 			return
 		}
-		for k, p := range first {
-			g.near[0][p.FlatKey()] |= 1 << i
-			if k >= mostSecond {
-				continue
+		for _, p := range list {
+			if k := p.FlatKey(); !a.seen[k] {
+				a.seen[k] = true
+				next = append(next, p)
 			}
-			second, err := forward.Products(context.Background(), p, nil)
-			if err != nil {
-				return
-			}
-			for _, q := range second {
-				g.near[1][q.FlatKey()] |= 1 << i
-			}
+		}
+	}
+	a.level = append(a.level, next)
+}
+
+func (g *guesser) remember(a *ahead) {
+	for steps, list := range a.level[1:] {
+		for len(g.near) <= steps {
+			g.near = append(g.near, map[molecule.Key]uint8{})
+		}
+		for _, m := range list {
+			g.near[steps][m.FlatKey()] |= 1 << a.item
 		}
 	}
 }

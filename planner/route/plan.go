@@ -116,7 +116,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	for _, m := range o.From {
 		options.From = append(options.From, c.enter(m))
 	}
-	found, err := search.Find(ctx, c, root, options)
+	found, err := c.find(ctx, root, options)
 	if err != nil {
 		return nil, err
 	}
@@ -133,6 +133,48 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	p.order(o.Count)
 	p.finish(found.Exhausted && len(p.Routes) == len(found.Routes))
 	return p, nil
+}
+
+// firstLook is the number of molecules opened before the starts are looked ahead from more deeply.
+const firstLook = 64
+
+// find searches. Where starts are given and a first look finds no route, it looks further ahead from them
+// and starts over with what has been opened so far: the order of work changes, the answer's proof does not.
+func (c *chemistry) find(ctx context.Context, root search.Key, o search.Options) (*search.Result, error) {
+	if len(o.From) == 0 || o.MaxExpanded > 0 && o.MaxExpanded <= firstLook {
+		return search.Find(ctx, c, root, o)
+	}
+	began, first := time.Now(), o
+	first.MaxExpanded = firstLook
+	found, err := search.Find(ctx, c, root, first)
+	if err != nil || len(found.Routes) > 0 && found.Stopped != search.ByCount || found.Stopped != search.ByCount {
+		return found, err
+	}
+	if len(found.Routes) == 0 {
+		c.guesser.lookAhead(c.world.Book, c.world.Shelf, c.from, true)
+	}
+	if o.Time > 0 {
+		o.Time = max(time.Millisecond, o.Time-time.Since(began))
+	}
+	again, err := search.Find(ctx, c, root, o)
+	if err == nil {
+		c.later(again, found, time.Since(began)-again.Elapsed)
+	}
+	return again, err
+}
+
+// later counts the time before a second search into its figures; a route that the first look had found
+// stood then already.
+func (c *chemistry) later(again, first *search.Result, before time.Duration) {
+	again.Elapsed += before
+	for i := range again.Routes {
+		again.Routes[i].Stood += before
+	}
+	for i := range first.Routes {
+		if i < len(again.Routes) {
+			again.Routes[i].Stood = min(again.Routes[i].Stood, first.Routes[i].Stood)
+		}
+	}
 }
 
 func (c *chemistry) newPlan(target *molecule.Molecule, root search.Key, o *Options) *Plan {
