@@ -126,7 +126,10 @@ func (w *writer) chargeReagents(s *Step, set *reactions.Conditions, full float64
 	for _, name := range set.WorkupMaterials {
 		w.chargeNamed(s, Charge{Role: roleWorkup, Name: name})
 	}
-	s.Flask = flaskFor(s.Charges, len(set.Gas) > 0)
+	s.flaskML = flaskFor(s.Charges, len(set.Gas) > 0)
+	if !math.IsInf(s.flaskML, 1) {
+		s.Flask = millilitresWhole(s.flaskML)
+	}
 }
 
 // chargeNamed adds a row by the name that conditions use. What is on the shelf already keeps that name.
@@ -185,16 +188,16 @@ func contentsML(charges []Charge) (total float64) {
 }
 
 // flaskFor chooses a flask at most two thirds full, half full where gas comes off (common practice);
-// empty if no flask is large enough.
-func flaskFor(charges []Charge, gas bool) string {
+// +Inf if no flask is large enough. The answer is in mL.
+func flaskFor(charges []Charge, gas bool) float64 {
 	fill := 2.0 / 3
 	if gas {
 		fill = 0.5
 	}
 	for _, f := range flasks {
 		if contentsML(charges) <= f*fill {
-			return millilitresWhole(f)
+			return f
 		}
 	}
-	return ""
+	return math.Inf(1)
 }

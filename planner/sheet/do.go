@@ -88,7 +88,7 @@ func setUp(s *Step, set *reactions.Conditions) string {
 	}
 	parts := []string{flask, "stirrer", "thermometer in the mixture"}
 	for _, c := range s.Charges {
-		if b := boils(&c); c.Role == roleSolvent && set.Temperature[1] > b-5 {
+		if b := boils(&c); (c.Role == roleSolvent || c.Role == roleReactant) && !c.Gas && set.Temperature[1] > b-5 {
 			parts = append(parts, fmt.Sprintf("reflux condenser (%s boils at %.0f °C)", c.Name, b))
 			break
 		}

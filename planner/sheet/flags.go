@@ -110,7 +110,10 @@ func boilingFlags(s *Step, set *reactions.Conditions) {
 		return
 	}
 	for _, c := range s.Charges {
-		if b := boils(&c); c.Role == roleSolvent && set.Temperature[0] > b+5 {
+		b := boils(&c)
+		if c.Role == roleReactant && set.Temperature[0] > b+5 {
+			s.stop("%s boils at %.0f °C, below the whole window (%s): it leaves an open flask; slow feed below the surface and a cold condenser, or a vessel for pressure", c.Name, b, temperatureText(set.Temperature))
+		} else if c.Role == roleSolvent && set.Temperature[0] > b+5 {
 			s.stop("%s boils at %.0f °C, below the whole window (%s): impossible in an open flask; another solvent, or a vessel for pressure", c.Name, b, temperatureText(set.Temperature))
 		} else if c.Role == roleSolvent && set.Temperature[1] > b+5 {
 			s.stop("%s boils at %.0f °C, below the upper end of the window (%s): reflux is the limit, never a closed vessel", c.Name, b, temperatureText(set.Temperature))

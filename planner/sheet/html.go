@@ -16,10 +16,10 @@ func (s *Sheet) HTML(w io.Writer) error { return page.Execute(w, s) }
 var pageText string
 
 var page = template.Must(template.New("sheet").Funcs(template.FuncMap{
-	"add": func(a, b int) int { return a + b }, "grams": grams, "digits": digits, "shown": shown, "cas": casText, "form": formText, "steps": joinInts,
+	"add": func(a, b int) int { return a + b }, "grams": grams, "digits": digits, "shown": shown, "stockName": func(l StockLine) string { return l.name() }, "steps": joinInts,
 	"mass": func(c Charge) string { return massText(&c) }, "volume": func(c Charge) string { return volumeText(&c) }, "charge": func(c Charge) string { return chargeName(&c) },
 	"equiv": func(x float64) string { return positive(x, "%.3g") }, "molar": func(x float64) string { return positive(x, "%.2f") }, "workup": func(s Step) string { return workupText(&s) }, "mmol": positiveDigits,
-	"stock": stockCells, "have": func(l StockLine) string { return haveText(&l) }, "none": orNone, "pictograms": pictograms,
+	"stock": stockCells, "overview": func(s *Sheet) []string { return s.overview() }, "have": func(l StockLine) string { return haveText(&l) }, "none": orNone, "pictograms": pictograms,
 	"target": targetText, "comesOut": comesOutText, "yield": yieldText, "unknown": unknownText, "expect": func(s Step) string { return expectText(&s) },
 	"know": func(s Step) []part { return s.knowParts() }, "count": stepCount, "charges": func(s Step) []Charge { return s.inFlask() },
 	"drawing": func(c Compound, widthMM, heightMM float64) template.HTML { return drawing(c, widthMM, heightMM) },

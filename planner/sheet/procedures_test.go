@@ -124,7 +124,7 @@ func TestSupply(t *testing.T) {
 		massG, volML float64
 		form         string
 	}{
-		{"pure solid", sheet.Supply{MolarMass: 100}, 0.5, 50, 0, "taken as pure"},
+		{"pure solid", sheet.Supply{MolarMass: 100}, 0.5, 50, 0, "assumed pure"},
 		{"95 % liquid", sheet.Supply{MolarMass: 151.05, PurityFraction: 0.95, DensityGPerML: 1.21}, 0.1919, 30.51, 25.22, "95 %"},
 		{"solution by molarity", with(strength("3.0 M in diethyl ether"), 133.27, 1.02), 0.1347, 45.80, 44.90, "3.0 M in diethyl ether"},
 		{"solution by molarity, density unknown", with(strength("2.5 M in hexanes"), 64.06, 0), 0.025, 0, 10, "2.5 M in hexanes"},

@@ -123,7 +123,8 @@ type Step struct {
 	TheoryG                          float64
 	ExpectLowG, ExpectG, ExpectHighG float64
 	SureFactor                       float64 // by which to multiply every charge to be sure of what the next step takes
-	Flask                            string
+	Flask                            string  // size of the flask, empty if none is large enough
+	flaskML                          float64
 	NextNeedsG                       float64 // g that later steps charge, 0 for the last
 }
 

@@ -137,7 +137,10 @@ func substances(charges []Charge, roles ...string) (list []hazard.Substance) {
 // finds beside the product, and what the rules tell to look for.
 func (w *writer) crude(s *Step, src *route.Step, set *reactions.Conditions) error {
 	add := func(what string, m *molecule.Molecule) {
-		line := fmt.Sprintf("%s, M+. %d", what, nominal(m))
+		line := what
+		if volatile(m) {
+			line += fmt.Sprintf(", M+. %d", nominal(m))
+		}
 		if !slices.Contains(s.Crude, line) {
 			s.Crude = append(s.Crude, line)
 		}
@@ -167,6 +170,23 @@ func (w *writer) crude(s *Step, src *route.Step, set *reactions.Conditions) erro
 	s.Crude = append(s.Crude, s.Objections...)
 	s.Crude = append(s.Crude, fmt.Sprintf("for comparison the product, M+. %d", nominal(s.Product.Molecule)))
 	return nil
+}
+
+// volatile says whether a molecule may show a molecular ion: no salt, no charge.
+func volatile(m *molecule.Molecule) bool {
+	for a := range m.NumAtoms() {
+		if m.Atom(a).Charge != 0 && !neighbourCharge(m, a) {
+			return false
+		}
+	}
+	return len(m.Split()) == 1
+}
+
+// neighbourCharge says whether the charge of an atom is met by that of a neighbour, as in nitro.
+func neighbourCharge(m *molecule.Molecule, a int) bool {
+	return slices.ContainsFunc(m.Neighbors(a), func(n molecule.Neighbor) bool {
+		return m.Atom(int(n.Atom)).Charge == -m.Atom(a).Charge
+	})
 }
 
 func nominal(m *molecule.Molecule) int { return int(math.Round(m.Formula().MonoisotopicMass())) }

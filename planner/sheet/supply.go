@@ -94,8 +94,11 @@ func (s Supply) form() string {
 	case s.PurityFraction > 0:
 		return strconv.FormatFloat(float64(int(s.PurityFraction*1000+0.5))/10, 'f', -1, 64) + " %"
 	}
-	return "taken as pure"
+	return assumedPure
 }
+
+// assumedPure is the form of what nobody stated the purity of.
+const assumedPure = "assumed pure"
 
 func inText(solvent string) string {
 	if solvent == "" {

@@ -82,6 +82,7 @@ func (s *Sheet) textHead(p *printer) {
 	p.wrap("aim           ", fmt.Sprintf("%s (%s mmol) of isolated product", grams(s.MakeG), digits(s.MakeMmol)))
 	p.wrap("comes out     ", comesOutText(s))
 	p.wrap("yield         ", yieldText(s))
+	p.list("steps         ", s.overview())
 	p.list("evidence      ", s.Evidence)
 	p.wrap("signal word   ", orNone(s.Label.Signal)+"; pictograms: "+pictograms(s))
 	p.list("gravest       ", s.Gravest)
@@ -91,6 +92,25 @@ func (s *Sheet) textHead(p *printer) {
 	p.list("watched       ", s.Watched)
 	p.line("")
 	s.textStock(p)
+}
+
+// overview tells each step on one line, and the largest vessel of all.
+func (s *Sheet) overview() (out []string) {
+	largest := 0
+	for i := range s.Steps {
+		st := &s.Steps[i]
+		out = append(out, fmt.Sprintf("%d  %s: %s; %s-%s-%s %% (%s)", st.Number, st.Name, equation(st), percent(st.Yield.Low), percent(st.Yield.Usual), percent(st.Yield.High), st.OriginMark))
+		if len(st.Flags) > 0 {
+			out[i] += fmt.Sprintf("; %d to settle before it starts", len(st.Flags))
+		}
+		if s.Steps[i].flaskML > s.Steps[largest].flaskML {
+			largest = i
+		}
+	}
+	if f := s.Steps[largest].Flask; f != "" {
+		return append(out, fmt.Sprintf("largest vessel: %s (step %d)", f, s.Steps[largest].Number))
+	}
+	return append(out, fmt.Sprintf("largest vessel: none of the usual ones is large enough for step %d", s.Steps[largest].Number))
 }
 
 func stepCount(n int) string {
@@ -150,10 +170,18 @@ func (s *Sheet) textStock(p *printer) {
 	for i := range s.Stock {
 		l := &s.Stock[i]
 		mass, volume, sure := l.needs()
-		rows = append(rows, []string{l.Name + casText(l.CAS) + formText(l.Form), joinInts(l.Steps), mass, volume, sure, haveText(l)})
+		rows = append(rows, []string{l.name(), joinInts(l.Steps), mass, volume, sure, haveText(l)})
 	}
 	p.table(stockColumns, rows)
 	p.line("")
+}
+
+// name is the first cell of a stock line; a form that nobody stated matters only beside an amount.
+func (l *StockLine) name() string {
+	if l.MassG == 0 && l.VolumeML == 0 && l.Form == assumedPure {
+		return l.Name + casText(l.CAS)
+	}
+	return l.Name + casText(l.CAS) + formText(l.Form)
 }
 
 // needs writes mass, volume and the amount to be sure of a stock line.
