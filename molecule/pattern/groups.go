@@ -94,22 +94,48 @@ func (g *Groups) Name(id string) string {
 	return id
 }
 
+// fill finds the atoms of a group. A group can only ask for earlier groups, so there is no circle.
 func (s *Subject) fill(g int) *groupAtoms {
 	if s.member == nil {
 		s.member = make([]*groupAtoms, len(s.groups.list))
 	}
-	if s.member[g] != nil {
-		return s.member[g]
+	if ga := s.member[g]; ga != nil {
+		return ga
 	}
-	ga := &groupAtoms{in: make([]bool, s.M.NumAtoms())}
-	s.member[g] = ga // set first: a group can only ask for earlier groups
+	ga := noAtoms
+	for qi, q := range s.groups.list[g].Queries {
+		c := q.screened()
+		if !q.possible(s, c) {
+			continue
+		}
+		core := s.groups.list[g].core[qi]
+		q.Each(s, func(to Mapping) bool {
+			if ga == noAtoms {
+				ga = &groupAtoms{in: make([]uint64, (len(s.atom)+63)/64)}
+			}
+			for _, i := range core {
+				ga.in[to[i]>>6] |= 1 << (to[i] & 63)
+			}
+			return true
+		})
+	}
+	s.member[g] = ga
+	return ga
+}
+
+// list finds the occurrences of a group.
+func (s *Subject) list(g int) [][]int32 {
+	ga := s.fill(g)
+	if ga.listed {
+		return ga.instances
+	}
+	ga.listed = true
 	for qi, q := range s.groups.list[g].Queries {
 		core := s.groups.list[g].core[qi]
 		q.Each(s, func(to Mapping) bool {
 			set := make([]int32, len(core))
 			for i, c := range core {
 				set[i] = to[c]
-				ga.in[to[c]] = true
 			}
 			sortInt32(set)
 			if !containsSet(ga.instances, set) {
@@ -118,10 +144,13 @@ func (s *Subject) fill(g int) *groupAtoms {
 			return true
 		})
 	}
-	return ga
+	return ga.instances
 }
 
-func (s *Subject) inGroup(g, a int) bool { return s.fill(g).in[a] }
+func (s *Subject) inGroup(g, a int) bool {
+	in := s.fill(g).in
+	return in != nil && in[a>>6]>>(a&63)&1 != 0
+}
 
 // In says whether atom a belongs to the core of the group; an unknown id is in no molecule.
 func (s *Subject) In(id string, a int) bool {
@@ -135,7 +164,7 @@ func (s *Subject) Instances(id string) [][]int32 {
 	if g < 0 {
 		return nil
 	}
-	return s.fill(g).instances
+	return s.list(g)
 }
 
 // within keeps the keys whose classes text has, where a group has several alternative patterns.

@@ -1,28 +1,38 @@
 package pattern
 
-import "shelfward/molecule"
+import (
+	"sync"
 
-// Subject is a molecule made ready for matching: it caches which atoms belong to which group. A
-// Subject is not safe for concurrent use; the molecule in it is.
+	"shelfward/molecule"
+)
+
+// Subject is a molecule made ready for matching: it holds an index of the molecule's atoms and bonds and
+// caches which atoms belong to which group. A Subject is not safe for concurrent use; the molecule in it is.
 type Subject struct {
-	M      *molecule.Molecule
-	groups *Groups
-	count  [119]uint16   // atoms per element, a quick refusal
-	member []*groupAtoms // per group, filled on first use; nil before any group was asked for
+	M        *molecule.Molecule
+	groups   *Groups
+	atom     []atomCode
+	bond     []uint8 // order bits and bondRingBit
+	elements [2]uint64
+	features features
+	count    [119]uint16   // atoms per element, a quick refusal
+	member   []*groupAtoms // per group, filled on first use
 }
 
-// groupAtoms holds the instances of one group in one molecule.
+// groupAtoms holds the occurrences of one group in one molecule.
 type groupAtoms struct {
-	in        []bool
+	in        []uint64 // bit set of the atoms of the core
+	listed    bool     // instances are known
 	instances [][]int32
 }
+
+// noAtoms is shared by all groups that do not occur.
+var noAtoms = &groupAtoms{listed: true}
 
 // NewSubject prepares m; groups may be nil.
 func NewSubject(m *molecule.Molecule, groups *Groups) *Subject {
 	s := &Subject{M: m, groups: groups}
-	for a := 0; a < m.NumAtoms(); a++ {
-		s.count[m.Atom(a).Element]++
-	}
+	s.index()
 	return s
 }
 
@@ -37,20 +47,25 @@ func (q *Query) Each(s *Subject, yield func(Mapping) bool) {
 
 // EachWithin is Each with a further filter: allowed says for a query atom whether an atom may take it.
 func (q *Query) EachWithin(s *Subject, allowed func(queryAtom, a int) bool, yield func(Mapping) bool) {
-	for _, n := range q.needed {
-		if s.count[n.element] < n.count {
-			return
-		}
+	c := q.screened()
+	if !q.possible(s, c) {
+		return
 	}
-	x := matcher{q: q, s: s, allowed: allowed, yield: yield,
-		to: make([]int32, len(q.Atoms)), used: make([]bool, s.M.NumAtoms())}
+	x := newMatcher(q, s, c)
+	x.allowed, x.yield = allowed, yield
 	x.step(0)
+	x.free()
 }
 
 // Matches says whether q occurs in s at all.
 func (q *Query) Matches(s *Subject) bool {
-	found := false
-	q.Each(s, func(Mapping) bool { found = true; return false })
+	c := q.screened()
+	if !q.possible(s, c) {
+		return false
+	}
+	x := newMatcher(q, s, c)
+	found := !x.step(0) // without yield the first mapping ends the search
+	x.free()
 	return found
 }
 
@@ -58,41 +73,85 @@ func (q *Query) Matches(s *Subject) bool {
 type matcher struct {
 	q       *Query
 	s       *Subject
+	screen  *screen
 	allowed func(queryAtom, a int) bool
 	yield   func(Mapping) bool
+	collect bool // gather sets of atoms instead of calling yield
 	to      []int32
 	used    []bool
+	sets    []int32 // the sets gathered, one after the other, each sorted
+	set     []int32
 }
 
-// step matches the plan from place k on and returns false when yield wanted no more.
+var matchers = sync.Pool{New: func() any { return new(matcher) }}
+
+func newMatcher(q *Query, s *Subject, c *screen) *matcher {
+	x := matchers.Get().(*matcher)
+	x.q, x.s, x.screen = q, s, c
+	if cap(x.to) < len(q.Atoms) {
+		x.to, x.set = make([]int32, MaxAtoms), make([]int32, MaxAtoms)
+	}
+	x.to, x.set = x.to[:len(q.Atoms)], x.set[:len(q.Atoms)]
+	if n := len(s.atom); len(x.used) < n {
+		x.used = make([]bool, n+n/2) // all false between runs
+	}
+	return x
+}
+
+// free gives x back. A run that panics keeps it.
+func (x *matcher) free() {
+	x.q, x.s, x.screen, x.allowed, x.yield, x.collect = nil, nil, nil, nil, nil, false
+	matchers.Put(x)
+}
+
+// step matches the plan from place k on and returns false when no more is wanted.
 func (x *matcher) step(k int) bool {
 	if k == len(x.q.plan) {
+		switch {
+		case x.collect:
+			x.addSet()
+			return true
+		case x.yield == nil:
+			return false
+		}
 		return x.yield(x.to)
 	}
 	st := &x.q.plan[k]
+	c := &x.screen.atoms[st.atom]
 	if st.anchor < 0 {
-		for a := 0; a < x.s.M.NumAtoms(); a++ {
-			if !x.try(st, a, k) {
+		for a, code := range x.s.atom {
+			if code&c.mask == c.value && !x.used[a] && !x.try(st, c, a, k) {
 				return false
 			}
 		}
 		return true
 	}
+	bond := &x.q.Bonds[st.bond]
 	for _, n := range x.s.M.Neighbors(int(x.to[st.anchor])) {
-		if !x.used[n.Atom] && x.bondFits(st.bond, int(n.Bond)) && !x.try(st, int(n.Atom), k) {
+		if x.s.atom[n.Atom]&c.mask != c.value || bond.orders&x.s.bond[n.Bond] == 0 || x.used[n.Atom] {
+			continue
+		}
+		if bond.tests != nil && !bond.testsFit(x.s, int(n.Bond)) {
+			continue
+		}
+		if !x.try(st, c, int(n.Atom), k) {
 			return false
 		}
 	}
 	return true
 }
 
-func (x *matcher) try(st *planStep, a, k int) bool {
-	if x.used[a] || !x.atomFits(st.atom, a) {
+// try takes atom a, whose code fits, for the query atom of st.
+func (x *matcher) try(st *planStep, c *atomScreen, a, k int) bool {
+	if c.several && c.elements[x.s.atom[a]&elementMask>>6]>>(x.s.atom[a]&63)&1 == 0 {
 		return true
 	}
-	for _, c := range st.closing {
-		b := x.s.M.BondBetween(a, int(x.to[c.atom]))
-		if b < 0 || !x.bondFits(c.bond, b) {
+	if c.slow && !x.q.Atoms[st.atom].restFits(x.s, a) || x.allowed != nil && !x.allowed(st.atom, a) {
+		return true
+	}
+	for _, cl := range st.closing {
+		b := x.s.M.BondBetween(a, int(x.to[cl.atom]))
+		if b < 0 || x.q.Bonds[cl.bond].orders&x.s.bond[b] == 0 || !x.q.Bonds[cl.bond].testsFit(x.s, b) {
 			return true
 		}
 	}
@@ -102,26 +161,22 @@ func (x *matcher) try(st *planStep, a, k int) bool {
 	return more
 }
 
-func (x *matcher) atomFits(query, a int) bool {
-	return x.q.Atoms[query].fits(x.s, a) && (x.allowed == nil || x.allowed(query, a))
-}
-
-func (qa *QueryAtom) fits(s *Subject, a int) bool {
-	at := s.M.Atom(a)
-	if qa.Elements != nil && !hasElement(qa.Elements, at.Element) || hasElement(qa.Forbidden, at.Element) {
-		return false
-	}
-	if qa.aromatic != eitherAromatic && (qa.aromatic == onlyAromatic) != at.Aromatic {
-		return false
-	}
-	if !qa.AnyCharge && qa.Charge != at.Charge || qa.Hydrogens >= 0 && qa.Hydrogens != hydrogens(s.M, a) {
-		return false
-	}
-	if qa.Isotope != 0 && qa.Isotope != at.Isotope {
+// restFits checks what the code of an atom does not hold.
+func (qa *QueryAtom) restFits(s *Subject, a int) bool {
+	if qa.Isotope != 0 && qa.Isotope != s.M.Atom(a).Isotope || hasElement(qa.Forbidden, s.M.Atom(a).Element) {
 		return false
 	}
 	for _, t := range qa.tests {
 		if !t(s, a) {
+			return false
+		}
+	}
+	return true
+}
+
+func (qb *QueryBond) testsFit(s *Subject, b int) bool {
+	for _, t := range qb.tests {
+		if !t(s, b) {
 			return false
 		}
 	}
@@ -148,19 +203,6 @@ func hydrogens(m *molecule.Molecule, a int) int {
 	return n
 }
 
-func (x *matcher) bondFits(query, b int) bool {
-	qb := &x.q.Bonds[query]
-	if qb.orders&orderBit(x.s.M.Bond(b)) == 0 {
-		return false
-	}
-	for _, t := range qb.tests {
-		if !t(x.s, b) {
-			return false
-		}
-	}
-	return true
-}
-
 func orderBit(b molecule.Bond) uint8 {
 	switch {
 	case b.Aromatic:
@@ -175,16 +217,39 @@ func orderBit(b molecule.Bond) uint8 {
 
 // AtomSets returns the distinct sets of atoms that q's mappings cover, each sorted, in order of discovery.
 func (q *Query) AtomSets(s *Subject) [][]int32 {
+	c := q.screened()
+	if !q.possible(s, c) {
+		return nil
+	}
+	x := newMatcher(q, s, c)
+	x.collect, x.sets = true, x.sets[:0]
+	x.step(0)
 	var sets [][]int32
-	q.Each(s, func(to Mapping) bool {
-		set := append([]int32(nil), to...)
-		sortInt32(set)
-		if !containsSet(sets, set) {
-			sets = append(sets, set)
+	if n := len(q.Atoms); len(x.sets) > 0 {
+		all := append(make([]int32, 0, len(x.sets)), x.sets...)
+		sets = make([][]int32, 0, len(all)/n)
+		for i := 0; i < len(all); i += n {
+			sets = append(sets, all[i:i+n:i+n])
 		}
-		return true
-	})
+	}
+	x.free()
 	return sets
+}
+
+// addSet adds the set of the atoms mapped to, unless it is there.
+func (x *matcher) addSet() {
+	n := copy(x.set, x.to)
+	sortInt32(x.set)
+next:
+	for i := len(x.sets) - n; i >= 0; i -= n { // equal sets are found soon after each other
+		for k, a := range x.sets[i : i+n] {
+			if a != x.set[k] {
+				continue next
+			}
+		}
+		return
+	}
+	x.sets = append(x.sets, x.set...)
 }
 
 func sortInt32(x []int32) {

@@ -8,6 +8,7 @@ package pattern
 
 import (
 	"fmt"
+	"sync/atomic"
 
 	"shelfward/molecule"
 )
@@ -44,6 +45,8 @@ type QueryAtom struct {
 	Isotope   uint16
 	aromatic  aromaticity
 	tests     []atomTest
+
+	mask, value atomCode // words that the code of an atom answers
 }
 
 // QueryBond joins the query atoms A and B.
@@ -96,6 +99,7 @@ type Query struct {
 
 	needed []need // lower bounds for a quick refusal
 	plan   []planStep
+	screen atomic.Pointer[screen] // made by the first match
 }
 
 // need is a number of atoms of one element that a match takes at least.

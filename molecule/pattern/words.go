@@ -109,12 +109,16 @@ func (qa *QueryAtom) addWord(f []string, groups *Groups) error {
 	case "any charge":
 		qa.AnyCharge = true
 		return nil
-	case "sp3", "sp2", "sp":
-		return qa.test(func(s *Subject, a int) bool { return Hybridisation(s.M, a) == phrase })
+	case "sp3":
+		return qa.narrow(shapeMask, shapeSP3<<shapeShift)
+	case "sp2":
+		return qa.narrow(shapeMask, shapeSP2<<shapeShift)
+	case "sp":
+		return qa.narrow(shapeMask, shapeSP<<shapeShift)
 	case "in a ring":
-		return qa.test(func(s *Subject, a int) bool { return s.M.InRing(a) })
+		return qa.narrow(ringBit, ringBit)
 	case "not in a ring":
-		return qa.test(func(s *Subject, a int) bool { return !s.M.InRing(a) })
+		return qa.narrow(ringBit, 0)
 	case "bridgehead":
 		return qa.test(func(s *Subject, a int) bool { return Bridgehead(s.M, a) })
 	case "not bridgehead":
@@ -124,6 +128,14 @@ func (qa *QueryAtom) addWord(f []string, groups *Groups) error {
 		return qa.addPhrase(f, groups)
 	}
 	return fmt.Errorf("unknown word; see rules/patterns.md")
+}
+
+// narrow is need, or a test that nothing passes where words contradict each other.
+func (qa *QueryAtom) narrow(mask, value atomCode) error {
+	if qa.need(mask, value) {
+		return nil
+	}
+	return qa.test(func(*Subject, int) bool { return false })
 }
 
 func (qa *QueryAtom) test(t atomTest) error {
@@ -164,6 +176,12 @@ func (qa *QueryAtom) addPhrase(f []string, groups *Groups) error {
 			lo, hi, err := numberRange(f[len(words):])
 			if err != nil {
 				return err
+			}
+			if lo == hi && lo < 15 && name == "hydrogens" {
+				return qa.narrow(hydrogensMask, atomCode(lo)<<hydrogensShift)
+			}
+			if lo == hi && lo < 15 && name == "heavy neighbours" {
+				return qa.narrow(heavyMask, atomCode(lo)<<heavyShift)
 			}
 			return qa.test(func(s *Subject, a int) bool { n := count(s.M, a); return n >= lo && n <= hi })
 		}

@@ -1,0 +1,74 @@
+package pattern
+
+import (
+	"syscall"
+	"testing"
+	"time"
+)
+
+// Values of testdata/patterns/reference_patterns.py on two cores of the machine that the figures of
+// this project were made on: pairs per second over all pairs, microseconds per matching pair.
+const (
+	referencePairs    = 513_000
+	referenceMatching = 5.6
+)
+
+// cpu is the processor time that this process has used, the collector included: the clock on the wall
+// says little on a machine that others use too.
+func cpu(b *testing.B) time.Duration {
+	b.Helper()
+	var u syscall.Rusage
+	if err := syscall.Getrusage(syscall.RUSAGE_SELF, &u); err != nil {
+		b.Fatal(err)
+	}
+	return time.Duration(u.Utime.Nano() + u.Stime.Nano())
+}
+
+// BenchmarkSixty finds all unique matches of sixty patterns in the open set and prints the rate as a
+// multiple of the reference. Making the subject (with its feature index) is counted.
+func BenchmarkSixty(b *testing.B) {
+	c, groups := sixty(b)
+	set := openSet(b)
+	run := func(keep func(mol, p int) bool) (pairs, matches int) {
+		for k, m := range set {
+			s := NewSubject(m, groups)
+			for i := range c.Patterns {
+				if keep(k, i) {
+					pairs++
+					matches += len(c.Patterns[i].query.AtomSets(s))
+				}
+			}
+		}
+		return pairs, matches
+	}
+	b.Run("all", func(b *testing.B) {
+		b.ReportAllocs()
+		pairs, start := 0, cpu(b)
+		for b.Loop() {
+			n, _ := run(func(int, int) bool { return true })
+			pairs += n
+		}
+		rate := float64(pairs) / (cpu(b) - start).Seconds()
+		b.ReportMetric(rate/referencePairs, "xreference")
+		b.ReportMetric(rate, "pairs/s")
+	})
+	b.Run("matching", func(b *testing.B) {
+		hit := make([][]bool, len(set))
+		for k, m := range set {
+			hit[k] = make([]bool, len(c.Patterns))
+			s := NewSubject(m, groups)
+			for i := range c.Patterns {
+				hit[k][i] = c.Patterns[i].query.Matches(s)
+			}
+		}
+		b.ReportAllocs()
+		pairs, start := 0, cpu(b)
+		for b.Loop() {
+			n, _ := run(func(k, i int) bool { return hit[k][i] })
+			pairs += n
+		}
+		each := (cpu(b) - start).Seconds() * 1e6 / float64(pairs)
+		b.ReportMetric(referenceMatching/each, "xreference")
+		b.ReportMetric(each, "us/pair")
+	})
+}
