@@ -151,9 +151,9 @@ func (w *writer) head() {
 			if !c.Known && c.FromStep == 0 && !isWater(&c) && !slices.Contains(w.out.Unknown, c.Name) {
 				w.out.Unknown = append(w.out.Unknown, c.Name)
 			}
-			if c.Mmol > 0 && c.material != nil && c.supply.Unknown() && !slices.Contains(blind, c.Name) {
+			if text := c.noAmount(); text != "" && !slices.Contains(blind, c.Name) {
 				blind = append(blind, c.Name)
-				w.doubt("%s: no strength is known, so no amount is printed: titrate, then V = n/c.", c.Name)
+				w.doubt("%s: %s.", c.Name, text)
 			}
 			for _, f := range w.desk.Hazards.Watched(hazard.Substance{Name: c.Name, Reagent: c.Reagent, Molecule: c.Molecule}) {
 				if !slices.Contains(w.out.Watched, f.Text) {
@@ -169,6 +169,19 @@ func (w *writer) head() {
 			w.doubt("%s", d)
 		}
 	}
+}
+
+// noAmount says why no amount of a charge could be worked out; empty if one was, or none was asked for.
+func (c *Charge) noAmount() string {
+	switch {
+	case c.Mmol == 0 || c.FromStep > 0 || c.MassG > 0 || c.VolumeML > 0:
+		return ""
+	case c.material == nil:
+		return "not in the lists, so no amount is printed: " + digits(c.Mmol) + " mmol by its data sheet"
+	case c.supply.Solution:
+		return "no strength is known, so no amount is printed: titrate, then V = n/c for " + digits(c.Mmol) + " mmol"
+	}
+	return "no molar mass is known, so no amount is printed: " + digits(c.Mmol) + " mmol by its data sheet"
 }
 
 // told says whether a doubt of the route is on the sheet already, with its amounts.

@@ -81,6 +81,8 @@ func (s Supply) form() string {
 	switch {
 	case s.Solution && !s.Strength.Known():
 		return "strength not stated"
+	case s.Unknown():
+		return "molar mass unknown"
 	case s.Strength.MolarM > 0:
 		text := strconv.FormatFloat(s.Strength.MolarM, 'f', -1, 64)
 		if s.Strength.MolarM < 10 && s.Strength.MolarM == float64(int(s.Strength.MolarM)) {
