@@ -92,9 +92,10 @@ func (p *profile) apart(q *profile) (only, lacks int) {
 
 // guesser estimates how far a molecule is from what it could be made from.
 type guesser struct {
-	shelf []*profile
-	owed  []*profile               // per set of items owed: the profiles of the items added up
-	near  []map[molecule.Key]uint8 // what one, two ... steps from an item of From give: the items that lead there
+	shelf     []*profile
+	owed      []*profile               // per set of items owed: the profiles of the items added up
+	near      []map[molecule.Key]uint8 // what one, two ... steps from an item of From give: the items that lead there
+	nearShelf map[molecule.Key]bool    // what one step from an item of a small shelf gives
 }
 
 // forwardBook runs transforms forwards; *reactions.Book does.
@@ -126,6 +127,9 @@ func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule, deeper 
 		return
 	}
 	partners := append(slices.Clone(from), smallest(shelf)...)
+	if !deeper {
+		g.aroundShelf(forward, shelf, partners)
+	}
 	g.near = nil
 	for i, m := range from {
 		a := &ahead{item: i, level: [][]*molecule.Molecule{{m}}, seen: map[molecule.Key]bool{m.FlatKey(): true}}
@@ -135,6 +139,33 @@ func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule, deeper 
 		}
 		a.step(forward, nil, mostOnAlone)
 		g.remember(a)
+	}
+}
+
+// mostShelf is the size of shelf, in carbon compounds, up to which what lies one step from every item is
+// worked out; beyond it would take longer than it saves.
+const mostShelf = 40
+
+// aroundShelf finds what one step from any item of a small shelf gives.
+func (g *guesser) aroundShelf(forward forwardBook, shelf, partners []*molecule.Molecule) {
+	var items []*molecule.Molecule
+	for _, m := range shelf {
+		if hasCarbon(m) {
+			items = append(items, m)
+		}
+	}
+	if len(items) > mostShelf {
+		return
+	}
+	g.nearShelf = map[molecule.Key]bool{}
+	for _, m := range items {
+		list, err := forward.Products(context.Background(), m, partners)
+		if err != nil {
+			return
+		}
+		for _, p := range list {
+			g.nearShelf[p.FlatKey()] = true
+		}
 	}
 }
 
@@ -217,6 +248,9 @@ func (g *guesser) steps(m *molecule.Molecule, owed uint8) float64 {
 				return float64(1 + i)
 			}
 		}
+	}
+	if owed == 0 && g.nearShelf[m.FlatKey()] {
+		return 1
 	}
 	p := profileOf(m)
 	if owed != 0 {
