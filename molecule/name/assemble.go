@@ -325,6 +325,11 @@ func (b *assembly) acidRoot(u *unit, q *piece) error {
 // suffixAt puts the suffix t on atom a (for an end suffix: a is its first atom). Nitrogen locants get
 // the locant of the host behind the N where the suffix occurs several times.
 func (b *assembly) suffixAt(t *template, a int, host string, q *piece, several bool) error {
+	if t.cation {
+		b.Atoms[a].Charge = 1
+		b.spare[a]++
+		return nil
+	}
 	var at []int
 	if t.end {
 		at = b.copyTemplate(t, a)

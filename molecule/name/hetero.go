@@ -12,6 +12,12 @@ func (w *writer) heteroParents() []*candidate {
 		switch w.element(x) {
 		case 14:
 			list = append(list, &candidate{order: []int32{x}, base: "silane", locants: []string{"1"}})
+		case 15:
+			if d := w.degree(x) + w.hydrogens(x); d == 3 && len(w.around(x).doubles) == 0 {
+				list = append(list, &candidate{order: []int32{x}, base: "phosphane", locants: []string{"1"}})
+			} else if r := w.around(x); d == 4 && len(r.doubles) == 1 && w.element(r.doubles[0]) == 6 {
+				list = append(list, &candidate{order: []int32{x}, base: "phosphorane", locants: []string{"1"}})
+			}
 		case 7:
 			list = append(list, w.nitrogenParents(x)...)
 		}
@@ -67,7 +73,7 @@ func heteroParentRank(base string) int {
 		return 1
 	case "hydrazine", "diazene":
 		return 2
-	case "phosphane":
+	case "phosphane", "phosphorane":
 		return 3
 	}
 	return 5

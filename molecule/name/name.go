@@ -29,12 +29,13 @@ type writer struct {
 	stamp    int32
 	known    map[[2]int32]sub // substituent names by atom and neighbour
 	depth    int
-	fail     bool // something has no name
+	cation   int32 // the ring atom that an ium ending names, -1 none
+	fail     bool  // something has no name
 }
 
 // newWriter prepares the naming of one connected molecule.
 func newWriter(m *molecule.Molecule) *writer {
-	w := &writer{m: m, known: map[[2]int32]sub{}}
+	w := &writer{m: m, cation: -1, known: map[[2]int32]sub{}}
 	w.position = make([]int32, m.NumAtoms())
 	w.stamped = make([]int32, m.NumAtoms())
 	w.findRings()
@@ -95,6 +96,9 @@ func (w *writer) root() string {
 		if g != nil && g.class == senior {
 			s.groups = append(s.groups, g)
 		}
+	}
+	if name := w.mineralName(senior); name != "" || w.fail {
+		return name
 	}
 	if name := w.polyolEster(s); name != "" || w.fail {
 		return name

@@ -157,7 +157,7 @@ func TestReadErrors(t *testing.T) {
 
 // TestRefused: what lies outside has no name rather than a wrong one.
 func TestRefused(t *testing.T) {
-	for _, s := range []string{"[13CH4]", "[CH3]", "C[Hg]C", "*C", "C[N+](C)(C)CC([O-])=O", "FS(F)(F)(F)(F)F"} {
+	for _, s := range []string{"[13CH4]", "[CH3]", "C[Fe]C", "*C", "C[N+](C)(C)CC([O-])=O", "FS(F)(F)(F)(F)F"} {
 		if got := Of(mustRead(t, s)); got != "" {
 			t.Errorf("%s is named %s", s, got)
 		}

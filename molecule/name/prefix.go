@@ -572,10 +572,16 @@ func (w *writer) threeNitrogens(z, a int32) bool {
 
 // phosphorusPrefix names phosphono, phosphoryl and phosphanyl groups.
 func (w *writer) phosphorusPrefix(a, from int32, order int) sub {
-	if order != 1 || !w.plain(a) {
+	if !w.plain(a) {
 		return sub{}
 	}
 	r := w.around(a)
+	if order == 2 && w.element(from) == 6 && w.degree(a)+r.hydrogens == 4 && len(r.doubles) == 1 {
+		return w.radical(a, from, "phosphoranylidene")
+	}
+	if order != 1 {
+		return sub{}
+	}
 	if len(r.doubles) == 0 && w.degree(a)+r.hydrogens == 3 {
 		return w.radical(a, from, "phosphanyl")
 	}

@@ -90,6 +90,12 @@ func readWords(words []string) (*molecule.Molecule, error) {
 	}
 	last := words[len(words)-1]
 	if len(words) > 1 {
+		if m, err := readSalt(words); m != nil || err != nil {
+			return m, err
+		}
+		if last == "anhydride" {
+			return readAnhydride(words[:len(words)-1])
+		}
 		if at, count := oxideWord(last); count > 0 {
 			return readOxide(words[:len(words)-1], at, count)
 		}
@@ -193,6 +199,18 @@ func readHalide(words []string, e molecule.Element, count int) (*molecule.Molecu
 		return nil, fmt.Errorf("a halide of several words")
 	}
 	b := &assembly{}
+	if metalWord(words[0]) {
+		q, err := b.word(words[0], asMolecule, "")
+		if err != nil {
+			return nil, err
+		}
+		for range count {
+			if err := b.join(q.atoms[0], b.add(e), 1); err != nil {
+				return nil, err
+			}
+		}
+		return b.finish()
+	}
 	q, err := b.word(words[0], asRadical, "")
 	if err != nil {
 		return nil, err
@@ -272,6 +290,15 @@ func readEster(words []string) (*molecule.Molecule, error) {
 	taken := 0
 	used := make([]bool, len(q.esters))
 	for _, w := range words[:len(words)-1] {
+		if n := hydrogenWord(w); n > 0 {
+			for range n {
+				if k := slices.Index(used, false); k >= 0 {
+					used[k] = true
+					taken++
+				}
+			}
+			continue
+		}
 		w = strings.TrimPrefix(strings.TrimPrefix(w, "S-"), "O-")
 		parts, err := esterRadicals(w)
 		if err != nil {

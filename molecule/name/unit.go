@@ -94,7 +94,7 @@ func (w *writer) chargeAllowed(a int32) bool {
 	if w.element(a) != 7 || w.charge(a) != 1 || !w.inRing(a) {
 		return false
 	}
-	return w.oxideOxygen(a) >= 0
+	return a == w.cation || w.oxideOxygen(a) >= 0
 }
 
 // oxideOxygen is the O- on atom a, -1 if none.

@@ -80,6 +80,8 @@ func (p *plan) bare(w *writer, list []affix) bool {
 	switch {
 	case p.group != nil:
 		return total == 1
+	case p.base == "phosphane" || p.base == "phosphorane":
+		return true
 	case p.base == "hydroxylamine":
 		return false
 	case p.base != "":
