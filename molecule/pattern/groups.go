@@ -102,22 +102,20 @@ func (s *Subject) fill(g int) *groupAtoms {
 	if ga := s.member[g]; ga != nil {
 		return ga
 	}
-	ga := noAtoms
+	var ga *groupAtoms
 	for qi, q := range s.groups.list[g].Queries {
 		c := q.screened()
 		if !q.possible(s, c) {
 			continue
 		}
-		core := s.groups.list[g].core[qi]
-		q.Each(s, func(to Mapping) bool {
-			if ga == noAtoms {
-				ga = &groupAtoms{in: make([]uint64, (len(s.atom)+63)/64)}
-			}
-			for _, i := range core {
-				ga.in[to[i]>>6] |= 1 << (to[i] & 63)
-			}
-			return true
-		})
+		x := newMatcher(q, s, c)
+		x.core, x.group = s.groups.list[g].core[qi], ga
+		x.step(0)
+		ga = x.group
+		x.free()
+	}
+	if ga == nil {
+		ga = noAtoms
 	}
 	s.member[g] = ga
 	return ga

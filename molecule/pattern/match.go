@@ -21,10 +21,14 @@ type Subject struct {
 
 // groupAtoms holds the occurrences of one group in one molecule.
 type groupAtoms struct {
-	in        []uint64 // bit set of the atoms of the core
-	listed    bool     // instances are known
+	in        []uint64 // bit set of the atoms of the core, nil: none
+	small     [1]uint64
+	listed    bool // instances are known
 	instances [][]int32
 }
+
+// mark adds a to the atoms of the core.
+func (ga *groupAtoms) mark(a int32) { ga.in[a>>6] |= 1 << (a & 63) }
 
 // noAtoms is shared by all groups that do not occur.
 var noAtoms = &groupAtoms{listed: true}
@@ -76,7 +80,9 @@ type matcher struct {
 	screen  *screen
 	allowed func(queryAtom, a int) bool
 	yield   func(Mapping) bool
-	collect bool // gather sets of atoms instead of calling yield
+	collect bool        // gather sets of atoms instead of calling yield
+	core    []int       // with group: the query atoms to mark
+	group   *groupAtoms // mark atoms in it instead of calling yield
 	to      []int32
 	used    []bool
 	sets    []int32 // the sets gathered, one after the other, each sorted
@@ -100,7 +106,7 @@ func newMatcher(q *Query, s *Subject, c *screen) *matcher {
 
 // free gives x back. A run that panics keeps it.
 func (x *matcher) free() {
-	x.q, x.s, x.screen, x.allowed, x.yield, x.collect = nil, nil, nil, nil, nil, false
+	x.q, x.s, x.screen, x.allowed, x.yield, x.collect, x.core, x.group = nil, nil, nil, nil, nil, false, nil, nil
 	matchers.Put(x)
 }
 
@@ -110,6 +116,9 @@ func (x *matcher) step(k int) bool {
 		switch {
 		case x.collect:
 			x.addSet()
+			return true
+		case x.core != nil:
+			x.markCore()
 			return true
 		case x.yield == nil:
 			return false
@@ -159,6 +168,19 @@ func (x *matcher) try(st *planStep, c *atomScreen, a, k int) bool {
 	more := x.step(k + 1)
 	x.used[a] = false
 	return more
+}
+
+// markCore marks the atoms of the core in the group, which is made by the first.
+func (x *matcher) markCore() {
+	if x.group == nil {
+		x.group = &groupAtoms{}
+		if x.group.in = x.group.small[:]; len(x.s.atom) > 64 {
+			x.group.in = make([]uint64, (len(x.s.atom)+63)/64)
+		}
+	}
+	for _, i := range x.core {
+		x.group.mark(x.to[i])
+	}
 }
 
 // restFits checks what the code of an atom does not hold.
