@@ -29,6 +29,9 @@ func newCompareCommand(app *App) *cobra.Command {
 }
 
 func (o *compareOptions) run(ctx context.Context, text string) error {
+	if err := o.flags.check(); err != nil {
+		return err
+	}
 	j, err := o.app.openFor(ctx, text, func(doubts []string) any { return compare.FromPlan(emptyPlan(doubts)) })
 	if err != nil {
 		return err

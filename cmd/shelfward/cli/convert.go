@@ -18,6 +18,7 @@ import (
 	"shelfward/molecule"
 	"shelfward/molecule/draw"
 	"shelfward/molecule/molfile"
+	"shelfward/molecule/name"
 	"shelfward/molecule/smiles"
 )
 
@@ -31,10 +32,10 @@ type convertOptions struct {
 func newConvertCommand(app *App) *cobra.Command {
 	o := &convertOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, formula, svg", Args: exactly(1),
-		Long: "Reads a .smi, .mol, .sdf or .rxn file; '-' is standard input. To smiles and formula it prints one line per record:\n" +
+		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, formula, name, svg", Args: exactly(1),
+		Long: "Reads a .smi, .mol, .sdf or .rxn file; '-' is standard input. To smiles, formula and name it prints one line per record:\n" +
 			"value, tab, title. A .rxn file becomes one line of reaction SMILES, or its molecules in the order reactants, agents,\n" +
-			"products. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" +
+			"products. A structure that has no name here gives an empty one. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" +
 			"SD, mol and SVG output leave failed records out.\n" + exitHelp,
 		Example: "  shelfward convert shelf.smi --to smiles\n  echo 'OCC ethanol' | shelfward convert - --to formula\n  shelfward convert drawing.sdf --to smiles",
 		RunE: func(c *cobra.Command, args []string) error {
@@ -47,7 +48,7 @@ func newConvertCommand(app *App) *cobra.Command {
 }
 
 // formatNames lists the values of --to.
-const formatNames = "smiles, mol, sdf, formula or svg"
+const formatNames = "smiles, mol, sdf, formula, name or svg"
 
 // formats turn one record into its text. The line formats give a value for 'value, tab, title'; the
 // others give a whole block of lines.
@@ -57,6 +58,7 @@ var formats = map[string]struct {
 }{
 	"smiles":  {func(r *molfile.Record) (string, error) { return smiles.Write(r.Molecule), nil }, true},
 	"formula": {func(r *molfile.Record) (string, error) { return r.Molecule.Formula().String(), nil }, true},
+	"name":    {func(r *molfile.Record) (string, error) { return name.Of(r.Molecule), nil }, true},
 	"mol":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.Write) }, false},
 	"sdf":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteSD) }, false},
 	"svg": {func(r *molfile.Record) (string, error) {

@@ -50,7 +50,7 @@ const maxMaxSteps = 40
 // hazardCode tells an H code among the words of --avoid.
 var hazardCode = regexp.MustCompile(`^[Hh][0-9]{3}[A-Za-z]*$`)
 
-// check refuses numbers that mean nothing.
+// check refuses what means nothing whatever the target, before anything is loaded.
 func (f *planFlags) check() error {
 	switch {
 	case f.count < 1:
@@ -61,17 +61,22 @@ func (f *planFlags) check() error {
 		return usageError("--time %v: more than 0s was expected", f.time)
 	case f.maxExpanded < 0:
 		return usageError("--max-expanded %d: 1 or more was expected, or 0 for no limit", f.maxExpanded)
+	case len(f.from) > search.MaxFrom:
+		return usageError("--from: at most %d starting materials, found %d", search.MaxFrom, len(f.from))
 	}
-	return nil
+	if f.make != "" {
+		if _, err := readAmount(f.make); err != nil {
+			return usageError("--make: %v", err)
+		}
+	}
+	_, err := route.ParseRankBy(f.rankBy)
+	return failWith(exitUsage, err)
 }
 
 // options turns flags and case file into planning options.
 func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OneEnantiomer: f.oneEnantiomer,
 		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.time, MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
-	if err := f.check(); err != nil {
-		return o, err
-	}
 	for _, word := range f.avoid {
 		if hazardCode.MatchString(word) {
 			if err := j.room.Hazards.CheckCode("H" + word[1:]); err != nil {
@@ -79,18 +84,17 @@ func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 			}
 		}
 	}
-	by, err := route.ParseRankBy(f.rankBy)
-	if err != nil {
+	var err error
+	if o.RankBy, err = route.ParseRankBy(f.rankBy); err != nil {
 		return o, failWith(exitUsage, err)
 	}
-	o.RankBy = by
 	if len(f.from) > 0 {
 		if o.From, err = j.resolveAll("--from", f.from); err != nil {
 			return o, err
 		}
 	}
-	if len(o.From) > search.MaxFrom {
-		return o, usageError("--from: at most %d starting materials", search.MaxFrom)
+	if len(o.From) > search.MaxFrom { // those of a case file; check has counted the flags
+		return o, usageError("from: at most %d starting materials, found %d", search.MaxFrom, len(o.From))
 	}
 	if f.make != "" {
 		if o.MakeMol, err = molOf(f.make, j.target); err != nil {
@@ -191,6 +195,9 @@ func newRoutesCommand(app *App) *cobra.Command {
 }
 
 func (o *routesOptions) run(ctx context.Context, text string) error {
+	if err := o.flags.check(); err != nil {
+		return err
+	}
 	j, err := o.app.openFor(ctx, text, func(doubts []string) any { return emptyPlan(doubts) })
 	if err != nil {
 		return err

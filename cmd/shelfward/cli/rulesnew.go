@@ -36,8 +36,8 @@ func (app *App) rulesNew(id string) error {
 	if info, err := os.Stat(dir); err != nil || !info.IsDir() {
 		return usageError("%s: a folder was expected", dir)
 	}
-	b, err := app.book()
-	if err == nil && b.Transform(id) != nil {
+	b, _ := app.book() // other unfinished files of the folder are no reason to write none
+	if b != nil && b.Transform(id) != nil {
 		return usageError("the id %s is taken: %s", id, b.Transform(id).File)
 	}
 	path := filepath.Join(dir, id+".yaml")

@@ -40,6 +40,9 @@ func newRunCommand(app *App) *cobra.Command {
 }
 
 func (o *runOptions) run(ctx context.Context, path string) error {
+	if err := o.flags.check(); err != nil {
+		return err
+	}
 	j, err := o.app.readCase(path)
 	if err != nil {
 		return err

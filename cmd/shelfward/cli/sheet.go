@@ -41,6 +41,9 @@ func newSheetCommand(app *App) *cobra.Command {
 }
 
 func (o *sheetOptions) run(ctx context.Context, text string) error {
+	if err := o.flags.check(); err != nil {
+		return err
+	}
 	j, err := o.app.openFor(ctx, text, func(doubts []string) any { return emptySheet(doubts) })
 	if err != nil {
 		return err

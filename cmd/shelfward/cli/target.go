@@ -333,19 +333,25 @@ func (app *App) workers() int {
 	return runtime.GOMAXPROCS(0)
 }
 
-// molOf reads an amount to make as mol of the target.
-func molOf(text string, target *molecule.Molecule) (float64, error) {
+// readAmount reads an amount to make: a mass or an amount of substance.
+func readAmount(text string) (shelf.Amount, error) {
 	a, err := shelf.ParseAmount(text)
 	if err != nil {
-		return 0, fmt.Errorf("%s: an amount such as 5 g, 20 mmol or 1 kg was expected", quoted(text))
+		return a, fmt.Errorf("%s: an amount such as 5 g, 20 mmol or 1 kg was expected", quoted(text))
 	}
-	switch {
-	case a.Mol > 0:
-		return a.Mol, nil
-	case a.Grams > 0:
-		return a.Grams / target.Formula().MolarMass(), nil
+	if a.Mol <= 0 && a.Grams <= 0 {
+		return a, fmt.Errorf("%q: a mass or an amount of substance was expected, such as 5 g or 20 mmol", text)
 	}
-	return 0, fmt.Errorf("%q: a mass or an amount of substance was expected, such as 5 g or 20 mmol", text)
+	return a, nil
+}
+
+// molOf reads an amount to make as mol of the target.
+func molOf(text string, target *molecule.Molecule) (float64, error) {
+	a, err := readAmount(text)
+	if err != nil || a.Mol > 0 {
+		return a.Mol, err
+	}
+	return a.Grams / target.Formula().MolarMass(), nil
 }
 
 // echo is the first line of every result: what was read.
