@@ -46,8 +46,11 @@ func enclose(name string) string {
 	return "(" + name + ")"
 }
 
-// ringBracket says whether the bracket that begins s belongs to a ring name: [2.2.1], [3,4-d], [1,3].
+// ringBracket says whether the bracket that begins s belongs to a ring name: [2.2.1], [3,4-d], [1,3], [1,1'-biphenyl].
 func ringBracket(s string) bool {
+	if strings.HasPrefix(s[1:], biphenylName) {
+		return true
+	}
 	for i := 1; i < len(s); i++ {
 		c := s[i]
 		switch {

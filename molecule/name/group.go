@@ -260,6 +260,9 @@ func (w *writer) acylGroup(a, x, y, host int32, within bool) *group {
 			g.class, g.forms = ester, forms{chain: "oate", side: "carboxylate"}
 		case w.hydrogens(y) == 1:
 			g.class, g.forms = acid, forms{chain: "oic", side: "carboxylic", word: "acid"}
+		case w.degree(y) == 2 && w.plain(y) && !w.inRing(y) && w.isHydroxy(w.across(y, a)):
+			g.class, g.forms = acid, forms{chain: "peroxoic", side: "carboperoxoic", word: "acid"}
+			g.used = append(g.used, w.across(y, a))
 		case w.esterOxygen(y, a):
 			g.class, g.forms, g.esters = ester, forms{chain: "oate", side: "carboxylate"}, []int32{y}
 		default:

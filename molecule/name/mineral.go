@@ -92,6 +92,9 @@ func (w *writer) oxoAcid(x int32) string {
 			return ""
 		}
 	}
+	if w.element(x) == 15 && len(r.doubles) == 1 && len(r.singles) == 0 && len(r.carbons) == 3 {
+		return w.radical(x, r.doubles[0], "phosphane").name + " oxide"
+	}
 	root := oxoRoot(w.element(x), len(r.doubles), len(r.singles), len(r.carbons), r.hydrogens)
 	if root == "" || len(r.triples) > 0 {
 		return ""
@@ -179,7 +182,7 @@ func (w *writer) anhydride(o int32) string {
 			g.hosts = []int32{host}
 		}
 		if host >= 0 && w.inRing(host) {
-			list = ringCandidates(w.rings[w.ringOf[host]])
+			list = w.ringParents(host, o)
 		} else {
 			list = w.chainCandidates(c, s)
 		}

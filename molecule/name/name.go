@@ -20,17 +20,18 @@ const maxDepth = 24
 
 // writer is the working memory for one molecule.
 type writer struct {
-	m        *molecule.Molecule
-	ringOf   []int32 // atom -> ring system, -1 none
-	rings    []*ringSystem
-	groupOf  []*group // key atom -> its group
-	position []int32  // atom -> position+1 in the candidate at hand, 0 outside
-	stamped  []int32  // atom -> stamp of the plan that expressed it last
-	stamp    int32
-	known    map[[2]int32]sub // substituent names by atom and neighbour
-	depth    int
-	cation   int32 // the ring atom that an ium ending names, -1 none
-	fail     bool  // something has no name
+	m         *molecule.Molecule
+	ringOf    []int32 // atom -> ring system, -1 none
+	rings     []*ringSystem
+	biphenyls []*ringSystem // pairs of joined benzene rings, beside rings
+	groupOf   []*group      // key atom -> its group
+	position  []int32       // atom -> position+1 in the candidate at hand, 0 outside
+	stamped   []int32       // atom -> stamp of the plan that expressed it last
+	stamp     int32
+	known     map[[2]int32]sub // substituent names by atom and neighbour
+	depth     int
+	cation    int32 // the ring atom that an ium ending names, -1 none
+	fail      bool  // something has no name
 }
 
 // newWriter prepares the naming of one connected molecule.
@@ -39,6 +40,7 @@ func newWriter(m *molecule.Molecule) *writer {
 	w.position = make([]int32, m.NumAtoms())
 	w.stamped = make([]int32, m.NumAtoms())
 	w.findRings()
+	w.findBiphenyls()
 	w.findGroups()
 	return w
 }
@@ -111,6 +113,9 @@ func (w *writer) root() string {
 	for _, r := range w.rings {
 		list = append(list, ringCandidates(r)...)
 	}
+	for _, r := range w.biphenyls {
+		list = append(list, ringCandidates(r)...)
+	}
 	list = append(list, w.chainCandidates(-1, s)...)
 	if len(list) == 0 {
 		w.fail = true
@@ -141,14 +146,4 @@ func ringCandidates(r *ringSystem) []*candidate {
 		list[i] = &candidate{ring: r, order: o, locants: r.locants}
 	}
 	return list
-}
-
-// ringBroken says whether some ring system has no name.
-func (w *writer) ringBroken() bool {
-	for _, r := range w.rings {
-		if !r.ok {
-			return true
-		}
-	}
-	return false
 }

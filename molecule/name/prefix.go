@@ -80,7 +80,7 @@ func (w *writer) ringPrefix(a, from int32, order int) sub {
 	if !r.ok || order > 2 {
 		return sub{}
 	}
-	name := w.choose(ringCandidates(r), spec{attach: a, double: order == 2, blocked: from})
+	name := w.choose(w.ringParents(a, from), spec{attach: a, double: order == 2, blocked: from})
 	return sub{name: name, compound: !plainWord(name)}
 }
 
@@ -212,7 +212,7 @@ func (w *writer) unitOf(g *group, host, blocked int32) sub {
 	var list []*candidate
 	switch {
 	case w.inRing(host):
-		list = ringCandidates(w.rings[w.ringOf[host]])
+		list = w.ringParents(host, blocked)
 	case w.element(host) == 7:
 		for _, c := range w.nitrogenParents(host) {
 			if c.base == "hydrazine" {

@@ -136,6 +136,9 @@ func (b *assembly) word(s string, m mode, ester string) (*piece, error) {
 
 // oxideWord reads "1-oxide", "1,1-dioxide".
 func oxideWord(w string) (at []string, count int) {
+	if w == "oxide" {
+		return []string{"1"}, 1 // of a phosphane
+	}
 	i := strings.LastIndexByte(w, '-')
 	if i < 0 {
 		return nil, 0

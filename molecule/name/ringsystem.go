@@ -30,6 +30,7 @@ type ringSystem struct {
 	orders    [][]int32 // numberings: position -> atom
 	free      int       // ringMancude: indicated hydrogens that the ring always has
 	ok        bool
+	biphenyl  bool
 	equal     bool // all positions of the unsubstituted ring are alike
 	seniority []int
 	skeleton  *mancude // ringMancude: made when first needed

@@ -148,6 +148,8 @@ func (p *plan) coreName(w *writer, bare bool) string {
 		return p.hydrideName(p.ring.name, bare)
 	case p.saturated:
 		return p.ring.saturated
+	case p.ring.biphenyl && (p.attach >= 0 || len(p.places) > 0):
+		return "[" + biphenylName + "]"
 	}
 	return p.ring.name
 }
