@@ -82,7 +82,7 @@ func (s Supply) form() string {
 	case s.Solution && !s.Strength.Known():
 		return "strength not stated"
 	case s.Unknown():
-		return "molar mass unknown"
+		return massUnknown
 	case s.Strength.MolarM > 0:
 		text := strconv.FormatFloat(s.Strength.MolarM, 'f', -1, 64)
 		if s.Strength.MolarM < 10 && s.Strength.MolarM == float64(int(s.Strength.MolarM)) {
@@ -99,8 +99,11 @@ func (s Supply) form() string {
 	return assumedPure
 }
 
-// assumedPure is the form of what nobody stated the purity of.
-const assumedPure = "assumed pure"
+// Forms of what nobody stated the purity of, and of what has no single molar mass.
+const (
+	assumedPure = "assumed pure"
+	massUnknown = "molar mass unknown"
+)
 
 func inText(solvent string) string {
 	if solvent == "" {

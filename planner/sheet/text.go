@@ -178,7 +178,7 @@ func (s *Sheet) textStock(p *printer) {
 
 // name is the first cell of a stock line; a form that nobody stated matters only beside an amount.
 func (l *StockLine) name() string {
-	if l.MassG == 0 && l.VolumeML == 0 && l.Form == assumedPure {
+	if l.MassG == 0 && l.VolumeML == 0 && (l.Form == assumedPure || l.Form == massUnknown) {
 		return l.Name + casText(l.CAS)
 	}
 	return l.Name + casText(l.CAS) + formText(l.Form)
