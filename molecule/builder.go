@@ -105,8 +105,7 @@ func (p *perceiver) build(b *Builder) (*Molecule, error) {
 func (p *perceiver) connect() error {
 	m := p.m
 	n := len(m.atoms)
-	ints := make([]int32, n+1+len(m.bonds))
-	m.first, m.bondRing = ints[:n+1:n+1], ints[n+1:]
+	m.first = make([]int32, n+1)
 	for i := range m.bonds {
 		x := &m.bonds[i]
 		if x.A < 0 || x.B < 0 || int(x.A) >= n || int(x.B) >= n {
@@ -158,12 +157,16 @@ func (p *perceiver) findRings() {
 		return
 	}
 	rings := p.finder.Find(m.first, m.neighbors, p.inRing)
-	m.rings, p.relevant = rings.Basis, rings.Relevant
+	p.relevant = rings.Relevant
+	m.rings = compact(rings.Basis)
 	for i := range m.bonds {
 		m.bonds[i].Ring = p.inRing[i]
 	}
+	if len(m.rings) > 0 {
+		m.bondRing = make([]uint16, len(m.bonds))
+	}
 	for _, r := range m.rings {
-		size := int32(len(r))
+		size := uint16(len(r)) // at most MaxAtoms
 		for i, a := range r {
 			b := m.BondBetween(int(a), int(r[(i+1)%len(r)]))
 			if m.bondRing[b] == 0 || size < m.bondRing[b] {
@@ -171,6 +174,24 @@ func (p *perceiver) findRings() {
 			}
 		}
 	}
+}
+
+// compact copies rings into as little memory as they need.
+func compact(rings [][]int32) [][]int32 {
+	if len(rings) == 0 {
+		return nil
+	}
+	total := 0
+	for _, r := range rings {
+		total += len(r)
+	}
+	out, atoms := make([][]int32, len(rings)), make([]int32, 0, total)
+	for i, r := range rings {
+		at := len(atoms)
+		atoms = append(atoms, r...)
+		out[i] = atoms[at:len(atoms):len(atoms)]
+	}
+	return out
 }
 
 func sizedBools(s []bool, n int) []bool {

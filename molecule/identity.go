@@ -14,9 +14,11 @@ func (k Key) String() string { return hex.EncodeToString(k[:]) }
 // identity is the outcome of one labelling.
 type identity struct {
 	key    Key
-	ranks  []int32
-	orbits []int32
+	places []int32 // ranks, then orbits
 }
+
+func (id *identity) ranks() []int32  { n := len(id.places) / 2; return id.places[:n:n] }
+func (id *identity) orbits() []int32 { return id.places[len(id.places)/2:] }
 
 // label labels m with or without its stereo marks.
 func (m *Molecule) label(stereo bool) *identity {
@@ -25,7 +27,7 @@ func (m *Molecule) label(stereo bool) *identity {
 	l := p.worker.Label(&p.graph)
 	p.graph.First, p.graph.Neighbors = nil, nil
 	perceivers.Put(p)
-	id := &identity{ranks: l.Ranks, orbits: l.Orbits}
+	id := &identity{places: l.Ranks[:2*len(l.Ranks)]}
 	binary.BigEndian.PutUint64(id.key[:8], l.Hash[0])
 	binary.BigEndian.PutUint64(id.key[8:], l.Hash[1])
 	return id
@@ -53,15 +55,15 @@ func (m *Molecule) flatIdentity() *identity {
 }
 
 // Ranks gives each atom its place in the canonical order (a permutation): shared, read only.
-func (m *Molecule) Ranks() []int32 { return m.exactIdentity().ranks }
+func (m *Molecule) Ranks() []int32 { return m.exactIdentity().ranks() }
 
 // Orbits gives each atom the lowest index of the atoms equivalent to it by symmetry, stereo
 // included: shared, read only. Mirror-related (enantiotopic) atoms are equivalent where no mark
 // tells them apart.
-func (m *Molecule) Orbits() []int32 { return m.exactIdentity().orbits }
+func (m *Molecule) Orbits() []int32 { return m.exactIdentity().orbits() }
 
 // FlatOrbits is Orbits with stereo left out.
-func (m *Molecule) FlatOrbits() []int32 { return m.flatIdentity().orbits }
+func (m *Molecule) FlatOrbits() []int32 { return m.flatIdentity().orbits() }
 
 // Key is the exact identity: constitution, isotopes, charges and stereo marks; never atom classes.
 // It is the same on every machine and in every run of one version of the program.

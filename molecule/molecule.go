@@ -61,7 +61,7 @@ type Molecule struct {
 	first       []int32    // atom -> start of its neighbours, one more entry than atoms
 	neighbors   []Neighbor // all adjacency lists, one after the other
 	rings       [][]int32
-	bondRing    []int32 // bond -> size of its smallest ring, 0 none
+	bondRing    []uint16 // bond -> size of its smallest ring, 0 none; nil without rings
 	centers     []Center
 	doubleBonds []DoubleBond
 	pentavalent bool // some nitrogen has five bonds
@@ -110,7 +110,7 @@ func (m *Molecule) Rings() [][]int32 { return m.rings }
 // InRing says whether a lies in a ring.
 func (m *Molecule) InRing(a int) bool {
 	for _, nb := range m.Neighbors(a) {
-		if m.bondRing[nb.Bond] > 0 {
+		if m.bonds[nb.Bond].Ring {
 			return true
 		}
 	}
@@ -119,17 +119,22 @@ func (m *Molecule) InRing(a int) bool {
 
 // SmallestRing returns the size of the smallest ring through atom a, 0 if none.
 func (m *Molecule) SmallestRing(a int) int {
-	size := int32(0)
+	size := 0
 	for _, nb := range m.Neighbors(a) {
-		if r := m.bondRing[nb.Bond]; r > 0 && (size == 0 || r < size) {
+		if r := m.SmallestBondRing(int(nb.Bond)); r > 0 && (size == 0 || r < size) {
 			size = r
 		}
 	}
-	return int(size)
+	return size
 }
 
 // SmallestBondRing returns the size of the smallest ring through bond b, 0 if none.
-func (m *Molecule) SmallestBondRing(b int) int { return int(m.bondRing[b]) }
+func (m *Molecule) SmallestBondRing(b int) int {
+	if m.bondRing == nil {
+		return 0
+	}
+	return int(m.bondRing[b])
+}
 
 // Centers lists the tetrahedral marks kept (void marks are dropped): shared, read only.
 func (m *Molecule) Centers() []Center { return m.centers }

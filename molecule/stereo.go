@@ -153,7 +153,7 @@ func (p *perceiver) legalDoubleBond(d DoubleBond) (DoubleBond, bool) {
 		return d, false
 	}
 	x := &m.bonds[d.Bond]
-	if x.Order != 2 || x.Aromatic || m.bondRing[d.Bond] > 0 && m.bondRing[d.Bond] < smallestStereoRing {
+	if x.Order != 2 || x.Aromatic || x.Ring && m.SmallestBondRing(int(d.Bond)) < smallestStereoRing {
 		return d, false
 	}
 	for _, e := range m.doubleBonds {

@@ -46,7 +46,7 @@ type Graph struct {
 
 // Labelling is the result of Label.
 type Labelling struct {
-	Ranks  []int32 // atom -> place in the canonical order
+	Ranks  []int32 // atom -> place in the canonical order; its capacity spans Orbits, which lies behind it
 	Orbits []int32 // atom -> lowest atom equivalent to it
 	Hash   [2]uint64
 }
@@ -66,7 +66,7 @@ func (w *Worker) Label(g *Graph) *Labelling {
 	n := len(g.Colours)
 	out := &Labelling{}
 	room := make([]int32, 2*n)
-	out.Ranks, out.Orbits = room[:n:n], room[n:]
+	out.Ranks, out.Orbits = room[:n], room[n:]
 	pieces := w.split(g)
 	if pieces == 1 {
 		w.search.run(g)

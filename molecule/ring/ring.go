@@ -12,7 +12,7 @@ type Neighbor = struct{ Atom, Bond int32 }
 // Rings is what Finder.Find reports.
 type Rings struct {
 	// Basis is a minimum cycle basis, each ring its atoms in cyclic order, short rings first
-	// inside each block of the graph. It belongs to the caller.
+	// inside each block of the graph. It is valid until the next call.
 	Basis [][]int32
 	// Relevant are the relevant cycles; it shares the rings of Basis where the two agree. When a
 	// block has more than maxRelevant of them only one per family is listed. It is valid until the
@@ -34,6 +34,7 @@ type Finder struct {
 	used        []bool  // bond already pushed
 	block       blockFinder
 	intsForRing []int32 // arena for rings
+	basis       [][]int32
 	relevant    [][]int32
 }
 
@@ -44,7 +45,7 @@ func (f *Finder) Find(first []int32, nbrs []Neighbor, inRing []bool) Rings {
 	f.order, f.low = zeroed(f.order, n), zeroed(f.low, n)
 	f.next, f.via = sized(f.next, n), sized(f.via, n)
 	f.path, f.bonds = f.path[:0], f.bonds[:0]
-	f.intsForRing = nil
+	f.intsForRing = f.intsForRing[:0]
 	if cap(f.used) < len(inRing) {
 		f.used = make([]bool, len(inRing)+len(inRing)/2)
 	}
@@ -58,7 +59,7 @@ func (f *Finder) Find(first []int32, nbrs []Neighbor, inRing []bool) Rings {
 		}
 	}
 	copy(f.next, first[:n])
-	out := Rings{Relevant: f.relevant[:0]}
+	out := Rings{Basis: f.basis[:0], Relevant: f.relevant[:0]}
 	time := int32(0)
 	for root := int32(0); root < int32(n); root++ {
 		if f.order[root] != 0 {
@@ -97,7 +98,7 @@ func (f *Finder) Find(first []int32, nbrs []Neighbor, inRing []bool) Rings {
 			}
 		}
 	}
-	f.relevant = out.Relevant
+	f.basis, f.relevant = out.Basis, out.Relevant
 	return out
 }
 
@@ -152,7 +153,7 @@ func (f *Finder) localIndex(a int32) int32 {
 // arena returns an empty slice with room for n atoms.
 func (f *Finder) arena(n int) []int32 {
 	if cap(f.intsForRing)-len(f.intsForRing) < n {
-		f.intsForRing = make([]int32, 0, max(4*n, 24))
+		f.intsForRing = make([]int32, 0, max(4*n, 256))
 	}
 	at := len(f.intsForRing)
 	f.intsForRing = f.intsForRing[:at+n]
