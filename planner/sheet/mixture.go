@@ -45,8 +45,9 @@ func (w *writer) mixture(s *Step, set *reactions.Conditions, full float64) {
 	concentration(s, full)
 }
 
+// capital begins a sentence with a name; a prefix such as n- or o- stays small, N- would mean nitrogen.
 func capital(s string) string {
-	if s == "" || s[0] < 'a' || s[0] > 'z' {
+	if len(s) < 2 || s[0] < 'a' || s[0] > 'z' || s[1] == '-' {
 		return s
 	}
 	return strings.ToUpper(s[:1]) + s[1:]

@@ -148,18 +148,26 @@ func (w *writer) crude(s *Step, src *route.Step, set *reactions.Conditions) erro
 	for _, c := range s.From {
 		add("unchanged "+shown(c), c.Molecule)
 	}
+	setFree := map[molecule.Key]bool{}
+	if src.Judged != nil {
+		for _, b := range src.Judged.Byproducts {
+			setFree[b.Molecule.FlatKey()] = true
+			if b.Molecule.Formula().Count[6] > 0 {
+				add(shown(w.compound(b.Molecule))+" (set free)", b.Molecule)
+			}
+		}
+	}
 	rivals, err := w.rivals(s, src)
 	if err != nil {
 		return err
 	}
 	for _, p := range rivals {
-		add(shown(w.compound(p.Molecule))+" ("+p.Share.String()+" share by the rules)", p.Molecule)
-	}
-	if src.Judged != nil {
-		for _, b := range src.Judged.Byproducts {
-			if f := b.Molecule.Formula(); f.Count[6] > 0 && f.Count[6] <= s.Product.Molecule.Formula().Count[6] {
-				add(shown(w.compound(b.Molecule))+" (set free)", b.Molecule)
+		if !setFree[p.Molecule.FlatKey()] {
+			what := " (" + p.Share.String() + " share by the rules"
+			if nominal(p.Molecule) == nominal(s.Product.Molecule) {
+				what += "; the mass of the product: NMR or a chromatogram tells"
 			}
+			add(shown(w.compound(p.Molecule))+what+")", p.Molecule)
 		}
 	}
 	for _, t := range set.Cautions {
