@@ -122,11 +122,14 @@ func (f *frame) hasOpen() bool {
 // maybeDependent says that ligands of a which constitution makes equal lead to marks: a could be a
 // centre because of them (one whose own mark was void, as in trans-1,3,5-trimethylcyclohexane).
 func (f *frame) maybeDependent(a int) bool {
-	m, orbits := f.m, f.m.FlatOrbits()
+	m, orbits, exact := f.m, f.m.FlatOrbits(), f.m.Orbits()
 	nbs := m.Neighbors(a)
 	for i, x := range nbs {
 		for _, y := range nbs[:i] {
-			if orbits[x.Atom] == orbits[y.Atom] && f.leadsToMark(x.Atom, int32(a)) {
+			// Chains that are equal with their marks make no centre; in a ring a dropped mark can be what
+			// made them equal.
+			alike := exact[x.Atom] == exact[y.Atom] && !m.Bond(int(x.Bond)).Ring
+			if orbits[x.Atom] == orbits[y.Atom] && !alike && f.leadsToMark(x.Atom, int32(a)) {
 				return true
 			}
 		}
