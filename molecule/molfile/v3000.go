@@ -54,7 +54,7 @@ func (b *block) table3() error {
 	if atoms > molecule.MaxAtoms {
 		return b.fail("the structure has %d atoms; at most %d are accepted", atoms, molecule.MaxAtoms)
 	}
-	b.sawCharge = true // charges stand on the atoms
+	b.sawCharge = true                   // charges stand on the atoms
 	place := make(map[string]int, atoms) // index as written -> atom
 	for {
 		s, err := b.v30("END CTAB")
