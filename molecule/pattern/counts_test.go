@@ -117,3 +117,12 @@ func TestCounts(t *testing.T) {
 		t.Errorf("%d structures, expected 4993", len(set))
 	}
 }
+
+func readFile(t testing.TB, path string) string {
+	t.Helper()
+	text, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return string(text)
+}
