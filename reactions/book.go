@@ -200,6 +200,7 @@ func (x *expander) draft(t *Transform, p proposal) *draft {
 
 // step looks for condition sets under which the rest of the molecules survives.
 func (d *draft) step() (*Step, []Objection) {
+	d.orderByParts()
 	if !d.found || fatal(d.objections) {
 		return nil, d.under(nil)
 	}
@@ -235,6 +236,43 @@ func (d *draft) step() (*Step, []Objection) {
 	}
 	d.setAmounts(s)
 	return s, nil
+}
+
+// orderByParts puts the materials into the order of the transform's parts: the first is the one that
+// solvent volumes are counted on. With a companion the order stays.
+func (d *draft) orderByParts() {
+	if !d.found || len(d.together) > 0 {
+		return
+	}
+	place := make([]int, len(d.reactants))
+	for i := range place {
+		place[i] = -1
+	}
+	var order []int
+	for _, l := range d.outcome.laid {
+		if which := d.outcome.copies[l.copy]; place[which] < 0 {
+			place[which] = len(order)
+			order = append(order, which)
+		}
+	}
+	if len(order) != len(d.reactants) {
+		return // some material is not needed; step refuses it
+	}
+	reactants, busy, uses := make([]*subject, len(order)), make([][]bool, len(order)), make([]int, len(order))
+	for to, from := range order {
+		reactants[to], busy[to], uses[to] = d.reactants[from], d.busy[from], d.uses[from]
+	}
+	d.reactants, d.busy, d.uses = reactants, busy, uses
+	for i := range d.origins {
+		if r := d.origins[i].Reactant; r >= 0 {
+			d.origins[i].Reactant = int32(place[r])
+		}
+	}
+	copies := make([]int, len(d.outcome.copies))
+	for i, which := range d.outcome.copies {
+		copies[i] = place[which]
+	}
+	d.outcome.copies = copies
 }
 
 func (d *draft) conditionSets() []*Conditions {
