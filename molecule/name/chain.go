@@ -25,6 +25,9 @@ func (w *writer) chainAtom(a int32, s spec, ends []bool, within bool) bool {
 	if ends[a] {
 		return within
 	}
+	if r := w.around(a); len(r.carbons)+r.hydrogens == 0 && w.noCarbonAcross(r) && len(r.doubles)+2*len(r.triples) >= 2 {
+		return false // isocyanates, thiocyanates and the like are prefixes
+	}
 	if g := w.groupOf[a]; g != nil {
 		switch g.class {
 		case acid, nitrile:
@@ -34,6 +37,18 @@ func (w *writer) chainAtom(a int32, s spec, ends []bool, within bool) bool {
 		}
 		if g.class == amidine && !g.within || len(g.hosts) == 1 && g.hosts[0] != a && w.element(g.hosts[0]) != 6 {
 			return false
+		}
+	}
+	return true
+}
+
+// noCarbonAcross says whether the multiple bonds of r lead to heteroatoms only.
+func (w *writer) noCarbonAcross(r around) bool {
+	for _, list := range [][]int32{r.doubles, r.triples} {
+		for _, x := range list {
+			if w.element(x) == 6 {
+				return false
+			}
 		}
 	}
 	return true

@@ -56,7 +56,7 @@ func ringBracket(s string) bool {
 		switch {
 		case c == ']':
 			return true
-		case c >= '0' && c <= '9' || c == '.' || c == ',' || c == '-' || c == '\'':
+		case c >= '0' && c <= '9' || c == '.' || c == '^' || c == ',' || c == '-' || c == '\'':
 		case c >= 'a' && c <= 'z' && i+1 < len(s) && (s[i+1] == ']' || s[i+1] == ','):
 		default:
 			return false

@@ -53,6 +53,7 @@ type group struct {
 	esters    []int32 // ester oxygens (or sulfurs)
 	nitrogens []int32 // nitrogens whose hydrogens are substitutable, in the order N, N'
 	used      []int32 // atoms that the ending expresses, key and nitrogens included
+	oxide     bool    // an amine oxide
 	double    bool    // takes two valences of its host: one, imine
 }
 
@@ -536,11 +537,19 @@ func (w *writer) sulfurGroup(a int32) *group {
 
 // amineGroup finds amines: nitrogen on carbon that belongs to no other group.
 func (w *writer) amineGroup(a int32) *group {
-	if w.inRing(a) || !w.plain(a) || !w.plainAmine(a, -1) {
+	oxide := int32(-1)
+	if w.charge(a) == 1 && w.degree(a) == 4 {
+		oxide = w.oxideOxygen(a)
+	}
+	if w.inRing(a) || oxide < 0 && !w.plain(a) || oxide < 0 && !w.plainAmine(a, -1) {
 		return nil
 	}
 	r := w.around(a)
-	if len(r.carbons) == 0 {
+	if oxide >= 0 && len(r.carbons) == 3 {
+		g := &group{class: amine, forms: forms{chain: "amine"}, hosts: r.carbons, used: []int32{a, oxide}, nitrogens: []int32{a}, oxide: true}
+		return g
+	}
+	if len(r.carbons) == 0 || !w.plain(a) {
 		return nil
 	}
 	var hosts []int32

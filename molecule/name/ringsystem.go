@@ -91,6 +91,8 @@ func (w *writer) nameRing(s *ringSystem) {
 	case s.rings == 2 && w.nameFusion(s):
 	case s.rings == 2:
 		w.nameBicycle(s)
+	default:
+		w.nameCage(s)
 	}
 	if !s.ok {
 		return

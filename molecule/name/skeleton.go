@@ -99,6 +99,8 @@ func (p *parser) hydridesAt(i, end int) []found {
 	rest := text[k:]
 	if s, n := cageAt(rest); s != nil && replaced.apply(s) {
 		ring(s, k+n)
+	} else if s, n := polycycleAt(rest); s != nil && replaced.apply(s) {
+		ring(s, k+n)
 	} else if tail, ok := strings.CutPrefix(rest, "cyclo"); ok {
 		for _, n := range stemsAt(tail) {
 			if s := cycleSkeleton(n.size); n.size > 2 && replaced.apply(s) {

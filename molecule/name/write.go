@@ -34,6 +34,14 @@ func (w *writer) write(p *plan, list []affix) string {
 	// Brackets around a parent are not needed: locants keep the prefixes apart.
 	name := joined(prefixes(list, bare), base) + tail
 	name = w.esterWords(p, name)
+	for _, g := range p.places {
+		if g.oxide {
+			if len(p.places) > 1 {
+				w.fail = true
+			}
+			name += " N-oxide"
+		}
+	}
 	if len(p.oxides) > 0 {
 		if p.attach >= 0 || strings.Contains(tail, " ") {
 			w.fail = true
@@ -192,10 +200,10 @@ func (p *plan) bondLocants(at []int) string {
 
 // partner is the other end of the multiple bond number i of at; -1 in chains, where it follows.
 func (p *plan) partner(at []int, i int) int {
-	if p.ring == nil || p.partnerOf == nil {
-		return -1
+	if y, ok := p.partnerOf[at[i]]; ok {
+		return y
 	}
-	return p.partnerOf[at[i]]
+	return -1
 }
 
 // freeValence makes the substituent name of base: yl or ylidene at the attached atom.
