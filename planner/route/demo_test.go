@@ -46,7 +46,7 @@ func TestDemoRouteA(t *testing.T) {
 		t.Fatal("no route")
 	}
 	r := &p.Routes[0]
-	if got := r.Starts(); got != "2-bromopentane, propanal" || len(r.Steps) != 2 || route.Percent(r.OverallYield) != "34-47-59" {
+	if got := r.Starts(); got != "propanal, 2-bromopentane" || len(r.Steps) != 2 || route.Percent(r.OverallYield) != "34-47-59" {
 		t.Errorf("%s: %d steps from %s, yield %s", r.Code, len(r.Steps), got, route.Percent(r.OverallYield))
 	}
 	for _, m := range r.StartingMaterials {
