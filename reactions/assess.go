@@ -248,8 +248,9 @@ func preferenceSource(t *Transform) string {
 // racemate. An isolated centre left open is racemic; several open marks mean a mixture.
 func (a *assessment) judgeStereo(ms []*subject) {
 	c, handed := a.cover, false
-	for _, s := range ms {
-		handed = handed || len(s.M.Centers()) > 0 && s.M.Mirror().Key() != s.M.Key()
+	for _, which := range a.outcome.copies {
+		s := ms[which]
+		handed = handed || !s.relative && len(s.M.Centers()) > 0 && s.M.Mirror().Key() != s.M.Key()
 	}
 	switch {
 	case c.exact:
@@ -262,12 +263,35 @@ func (a *assessment) judgeStereo(ms []*subject) {
 		a.racemic = true
 	case c.openRaw:
 		a.objections = append(a.objections, Objection{Kind: KindStereo, Text: "the geometry of the new double bond is not controlled: a mixture of E and Z"})
+	case c.open == 1 && len(a.outcome.pieces[a.pieceIndex].m.Centers()) == 0 && handed && a.loses(ms):
+		a.objections = append(a.objections, Objection{Kind: KindStereo, Fatal: true,
+			Text: "the centre loses its configuration in this step: a racemate, not one enantiomer"})
 	case c.open == 1 && len(a.outcome.pieces[a.pieceIndex].m.Centers()) == 0:
 		a.racemic = true
 	default:
 		a.objections = append(a.objections, Objection{Kind: KindStereo, Text: "a mixture of stereoisomers: the step leaves a marked centre open"})
 		a.fraction /= 2
 	}
+}
+
+// loses says that a marked centre of a material takes part in the edit and comes out unmarked.
+func (a *assessment) loses(ms []*subject) bool {
+	p := a.outcome.pieces[a.pieceIndex]
+	for _, to := range a.outcome.mappings {
+		for _, x := range to {
+			if x < 0 || indexOf(p.from, x) < 0 {
+				continue
+			}
+			c, atom := a.outcome.pool.locate(x)
+			if _, marked := centerAt(ms[a.outcome.copies[c]].M, atom); !marked {
+				continue
+			}
+			if _, still := centerAt(p.m, int32(indexOf(p.from, x))); !still {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // judgeOver looks for a second reaction at an equal or better site of the product.

@@ -148,6 +148,7 @@ func (b *Book) checkMedia(t *Transform, ex Example, a *assessment, from []*subje
 // the last one where none is clean.
 func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject) (sets int, last []Objection) {
 	busy := a.outcome.busyAtoms(from)
+	weighed := t.otherSites(from, busy)
 	for _, c := range t.Conditions {
 		if ex.With != "" && c.ID != ex.With || !t.appliesTo(c, &a.outcome) {
 			continue
@@ -155,7 +156,7 @@ func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject
 		sets++
 		list := a.under(c)
 		for i, r := range from {
-			list = append(list, b.media.objections(c.Media, r.Subject, b.groups, busy[i], nil)...)
+			list = append(list, b.media.objections(c.Media, r.Subject, b.groups, busy[i], weighed[i])...)
 		}
 		if len(list) == 0 {
 			return sets, nil

@@ -260,6 +260,9 @@ func (t *Transform) findSignificant() {
 	}
 	for _, r := range t.script.relations {
 		matters[r.a], matters[r.b] = true, true
+		for _, slot := range r.all {
+			matters[slot] = true
+		}
 	}
 	for d := range t.part {
 		for i := range t.part[d] {

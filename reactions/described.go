@@ -14,11 +14,13 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 		return s
 	}
 	explained := make([]bool, len(j.mentions))
+	early := false // a reagent of the step itself serves, not only the work-up
 	for _, ch := range c.Reagents {
 		hit := false
 		for i := range j.mentions {
 			if j.serves(&j.mentions[i], ch) {
 				hit, explained[i] = true, true
+				early = early || !j.mentions[i].late
 			}
 		}
 		if hit && !ch.Optional {
@@ -37,7 +39,7 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 	}
 	for _, name := range c.WorkupMaterials {
 		for i := range j.mentions {
-			if r := j.find(name); r != nil && r == j.mentions[i].r {
+			if r := j.find(name); r != nil && r == j.mentions[i].r && !j.mentions[i].main {
 				explained[i] = true
 			}
 		}
@@ -46,6 +48,9 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 		if m.active && !explained[i] {
 			s.unexplained = append(s.unexplained, m.r.Name)
 		}
+	}
+	if s.served > 0 && !early && len(s.unexplained) > 0 && len(s.missing) == 0 {
+		s.missing = append(s.missing, "its reagents before the work-up")
 	}
 	s.matched = len(s.missing) == 0 && j.factsAllow(c, &s)
 	return s

@@ -16,11 +16,12 @@ const maxCombinations = 600
 // subject is a molecule ready for matching, with its key.
 type subject struct {
 	*pattern.Subject
-	key molecule.Key
+	key      molecule.Key
+	relative bool // its marks say only how centres stand to each other: a racemate
 }
 
 func (b *Book) subject(m *molecule.Molecule) *subject {
-	return &subject{pattern.NewSubject(m, b.groups), m.Key()}
+	return &subject{Subject: pattern.NewSubject(m, b.groups), key: m.Key()}
 }
 
 // subjects keeps the molecules of one expansion: many transforms propose the same precursors. Not safe
@@ -37,7 +38,7 @@ func (c *subjects) of(m *molecule.Molecule) *subject {
 	if s := c.byKey[k]; s != nil {
 		return s
 	}
-	s := &subject{pattern.NewSubject(m, c.b.groups), k}
+	s := &subject{Subject: pattern.NewSubject(m, c.b.groups), key: k}
 	c.byKey[k] = s
 	return s
 }
@@ -398,7 +399,7 @@ func saneRings(m *molecule.Molecule) bool {
 func (t *Transform) runEverywhere(b *Book, ms []*subject, found [][][]partMatch) []outcome {
 	var out []outcome
 	for i := range ms {
-		sites := disjoint(&t.part[forward][0], found[0][i])
+		sites := disjoint(&t.part[forward][0], t.byPreference(b, ms[i], found[0][i]))
 		if len(sites) == 0 {
 			continue
 		}
@@ -410,6 +411,38 @@ func (t *Transform) runEverywhere(b *Book, ms []*subject, found [][][]partMatch)
 				return out
 			}
 		}
+	}
+	return out
+}
+
+// byPreference orders the matches of the first part, the site that the preferences favour first: where two
+// overlap (the two sides of an ether) it is the one that reacts.
+func (t *Transform) byPreference(b *Book, s *subject, matches []partMatch) []partMatch {
+	if len(t.prefers) == 0 || len(matches) < 2 {
+		return matches
+	}
+	points := make([]float64, len(matches))
+	order := make([]int, len(matches))
+	for i, m := range matches {
+		order[i] = i
+		for _, p := range t.prefers {
+			atoms := make([]int32, len(p.slots))
+			for k, slot := range p.slots {
+				atoms[k] = -1
+				if q := t.script.slots[slot].at[forward] - t.part[forward][0].first; q >= 0 && q < len(m) {
+					atoms[k] = m[q]
+				}
+			}
+			if atoms[0] >= 0 && !p.model.ring {
+				add, _ := p.model.rate(s.Subject, atoms)
+				points[i] += add
+			}
+		}
+	}
+	sort.SliceStable(order, func(x, y int) bool { return points[order[x]] > points[order[y]] })
+	out := make([]partMatch, len(matches))
+	for i, k := range order {
+		out[i] = matches[k]
 	}
 	return out
 }

@@ -69,6 +69,8 @@ type mentioned struct {
 	r      *reagent.Reagent
 	acts   map[string]bool
 	active bool // more than a solvent, a drying agent or part of the work-up
+	late   bool // an acid, a base or water named in a later stage: it may be no more than the work-up
+	main   bool // named in the first of several stages: no work-up
 }
 
 // candidate is one transform with one condition set.
@@ -90,7 +92,12 @@ func (j *judge) add(m *molecule.Molecule) {
 		if part.NumAtoms() == 1 && isMetal(part.Atom(0).Element) && part.Atom(0).Charge > 0 {
 			continue // the cation of a salt
 		}
-		j.reactants = append(j.reactants, j.b.subject(protonated(part.FreeForm())))
+		s := j.b.subject(protonated(part.FreeForm()))
+		if marked := cisFused(s.M); marked != nil {
+			s = j.b.subject(marked)
+			s.relative = true
+		}
+		j.reactants = append(j.reactants, s)
 	}
 	j.reactants = distinct(j.reactants)
 }
@@ -154,7 +161,10 @@ func (j *judge) readReagents() {
 		for _, m := range st.Mentions {
 			if m.Reagent != nil {
 				active := !st.Workup && !m.Note && (i == 0 || !quenches(m.Reagent))
-				j.mentions = append(j.mentions, mention(m.Reagent, active))
+				named := mention(m.Reagent, active)
+				named.late = i > 0 && quenches(m.Reagent)
+				named.main = i == 0 && !st.Workup && len(j.with.Stages) > 1
+				j.mentions = append(j.mentions, named)
 			}
 			if mol := mentionMolecule(m); mol != nil && !onlySolvent(m.Reagent) {
 				for _, part := range mol.Split() {
@@ -187,6 +197,9 @@ func quenches(r *reagent.Reagent) bool {
 	return false
 }
 
+// dissolves lists acts that a solvent also carries: named without further word it is there to dissolve.
+var dissolves = map[string]bool{"alcohol-reagent": true, "ketone-reagent": true}
+
 // onlySolvent says that a reagent does nothing but dissolve or dry.
 func onlySolvent(r *reagent.Reagent) bool {
 	if r == nil {
@@ -215,9 +228,10 @@ func carbons(m *molecule.Molecule) int { return int(m.Formula().Count[6]) }
 
 func mention(r *reagent.Reagent, active bool) mentioned {
 	m := mentioned{r: r, acts: map[string]bool{}}
+	solvent := r.Does("solvent")
 	for _, a := range r.Acts {
 		m.acts[a] = true
-		m.active = m.active || !passive(a)
+		m.active = m.active || !passive(a) && !(solvent && dissolves[a])
 	}
 	m.active = m.active && active
 	return m
@@ -289,10 +303,10 @@ func (j *judge) try(t *Transform, pool []*subject) {
 			continue
 		}
 		if hit.found {
-			s.objections = append(hit.under(s.c), j.media(s.c, &hit.outcome, pool)...)
+			s.objections = append(hit.under(s.c), j.media(t, s.c, &hit.outcome, pool)...)
 			j.found = append(j.found, s)
 		} else if s.matched {
-			s.objections = j.media(s.c, &outs[0], pool)
+			s.objections = j.media(t, s.c, &outs[0], pool)
 			j.others = append(j.others, s)
 		}
 	}
@@ -321,13 +335,14 @@ func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) asse
 	return best
 }
 
-func (j *judge) media(c *Conditions, o *outcome, pool []*subject) []Objection {
+func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject) []Objection {
 	busy := o.busyAtoms(pool)
 	for _, id := range c.Together {
-		if t := j.b.byID[id]; t != nil {
-			j.markCompanion(t, pool, busy)
+		if companion := j.b.byID[id]; companion != nil {
+			j.markCompanion(companion, pool, busy)
 		}
 	}
+	weighed := t.otherSites(pool, busy)
 	var out []Objection
 	for i, s := range pool {
 		used := false
@@ -335,7 +350,7 @@ func (j *judge) media(c *Conditions, o *outcome, pool []*subject) []Objection {
 			used = used || which == i
 		}
 		if used {
-			out = append(out, j.b.media.objections(c.Media, s.Subject, j.b.groups, busy[i], nil)...)
+			out = append(out, j.b.media.objections(c.Media, s.Subject, j.b.groups, busy[i], weighed[i])...)
 		}
 	}
 	return worstPerText(out)

@@ -36,10 +36,11 @@ type bondEdit struct {
 }
 
 // relation is a stereo course of two slots: an addition or elimination (syn or anti), or the geometry
-// of a double bond that is made (cis or trans).
+// of a double bond that is made (cis or trans), or a concerted course of more slots.
 type relation struct {
 	a, b int // slots
 	word string
+	all  []int // slots of a concerted course, see concerted.go
 }
 
 // script is the edit that leads from the reactant side to the product side; its negative leads back.
@@ -191,6 +192,11 @@ func (s *script) addCourse(key, word string) error {
 		sep, allowed = "=", "cis trans either"
 	} else if strings.Contains(key, "-") {
 		sep, allowed = "-", "syn anti either"
+		if n := strings.Count(key, "-") + 1; n > 2 && concerted[word] != n {
+			return fmt.Errorf("%q is not a course of %d atoms", word, n)
+		} else if n > 2 {
+			allowed = word
+		}
 	}
 	if !strings.Contains(" "+allowed+" ", " "+word+" ") {
 		return fmt.Errorf("%q is not one of: %s", word, strings.ReplaceAll(allowed, " ", ", "))
@@ -211,7 +217,9 @@ func (s *script) addCourse(key, word string) error {
 	case sep == "":
 		s.slots[at[0]].course = word
 	case word != "either" && len(at) == 2:
-		s.relations = append(s.relations, relation{at[0], at[1], word})
+		s.relations = append(s.relations, relation{at[0], at[1], word, nil})
+	case len(at) > 2:
+		s.relations = append(s.relations, relation{at[0], at[1], word, at})
 	}
 	return nil
 }

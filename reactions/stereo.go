@@ -16,6 +16,10 @@ func (e *editor) stereo(to []int32) error {
 		if a < 0 || b < 0 {
 			continue
 		}
+		if r.all != nil {
+			e.concertedAt(r, to)
+			continue
+		}
 		switch r.word {
 		case "cis", "trans":
 			e.setGeometry(a, b, r.word == "cis")

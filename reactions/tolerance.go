@@ -99,8 +99,9 @@ func kindOf(word string) Kind {
 }
 
 // objections lists what the media do to the groups of s that do not overlap the atoms marked busy.
-// Groups named in handled are carried along on purpose.
-func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *pattern.Groups, busy []bool, handled map[string]bool) []Objection {
+// Atoms marked weighed (may be nil) are other sites of the same transform: its preferences weigh them, so
+// that they compete is no objection of its own.
+func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *pattern.Groups, busy, weighed []bool) []Objection {
 	var out []Objection
 	for _, id := range media {
 		m := t.media[id]
@@ -108,15 +109,36 @@ func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *
 			continue
 		}
 		for _, gl := range m.groups {
-			if gl.level == spent || handled[gl.group] {
+			if gl.level == spent {
 				continue
 			}
-			if free := freeInstances(s, gl.group, busy); free > 0 {
+			taken := busy
+			if gl.level == competes && weighed != nil {
+				taken = weighed
+			}
+			if free := freeInstances(s, gl.group, taken); free > 0 {
 				out = append(out, m.objection(gl, groups.Name(gl.group)))
 			}
 		}
 	}
 	return worstPerText(out)
+}
+
+// otherSites adds to the busy atoms of each molecule the sites where t could act as well.
+func (t *Transform) otherSites(ms []*subject, busy [][]bool) [][]bool {
+	out := make([][]bool, len(ms))
+	for i, s := range ms {
+		out[i] = append([]bool(nil), busy[i]...)
+		for k := range t.part[forward] {
+			p := &t.part[forward][k]
+			for _, m := range p.matches(s.Subject, nil) {
+				for _, q := range p.significant {
+					out[i][m[q]] = true
+				}
+			}
+		}
+	}
+	return out
 }
 
 func freeInstances(s *pattern.Subject, group string, busy []bool) int {

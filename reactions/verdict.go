@@ -156,7 +156,8 @@ func (j *judge) concludeNothing(out *Judgement) {
 			kind = KindOther
 		}
 		out.Objections = append(out.Objections, Objection{Kind: kind, Fatal: true, Source: rival.t.Source,
-			Text: fmt.Sprintf("with these reagents %s runs and gives %s, not the product claimed", rival.t.Name, productNames(rival.a.products))})
+			Text: fmt.Sprintf("with these reagents %s runs and gives %s, not the product claimed", rival.t.Name, productNames(rival.a.products))},
+			Objection{Kind: KindNoTransform, Text: "no loaded transform leads from these materials to this product under any conditions"})
 	case len(j.known) > 0:
 		out.Verdict = Unsound
 		out.Transforms = j.known[:min(3, len(j.known))]
