@@ -70,6 +70,9 @@ func spiroSkeleton(a, b int) *skeleton {
 
 // hydridesAt lists the parent hydrides that stand at i, without their endings.
 func (p *parser) hydridesAt(i, end int) []found {
+	if i >= end {
+		return nil
+	}
 	var list []found
 	words := loaded().words
 	text := p.s[i:end]
