@@ -59,19 +59,12 @@ func TestReadmeExamples(t *testing.T) {
 	if len(commands) < 10 {
 		t.Fatalf("only %d examples found in README.md", len(commands))
 	}
-	here, err := os.Getwd()
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := os.Chdir(root); err != nil {
-		t.Fatal(err)
-	}
-	defer os.Chdir(here)
 	for _, line := range commands {
 		t.Run(line, func(t *testing.T) {
 			args := append(words(line), "--quiet")
 			var out, errOut bytes.Buffer
-			if status := Main(args, strings.NewReader("OCC ethanol\n"), &out, &errOut); status != exitDone {
+			status := inFolder(root, func() int { return sharedApp(strings.NewReader("OCC ethanol\n"), &out, &errOut).main(args) })
+			if status != exitDone {
 				t.Fatalf("status %d\n%s%s", status, out.String(), errOut.String())
 			}
 			if out.Len() == 0 {

@@ -15,6 +15,8 @@ import (
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
 
+	"shelfward/planner"
+	"shelfward/reactions"
 	"shelfward/rules"
 )
 
@@ -80,18 +82,27 @@ type App struct {
 	JSON     bool
 	Quiet    bool
 	Workers  int
+
+	// loading comes from outside too: tests share what is loaded
+	openRoom func(rules fs.FS, shelves []string, dir string) (*planner.Room, error)
+	loadBook func(rules fs.FS) (*reactions.Book, error)
 }
 
 // Main runs the command line and returns the exit status.
 func Main(args []string, in io.Reader, out, errOut io.Writer) int {
-	app := &App{In: in, Out: out, ErrOut: errOut}
+	app := &App{In: in, Out: out, ErrOut: errOut, openRoom: planner.Open, loadBook: reactions.Load}
+	return app.main(args)
+}
+
+// main runs one command line.
+func (app *App) main(args []string) int {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
 	defer stop()
 	root := app.rootCommand()
 	root.SetArgs(args)
-	root.SetIn(in)
-	root.SetOut(out)
-	root.SetErr(errOut)
+	root.SetIn(app.In)
+	root.SetOut(app.Out)
+	root.SetErr(app.ErrOut)
 	return app.report(root.ExecuteContext(ctx))
 }
 

@@ -46,7 +46,7 @@ func (app *App) book() (*reactions.Book, error) {
 	if err != nil {
 		return nil, err
 	}
-	b, err := reactions.Load(fsys)
+	b, err := app.loadBook(fsys)
 	if err != nil {
 		return b, failWith(exitUsage, err)
 	}
@@ -129,7 +129,7 @@ func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 	if err != nil {
 		return err
 	}
-	b, loadErr := reactions.Load(fsys)
+	b, loadErr := app.loadBook(fsys)
 	var list rules.ErrorList
 	if loadErr != nil && !errors.As(loadErr, &list) {
 		return failWith(exitUsage, loadErr)

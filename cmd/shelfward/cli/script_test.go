@@ -1,13 +1,16 @@
 package cli
 
 import (
+	"bytes"
 	"encoding/json"
 	"errors"
 	"fmt"
+	"io"
 	"os"
 	"os/exec"
 	"path/filepath"
 	"regexp"
+	"slices"
 	"sort"
 	"strconv"
 	"strings"
@@ -29,15 +32,16 @@ const root = "../../.."
 // TestScripts runs testdata/scripts: each file is a session at the command line with its own input
 // files; $DEMO is the folder of the demonstration. See testdata/README.md for the commands added here.
 func TestScripts(t *testing.T) {
-	demo, err := filepath.Abs(filepath.Join(root, "testdata", "demo"))
+	data, err := filepath.Abs(filepath.Join(root, "testdata")) // commands change the working directory
 	if err != nil {
 		t.Fatal(err)
 	}
 	testscript.Run(t, testscript.Params{
-		Dir:           filepath.Join(root, "testdata", "scripts"),
+		Dir:           filepath.Join(data, "scripts"),
 		UpdateScripts: os.Getenv("SHELFWARD_UPDATE") != "",
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
 			"status":   scriptStatus,
+			"ok":       scriptOK,
 			"refused":  scriptRefused,
 			"object":   scriptObject,
 			"sametext": scriptSameText,
@@ -50,7 +54,7 @@ func TestScripts(t *testing.T) {
 			return false, fmt.Errorf("unknown condition %q", cond)
 		},
 		Setup: func(env *testscript.Env) error {
-			env.Setenv("DEMO", demo)
+			env.Setenv("DEMO", filepath.Join(data, "demo"))
 			return nil
 		},
 	})
@@ -63,22 +67,35 @@ func scriptStatus(ts *testscript.TestScript, neg bool, args []string) {
 	}
 	want, err := strconv.Atoi(args[0])
 	ts.Check(err)
-	if got := exitStatus(ts, args[1:]); got != want {
+	if got, _, _ := runProgram(ts, args[1:]); got != want {
 		ts.Fatalf("status %d, want %d", got, want)
 	}
 }
 
-func exitStatus(ts *testscript.TestScript, args []string) int {
+// scriptOK is status 0: ok shelfward ...
+func scriptOK(ts *testscript.TestScript, neg bool, args []string) {
+	scriptStatus(ts, neg, append([]string{"0"}, args...))
+}
+
+// runProgram runs the program in this process, which shares what is loaded and counts for coverage; a
+// command that reads standard input runs as a process of its own.
+func runProgram(ts *testscript.TestScript, args []string) (status int, out, errOut string) {
+	if args[0] == "shelfward" && !slices.Contains(args, "-") {
+		var stdout, stderr bytes.Buffer
+		status = inFolder(ts.MkAbs("."), func() int { return sharedApp(strings.NewReader(""), &stdout, &stderr).main(args[1:]) })
+		out, errOut = stdout.String(), stderr.String()
+		io.WriteString(ts.Stdout(), out)
+		io.WriteString(ts.Stderr(), errOut)
+		return status, out, errOut
+	}
 	err := ts.Exec(args[0], args[1:]...)
 	var exit *exec.ExitError
-	switch {
-	case err == nil:
-		return exitDone
-	case errors.As(err, &exit):
-		return exit.ExitCode()
+	if errors.As(err, &exit) {
+		status = exit.ExitCode()
+	} else if err != nil {
+		ts.Fatalf("%v", err)
 	}
-	ts.Fatalf("%v", err)
-	return -1
+	return status, ts.ReadFile("stdout"), ts.ReadFile("stderr")
 }
 
 // scriptRefused runs a command on bad input: status 2, nothing on standard output, and one line of at
@@ -92,13 +109,13 @@ func scriptRefused(ts *testscript.TestScript, neg bool, args []string) {
 	if len(args[0]) > 1 && strings.HasPrefix(args[0], "/") && strings.HasSuffix(args[0], "/") {
 		pattern, args = args[0][1:len(args[0])-1], args[1:]
 	}
-	if got := exitStatus(ts, args); got != exitUsage {
+	got, out, text := runProgram(ts, args)
+	if got != exitUsage {
 		ts.Fatalf("status %d, want %d", got, exitUsage)
 	}
-	if out := ts.ReadFile("stdout"); out != "" {
+	if out != "" {
 		ts.Fatalf("standard output is not empty")
 	}
-	text := ts.ReadFile("stderr")
 	line := strings.TrimSuffix(text, "\n")
 	if !strings.HasPrefix(line, "shelfward: ") || strings.Contains(line, "\n") || len(line) > 300 {
 		ts.Fatalf("standard error is not one line of the program:\n%s", text)

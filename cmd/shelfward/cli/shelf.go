@@ -32,7 +32,7 @@ func newShelfCommand(app *App) *cobra.Command {
 }
 
 func (app *App) shelfList(word string) error {
-	room, err := app.openRoom(nil, "")
+	room, err := app.room(nil, "")
 	if err != nil {
 		return err
 	}

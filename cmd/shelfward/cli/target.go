@@ -44,8 +44,8 @@ func isFile(target string) bool {
 	return strings.HasSuffix(low, ".yaml") || strings.HasSuffix(low, ".yml") || strings.HasSuffix(low, ".json")
 }
 
-// openRoom loads rules and shelf; shelves from a case file count where the command line names none.
-func (app *App) openRoom(caseShelves []string, dir string) (*planner.Room, error) {
+// room loads rules and shelf; shelves from a case file count where the command line names none.
+func (app *App) room(caseShelves []string, dir string) (*planner.Room, error) {
 	fsys, err := app.ruleFiles()
 	if err != nil {
 		return nil, err
@@ -56,7 +56,7 @@ func (app *App) openRoom(caseShelves []string, dir string) (*planner.Room, error
 	} else {
 		dir = ""
 	}
-	room, err := planner.Open(fsys, files, dir)
+	room, err := app.openRoom(fsys, files, dir)
 	return room, failWith(exitUsage, err)
 }
 
@@ -68,7 +68,7 @@ func (app *App) openJob(ctx context.Context, text string) (*job, error) {
 	case isFile(text):
 		return app.openCase(ctx, text, identify.Options{})
 	}
-	room, err := app.openRoom(nil, "")
+	room, err := app.room(nil, "")
 	if err != nil {
 		return nil, err
 	}
@@ -123,7 +123,7 @@ func (app *App) openPlan(path string) (*job, error) {
 	if err != nil {
 		return nil, failWith(exitUsage, err)
 	}
-	room, err := app.openRoom(nil, "")
+	room, err := app.room(nil, "")
 	if err != nil {
 		return nil, err
 	}
@@ -158,7 +158,7 @@ func (app *App) readCase(path string) (*job, error) {
 	}
 	dir := filepath.Dir(path)
 	j := &job{caseFile: c}
-	if j.room, err = app.openRoom(plainTexts(c.Shelf), dir); err != nil {
+	if j.room, err = app.room(plainTexts(c.Shelf), dir); err != nil {
 		return nil, err
 	}
 	if c.Evidence != nil {
