@@ -98,8 +98,10 @@ func orderIndex(bit uint8) uint64 { return uint64(bits.TrailingZeros8(bit)) }
 func (s *Subject) index() {
 	m := s.M
 	n, nb := m.NumAtoms(), m.NumBonds()
-	s.atom = make([]atomCode, n)
-	s.bond = make([]uint8, nb)
+	if s.atom, s.bond = s.atomRoom[:], s.bondRoom[:]; n > len(s.atom) || nb > len(s.bond) {
+		s.atom, s.bond = make([]atomCode, n), make([]uint8, nb)
+	}
+	s.atom, s.bond = s.atom[:n:n], s.bond[:nb:nb]
 	for b := range s.bond {
 		x := m.Bond(b)
 		c := orderBit(x)

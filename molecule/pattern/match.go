@@ -17,6 +17,9 @@ type Subject struct {
 	features features
 	count    [119]uint16   // atoms per element, a quick refusal
 	member   []*groupAtoms // per group, filled on first use
+
+	atomRoom [24]atomCode // where atom and bond of most molecules lie
+	bondRoom [28]uint8
 }
 
 // groupAtoms holds the occurrences of one group in one molecule.
@@ -152,6 +155,9 @@ func (x *matcher) step(k int) bool {
 
 // try takes atom a, whose code fits, for the query atom of st.
 func (x *matcher) try(st *planStep, c *atomScreen, a, k int) bool {
+	if x.collect && c.likeFirst && int32(a) < x.to[x.q.plan[0].atom] {
+		return true // the same set is found from a
+	}
 	if c.several && c.elements[x.s.atom[a]&elementMask>>6]>>(x.s.atom[a]&63)&1 == 0 {
 		return true
 	}
@@ -246,15 +252,35 @@ func (q *Query) AtomSets(s *Subject) [][]int32 {
 	x := newMatcher(q, s, c)
 	x.collect, x.sets = true, x.sets[:0]
 	x.step(0)
-	var sets [][]int32
-	if n := len(q.Atoms); len(x.sets) > 0 {
-		all := append(make([]int32, 0, len(x.sets)), x.sets...)
-		sets = make([][]int32, 0, len(all)/n)
-		for i := 0; i < len(all); i += n {
-			sets = append(sets, all[i:i+n:i+n])
-		}
-	}
+	sets := x.gathered()
 	x.free()
+	return sets
+}
+
+// few holds the result of most calls in one piece of memory.
+type few struct {
+	sets  [2][]int32
+	atoms [12]int32
+}
+
+// gathered copies the sets found.
+func (x *matcher) gathered() [][]int32 {
+	if len(x.sets) == 0 {
+		return nil
+	}
+	n := len(x.set)
+	var sets [][]int32
+	var all []int32
+	if small := (*few)(nil); len(x.sets) <= len(small.atoms) && len(x.sets) <= n*len(small.sets) {
+		small = new(few)
+		sets, all = small.sets[:0], small.atoms[:0]
+	} else {
+		sets, all = make([][]int32, 0, len(x.sets)/n), make([]int32, 0, len(x.sets))
+	}
+	all = append(all, x.sets...)
+	for i := 0; i < len(all); i += n {
+		sets = append(sets, all[i:i+n:i+n])
+	}
 	return sets
 }
 

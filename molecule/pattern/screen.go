@@ -13,6 +13,7 @@ type atomScreen struct {
 	elements    [2]uint64 // allowed elements, where several are
 	several     bool
 	slow        bool // something is left that the code does not hold
+	likeFirst   bool // a symmetry of the query takes the atom matched first to this one
 }
 
 // screened makes the screen when the query is first matched.
@@ -28,6 +29,7 @@ func (q *Query) screened() *screen {
 		}
 	}
 	q.addFacts(s)
+	q.markLikeFirst(s)
 	q.screen.Store(s)
 	return s
 }
@@ -161,4 +163,58 @@ func (q *Query) possible(s *Subject, x *screen) bool {
 		}
 	}
 	return true
+}
+
+// maxSymmetric bounds the queries whose symmetry is looked for.
+const maxSymmetric = 8
+
+// markLikeFirst finds the atoms that a symmetry of the query exchanges with the atom matched first.
+// Where only sets of atoms are wanted, the first atom can then take the lowest place of them all.
+func (q *Query) markLikeFirst(s *screen) {
+	if q.Parts != 1 || len(q.Atoms) > maxSymmetric {
+		return
+	}
+	image := make([]int, len(q.Atoms))
+	for v := range q.Atoms {
+		for i := range image {
+			image[i] = -1
+		}
+		s.atoms[v].likeFirst = v != q.plan[0].atom && q.extendImage(s, image, 0, v)
+	}
+}
+
+// extendImage takes the atom of step k to v and looks for images of the rest.
+func (q *Query) extendImage(s *screen, image []int, k, v int) bool {
+	u := q.plan[k].atom
+	x, y := s.atoms[u], s.atoms[v]
+	x.likeFirst, y.likeFirst = false, false
+	if x != y || x.slow {
+		return false
+	}
+	for i := range image {
+		if image[i] == v {
+			return false
+		}
+	}
+	for _, b := range q.Bonds {
+		other := b.A + b.B - u
+		if b.A != u && b.B != u || image[other] < 0 {
+			continue
+		}
+		c := q.BondOf(v, image[other])
+		if c < 0 || q.Bonds[c].orders != b.orders || len(b.tests)+len(q.Bonds[c].tests) > 0 {
+			return false
+		}
+	}
+	image[u] = v
+	if k+1 == len(q.plan) {
+		return true
+	}
+	for w := range q.Atoms {
+		if q.extendImage(s, image, k+1, w) {
+			return true
+		}
+	}
+	image[u] = -1
+	return false
 }
