@@ -211,7 +211,7 @@ func (o *outcome) mainPiece() *molecule.Molecule {
 
 func (a *assessment) judgeShare(t *Transform) {
 	if a.outcome.blocked != "" {
-		a.objections = append(a.objections, Objection{Kind: KindNoReaction, Text: a.outcome.blocked, Fatal: true})
+		a.objections = append(a.objections, Objection{Kind: a.outcome.stopped, Text: a.outcome.blocked, Fatal: true})
 		return
 	}
 	if a.share == ShareMain {

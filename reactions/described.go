@@ -45,7 +45,7 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 		}
 	}
 	for i, m := range j.mentions {
-		if m.active && !explained[i] {
+		if m.active && !explained[i] && !j.partner(t, &j.mentions[i]) {
 			s.unexplained = append(s.unexplained, m.r.Name)
 		}
 	}
@@ -54,6 +54,29 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 	}
 	s.matched = len(s.missing) == 0 && j.factsAllow(c, &s)
 	return s
+}
+
+// partner says that a substance named among the conditions is one of the materials of the transform itself.
+func (j *judge) partner(t *Transform, m *mentioned) bool {
+	if m.free == nil {
+		mol, err := m.r.Molecule()
+		if err != nil || mol == nil {
+			return false
+		}
+		for _, part := range mol.Split() {
+			if part.NumAtoms() > 1 || !isMetal(part.Atom(0).Element) {
+				m.free = append(m.free, j.b.subject(protonated(part.FreeForm())))
+			}
+		}
+	}
+	for i := range t.part[forward] {
+		for _, s := range m.free {
+			if len(t.part[forward]) > 1 && t.part[forward][i].query.Matches(s.Subject) {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 func (j *judge) find(name string) *reagent.Reagent {

@@ -90,7 +90,8 @@ type outcome struct {
 	mappings [][]int32 // slot -> pool atom, one per application
 	score    float64
 	why      []string
-	blocked  string // a preference model says that nothing happens
+	blocked  string // a preference model says that nothing happens, or something else
+	stopped  Kind   // the kind of that objection
 	sites    int    // applications (more than one with everywhere)
 }
 
@@ -291,7 +292,10 @@ func (t *Transform) rate(b *Book, ms []*subject, o *outcome) {
 		o.score += points
 		o.why = append(o.why, why...)
 		if p.hasMin && points < p.needs && o.blocked == "" {
-			o.blocked = p.whyNot
+			o.blocked, o.stopped = p.whyNot, KindNoReaction
+			if !p.model.ring {
+				o.stopped = p.model.stopKind(ms[o.copies[which]].Subject, atoms)
+			}
 			if o.blocked == "" {
 				o.blocked = "the site is not reactive enough (" + p.model.means + ")"
 			}

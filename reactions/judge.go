@@ -58,8 +58,9 @@ type judge struct {
 	extra     []*subject // substances named only among the conditions, solvents apart
 	claimed   []*molecule.Molecule
 	mentions  []mentioned
-	found     []candidate // transforms that give the claimed product
-	others    []candidate // transforms that fit the conditions and give something else
+	found     []candidate  // transforms that give the claimed product
+	others    []candidate  // transforms that fit the conditions and give something else
+	near      []*Transform // transforms without reagents of their own that find some of their materials
 	known     []*Transform
 	names     map[string]*reagent.Reagent // charges looked up so far
 }
@@ -68,9 +69,10 @@ type judge struct {
 type mentioned struct {
 	r      *reagent.Reagent
 	acts   map[string]bool
-	active bool // more than a solvent, a drying agent or part of the work-up
-	late   bool // an acid, a base or water named in a later stage: it may be no more than the work-up
-	main   bool // named in the first of several stages: no work-up
+	active bool       // more than a solvent, a drying agent or part of the work-up
+	late   bool       // an acid, a base or water named in a later stage: it may be no more than the work-up
+	free   []*subject // its free forms, once asked for
+	main   bool       // named in the first of several stages: no work-up
 }
 
 // candidate is one transform with one condition set.
@@ -281,6 +283,20 @@ func (j *judge) tryTogether(pool []*subject) {
 	}
 }
 
+// fitsHalf says that some but not all parts of a transform find a material.
+func (t *Transform) fitsHalf(pool []*subject) bool {
+	fit := 0
+	for i := range t.part[forward] {
+		for _, s := range pool {
+			if t.part[forward][i].query.Matches(s.Subject) {
+				fit++
+				break
+			}
+		}
+	}
+	return fit > 0 && fit < len(t.part[forward])
+}
+
 func (j *judge) try(t *Transform, pool []*subject) {
 	var sets []candidate
 	for _, c := range t.Conditions {
@@ -289,6 +305,10 @@ func (j *judge) try(t *Transform, pool []*subject) {
 	for _, s := range sets {
 		if s.matched && j.described && s.served > 0 && len(s.unexplained) == 0 {
 			j.known = append(j.known, t)
+			break
+		}
+		if s.matched && j.described && len(s.unexplained) == 0 && s.served == 0 && t.fitsHalf(pool) {
+			j.near = append(j.near, t)
 			break
 		}
 	}
@@ -303,10 +323,10 @@ func (j *judge) try(t *Transform, pool []*subject) {
 			continue
 		}
 		if hit.found {
-			s.objections = append(hit.under(s.c), j.media(t, s.c, &hit.outcome, pool)...)
+			s.objections = append(hit.under(s.c), j.media(t, s.c, &hit.outcome, pool, false)...)
 			j.found = append(j.found, s)
 		} else if s.matched {
-			s.objections = j.media(t, s.c, &outs[0], pool)
+			s.objections = j.media(t, s.c, &outs[0], pool, true)
 			j.others = append(j.others, s)
 		}
 	}
@@ -335,10 +355,12 @@ func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) asse
 	return best
 }
 
-func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject) []Objection {
+// media lists what the surroundings do to the other groups. A companion transform of the same flask excuses
+// its groups only where the product asked for is not the one that keeps them (companions).
+func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject, companions bool) []Objection {
 	busy := o.busyAtoms(pool)
 	for _, id := range c.Together {
-		if companion := j.b.byID[id]; companion != nil {
+		if companion := j.b.byID[id]; companion != nil && companions {
 			j.markCompanion(companion, pool, busy)
 		}
 	}

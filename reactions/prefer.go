@@ -28,6 +28,7 @@ type score struct {
 	query *pattern.Query
 	add   float64
 	why   string
+	kind  Kind // what a step is told that this score stops; empty: nothing happens
 }
 
 type modelFile struct {
@@ -54,6 +55,7 @@ type sourceScore struct {
 	Where   map[string]wordList `yaml:"where"`
 	Add     float64             `yaml:"add"`
 	Why     string              `yaml:"why"`
+	Kind    string              `yaml:"kind"`
 }
 
 const preferenceFolder = "preferences"
@@ -107,7 +109,7 @@ func (l *loader) compileModel(src *sourceModel, a *arene, file string) {
 				l.errs = append(l.errs, s.Pattern.Errorf(file, "a score of model %s needs class 1", m.id))
 			}
 		}
-		m.scores = append(m.scores, score{q, s.Add, s.Why})
+		m.scores = append(m.scores, score{q, s.Add, s.Why, Kind(s.Kind)})
 	}
 	if l.models[m.id] != nil {
 		l.errs = append(l.errs, src.ID.Errorf(file, "two preference models have the id %q", m.id))
@@ -132,6 +134,20 @@ func (m *model) rate(s *pattern.Subject, atoms []int32) (total float64, why []st
 		}
 	}
 	return total, why
+}
+
+// stopKind is the kind of objection that the score weighing most against the site names.
+func (m *model) stopKind(s *pattern.Subject, atoms []int32) Kind {
+	kind, worst := KindNoReaction, 0.0
+	for i := range m.scores {
+		if sc := &m.scores[i]; sc.add < worst && sc.fits(s, atoms) {
+			worst, kind = sc.add, KindNoReaction
+			if sc.kind != "" {
+				kind = sc.kind
+			}
+		}
+	}
+	return kind
 }
 
 // fits says whether the pattern matches with its classes 1, 2, ... on atoms.

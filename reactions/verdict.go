@@ -163,6 +163,11 @@ func (j *judge) concludeNothing(out *Judgement) {
 		out.Transforms = j.known[:min(3, len(j.known))]
 		out.Objections = append(out.Objections, Objection{Kind: KindNoReaction, Fatal: true,
 			Text: fmt.Sprintf("these are the conditions of %s, which needs other groups than these molecules offer", namesOf(out.Transforms))})
+	case len(j.near) > 0:
+		out.Verdict = Doubtful
+		out.Transforms = j.near[:min(3, len(j.near))]
+		out.Objections = append(out.Objections, Objection{Kind: KindNoReaction,
+			Text: fmt.Sprintf("these may be the conditions of %s, which finds only part of what it needs here; no loaded transform gives the product", namesOf(out.Transforms))})
 	default:
 		out.Verdict = Unknown
 		out.Objections = append(out.Objections, Objection{Kind: KindNoTransform,
