@@ -36,6 +36,12 @@ func TestDump(t *testing.T) {
 		name := ""
 		if m, err := smiles.Read(fields[0]); err == nil {
 			name = Of(m)
+			if os.Getenv("SHELFWARD_STEREO") != "" {
+				n, complete := OfWithStereo(m)
+				if name = n; !complete {
+					name = ""
+				}
+			}
 			if name == "" && os.Getenv("SHELFWARD_UNREAD") != "" && nameable(m) {
 				if n := written(m); n != "" {
 					r, err := Read(n)

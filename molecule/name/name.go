@@ -1,6 +1,7 @@
 // Package name writes and reads systematic names of organic molecules after the IUPAC
 // recommendations of 2013 (Favre, Powell: Nomenclature of Organic Chemistry; rule numbers P-... in the
-// comments are from memory). The names are of constitutions: stereo marks are not expressed.
+// comments are from memory). Of names constitutions; OfWithStereo adds R, S, E and Z where they belong
+// to the parent and are decided by atomic numbers alone. Read reads both.
 //
 // Of is careful rather than complete: a molecule outside what it knows gets no name, and every name
 // is read back and compared with the molecule before it is given out. Where the recommendations

@@ -142,7 +142,7 @@ func TestReadVariants(t *testing.T) {
 func TestReadErrors(t *testing.T) {
 	for _, s := range []string{
 		"", "x", "chloropyridine", "thiophenamine", "bromochlorobenzene", "pentanol", "hydrocinnamoic acid", "6-methylpentane",
-		"2,2,2-trimethylpropane", "(R)-butan-2-ol", "cis-but-2-ene", "methyl", "ethyl", "acetate", "benzoyl", "2,3-dichloro",
+		"2,2,2-trimethylpropane", "(R)-propan-2-ol", "(2R)-butan-1-ol", "(E)-propene", "cis-but-2-ene", "methyl", "ethyl", "acetate", "benzoyl", "2,3-dichloro",
 		"1-(methylbenzene", "propan-2-ol)", "ethyl methyl acetate", "3H-pyridine", "1,2-dihydrohexane",
 		"methane methane", strings.Repeat("(", 400), strings.Repeat("di", 240), strings.Repeat("methyl", 80), "naïve",
 	} {

@@ -54,8 +54,14 @@ func read(text string) (*molecule.Molecule, error) {
 	if m := loaded().read[strings.ToLower(s)]; m != nil {
 		return m, nil
 	}
+	if x := marked.FindStringSubmatch(text); x != nil {
+		words := strings.Fields(plainText(x[2]))
+		if len(words) == 1 || len(words) == 2 && words[1] == "acid" {
+			return readMarked(strings.Split(x[1], ","), strings.Join(words, " "))
+		}
+	}
 	if stereoMark.MatchString(s) {
-		return nil, fmt.Errorf("marks of stereo (R, S, E, Z, cis, trans, D, L) are not read in names; write the SMILES")
+		return nil, fmt.Errorf("these marks of stereo (only R, S, E and Z of the parent are read) are not understood; write the SMILES")
 	}
 	return readWords(strings.Fields(s))
 }
