@@ -56,6 +56,17 @@ func (app *App) room(caseShelves []string, dir string) (*planner.Room, error) {
 	} else {
 		dir = ""
 	}
+	for _, file := range files {
+		if file == shelf.BuiltinName {
+			continue
+		}
+		if dir != "" && !filepath.IsAbs(file) {
+			file = filepath.Join(dir, file)
+		}
+		if err := checkFile(file); err != nil {
+			return nil, err
+		}
+	}
 	room, err := app.openRoom(fsys, files, dir)
 	return room, failWith(exitUsage, err)
 }
@@ -131,7 +142,10 @@ func (app *App) openPlan(path string) (*job, error) {
 	return j, j.setTarget("smiles:" + p.Target.SMILES)
 }
 
-// checkFile gives one clear line for a missing file or a folder.
+// maxFileBytes bounds the files that are read whole: a case, a plan or a shelf is far smaller.
+const maxFileBytes = 64 << 20
+
+// checkFile gives one clear line for a missing file, a folder, and what cannot be read whole.
 func checkFile(path string) error {
 	info, err := os.Stat(path)
 	if err != nil {
@@ -139,6 +153,12 @@ func checkFile(path string) error {
 	}
 	if info.IsDir() {
 		return usageError("%s: expected a file, found a folder", path)
+	}
+	if info.Mode()&os.ModeDevice != 0 {
+		return usageError("%s: expected a file, found a device", path)
+	}
+	if info.Size() > maxFileBytes {
+		return usageError("%s: %d MB; at most %d MB are read", path, info.Size()>>20, maxFileBytes>>20)
 	}
 	return nil
 }
