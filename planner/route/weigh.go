@@ -76,7 +76,7 @@ const (
 	partMinor      = 0.9  // the wanted product is the smaller part
 	partObjection  = 0.3  // each objection, three at most
 	partEstimated  = 0.05 // conditions nobody published for the class
-	partPurchase   = 0.15 // each reagent that is not on the shelf, three at most
+	partPurchase   = 0.20 // each reagent that is not on the shelf, three at most
 	partLeafHazard = 0.02
 	partLeafPrice  = 0.02 // times log10(1 + price per mol)
 )
