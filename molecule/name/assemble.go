@@ -19,6 +19,7 @@ type assembly struct {
 var (
 	errValence = errors.New("too many groups on one atom")
 	errHydro   = errors.New("hydro prefixes and indicated hydrogen need a ring named with its double bonds")
+	errMetal   = errors.New("a metal with too few groups")
 	errLocant  = errors.New("a locant is missing: more than one place is possible")
 	errDouble  = errors.New("the double bonds of the ring cannot be placed: hydro prefixes or an indicated hydrogen are missing")
 )
@@ -82,6 +83,7 @@ type piece struct {
 	free    []int // atoms with free valences
 	order   int
 	ends    []int // acid carbons: no prefix without locant stands on them
+	amine   bool  // the suffix is amine
 	equal   bool  // one substituent needs no locant
 }
 
@@ -130,6 +132,9 @@ func (b *assembly) build(u *unit) (*piece, error) {
 		if len(u.hydro)+u.hydros+len(u.indicated)+len(u.added) > 0 {
 			return nil, errHydro
 		}
+		if u.parent.name == "amine" && len(u.items) == 0 {
+			return nil, errors.New("amine is only a part of a name")
+		}
 		q.equal = equalParents[u.parent.name]
 		err = b.suffixes(u, q)
 	case u.root != nil:
@@ -146,7 +151,17 @@ func (b *assembly) build(u *unit) (*piece, error) {
 	if err := b.freeValences(u, q); err != nil {
 		return nil, err
 	}
-	return q, b.substituents(u, q)
+	if err := b.substituents(u, q); err != nil {
+		return nil, err
+	}
+	if u.parent != nil && u.parent.full {
+		for _, a := range q.atoms {
+			if b.spare[a] > 0 {
+				return nil, fmt.Errorf("%s needs groups to join", u.parent.name)
+			}
+		}
+	}
+	return q, nil
 }
 
 // freeValences finds the atoms of yl endings and holds their valences back.
@@ -182,14 +197,15 @@ func (b *assembly) open(q *piece, n int) []int {
 			list = append(list, a)
 		}
 	}
-	// Prefixes without locant stand on the skeleton where it has a place: phenylmethanamine.
+	// Prefixes without locant stand on the skeleton of an amine: phenylmethanamine. In amides either
+	// place is meant by someone.
 	skeletal := list[:0:0]
 	for _, a := range list {
 		if c := q.locants[slices.Index(q.atoms, a)][0]; c >= '0' && c <= '9' {
 			skeletal = append(skeletal, a)
 		}
 	}
-	if len(skeletal) > 0 {
+	if len(skeletal) == len(list) || len(skeletal) > 0 && q.amine {
 		return skeletal
 	}
 	return list
@@ -402,6 +418,7 @@ func (b *assembly) suffixes(u *unit, q *piece) error {
 			if !ok {
 				return fmt.Errorf("locant %s does not exist", host)
 			}
+			q.amine = q.amine || s.name == "amine"
 			if err := b.suffixAt(s.template, a, host, q, s.count > 1); err != nil {
 				return err
 			}
@@ -422,6 +439,9 @@ func (b *assembly) finish() (*molecule.Molecule, error) {
 	for a := range b.Atoms {
 		if b.spare[a] < 0 {
 			return nil, errValence
+		}
+		if b.spare[a] > 0 && b.Atoms[a].Element.IsMetal() && b.Atoms[a].Element != 50 {
+			return nil, errMetal
 		}
 		b.Atoms[a].Hydrogens = uint8(b.spare[a])
 	}

@@ -124,6 +124,7 @@ var readOnly = []struct{ name, smiles string }{
 	{"di-tert-butyl dicarbonate", "CC(C)(C)OC(=O)OC(=O)OC(C)(C)C"},
 	{"methyl 2-[4-(2-methylpropyl)phenyl]propanoate", "COC(=O)C(C)c1ccc(CC(C)C)cc1"},
 	{"hexachlorobenzene", "Clc1c(Cl)c(Cl)c(Cl)c(Cl)c1Cl"},
+	{"propenal", "C=CC=O"},
 	{"phenylmethanamine", "NCc1ccccc1"},
 }
 
@@ -144,7 +145,7 @@ func TestReadErrors(t *testing.T) {
 		"", "x", "chloropyridine", "thiophenamine", "bromochlorobenzene", "pentanol", "hydrocinnamoic acid", "6-methylpentane",
 		"2,2,2-trimethylpropane", "(R)-propan-2-ol", "(2R)-butan-1-ol", "(E)-propene", "cis-but-2-ene", "methyl", "ethyl", "acetate", "benzoyl", "2,3-dichloro",
 		"1-(methylbenzene", "propan-2-ol)", "ethyl methyl acetate", "3H-pyridine", "1,2-dihydrohexane",
-		"methane methane", strings.Repeat("(", 400), strings.Repeat("di", 240), strings.Repeat("methyl", 80), "naïve",
+		"methane methane", "peroxyacetic acid", "benzyloxymethyl chloride", "dimethylacetamide", "phosphoryl chloride", "zinc", "lithium", "ethylmagnesium", "amine", "sulfate", "methylmercury", strings.Repeat("(", 400), strings.Repeat("di", 240), strings.Repeat("methyl", 80), "naïve",
 	} {
 		m, err := Read(s)
 		if err == nil {

@@ -54,6 +54,9 @@ func multipleBonds(u *unit, order []int) error {
 	for k, m := range u.multiple {
 		i, j := k, k+1
 		if m.from == "" {
+			if len(u.suffixes) > 0 && u.suffixes[0].end && len(s.elements) == 3 {
+				i, j = 1, 2 // propenal, propynoic acid
+			}
 			if len(u.multiple) > 1 || !s.alike() && len(s.elements) > 3 || len(s.elements) > 2 && len(u.suffixes) > 0 && !u.suffixes[0].end {
 				return errLocant
 			}

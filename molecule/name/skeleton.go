@@ -78,7 +78,7 @@ func (p *parser) hydridesAt(i, end int) []found {
 	text := p.s[i:end]
 	for _, n := range at(&words.parentNames, text) {
 		for _, t := range words.parents[n] {
-			if len(t.esters) == 0 && p.fits(t) {
+			if len(t.esters) == 0 && p.fits(t) && t.atoms[0].Charge == 0 {
 				list = append(list, found{&unit{parent: t}, i + len(n), 0})
 			}
 		}

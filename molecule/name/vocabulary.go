@@ -50,6 +50,7 @@ type template struct {
 	order   int      // order of the bond to what it hangs on
 	end     bool     // suffix: the first atom is the end of the chain
 	radical bool     // suffix: makes a radical
+	full    bool     // radical: every free valence must be taken (oxy, carbonyl)
 	cation  bool     // suffix ium: a charge on its atom
 	single  bool     // class word: one radical only, the other hydrogens stay (alcohol)
 	ester   string   // "O": only where the ester word says O
@@ -74,6 +75,7 @@ func (r *wordRow) word() (*template, error) {
 	}
 	t.order = max(1, r.Order)
 	t.end = r.Kind == "end"
+	t.full = r.Kind == "full"
 	t.cation = r.Kind == "cation"
 	t.single = r.Kind == "single"
 	t.radical = r.Radical
