@@ -17,6 +17,7 @@ const maxCombinations = 600
 type subject struct {
 	*pattern.Subject
 	key      molecule.Key
+	ion      bool // drawn as an anion: its acid is not in the flask
 	relative bool // its marks say only how centres stand to each other: a racemate
 }
 

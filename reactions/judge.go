@@ -95,6 +95,7 @@ func (j *judge) add(m *molecule.Molecule) {
 			continue // the cation of a salt
 		}
 		s := j.b.subject(protonated(part.FreeForm()))
+		s.ion = part.Formula().Charge < 0
 		if marked := cisFused(s.M); marked != nil {
 			s = j.b.subject(marked)
 			s.relative = true
@@ -182,7 +183,7 @@ func (j *judge) readReagents() {
 		return
 	}
 	for _, s := range j.reactants {
-		if r, ok := j.table.ByMolecule(s.M); ok {
+		if r, ok := j.table.ByMolecule(s.M); ok && !s.ion {
 			m := mention(r, false) // a reactant need not be explained
 			j.mentions = append(j.mentions, m)
 		}

@@ -30,6 +30,7 @@ type toleranceTable struct {
 type medium struct {
 	id, name, source string
 	groups           []groupLevel // sorted by group id
+	spared           []string     // groups said to survive though a wider group does not, sorted
 }
 
 type groupLevel struct {
@@ -76,10 +77,13 @@ func (l *loader) loadTolerance() {
 				l.errs = append(l.errs, src.Place.Errorf("group %s: survives, spent, competes, reacts or first was expected, not %q", g, word))
 			case !l.groups.Has(g):
 				l.errs = append(l.errs, src.Place.Errorf("no group %q in rules/groups.yaml%s", g, didYouMean(g, l.groups.IDs())))
-			case lv != survives:
+			case lv == survives:
+				m.spared = append(m.spared, g)
+			default:
 				m.groups = append(m.groups, groupLevel{g, lv, src.Why[g], kindOf(src.Kinds[g])})
 			}
 		}
+		sort.Strings(m.spared)
 		sort.Slice(m.groups, func(i, j int) bool { return m.groups[i].group < m.groups[j].group })
 		if l.media.media[m.id] != nil {
 			l.errs = append(l.errs, src.Place.Errorf("the medium %q stands twice", m.id))
@@ -116,7 +120,7 @@ func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *
 			if gl.level == competes && weighed != nil {
 				taken = weighed
 			}
-			if free := freeInstances(s, gl.group, taken); free > 0 {
+			if free := freeInstances(s, gl.group, m.sparing(s, taken)); free > 0 {
 				out = append(out, m.objection(gl, groups.Name(gl.group)))
 			}
 		}
@@ -135,6 +139,22 @@ func (t *Transform) otherSites(ms []*subject, busy [][]bool) [][]bool {
 				for _, q := range p.significant {
 					out[i][m[q]] = true
 				}
+			}
+		}
+	}
+	return out
+}
+
+// sparing adds to the busy atoms those of groups that survive in the medium.
+func (m *medium) sparing(s *pattern.Subject, busy []bool) []bool {
+	out := busy
+	for i, g := range m.spared {
+		if i == 0 {
+			out = append([]bool(nil), busy...)
+		}
+		for _, set := range s.Instances(g) {
+			for _, a := range set {
+				out[a] = true
 			}
 		}
 	}

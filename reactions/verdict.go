@@ -76,18 +76,26 @@ func (j *judge) concludeMatched(best *candidate, out *Judgement) {
 	}
 }
 
-// rivalOf looks for another transform that explains more of the reagents and gives something else.
+// rivalOf looks for another transform that explains more of the reagents, or needs more of them to give an
+// isomer, and gives something else.
 func (j *judge) rivalOf(best *candidate) *candidate {
-	if len(best.unexplained) == 0 {
-		return nil
-	}
 	for i := range j.others {
 		c := &j.others[i]
-		if c.t != best.t && len(c.unexplained) < len(best.unexplained) && !fatal(c.objections) && len(c.a.products) > 0 {
+		closer := len(c.unexplained) < len(best.unexplained) ||
+			len(c.unexplained) == len(best.unexplained) && best.served > 0 && c.served > best.served && isomers(best, c)
+		if c.t != best.t && closer && !fatal(c.objections) && len(c.a.products) > 0 {
 			return c
 		}
 	}
 	return nil
+}
+
+// isomers says that two candidates give isomers: the same change, the conditions choose where.
+func isomers(a, b *candidate) bool {
+	if len(a.a.products) == 0 || len(b.a.products) == 0 {
+		return false
+	}
+	return a.a.products[0].Molecule.Formula() == b.a.products[0].Molecule.Formula()
 }
 
 func productNames(list []Product) string {
