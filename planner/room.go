@@ -89,13 +89,13 @@ func readName(text string) (*molecule.Molecule, bool) {
 	return m, err == nil
 }
 
-// systematicName writes the name of a constitution; a molecule with stereo marks has none here, since a
-// name without them would say less than the structure.
+// systematicName writes the name of m with its stereodescriptors; a name that would leave out a mark says
+// less than the structure and is not given.
 func systematicName(m *molecule.Molecule) string {
-	if len(m.Centers())+len(m.DoubleBonds()) > 0 {
-		return ""
+	if text, complete := name.OfWithStereo(m); complete {
+		return text
 	}
-	return name.Of(m)
+	return ""
 }
 
 // Name returns a name of m from the shelf or the list of reagents, or its systematic name; "" if none is
