@@ -58,7 +58,7 @@ var formats = map[string]struct {
 }{
 	"smiles":  {func(r *molfile.Record) (string, error) { return smiles.Write(r.Molecule), nil }, true},
 	"formula": {func(r *molfile.Record) (string, error) { return r.Molecule.Formula().String(), nil }, true},
-	"name":    {func(r *molfile.Record) (string, error) { return name.Of(r.Molecule), nil }, true},
+	"name":    {func(r *molfile.Record) (string, error) { text, _ := name.OfWithStereo(r.Molecule); return text, nil }, true},
 	"mol":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.Write) }, false},
 	"sdf":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteSD) }, false},
 	"svg": {func(r *molfile.Record) (string, error) {
