@@ -304,7 +304,7 @@ func (a *assessment) judgeOver(b *Book, t *Transform, ms []*subject) {
 			return
 		}
 	}
-	if t.Everywhere {
+	if t.Everywhere || t.Once {
 		return
 	}
 	for part := range t.part[forward] {

@@ -81,7 +81,7 @@ func (l *loader) addErr(p rules.Place, err error) {
 
 // compile makes one transform; the stages stand in order, each needs the ones before.
 func (l *loader) compile(src *sourceTransform, family, file string) (*Transform, error) {
-	t := &Transform{ID: src.ID.Value, Name: src.Name.Value, Family: family, Summary: src.Summary, Everywhere: src.Everywhere,
+	t := &Transform{ID: src.ID.Value, Name: src.Name.Value, Family: family, Summary: src.Summary, Everywhere: src.Everywhere, Once: src.Once,
 		Dangers: src.Dangers, Source: src.Source.Text, Provenance: src.Source.Provenance, File: src.Place.String(), closes: src.Closes}
 	for _, stage := range []func(*Transform, *sourceTransform, string) error{
 		l.compileSides, l.compileParts, l.compileChoices, l.compilePreferences, l.compileConditions, l.compileExamples,

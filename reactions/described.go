@@ -23,6 +23,7 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 				early = early || !j.mentions[i].late
 			}
 		}
+		hit = hit || ch.Name == "water" && j.with.Has("aqueous") // 'aqueous acetone' names the water as well
 		if hit && !ch.Optional {
 			s.served++
 		}

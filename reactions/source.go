@@ -27,6 +27,7 @@ type sourceTransform struct {
 	Products      []rules.Text            `yaml:"products" need:"products: ['[C:1](=[O:2])Cl']"`
 	Where         map[string]wordList     `yaml:"where"`
 	WhereProducts map[string]wordList     `yaml:"where products"`
+	Once          bool                    `yaml:"once"`
 	Everywhere    bool                    `yaml:"everywhere"`
 	Choices       map[string][]rules.Text `yaml:"choices"`
 	Same          []int                   `yaml:"same"`

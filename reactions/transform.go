@@ -12,6 +12,7 @@ type Transform struct {
 	Conditions                []*Conditions
 	Reactants, Products       []string // the parts as written
 	Everywhere                bool
+	Once                      bool // the reagent is measured for one reaction: the product meets no more of it
 	Dangers                   []string
 	Source, Provenance        string
 	File                      string // file and line of its definition
