@@ -74,7 +74,7 @@ const (
 	partHazard     = 0.06 // times the gravest class, 0-4
 	partEven       = 0.5  // the wanted product is one of about equal ones
 	partMinor      = 0.9  // the wanted product is the smaller part
-	partObjection  = 0.3  // each objection, three at most
+	partObjection  = 0.7  // each objection, three at most
 	partEstimated  = 0.05 // conditions nobody published for the class
 	partPurchase   = 0.20 // each reagent that is not on the shelf, three at most
 	partLeafHazard = 0.02
