@@ -146,6 +146,11 @@ func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan,
 	if err := app.screen(j); err != nil {
 		return nil, err
 	}
+	for _, m := range o.From { // a start counts as in stock, but not as standing on the shelf
+		if v := j.room.Restricted.Intermediate(m); v.Declined() && len(j.room.Shelf.Find(m)) == 0 {
+			return nil, app.declined(v)
+		}
+	}
 	if len(o.From) == 0 && len(j.fromAny) > 0 {
 		return app.planFromAny(ctx, j, o)
 	}
