@@ -86,6 +86,11 @@ func (r *Route) DOT(w io.Writer) error {
 	if err != nil {
 		return err
 	}
+	return writeDOT(w, g)
+}
+
+// writeDOT writes a graph with its lines sorted, because the library walks a map.
+func writeDOT(w io.Writer, g graph.Graph[string, string]) error {
 	var b bytes.Buffer
 	if err := draw.DOT(g, &b, draw.GraphAttribute("rankdir", "BT")); err != nil {
 		return err
@@ -100,6 +105,6 @@ func (r *Route) DOT(w io.Writer) error {
 		}
 	}
 	slices.Sort(body)
-	_, err = fmt.Fprintf(w, "%s\n%s\n}\n", strings.Join(head, "\n"), strings.Join(body, "\n"))
+	_, err := fmt.Fprintf(w, "%s\n%s\n}\n", strings.Join(head, "\n"), strings.Join(body, "\n"))
 	return err
 }

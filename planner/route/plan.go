@@ -77,6 +77,8 @@ type Plan struct {
 	Doubts    []string      `json:"doubts"`
 
 	Molecule *molecule.Molecule `json:"-"`
+
+	chemistry *chemistry // of a plan just made
 }
 
 // Make plans the target. Finding nothing is a Plan without routes, not an error; errors are words to
@@ -100,6 +102,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	c.oneEnantiomer = o.OneEnantiomer
 	root := c.enter(target)
 	p := c.newPlan(target, root, &o)
+	p.chemistry = c
 	if p.Target.OnShelf && !o.MakeAnyway {
 		p.Routes = []Route{c.takenFromShelf(root)}
 		p.Search.ProvenBest, p.Search.ProvenRoutes, p.Search.Exhausted, p.Search.Stopped = true, 1, true, string(search.Exhausted)

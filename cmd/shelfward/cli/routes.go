@@ -182,6 +182,8 @@ type routesOptions struct {
 	flags planFlags
 	out   string
 	graph string
+
+	routeGraph string
 }
 
 func newRoutesCommand(app *App) *cobra.Command {
@@ -195,7 +197,8 @@ func newRoutesCommand(app *App) *cobra.Command {
 	}
 	o.flags.bind(cmd)
 	cmd.Flags().StringVar(&o.out, "out", "", "save the plan as a JSON file for compare and sheet")
-	cmd.Flags().StringVar(&o.graph, "graph", "", "write the first route's network as a DOT file")
+	cmd.Flags().StringVar(&o.graph, "graph", "", "write the explored network of molecules and steps as a DOT file")
+	cmd.Flags().StringVar(&o.routeGraph, "route-graph", "", "write the first route's network as a DOT file")
 	return cmd
 }
 
@@ -261,15 +264,15 @@ func (o *routesOptions) save(p *route.Plan) error {
 			return usageError("--out %s: cannot write: %v", o.out, plainReason(err))
 		}
 	}
-	if o.graph == "" {
+	if o.graph != "" {
+		if err := writeWhole(o.graph, func(f *os.File) error { return p.NetworkDOT(f) }); err != nil {
+			return usageError("--graph: %v", err)
+		}
+	}
+	if o.routeGraph == "" || len(p.Routes) == 0 {
 		return nil
 	}
-	return writeWhole(o.graph, func(f *os.File) error {
-		if len(p.Routes) == 0 {
-			return nil
-		}
-		return p.Routes[0].DOT(f)
-	})
+	return writeWhole(o.routeGraph, func(f *os.File) error { return p.Routes[0].DOT(f) })
 }
 
 // writeWhole writes a file beside its place and renames it, so that a failure leaves no half file.
