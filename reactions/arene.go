@@ -3,6 +3,7 @@ package reactions
 import (
 	"shelfward/molecule/pattern"
 	"shelfward/rules"
+	"slices"
 )
 
 // arene is the orientation table for electrophiles on aromatic rings: log10 of the rate at a ring atom
@@ -141,7 +142,7 @@ func ringPlaces(s *pattern.Subject, a int32) []ringPlace {
 	var places []ringPlace
 	seen := map[int32]bool{}
 	for _, ring := range s.M.Rings() {
-		k := indexOf(ring, a)
+		k := slices.Index(ring, a)
 		if k < 0 || !allAromatic(s, ring) {
 			continue
 		}
@@ -149,7 +150,7 @@ func ringPlaces(s *pattern.Subject, a int32) []ringPlace {
 		for d := 1; d <= n/2; d++ {
 			for _, x := range [2]int32{ring[(k+d)%n], ring[(k+n-d)%n]} {
 				for _, nb := range s.M.Neighbors(int(x)) {
-					if !s.M.Atom(int(nb.Atom)).Aromatic && !seen[nb.Atom] && indexOf(ring, nb.Atom) < 0 {
+					if !s.M.Atom(int(nb.Atom)).Aromatic && !seen[nb.Atom] && slices.Index(ring, nb.Atom) < 0 {
 						seen[nb.Atom] = true
 						places = append(places, ringPlace{nb.Atom, min(d, 3), false})
 					} else if s.M.Atom(int(nb.Atom)).Aromatic && !s.M.Bond(int(nb.Bond)).Ring && !seen[nb.Atom] {
@@ -167,11 +168,11 @@ func ringPlaces(s *pattern.Subject, a int32) []ringPlace {
 func fusedPlaces(s *pattern.Subject, a int32, seen map[int32]bool) []ringPlace {
 	var places []ringPlace
 	for _, mine := range s.M.Rings() {
-		if indexOf(mine, a) < 0 || !allAromatic(s, mine) {
+		if slices.Index(mine, a) < 0 || !allAromatic(s, mine) {
 			continue
 		}
 		for _, ring := range s.M.Rings() {
-			if indexOf(ring, a) >= 0 || !allAromatic(s, ring) || !shareBond(mine, ring) {
+			if slices.Index(ring, a) >= 0 || !allAromatic(s, ring) || !shareBond(mine, ring) {
 				continue
 			}
 			for _, x := range ring {
@@ -190,20 +191,11 @@ func fusedPlaces(s *pattern.Subject, a int32, seen map[int32]bool) []ringPlace {
 func shareBond(r, q []int32) bool {
 	n := 0
 	for _, x := range r {
-		if indexOf(q, x) >= 0 {
+		if slices.Index(q, x) >= 0 {
 			n++
 		}
 	}
 	return n >= 2
-}
-
-func indexOf(ring []int32, a int32) int {
-	for i, x := range ring {
-		if x == a {
-			return i
-		}
-	}
-	return -1
 }
 
 func allAromatic(s *pattern.Subject, ring []int32) bool {

@@ -3,6 +3,7 @@ package reactions
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 
 	"shelfward/molecule"
@@ -279,14 +280,14 @@ func (a *assessment) loses(ms []*subject) bool {
 	p := a.outcome.pieces[a.pieceIndex]
 	for _, to := range a.outcome.mappings {
 		for _, x := range to {
-			if x < 0 || indexOf(p.from, x) < 0 {
+			if x < 0 || slices.Index(p.from, x) < 0 {
 				continue
 			}
 			c, atom := a.outcome.pool.locate(x)
 			if _, marked := centerAt(ms[a.outcome.copies[c]].M, atom); !marked {
 				continue
 			}
-			if _, still := centerAt(p.m, int32(indexOf(p.from, x))); !still {
+			if _, still := centerAt(p.m, int32(slices.Index(p.from, x))); !still {
 				return true
 			}
 		}

@@ -2,6 +2,7 @@ package reactions
 
 import (
 	"bytes"
+	"math/bits"
 	"sort"
 
 	"shelfward/molecule"
@@ -22,7 +23,6 @@ type Stocked func(m *molecule.Molecule) bool
 // proposal is one backward result before it is judged.
 type proposal struct {
 	pieces []piece // precursors; from: target atom or -1 (pool of target and co-products)
-	choice int     // place in the lists of choices, for ordering
 }
 
 // backwards proposes the precursor sets of one target under one transform.
@@ -156,7 +156,7 @@ func setsOf(sites []site) [][]site {
 	}
 	var out [][]site
 	for set := 1; set < 1<<len(sites); set++ {
-		if bitCount(set) < 2 {
+		if bits.OnesCount(uint(set)) < 2 {
 			continue
 		}
 		var some []site
@@ -188,12 +188,12 @@ type undoer struct {
 func (x *undoer) undo(sites []site) {
 	missing := x.missingParts(sites[0])
 	x.plain = x.plainChain(sites)
-	for ci, co := range x.coproductChoices(missing) {
+	for _, co := range x.coproductChoices(missing) {
 		p, mappings := x.lay(sites, co)
 		if p == nil {
 			continue
 		}
-		x.keep(x.withFragments(p, mappings, ci))
+		x.keep(x.withFragments(p, mappings))
 	}
 }
 
@@ -202,12 +202,12 @@ func (x *undoer) undo(sites []site) {
 const hopeless = 2
 
 // withFragments runs the script backwards once for each combination of leaving groups.
-func (x *undoer) withFragments(p *pool, mappings [][]int32, ci int) []proposal {
+func (x *undoer) withFragments(p *pool, mappings [][]int32) []proposal {
 	var list []proposal
 	for fi, frags := range x.t.fragmentChoices() {
 		pieces, err := x.t.script.edit(backward, p, mappings, frags)
 		if err == nil {
-			if next := (proposal{pieces, ci*10 + fi}); x.sound(next) {
+			if next := (proposal{pieces}); x.sound(next) {
 				list = append(list, next)
 			}
 		}

@@ -3,6 +3,7 @@ package reactions
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"shelfward/molecule"
@@ -47,7 +48,7 @@ func (t *Transform) takenPieces(o *outcome, c *Conditions) map[int]bool {
 					continue
 				}
 				for i, p := range o.pieces {
-					if indexOf(p.from, to[s]) >= 0 {
+					if slices.Index(p.from, to[s]) >= 0 {
 						taken[i] = true
 					}
 				}
@@ -94,7 +95,7 @@ func (t *Transform) given(o *outcome, text string) *molecule.Molecule {
 func (t *Transform) leavingAtom(o *outcome, class int) int {
 	s := t.script.slotOfClass(class)
 	for _, p := range o.pieces {
-		if i := indexOf(p.from, o.mappings[0][s]); i >= 0 {
+		if i := slices.Index(p.from, o.mappings[0][s]); i >= 0 {
 			return i
 		}
 	}

@@ -3,6 +3,7 @@ package reactions
 import (
 	"context"
 	"io/fs"
+	"slices"
 	"sort"
 
 	"shelfward/molecule"
@@ -363,7 +364,7 @@ func (t *Transform) leaving(o *outcome, class int) *molecule.Molecule {
 		return nil
 	}
 	for _, p := range o.pieces {
-		if indexOf(p.from, o.mappings[0][s]) >= 0 {
+		if slices.Index(p.from, o.mappings[0][s]) >= 0 {
 			return p.m
 		}
 	}

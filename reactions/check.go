@@ -3,6 +3,7 @@ package reactions
 import (
 	"context"
 	"fmt"
+	"slices"
 	"sort"
 	"strings"
 
@@ -187,7 +188,7 @@ func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target 
 		var keys, names []string
 		for _, pc := range p.pieces {
 			k := pc.m.WithoutStereo().SeenThroughKey()
-			if !containsString(keys, string(k[:])) {
+			if !slices.Contains(keys, string(k[:])) {
 				keys = append(keys, string(k[:]))
 				names = append(names, written(pc.m))
 			}
@@ -202,15 +203,6 @@ func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target 
 		seen = seen[:4]
 	}
 	return []Fault{{ex.File, t.ID, fmt.Sprintf("backwards, %s does not come from %s; proposals: %s", ex.To, strings.Join(ex.From, " + "), strings.Join(seen, " | "))}}
-}
-
-func containsString(list []string, x string) bool {
-	for _, y := range list {
-		if x == y {
-			return true
-		}
-	}
-	return false
 }
 
 // checkReject returns a text when the reject comes out sound.

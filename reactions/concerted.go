@@ -206,17 +206,11 @@ func (e *editor) openRing(m *molecule.Molecule, off int32, at []int32) {
 	s4, h4, heavy4 := e.side(m, off, at[3], at[2], at[0])
 	inward := false
 	if heavy1 && heavy4 {
-		c1, ok1 := centerAt(m, at[0]-off)
-		c4, ok4 := centerAt(m, at[3]-off)
-		if !ok1 || !ok4 {
+		same, known := sameTurn(m, at[0]-off, [4]int32{s1, at[3] - off, at[1] - off, h1}, at[3]-off, [4]int32{s4, at[2] - off, at[0] - off, h4})
+		if !known {
 			return
 		}
-		t1, fits1 := turns(c1, [4]int32{s1, at[3] - off, at[1] - off, h1})
-		t4, fits4 := turns(c4, [4]int32{s4, at[2] - off, at[0] - off, h4})
-		if !fits1 || !fits4 {
-			return
-		}
-		inward = t1 == t4
+		inward = same
 	}
 	if heavy1 {
 		e.markEnd(at[0], at[1], s1+off, at[2], false)
@@ -224,6 +218,19 @@ func (e *editor) openRing(m *molecule.Molecule, off int32, at []int32) {
 	if heavy4 {
 		e.markEnd(at[3], at[2], s4+off, at[1], inward)
 	}
+}
+
+// sameTurn says whether the ligands of two marked centres, in the orders given, run the same way round;
+// known is false where a centre has no mark or other ligands.
+func sameTurn(m *molecule.Molecule, a int32, ofA [4]int32, b int32, ofB [4]int32) (same, known bool) {
+	ca, okA := centerAt(m, a)
+	cb, okB := centerAt(m, b)
+	if !okA || !okB {
+		return false, false
+	}
+	ta, fitsA := turns(ca, ofA)
+	tb, fitsB := turns(cb, ofB)
+	return ta == tb, fitsA && fitsB
 }
 
 // markEnd marks the double bond a=b: ligand l of a and ligand r of b lie together or apart.
@@ -243,17 +250,11 @@ func (e *editor) chair(m *molecule.Molecule, off int32, at []int32) {
 	s4, h4, heavy4 := e.side(m, off, at[3], at[4], at[2])
 	axial := false
 	if heavy3 && heavy4 {
-		c3, ok3 := centerAt(m, at[2]-off)
-		c4, ok4 := centerAt(m, at[3]-off)
-		if !ok3 || !ok4 {
+		same, known := sameTurn(m, at[2]-off, [4]int32{at[3] - off, at[1] - off, s3, h3}, at[3]-off, [4]int32{at[2] - off, at[4] - off, s4, h4})
+		if !known {
 			return
 		}
-		t3, fits3 := turns(c3, [4]int32{at[3] - off, at[1] - off, s3, h3})
-		t4, fits4 := turns(c4, [4]int32{at[2] - off, at[4] - off, s4, h4})
-		if !fits3 || !fits4 {
-			return
-		}
-		axial = t3 != t4
+		axial = !same
 	}
 	if heavy3 && s3 >= 0 {
 		e.markEnd(at[2], at[1], s3+off, at[0], false)

@@ -1,6 +1,7 @@
 package reactions
 
 import (
+	"math/bits"
 	"shelfward/molecule"
 	"shelfward/molecule/smiles"
 )
@@ -78,7 +79,7 @@ func withoutMarks(m *molecule.Molecule, n int) []*molecule.Molecule {
 	c, d := len(m.Centers()), len(m.DoubleBonds())
 	var out []*molecule.Molecule
 	for set := 0; set < 1<<(c+d); set++ {
-		if bitCount(set) != n {
+		if bits.OnesCount(uint(set)) != n {
 			continue
 		}
 		b := m.Builder()
@@ -98,14 +99,6 @@ func withoutMarks(m *molecule.Molecule, n int) []*molecule.Molecule {
 		}
 	}
 	return out
-}
-
-func bitCount(x int) int {
-	n := 0
-	for ; x != 0; x &= x - 1 {
-		n++
-	}
-	return n
 }
 
 // atomsOf maps the atoms of a onto those of b, which has the same constitution.

@@ -3,6 +3,7 @@ package reactions
 import (
 	"bytes"
 	"math"
+	"slices"
 	"sort"
 
 	"shelfward/molecule"
@@ -187,7 +188,7 @@ func (x *combiner) overlaps(copy int, match partMatch) bool {
 
 // sameAllowed holds parts that must be one kind of molecule to it: another copy, the same site.
 func (t *Transform) sameAllowed(now attempt, part int, l laid) bool {
-	if !containsInt(t.same, part) {
+	if !slices.Contains(t.same, part) {
 		return true
 	}
 	for _, p := range t.same {
@@ -205,15 +206,6 @@ func (t *Transform) sameAllowed(now attempt, part int, l laid) bool {
 		}
 	}
 	return true
-}
-
-func containsInt(list []int, x int) bool {
-	for _, y := range list {
-		if x == y {
-			return true
-		}
-	}
-	return false
 }
 
 // attempt edits one combination and scores it; ok is false where it does not fit.
@@ -348,7 +340,7 @@ func (t *Transform) partOfSlot(s int) int {
 // ringThrough returns the smallest ring through the bond of two pool atoms after the edit, 0 if none.
 func (o *outcome) ringThrough(a, b int32) int {
 	for _, p := range o.pieces {
-		ia, ib := indexOf(p.from, a), indexOf(p.from, b)
+		ia, ib := slices.Index(p.from, a), slices.Index(p.from, b)
 		if ia >= 0 && ib >= 0 {
 			if bond := p.m.BondBetween(ia, ib); bond >= 0 {
 				return p.m.SmallestBondRing(bond)

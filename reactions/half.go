@@ -1,6 +1,7 @@
 package reactions
 
 import (
+	"slices"
 	"sort"
 
 	"shelfward/molecule"
@@ -73,7 +74,7 @@ func (s *script) counterpart(slot int) int {
 	}
 	mine := s.reactantSurroundings(q)
 	for other := range s.side[forward].Atoms {
-		if other != q && s.partOf(forward, other) == s.partOf(forward, q) && equalInts(mine, s.reactantSurroundings(other)) {
+		if other != q && s.partOf(forward, other) == s.partOf(forward, q) && slices.Equal(mine, s.reactantSurroundings(other)) {
 			return s.slotOf[forward][other]
 		}
 	}
@@ -100,18 +101,6 @@ func (s *script) reactantSurroundings(q int) []int {
 	}
 	sort.Ints(around)
 	return append([]int{int(el)}, around...)
-}
-
-func equalInts(a, b []int) bool {
-	if len(a) != len(b) {
-		return false
-	}
-	for i := range a {
-		if a[i] != b[i] {
-			return false
-		}
-	}
-	return true
 }
 
 // copyBranches hangs on atom `on` of b a copy of everything that hangs on atom a of the target outside the

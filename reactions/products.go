@@ -2,6 +2,7 @@ package reactions
 
 import (
 	"context"
+	"slices"
 
 	"shelfward/molecule"
 )
@@ -54,7 +55,7 @@ func (b *Book) Products(ctx context.Context, start *molecule.Molecule, partners 
 }
 
 // takes says whether an outcome uses the molecule with an index.
-func (o *outcome) takes(which int) bool { return containsInt(o.copies, which) }
+func (o *outcome) takes(which int) bool { return slices.Contains(o.copies, which) }
 
 // anyPart says whether some reactant part lies on the molecule.
 func (t *Transform) anyPart(s *subject) bool {

@@ -54,9 +54,6 @@ type script struct {
 	touched   []bool // per slot: a bond, charge or hydrogen count changes, or the atom comes or goes
 }
 
-// parts returns how many parts a side has.
-func (s *script) parts(d direction) int { return len(s.partStart[d]) }
-
 // partOf returns the part (from 0) of a query atom on one side.
 func (s *script) partOf(d direction, queryAtom int) int {
 	return sort.Search(len(s.partStart[d]), func(i int) bool { return s.partStart[d][i] > queryAtom }) - 1
