@@ -8,8 +8,7 @@ import (
 // positions is a set of ring positions, one bit each.
 type positions uint64
 
-func (p positions) has(i int) bool { return p>>uint(i)&1 == 1 }
-func (p positions) size() int      { return bits.OnesCount64(uint64(p)) }
+func (p positions) size() int { return bits.OnesCount64(uint64(p)) }
 
 // list gives the members in ascending order.
 func (p positions) list() []int {

@@ -2,6 +2,7 @@ package pattern
 
 import (
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 )
@@ -135,8 +136,8 @@ func (s *Subject) list(g int) [][]int32 {
 			for i, c := range core {
 				set[i] = to[c]
 			}
-			sortInt32(set)
-			if !containsSet(ga.instances, set) {
+			slices.Sort(set)
+			if !slices.ContainsFunc(ga.instances, func(s []int32) bool { return slices.Equal(s, set) }) {
 				ga.instances = append(ga.instances, set)
 			}
 			return true

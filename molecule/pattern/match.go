@@ -1,6 +1,7 @@
 package pattern
 
 import (
+	"slices"
 	"sync"
 
 	"shelfward/molecule"
@@ -287,39 +288,11 @@ func (x *matcher) gathered() [][]int32 {
 // addSet adds the set of the atoms mapped to, unless it is there.
 func (x *matcher) addSet() {
 	n := copy(x.set, x.to)
-	sortInt32(x.set)
-next:
+	slices.Sort(x.set)
 	for i := len(x.sets) - n; i >= 0; i -= n { // equal sets are found soon after each other
-		for k, a := range x.sets[i : i+n] {
-			if a != x.set[k] {
-				continue next
-			}
+		if slices.Equal(x.sets[i:i+n], x.set) {
+			return
 		}
-		return
 	}
 	x.sets = append(x.sets, x.set...)
-}
-
-func sortInt32(x []int32) {
-	for i := 1; i < len(x); i++ {
-		for j := i; j > 0 && x[j] < x[j-1]; j-- {
-			x[j], x[j-1] = x[j-1], x[j]
-		}
-	}
-}
-
-func containsSet(sets [][]int32, set []int32) bool {
-next:
-	for _, s := range sets {
-		if len(s) != len(set) {
-			continue
-		}
-		for i := range s {
-			if s[i] != set[i] {
-				continue next
-			}
-		}
-		return true
-	}
-	return false
 }

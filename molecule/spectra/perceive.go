@@ -131,9 +131,6 @@ func (p *Predictor) doubleTo(a int, el uint8) int {
 	return -1
 }
 
-// isCarbonyl reports whether a is a carbon with a double bond to oxygen outside the ring.
-func (p *Predictor) isCarbonyl(a int) bool { return p.carbonyl[a] != noCarbonyl }
-
 // mix is a 64-bit mixer (the finaliser of SplitMix64, Steele, Lea and Flood 2014).
 func mix(x uint64) uint64 {
 	x += 0x9e3779b97f4a7c15
