@@ -242,7 +242,7 @@ func preferenceSource(t *Transform) string {
 			return p.model.source
 		}
 	}
-	return t.Source
+	return t.Source.Text
 }
 
 // judgeStereo compares the marks. Achiral materials give relative marks: the mirror image is the same
@@ -301,7 +301,7 @@ func (a *assessment) judgeOver(b *Book, t *Transform, ms []*subject) {
 	for _, g := range t.goesOn {
 		partner := ms[a.outcome.copies[a.outcome.laid[g.part].copy]]
 		if g.query.Matches(partner.Subject) && t.fitsAgain(product, g.part) {
-			a.over = append(a.over, overReaction{-1, Objection{Kind: KindOverReaction, Text: g.why, Fatal: true, Source: t.Source}})
+			a.over = append(a.over, overReaction{-1, Objection{Kind: KindOverReaction, Text: g.why, Fatal: true, Source: t.Source.Text}})
 			return
 		}
 	}

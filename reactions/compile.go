@@ -82,7 +82,7 @@ func (l *loader) addErr(p rules.Place, err error) {
 // compile makes one transform; the stages stand in order, each needs the ones before.
 func (l *loader) compile(src *sourceTransform, family, file string) (*Transform, error) {
 	t := &Transform{ID: src.ID.Value, Name: src.Name.Value, Family: family, Summary: src.Summary, Everywhere: src.Everywhere, Once: src.Once,
-		Dangers: src.Dangers, Source: src.Source.Text, Provenance: src.Source.Provenance, File: src.Place.String(), closes: src.Closes}
+		Dangers: src.Dangers, Source: src.Source.source(), File: src.Place.String(), closes: src.Closes}
 	for _, stage := range []func(*Transform, *sourceTransform, string) error{
 		l.compileSides, l.compileParts, l.compileChoices, l.compilePreferences, l.compileConditions, l.compileExamples,
 	} {
@@ -430,7 +430,10 @@ func (l *loader) modelIDs() []string {
 func (l *loader) compileExamples(t *Transform, src *sourceTransform, file string) error {
 	for i, list := range [2][]sourceExample{src.Examples, src.Rejects} {
 		for _, se := range list {
-			ex := Example{To: se.To.Value, With: se.With, Objects: se.Objects, Why: se.Why, File: se.Place.String()}
+			ex := Example{To: se.To.Value, With: se.With, Objects: se.Objects, Why: se.Why, Source: se.Source.source(), File: se.Place.String()}
+			if ex.Source.WasRead() && !se.Source.Yield.Written {
+				return se.Place.Errorf("the source of the example was read: write its yield too, such as yield: 85")
+			}
 			for _, text := range append(append([]rules.Text(nil), se.From...), se.To) {
 				if _, err := readAt(text, file); err != nil {
 					return err

@@ -40,14 +40,14 @@ func (l *loader) conditions(t *Transform, sc *sourceConditions, file string) (*C
 		Order: sc.Order, Temperature: [2]float64{sc.Temperature.Low, sc.Temperature.High}, Hours: [2]float64{sc.Time.Low, sc.Time.High},
 		Origin: sc.Origin, TriedAt: sc.TriedAt, Workup: sc.Workup, WorkupMaterials: sc.WorkupMaterials, Watch: sc.Watch,
 		Cautions: sc.Cautions, Needs: sc.Needs, HeatKJ: sc.Heat, Together: texts(sc.Together),
-		Source: sc.Source.Text, Provenance: sc.Source.Provenance, File: sc.Place.String()}
+		Source: sc.Source.source(), File: sc.Place.String()}
 	for _, m := range sc.Media {
 		if !l.media.has(m.Value) {
 			return nil, m.Errorf(file, "no medium %q in rules/tolerance.yaml%s", m.Value, didYouMean(m.Value, l.media.ids()))
 		}
 	}
-	if c.Source == "" {
-		c.Source, c.Provenance = t.Source, t.Provenance
+	if c.Source.Text == "" {
+		c.Source = t.Source
 	}
 	if c.Origin == "" {
 		c.Origin = "estimated"

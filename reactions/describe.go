@@ -19,7 +19,30 @@ func Describe(w io.Writer, t *Transform) {
 	for _, c := range t.Conditions {
 		describeConditions(w, c)
 	}
-	fmt.Fprintf(w, "  source: %s (%s)\n  file: %s\n", t.Source, t.Provenance, t.File)
+	fmt.Fprintln(w)
+	for _, ex := range t.Examples {
+		describeExample(w, "example", ex)
+	}
+	for _, ex := range t.Rejects {
+		describeExample(w, "not", ex)
+	}
+	fmt.Fprintf(w, "  source: %s\n  file: %s\n", t.Source, t.File)
+}
+
+// describeExample writes a use of the transform with where it is reported.
+func describeExample(w io.Writer, word string, ex Example) {
+	fmt.Fprintf(w, "  %s: %s -> %s\n", word, strings.Join(ex.From, " + "), ex.To)
+	if ex.Why != "" {
+		fmt.Fprintln(w, "    "+ex.Why)
+	}
+	switch yield := ex.Source.YieldText(); {
+	case yield != "":
+		fmt.Fprintf(w, "    reported yield %s: %s\n", yield, ex.Source)
+	case ex.Source.Text != "":
+		fmt.Fprintf(w, "    %s\n", ex.Source)
+	case ex.Why == "":
+		fmt.Fprintln(w, "    textbook (memory)")
+	}
 }
 
 func describeConditions(w io.Writer, c *Conditions) {

@@ -59,11 +59,6 @@ type sourceGoesOn struct {
 	Why     string     `yaml:"why"`
 }
 
-type sourceNote struct {
-	Text       string `yaml:"text" need:"text: 'textbook chemistry, no single source'"`
-	Provenance string `yaml:"provenance" need:"provenance: memory"`
-}
-
 type sourceExample struct {
 	rules.Place
 	From    []rules.Text `yaml:"from" need:"from: ['CCO']"`
@@ -72,6 +67,7 @@ type sourceExample struct {
 	Share   string       `yaml:"share"`
 	Why     string       `yaml:"why"`
 	Objects bool         `yaml:"objects"`
+	Source  sourceNote   `yaml:"source"`
 }
 
 type sourceConditions struct {

@@ -14,7 +14,7 @@ type Transform struct {
 	Everywhere                bool
 	Once                      bool // the reagent is measured for one reaction: the product meets no more of it
 	Dangers                   []string
-	Source, Provenance        string
+	Source                    Source
 	File                      string // file and line of its definition
 	Examples, Rejects         []Example
 
@@ -68,35 +68,36 @@ type Example struct {
 	Share   Share
 	Objects bool // an objection is expected
 	Why     string
+	Source  Source // where it is reported; without Text: textbook chemistry from memory
 	File    string
 }
 
 // Conditions is one reagent set of a transform. Amounts are equivalents per mole of the product at full yield.
 type Conditions struct {
-	ID                 string
-	Reagents           []Charge
-	Solvents           []Solvent
-	Media              []string
-	OnlyWith           []string // facts that a description must state
-	NeverWith          []string
-	Order              string
-	Temperature        [2]float64 // C
-	Hours              [2]float64
-	Yield              Range  // fractions 0-1
-	Origin             string // published | near | class | estimated | own
-	TriedAt            string
-	Workup             []string
-	WorkupMaterials    []string
-	Watch              string
-	Cautions           []string
-	Needs              []string
-	Uses, Gives        []Amount // balanced, per occurrence of the edit
-	HeatKJ             float64  // evolved per mol, 0 unknown
-	Gas                []Amount // mol gas per mol of product, by formula
-	Together           []string // ids of transforms that run in the same flask
-	Source, Provenance string
-	ReactantEquiv      map[int]float64 // reactant part (from 1) -> equivalents, where not 1
-	File               string
+	ID              string
+	Reagents        []Charge
+	Solvents        []Solvent
+	Media           []string
+	OnlyWith        []string // facts that a description must state
+	NeverWith       []string
+	Order           string
+	Temperature     [2]float64 // C
+	Hours           [2]float64
+	Yield           Range  // fractions 0-1
+	Origin          string // published | near | class | estimated | own
+	TriedAt         string
+	Workup          []string
+	WorkupMaterials []string
+	Watch           string
+	Cautions        []string
+	Needs           []string
+	Uses, Gives     []Amount // balanced, per occurrence of the edit
+	HeatKJ          float64  // evolved per mol, 0 unknown
+	Gas             []Amount // mol gas per mol of product, by formula
+	Together        []string // ids of transforms that run in the same flask
+	Source          Source
+	ReactantEquiv   map[int]float64 // reactant part (from 1) -> equivalents, where not 1
+	File            string
 
 	applies map[int][]*molecule.Molecule
 }

@@ -61,7 +61,7 @@ func (j *judge) concludeMatched(best *candidate, out *Judgement) {
 	out.Racemic = best.a.racemic
 	out.Objections = append(out.Objections, best.objections...)
 	if rival := j.rivalOf(best); rival != nil {
-		out.Objections = append(out.Objections, Objection{Kind: KindOther, Fatal: true, Source: rival.t.Source,
+		out.Objections = append(out.Objections, Objection{Kind: KindOther, Fatal: true, Source: rival.t.Source.Text,
 			Text: fmt.Sprintf("with these reagents %s runs instead and gives %s", rival.t.Name, productNames(rival.a.products))})
 		out.Expected = rival.a.products
 		out.Transforms = append(out.Transforms, rival.t)
@@ -125,7 +125,7 @@ func (j *judge) concludeOther(best *candidate, out *Judgement) {
 	out.Objections = append(out.Objections, Objection{Kind: KindNoReaction, Text: text, Fatal: out.Verdict == Unsound})
 	if rival := j.strongestOther(); rival != nil {
 		out.Expected = rival.a.products
-		out.Objections = append(out.Objections, Objection{Kind: KindSite, Fatal: out.Verdict == Unsound, Source: rival.t.Source,
+		out.Objections = append(out.Objections, Objection{Kind: KindSite, Fatal: out.Verdict == Unsound, Source: rival.t.Source.Text,
 			Text: fmt.Sprintf("with these reagents %s runs and gives %s", rival.t.Name, productNames(rival.a.products))})
 	}
 	for _, o := range best.objections {
@@ -163,7 +163,7 @@ func (j *judge) concludeNothing(out *Judgement) {
 		if !j.sameFormula(rival) {
 			kind = KindOther
 		}
-		out.Objections = append(out.Objections, Objection{Kind: kind, Fatal: true, Source: rival.t.Source,
+		out.Objections = append(out.Objections, Objection{Kind: kind, Fatal: true, Source: rival.t.Source.Text,
 			Text: fmt.Sprintf("with these reagents %s runs and gives %s, not the product claimed", rival.t.Name, productNames(rival.a.products))},
 			Objection{Kind: KindNoTransform, Text: "no loaded transform leads from these materials to this product under any conditions"})
 	case len(j.known) > 0:

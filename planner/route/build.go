@@ -132,7 +132,7 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 		Product: w.Write(s.Product), ProductName: w.Name(s.Product), ProductFormula: s.Product.Formula().String(), Molecule: s.Product,
 		Byproducts: []string{}, ByproductNames: []string{}, Reagents: []string{}, Solvents: []string{}, Hazards: []string{}, Cautions: []string{}, Objections: []Objection{},
 		Temperature: Span{set.Temperature[0], set.Temperature[1]}, Time: Span{set.Hours[0], set.Hours[1]},
-		Share: s.Share.String(), Yield: Range(y).tidy(), Origin: set.Origin, Racemic: s.Racemic, Source: set.Source, Judged: s, Set: set}
+		Share: s.Share.String(), Yield: Range(y).tidy(), Origin: set.Origin, Racemic: s.Racemic, Source: set.Source.Text, Judged: s, Set: set}
 	if out.Origin == "" {
 		out.Origin = "estimated"
 	}

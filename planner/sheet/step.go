@@ -35,7 +35,7 @@ func (w *writer) step(i int) (Step, error) {
 		return Step{}, err
 	}
 	s := Step{Number: src.Number, Name: src.Name, Transform: src.Transform, Product: w.compound(product), Yield: src.Yield,
-		Sources: []string{set.Source + " (" + set.Provenance + ")"}, SureFactor: w.sureFactor(i)}
+		Sources: []string{set.Source.String()}, SureFactor: w.sureFactor(i)}
 	words := []string{src.Origin, set.Origin}
 	for _, o := range src.Objections {
 		s.Objections = append(s.Objections, o.Text)

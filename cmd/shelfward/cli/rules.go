@@ -27,8 +27,8 @@ func newRulesCommand(app *App) *cobra.Command {
 		Example: "  shelfward rules list\n  shelfward rules list ozon",
 		RunE:    func(_ *cobra.Command, args []string) error { return app.rulesList(strings.Join(args, " ")) },
 	}, &cobra.Command{
-		Use: "show ID", Short: "show one transform with its conditions", Args: exactly(1),
-		Long:    "Shows the parts, the condition sets, the source and the file of a transform.\n" + exitHelp,
+		Use: "show ID", Short: "show one transform with its conditions, examples and sources", Args: exactly(1),
+		Long:    "Shows the parts, the condition sets, the examples, the sources and the file of a transform.\n" + exitHelp,
 		Example: "  shelfward rules show fischer-esterification",
 		RunE:    func(_ *cobra.Command, args []string) error { return app.rulesShow(args[0]) },
 	}, &cobra.Command{
@@ -147,7 +147,7 @@ func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 	for _, e := range list {
 		lines = append(lines, e.Error())
 	}
-	checked := 0
+	checked, read := 0, 0
 	for _, t := range b.Transforms {
 		if !app.wantsCheck(t, ids) {
 			continue
@@ -156,11 +156,14 @@ func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 			return err
 		}
 		checked++
+		if t.HasReadSource() {
+			read++
+		}
 		for _, f := range append(b.Check(t), refusedExamples(screen, t)...) {
 			lines = append(lines, f.String())
 		}
 	}
-	return app.printCheck(checked, lines)
+	return app.printCheck(checked, read, lines)
 }
 
 // wantsCheck picks the transforms to run: those named, else those of the user's folders, else all.
@@ -173,9 +176,9 @@ func (app *App) wantsCheck(t *reactions.Transform, ids []string) bool {
 
 // printCheck writes the mistakes: on standard output, but with --json, which prints no object beside
 // status 2, as messages.
-func (app *App) printCheck(checked int, mistakes []string) error {
+func (app *App) printCheck(checked, read int, mistakes []string) error {
 	if app.JSON && len(mistakes) == 0 {
-		return printJSON(app.Out, map[string]any{"checked": checked, "mistakes": []string{}, "doubts": []string{}})
+		return printJSON(app.Out, map[string]any{"checked": checked, "read_source": read, "mistakes": []string{}, "doubts": []string{}})
 	}
 	w := app.Out
 	if app.JSON {
@@ -184,6 +187,7 @@ func (app *App) printCheck(checked int, mistakes []string) error {
 	for _, line := range mistakes {
 		fmt.Fprintln(w, line)
 	}
+	fmt.Fprintf(w, "%d of %d transforms have an example whose source was read\n", read, checked)
 	fmt.Fprintf(w, "%d transforms checked, %d mistakes\n", checked, len(mistakes))
 	if len(mistakes) > 0 {
 		return failWith(exitUsage, errSilent)

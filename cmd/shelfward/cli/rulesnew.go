@@ -87,7 +87,7 @@ transforms:
     watch: 'FILL'                         # how to see that it is over
     cautions: ['FILL']
     needs: ['fume hood']
-    source: {text: 'FILL', provenance: FILL}   # an address, memory or common practice
+    source: {text: 'FILL', provenance: FILL}   # memory, common practice, own; read with address: https://...
   source: {text: 'FILL', provenance: FILL}
   examples:
   - {from: ['FILL', 'FILL'], to: 'FILL'}
