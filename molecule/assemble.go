@@ -201,7 +201,7 @@ func (m *Molecule) WithoutStereo() *Molecule {
 // shallow returns a molecule that shares all of m but the stereo marks and what depends on them.
 func (m *Molecule) shallow() *Molecule {
 	return &Molecule{atoms: m.atoms, bonds: m.bonds, first: m.first, neighbors: m.neighbors, rings: m.rings, bondRing: m.bondRing,
-		pentavalent: m.pentavalent}
+		redraw: m.redraw}
 }
 
 // EqualsMirror says whether m is the same as its mirror image: no centre is marked, or the marks

@@ -158,6 +158,10 @@ func TestStereoisomerNumbers(t *testing.T) {
 		{"hepta-2,5-diene", "C/C=C/C/C=C/C", 3},
 		{"4-hydroxyhepta-2,5-diene", "C/C=C/[C@H](O)/C=C/C", 4},
 		{"butane-2,3-diol", "C[C@H](O)[C@H](C)O", 3},
+		{"1,3,5-trimethylcyclohexane", "C[C@H]1C[C@H](C)C[C@H](C)C1", 2},
+		{"hexane-2,3,4,5-tetrol", "C[C@H](O)[C@H](O)[C@H](O)[C@H](C)O", 10},
+		{"1,3-dimethylcyclobutane", "C[C@H]1C[C@H](C)C1", 2},
+		{"1,2,3,4-tetramethylcyclobutane", "C[C@H]1[C@H](C)[C@H](C)[C@H]1C", 4},
 	} {
 		kinds := map[molecule.Key]bool{}
 		texts := map[string]bool{}
@@ -180,6 +184,34 @@ func TestStereoisomerNumbers(t *testing.T) {
 		}
 		if len(kinds) != c.want || len(texts) != c.want {
 			t.Errorf("%s: %d stereoisomers by key, %d by text, want %d", c.name, len(kinds), len(texts), c.want)
+		}
+	}
+}
+
+// TestKeptMarks: how many marks stay where centers depend on each other. Worked out by hand: a center whose
+// two equal ligands are turned into each other by the rest has none; two like centers on either
+// side of a mirror plane keep theirs although turning one over would give the same molecule.
+func TestKeptMarks(t *testing.T) {
+	for _, c := range []struct {
+		name, text string
+		want       int
+	}{
+		{"cis,cis-1,3,5-trimethylcyclohexane", "C[C@H]1C[C@@H](C)C[C@@H](C)C1", 3},
+		{"cis,trans-1,3,5-trimethylcyclohexane", "C[C@H]1C[C@H](C)C[C@@H](C)C1", 3},
+		{"trans-3,5-dimethylcyclohexanol", "O[C@H]1C[C@@H](C)C[C@H](C)C1", 2},
+		{"cis-3,5-dimethylcyclohexanol", "O[C@H]1C[C@@H](C)C[C@@H](C)C1", 3},
+		{"cis,trans-1,2,3-trimethylcyclopropane", "C[C@H]1[C@H](C)[C@H]1C", 3},
+		{"(2R,3s,4S)-pentane-2,3,4-triol", "C[C@H](O)[C@H](O)[C@@H](C)O", 3},
+		{"(2R,4R)-pentane-2,3,4-triol", "C[C@H](O)[C@H](O)[C@H](C)O", 2},
+		{"myo-inositol", "O[C@H]1[C@H](O)[C@@H](O)[C@H](O)[C@H](O)[C@@H]1O", 6},
+		{"methylcyclohexane", "C[C@H]1CCCCC1", 0},
+		{"7-methylnorbornane", "C[C@@H]1[C@H]2CC[C@@H]1CC2", 2},
+		{"a spiro compound with its axis", "C[C@H]1C[C@]2(C1)C[C@H](C)C2", 3},
+		{"a spiro compound whose axis is open", "C[C@H]1CC2(C1)C[C@H](C)C2", 0},
+	} {
+		m := readMolecule(t, c.text)
+		if got := len(m.Centers()) + len(m.DoubleBonds()); got != c.want {
+			t.Errorf("%s: %s keeps %d marks, want %d: %s", c.name, c.text, got, c.want, smiles.Write(m))
 		}
 	}
 }

@@ -1,18 +1,25 @@
 package molecule
 
-// SeparateCharges returns m with pentavalent nitrogen (CN(=O)=O, CN=N#N) drawn with charges, the form
-// that patterns and rules are written in; m itself if there is none. Readers of files and texts call
-// it. Atom and bond indices are kept.
+// SeparateCharges returns m with pentavalent nitrogen (CN(=O)=O, CN=N#N) drawn with charges and the
+// oxygen acids of halogens ([O-][Cl+3]([O-])([O-])O) without, the forms that patterns and rules are
+// written in; m itself if there is nothing to redraw. Readers of files and texts call it. Atom and
+// bond indices are kept.
 func (m *Molecule) SeparateCharges() *Molecule {
-	if !m.pentavalent {
+	if !m.redraw {
 		return m
 	}
 	b := m.Builder()
 	c := newChargeWork(b)
 	for a := range b.Atoms {
-		if b.Atoms[a].Element == 7 {
+		switch {
+		case b.Atoms[a].Element == 7:
 			c.pentavalent(int32(a))
+		case isHalogen(b.Atoms[a].Element):
+			c.halate(int32(a))
 		}
+	}
+	if !c.changed {
+		return m
 	}
 	n, err := b.Build()
 	if err != nil {
@@ -102,6 +109,20 @@ func (c *chargeWork) pentavalent(a int32) {
 	}
 	if found.Atom >= 0 {
 		c.shift(found.Bond, a, found.Atom, 1)
+	}
+}
+
+// halate turns a positive halogen among oxygens, some of them negative, into one with double bonds.
+func (c *chargeWork) halate(a int32) {
+	for _, nb := range c.nbs[a] {
+		if c.b.Atoms[nb.Atom].Element != 8 {
+			return
+		}
+	}
+	for _, nb := range c.nbs[a] {
+		if c.b.Atoms[a].Charge > 0 && c.b.Atoms[nb.Atom].Charge == -1 && c.b.Bonds[nb.Bond].Order == 1 {
+			c.shift(nb.Bond, a, nb.Atom, -1)
+		}
 	}
 }
 

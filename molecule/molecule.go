@@ -64,7 +64,7 @@ type Molecule struct {
 	bondRing    []uint16 // bond -> size of its smallest ring, 0 none; nil without rings
 	centers     []Center
 	doubleBonds []DoubleBond
-	pentavalent bool // some nitrogen has five bonds
+	redraw      bool // some nitrogen has five bonds or some halogen a positive charge
 
 	exact, flat, seen atomic.Pointer[identity] // made when first asked for
 }

@@ -118,6 +118,7 @@ func fillUp(x *Atom, sum int16) uint8 {
 
 func (p *perceiver) checkValence(a int) error {
 	x := &p.m.atoms[a]
+	p.m.redraw = p.m.redraw || x.Charge > 0 && isHalogen(x.Element)
 	list := valences(x)
 	if list == nil {
 		return nil
@@ -127,12 +128,12 @@ func (p *perceiver) checkValence(a int) error {
 	if x.Element == 7 && x.Charge == 0 && total > 3 {
 		// Pentavalent nitrogen is a way to draw nitro groups, N-oxides and azides; it has multiple bonds.
 		if total == 5 && p.sum[a] > int16(p.m.Degree(a)) {
-			p.m.pentavalent = true
+			p.m.redraw = true
 			return nil
 		}
 		most = 3
 	}
-	if total > 1 && x.Charge == 0 && (x.Element == 17 || x.Element == 35 || x.Element == 53) && !p.oxidised(a) {
+	if total > 1 && x.Charge == 0 && isHalogen(x.Element) && !p.oxidised(a) {
 		most = 1
 	}
 	if total <= most || x.Charge == 0 && total <= highest[x.Element] {

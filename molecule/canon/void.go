@@ -1,26 +1,32 @@
 package canon
 
-// DropVoid returns g without the marks that say nothing: those where flipping the mark alone gives
-// the same graph again. Marks are judged one at a time, in canonical order, each against what is
-// left. The slices of marks are new when something was dropped; the rest is shared. keepCenter and
-// keepAxis tell which marks stayed, nil when all did.
+import "slices"
+
+// DropVoid returns which marks of g say something: keepCenter and keepAxis tell it mark by mark, nil
+// when all do.
+//
+// A mark is void when flipping it alone gives the same graph again, and when this holds for all
+// marks that symmetry, mirror symmetry included, makes its like: the class goes as a whole or
+// stays as a whole. Three like centres in a ring, two up and one down, show why: turning over either of
+// the two gives the same graph, but with both left open nothing would be known of them. Classes are
+// judged one after the other in canonical order, each against what is left.
 func (w *Worker) DropVoid(g *Graph) (keepCenter, keepAxis []bool) {
 	h := *g
 	centerAt, axisAt := w.dropTwins(g, &h)
-	v := voidWork{w: w, h: &h, centerAt: centerAt, axisAt: axisAt, left: maxWork / max(1, len(g.Colours)*len(g.Colours))}
+	v := voidWork{w: w, left: maxWork / max(1, len(g.Colours)*len(g.Colours))}
+	v.marks = marks{h, centerAt, axisAt, nil, nil}
 	if v.suspects() {
-		for v.dropOne() {
+		for v.dropClass() {
 		}
 	}
-	centerAt, axisAt = v.centerAt, v.axisAt
-	if len(h.Centers) == len(g.Centers) && len(h.Axes) == len(g.Axes) {
+	if len(v.graph.Centers) == len(g.Centers) && len(v.graph.Axes) == len(g.Axes) {
 		return nil, nil
 	}
 	keepCenter, keepAxis = make([]bool, len(g.Centers)), make([]bool, len(g.Axes))
-	for _, i := range centerAt {
+	for _, i := range v.centerAt {
 		keepCenter[i] = true
 	}
-	for _, i := range axisAt {
+	for _, i := range v.axisAt {
 		keepAxis[i] = true
 	}
 	return keepCenter, keepAxis
@@ -63,20 +69,91 @@ func (w *Worker) dropTwins(g, h *Graph) (centerAt, axisAt []int) {
 // second for a hostile one (a ring of hundreds of centres), whose void marks then stay.
 const maxWork = 2_000_000
 
-// voidWork is the search for void marks in h.
+// marks is a graph with what is known of each of its marks.
+type marks struct {
+	graph            Graph
+	centerAt, axisAt []int  // where the marks stand in the given graph
+	center, axis     []bool // mark can be void
+}
+
+// clone copies the marks; the bare graph is shared.
+func (m *marks) clone() marks {
+	c := *m
+	c.graph.Centers, c.graph.Axes = slices.Clone(m.graph.Centers), slices.Clone(m.graph.Axes)
+	c.centerAt, c.axisAt = slices.Clone(m.centerAt), slices.Clone(m.axisAt)
+	c.center, c.axis = slices.Clone(m.center), slices.Clone(m.axis)
+	return c
+}
+
+// flip turns mark i over; axes are numbered behind the centres.
+func (m *marks) flip(i int) {
+	if n := len(m.graph.Centers); i < n {
+		m.graph.Centers[i].Clockwise = !m.graph.Centers[i].Clockwise
+	} else {
+		m.graph.Axes[i-n].Together = !m.graph.Axes[i-n].Together
+	}
+}
+
+// drop takes mark i out.
+func (m *marks) drop(i int) {
+	if n := len(m.graph.Centers); i >= n {
+		i -= n
+		m.graph.Axes, m.axisAt, m.axis = slices.Delete(m.graph.Axes, i, i+1), slices.Delete(m.axisAt, i, i+1), slices.Delete(m.axis, i, i+1)
+		return
+	}
+	m.graph.Centers, m.centerAt, m.center = slices.Delete(m.graph.Centers, i, i+1), slices.Delete(m.centerAt, i, i+1), slices.Delete(m.center, i, i+1)
+}
+
+// suspect says that mark i can be void.
+func (m *marks) suspect(i int) bool {
+	if n := len(m.center); i >= n {
+		return m.axis[i-n]
+	}
+	return m.center[i]
+}
+
+// place is where mark i stands: center or axis, and what its atoms have in of, the lower one first.
+func (m *marks) place(i int, of []int32) [3]int32 {
+	if n := len(m.graph.Centers); i >= n {
+		x := &m.graph.Axes[i-n]
+		return [3]int32{1, min(of[x.A], of[x.B]), max(of[x.A], of[x.B])}
+	}
+	return [3]int32{0, of[m.graph.Centers[i].Atom]}
+}
+
+// inOrder lists the suspects, one of each orbit, centers first and by rank.
+func (m *marks) inOrder(l *Labelling) []int {
+	var list []int
+	for i := range len(m.center) + len(m.axis) {
+		if m.suspect(i) {
+			list = append(list, i)
+		}
+	}
+	slices.SortFunc(list, func(i, j int) int {
+		x, y := m.place(i, l.Ranks), m.place(j, l.Ranks)
+		return slices.Compare(x[:], y[:])
+	})
+	seen := map[[3]int32]bool{}
+	return slices.DeleteFunc(list, func(i int) bool {
+		orbit := m.place(i, l.Orbits)
+		again := seen[orbit]
+		seen[orbit] = true
+		return again
+	})
+}
+
+// voidWork is the search for void marks.
 type voidWork struct {
-	w                *Worker
-	h                *Graph
-	centerAt, axisAt []int  // where the marks of h stand in the given graph
-	center, axis     []bool // mark of h can be void
-	left             int    // labellings left
+	marks
+	w    *Worker
+	left int // labellings left
 }
 
 // suspects finds the marks with ligands which the flat refinement cannot tell apart, and reports
 // whether there are any. The others always count: the sign relative to the flat order is an
 // invariant of the atom, and flipping one changes how often it occurs.
 func (v *voidWork) suspects() bool {
-	h := v.h
+	h := &v.graph
 	if len(h.Centers)+len(h.Axes) == 0 {
 		return false
 	}
@@ -101,50 +178,84 @@ func (v *voidWork) suspects() bool {
 	return any
 }
 
-// dropOne drops the first void mark of h in canonical order, centres first, and reports whether
-// there was one. Of marks on equivalent atoms one stands for all.
-func (v *voidWork) dropOne() bool {
-	h := v.h
-	base := v.w.Label(h)
-	tried := map[[2]int32]bool{}
-	found, at := int32(1<<30), -1
-	for i := range h.Centers {
-		c := &h.Centers[i]
-		place := [2]int32{base.Orbits[c.Atom], -1}
-		if !v.center[i] || base.Ranks[c.Atom] >= found || tried[place] || v.left == 0 {
+// dropClass drops the first void class of marks in canonical order and reports whether there was one.
+func (v *voidWork) dropClass() bool {
+	base := v.w.Label(&v.graph)
+	order := slices.DeleteFunc(v.inOrder(base), func(i int) bool { return !v.open(&v.marks, i, base) })
+	if len(order) == 0 {
+		return false
+	}
+	like, turned := v.mirrored(base)
+	if turned != nil && len(order) > 1 {
+		// A graph and its mirror image must lose the same classes: the order is that of one of the two.
+		open := map[[3]int32]bool{}
+		for _, i := range order {
+			open[v.place(i, base.Orbits)] = true
+		}
+		order = slices.DeleteFunc(v.inOrder(turned), func(i int) bool { return !open[v.place(i, base.Orbits)] })
+	}
+	for _, i := range order {
+		if v.dropLike(v.place(i, like), like, base) {
+			return true
+		}
+	}
+	return false
+}
+
+// open says that mark i of m can be turned over without a change; base is the labelling of m.
+func (v *voidWork) open(m *marks, i int, base *Labelling) bool {
+	if v.left == 0 {
+		return false
+	}
+	v.left--
+	m.flip(i)
+	same := v.w.Label(&m.graph).Hash == base.Hash
+	m.flip(i)
+	return same
+}
+
+// dropLike drops all marks of one class, if every one is open when those before it are gone.
+func (v *voidWork) dropLike(class [3]int32, like []int32, base *Labelling) bool {
+	trial := v.clone()
+	for i := len(v.center) + len(v.axis) - 1; i >= 0; i-- { // from the end: a mark gone moves only those behind it
+		if v.place(i, like) != class {
 			continue
 		}
-		tried[place] = true
-		v.left--
-		c.Clockwise = !c.Clockwise
-		if v.w.Label(h).Hash == base.Hash {
-			found, at = base.Ranks[c.Atom], i
+		if !trial.suspect(i) || !v.open(&trial, i, base) {
+			return false
 		}
-		c.Clockwise = !c.Clockwise
+		trial.drop(i)
+		base = v.w.Label(&trial.graph)
 	}
-	if at >= 0 {
-		h.Centers = append(h.Centers[:at], h.Centers[at+1:]...)
-		v.centerAt = append(v.centerAt[:at], v.centerAt[at+1:]...)
-		v.center = append(v.center[:at], v.center[at+1:]...)
-		return true
+	v.marks = trial
+	return true
+}
+
+// mirrored joins the orbits of base with those which only a reflection makes equal. turned is the
+// labelling of the mirror image where that is another graph which comes first; else it is nil.
+func (v *voidWork) mirrored(base *Labelling) (like []int32, turned *Labelling) {
+	image := v.clone()
+	for i := range image.graph.Centers {
+		image.flip(i)
 	}
-	for i := range h.Axes {
-		x := &h.Axes[i]
-		rank := min(base.Ranks[x.A], base.Ranks[x.B])
-		if !v.axis[i] || rank >= found || v.left == 0 {
-			continue
+	other := v.w.Label(&image.graph)
+	if other.Hash != base.Hash {
+		if slices.Compare(other.Hash[:], base.Hash[:]) < 0 {
+			turned = other
 		}
-		v.left--
-		x.Together = !x.Together
-		if v.w.Label(h).Hash == base.Hash {
-			found, at = rank, i
-		}
-		x.Together = !x.Together
+		return base.Orbits, turned
 	}
-	if at >= 0 {
-		h.Axes = append(h.Axes[:at], h.Axes[at+1:]...)
-		v.axisAt = append(v.axisAt[:at], v.axisAt[at+1:]...)
-		v.axis = append(v.axis[:at], v.axis[at+1:]...)
+	like = slices.Clone(base.Orbits)
+	at := make([]int32, len(like))
+	for a, r := range other.Ranks {
+		at[r] = int32(a)
 	}
-	return at >= 0
+	for a, r := range base.Ranks {
+		x, y := base.Orbits[a], base.Orbits[at[r]]
+		like[x], like[y] = min(like[x], like[y]), min(like[x], like[y])
+	}
+	for a, o := range base.Orbits {
+		like[a] = like[o]
+	}
+	return like, nil
 }

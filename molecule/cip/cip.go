@@ -119,16 +119,17 @@ func (f *frame) hasOpen() bool {
 	return false
 }
 
-// maybeDependent says that ligands of a which constitution makes equal lead to marks: a could be a
-// centre because of them (one whose own mark was void, as in trans-1,3,5-trimethylcyclohexane).
+// maybeDependent says that ligands of a which constitution makes equal lead to marks that tell them
+// apart: a could be a centre because of them.
 func (f *frame) maybeDependent(a int) bool {
 	m, orbits, exact := f.m, f.m.FlatOrbits(), f.m.Orbits()
+	alone := exact[a] == int32(a) && !slices.Contains(exact[a+1:], int32(a))
 	nbs := m.Neighbors(a)
 	for i, x := range nbs {
 		for _, y := range nbs[:i] {
-			// Chains that are equal with their marks make no centre; in a ring a dropped mark can be what
-			// made them equal.
-			alike := exact[x.Atom] == exact[y.Atom] && !m.Bond(int(x.Bond)).Ring
+			// What makes equal ligands equal leaves a in its place, unless there are more of its kind and a
+			// ring leads from one to the next.
+			alike := exact[x.Atom] == exact[y.Atom] && (alone || !m.Bond(int(x.Bond)).Ring)
 			if orbits[x.Atom] == orbits[y.Atom] && !alike && f.leadsToMark(x.Atom, int32(a)) {
 				return true
 			}

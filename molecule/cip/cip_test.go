@@ -76,10 +76,7 @@ func TestNamedMolecules(t *testing.T) {
 // TestAgainstReference compares with the labels of an independent program (see
 // testdata/reference_labels.py): none is different. Where we keep silent and it does not, the classes are
 //   - the centre of a spiro compound with equal rings, which needs rule 6;
-//   - double bonds that only rule 5 decides (its e and z);
-//   - labels decided by rule 3 or later beside an atom that has no mark, be it that its mark said
-//     nothing (one of two like centres of trans-1,3,5-trimethylcyclohexane): the reference takes
-//     such an atom for no centre, we do not know it.
+//   - double bonds that only rule 5 decides (its e and z).
 //
 // One class differed at first and was settled for the reference's reading: P=O and S=O with three
 // ligands or more count as single bonds, so that OH is senior to =O in a sulfinic acid.
@@ -103,7 +100,7 @@ func TestAgainstReference(t *testing.T) {
 			labels[l]++
 		}
 	}
-	if silent > 50 {
+	if silent > 20 {
 		t.Errorf("silent on %d marks that the reference names", silent)
 	}
 	for _, l := range []Label{R, S, LowerR, LowerS, E, Z} {

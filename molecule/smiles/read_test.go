@@ -21,7 +21,7 @@ func TestSpecification(t *testing.T) {
 		// 3.2 bonds
 		{"CC C-C", "C2H6"}, {"C=C", "C2H4"}, {"C#N N#C", "CHN"}, {"CCO OCC C(O)C", "C2H6O"}, {"O=C=O", "CO2"}, {"[Ga+]$[As-]", "AsGa"},
 		// 3.3 branches
-		{"CC(C)C(=O)O OC(=O)C(C)C", "C4H8O2"}, {"FC(F)F C(F)(F)F", "CHF3"}, {"O=Cl(=O)(=O)[O-]", "ClO4-"},
+		{"CC(C)C(=O)O OC(=O)C(C)C", "C4H8O2"}, {"FC(F)F C(F)(F)F", "CHF3"}, {"O=Cl(=O)(=O)[O-] [O-][Cl+3]([O-])([O-])[O-] [O-][Cl+](=O)(=O)[O-]", "ClO4-"}, {"OI(=O)=O O[I+2]([O-])[O-]", "HIO3"},
 		{"CCCC(C(=O)O)CCC", "C8H16O2"}, {"C(C(C(C(C(C(C(C(C(C)))))))))", "C10H22"}, {"FS(F)(F)(F)(F)F", "F6S"},
 		// 3.4 rings
 		{"C1CCCCC1 C=1CCCCC=1.C N1CCCCC1.C C%11CCCCC%11 C%(123)CCCCC%(123) C1CCCCC%01", ""},
