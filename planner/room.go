@@ -30,6 +30,7 @@ type Room struct {
 	Restricted *restricted.Screen
 
 	guide *sheet.Guide
+	scale *route.Scale
 	stock *stock
 }
 
@@ -57,6 +58,9 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 	if r.guide, err = sheet.LoadGuide(fsys, r.Reagents); err != nil {
 		return nil, err
 	}
+	if r.scale, err = route.LoadScale(fsys); err != nil {
+		return nil, err
+	}
 	r.Invented = len(shelfFiles) == 0
 	for _, f := range shelfFiles {
 		r.Invented = r.Invented || f == shelf.BuiltinName
@@ -68,7 +72,7 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 // World is the room as route planning sees it.
 func (r *Room) World() *route.World {
 	return &route.World{Book: r.Book, Transforms: r.Book.Transforms, Materials: r.stock, Shelf: r.Shelf.Molecules(),
-		Gravity: r.Hazards.Gravity, Name: r.Name, Declined: r.declined, Write: smiles.Write, Read: smiles.Read}
+		Gravity: r.Hazards.Gravity, Scale: r.scale, Name: r.Name, Declined: r.declined, Write: smiles.Write, Read: smiles.Read}
 }
 
 // declined says whether a route may not pass through m. What stands on the shelf is a reagent charged,

@@ -29,13 +29,14 @@ type First struct {
 
 // Table is the comparison.
 type Table struct {
-	Target  route.Target `json:"target"`
-	Avoided []string     `json:"avoided"`
-	MakeG   float64      `json:"make_g"`
-	Rows    []Row        `json:"rows"`
-	Missing []string     `json:"missing"` // starts without a route, with the reason
-	FirstBy []First      `json:"first_by"`
-	Doubts  []string     `json:"doubts"`
+	Target route.Target `json:"target"`
+	route.Kept
+	MakeG   float64  `json:"make_g"`
+	Asked   bool     `json:"make_asked"` // the amount was asked for, and stock looked at
+	Rows    []Row    `json:"rows"`
+	Missing []string `json:"missing"` // starts without a route, with the reason
+	FirstBy []First  `json:"first_by"`
+	Doubts  []string `json:"doubts"`
 }
 
 // FromPlan compares the routes of a plan.
@@ -50,7 +51,7 @@ func FromPlan(p *route.Plan) *Table {
 }
 
 func empty(p *route.Plan) *Table {
-	return &Table{Target: p.Target, Avoided: p.Avoided, MakeG: p.MakeG, Rows: []Row{}, Missing: []string{}, FirstBy: []First{}, Doubts: p.Doubts}
+	return &Table{Target: p.Target, Kept: p.Kept, MakeG: p.MakeG, Asked: p.MakeAsked, Rows: []Row{}, Missing: []string{}, FirstBy: []First{}, Doubts: p.Doubts}
 }
 
 // EachFrom plans the target once from each start, with the options otherwise alike, and compares the

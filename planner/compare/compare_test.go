@@ -11,7 +11,7 @@ import (
 
 // rows makes three routes with invented figures: the second has gaps in hazards and prices.
 func rows() *route.Plan {
-	p := &route.Plan{Target: route.Target{SMILES: "CCCC"}, MakeG: 10, From: []string{}, Avoided: []string{}, Doubts: []string{}}
+	p := &route.Plan{Target: route.Target{SMILES: "CCCC"}, MakeG: 10, From: []string{}, Doubts: []string{}}
 	for i, code := range []string{"aaaa001", "bbbb002", "cccc003"} {
 		r := route.Route{Code: code, Steps: make([]route.Step, i+1), LongestRun: i + 1, GravestClass: 4 - i, Days: 2,
 			WorstBranchYield: route.Range{Usual: 0.5 + 0.1*float64(i)}, Waste: route.WasteFigures{WithoutWater: 5}}

@@ -12,9 +12,7 @@ import (
 // each figure.
 func (t *Table) WriteText(w io.Writer) error {
 	var b strings.Builder
-	if len(t.Avoided) > 0 {
-		fmt.Fprintf(&b, "avoided: %s\n", strings.Join(t.Avoided, "; "))
-	}
+	t.WriteWishes(&b)
 	for _, d := range t.Doubts {
 		fmt.Fprintf(&b, "Doubt: %s\n", d)
 	}
@@ -94,10 +92,10 @@ func (t *Table) lines() [][]string {
 		{"starting materials", func(r *Row) string { return r.Starts() }},
 		{"not on the shelf", func(r *Row) string { return fmt.Sprint(len(r.ToBuy)) }},
 		{"stock", func(r *Row) string {
-			if len(r.Short) > 0 {
-				return "short"
+			if !t.Asked {
+				return ""
 			}
-			return "suffices"
+			return r.Stock()
 		}},
 		{"doubts", func(r *Row) string { return fmt.Sprint(len(r.Doubts)) }},
 	}

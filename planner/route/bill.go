@@ -42,6 +42,7 @@ func (b *bill) work() {
 // amounts charges every flask, from the target backwards, at usual yields; it returns the moles of
 // each step's product per mole of target that the equation alone takes, for the atom economy.
 func (b *bill) amounts() (byEquation []float64) {
+	scaleMol := b.plan.MakeG / b.plan.Target.MolarMass
 	made := make([]float64, len(b.list))
 	byEquation = make([]float64, len(b.list))
 	made[len(made)-1], byEquation[len(made)-1] = 1, 1
@@ -56,6 +57,7 @@ func (b *bill) amounts() (byEquation []float64) {
 			if n := b.number[key]; n > 0 {
 				made[n-1] += full * r.Equivalents
 				byEquation[n-1] += byEquation[i] * float64(r.Count)
+				step.FlaskML += full * r.Equivalents * r.Molecule.Formula().MolarMass() * scaleMol
 				continue
 			}
 			mat := b.c.material(key)
@@ -68,12 +70,22 @@ func (b *bill) amounts() (byEquation []float64) {
 				solvent: x.solvent, optional: x.optional, steps: []int{i + 1}})
 		}
 	}
-	for _, items := range perStep {
+	for i, items := range perStep {
 		for _, x := range items {
 			b.charge(x)
+			b.route.Steps[i].FlaskML += x.massG * scaleMol / x.density()
 		}
+		b.route.Steps[i].FlaskML = tidy(b.route.Steps[i].FlaskML)
 	}
 	return byEquation
+}
+
+// density is that of the supplied form in g/mL; what is not known, a solid among others, counts as 1.
+func (x *item) density() float64 {
+	if d := x.material.DensityGPerML; d > 0 {
+		return d
+	}
+	return 1
 }
 
 // childOf returns the child index of reactant j.
@@ -277,7 +289,12 @@ func (b *bill) purchases() {
 		if !x.material.OnShelf && !(x.leaf && x.carbon) && !isWater(&x.material) {
 			r.ToBuy = append(r.ToBuy, Purchase{Name: x.material.Name, CAS: x.material.CAS, SMILES: x.material.SMILES, Needed: x.amount(scaleMol), Why: usedIn(x)})
 		}
-		if x.material.OnShelf && x.mol*scaleMol > x.material.StockMol*(1+1e-9) && b.plan.MakeAsked {
+		if !b.plan.MakeAsked || !x.material.OnShelf || isWater(&x.material) {
+			continue
+		}
+		if math.IsNaN(x.material.StockMol) {
+			r.StockUnknown = append(r.StockUnknown, nameOr(x.material.Name, x.material.SMILES))
+		} else if x.mol*scaleMol > x.material.StockMol*(1+1e-9) {
 			short := x.mol*scaleMol - x.material.StockMol
 			part := item{material: x.material, mol: short, massG: short * x.material.MassPerMol, solvent: x.solvent}
 			r.Short = append(r.Short, fmt.Sprintf("%s by %s of the %s wanted", nameOr(x.material.Name, x.material.SMILES), part.amount(1), x.amount(scaleMol)))

@@ -8,7 +8,7 @@ func TestBoundsBelowCosts(t *testing.T) {
 	for _, by := range ranks {
 		w := avoidWorld(t)
 		target := mustRead(t, "CCC(C)=O")
-		c := newChemistry(w, by, &filter{world: w}, nil)
+		c := newChemistry(w, by, &filter{world: w}, nil, nil)
 		_, bound := c.Bound(c.enter(target), 0)
 		p := plan(t, w, "CCC(C)=O", Options{RankBy: by, Count: 9})
 		if len(p.Routes) != 2 || p.Search.ProvenRoutes != 2 {

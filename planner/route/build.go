@@ -130,12 +130,14 @@ func (c *chemistry) step(m making, number map[search.Key]int) Step {
 	out := Step{Number: number[m.key], Transform: s.Transform.ID, Name: s.Transform.Name, Conditions: set.ID,
 		Together: []string{}, Reactants: []string{}, ReactantNames: []string{}, Equivalents: []float64{}, MadeBy: []int{},
 		Product: w.Write(s.Product), ProductName: w.Name(s.Product), ProductFormula: s.Product.Formula().String(), Molecule: s.Product,
-		Byproducts: []string{}, ByproductNames: []string{}, Reagents: []string{}, Solvents: []string{}, Hazards: []string{}, Cautions: []string{}, Objections: []Objection{},
+		Byproducts: []string{}, ByproductNames: []string{}, Reagents: []string{}, Solvents: []string{}, Hazards: []string{}, Cautions: []string{}, Objections: []Objection{}, AtScale: []string{},
 		Temperature: Span{set.Temperature[0], set.Temperature[1]}, Time: Span{set.Hours[0], set.Hours[1]},
 		Share: s.Share.String(), Yield: Range(y).tidy(), Origin: set.Origin, Racemic: s.Racemic, Source: set.Source.Text, Judged: s, Set: set}
 	if out.Origin == "" {
 		out.Origin = "estimated"
 	}
+	_, avoided := c.scale.of(set)
+	out.AtScale = append(out.AtScale, avoided...)
 	for _, t := range s.Together {
 		out.Together = append(out.Together, t.ID)
 		out.Name += ", " + t.Name
@@ -258,6 +260,9 @@ func (r *Route) doubt(c *chemistry, p *Plan) {
 			for _, what := range b.approval(s.Set) {
 				add("Step %d needs approval in this room: %s.", s.Number, what)
 			}
+			if n := b.batches(s.FlaskML); n > 1 {
+				add("Step %d charges about %s L for %s g of target: the largest flask (%s, filled to two thirds) takes it in %d batches.", s.Number, figure(s.FlaskML/1000), figure(p.MakeG), b.LargestFlask.Value, n)
+			}
 		}
 	}
 	if n := r.Hazard.WithoutData; n > 0 {
@@ -268,6 +273,9 @@ func (r *Route) doubt(c *chemistry, p *Plan) {
 	}
 	for _, s := range r.Short {
 		add("Stock is short: %s.", s)
+	}
+	if len(r.StockUnknown) > 0 {
+		add("How much is on the shelf is not written down: %s.", strings.Join(r.StockUnknown, ", "))
 	}
 }
 

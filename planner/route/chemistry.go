@@ -28,6 +28,7 @@ type World struct {
 	Declined   func(*molecule.Molecule) bool            // restricted intermediates; nil: none
 	Write      func(*molecule.Molecule) string          // canonical SMILES
 	Read       func(string) (*molecule.Molecule, error) // reads what Write wrote
+	Scale      *Scale                                   // what practice avoids at scale; nil: nothing
 
 	names sync.Map // name -> namedMaterial, so that each is looked up once
 	sets  sync.Map // *reactions.Conditions -> setFigures
@@ -43,6 +44,7 @@ type chemistry struct {
 	floor         float64                             // no step weighs less
 	carbonPrice   float64                             // least price of one mol of carbon, for Cost
 	oneEnantiomer bool
+	scale         *Scale // nil: the size of the batch plays no part
 	guesser       *guesser
 
 	mu        sync.RWMutex
@@ -50,21 +52,40 @@ type chemistry struct {
 	options   map[search.Key][][]option       // per molecule and edge
 	expanded  map[search.Key]search.Expansion // kept, because a second search may start over
 	materials map[search.Key]*Material
+	tally     tally               // what the wishes kept out
+	refused   map[search.Key]bool // materials counted in it
+	judged    *judgedSteps        // nil: steps are not kept
 }
 
-func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule) *chemistry {
-	c := &chemistry{world: w, by: by, filter: f, from: from, molecules: map[search.Key]*molecule.Molecule{},
-		options: map[search.Key][][]option{}, expanded: map[search.Key]search.Expansion{}, materials: map[search.Key]*Material{}, flatShelf: map[molecule.Key]*molecule.Molecule{}}
-	c.floor = c.leastStep()
-	if by == Cost {
-		c.carbonPrice = c.cheapestCarbon()
-	}
+// judgedSteps keeps the steps of every molecule opened, for a second look without the wishes.
+type judgedSteps struct {
+	mu    sync.Mutex
+	steps map[search.Key][]*reactions.Step
+}
+
+func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, scale *Scale) *chemistry {
+	c := emptyChemistry(w, by, f, from, scale)
+	c.flatShelf = map[molecule.Key]*molecule.Molecule{}
 	c.guesser = newGuesser(w.Shelf, from)
 	c.guesser.lookAhead(w.Book, w.Shelf, from, false)
 	for _, m := range w.Shelf {
 		if k := flatKey(m); c.flatShelf[k] == nil || !marked(m) {
 			c.flatShelf[k] = m
 		}
+	}
+	return c
+}
+
+// emptyChemistry is a graph without a shelf by flat key and without a guesser.
+func emptyChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, scale *Scale) *chemistry {
+	c := &chemistry{world: w, by: by, filter: f, from: from, scale: scale, molecules: map[search.Key]*molecule.Molecule{}, options: map[search.Key][][]option{},
+		expanded: map[search.Key]search.Expansion{}, materials: map[search.Key]*Material{}, refused: map[search.Key]bool{}}
+	if f.restrains() {
+		c.judged = &judgedSteps{steps: map[search.Key][]*reactions.Step{}}
+	}
+	c.floor = c.leastStep()
+	if by == Cost {
+		c.carbonPrice = c.cheapestCarbon()
 	}
 	return c
 }
@@ -79,8 +100,8 @@ func (c *chemistry) leastStep() float64 {
 	bare := &reactions.Step{}
 	for _, t := range c.world.Transforms {
 		for _, x := range t.Conditions {
-			if c.filter.conditions(x) {
-				least = min(least, c.world.variant(c.by, &option{step: bare, conditions: x}).Weight)
+			if c.filter.conditions(x) == nil {
+				least = min(least, c.world.variant(c.by, c.scale, &option{step: bare, conditions: x}).Weight)
 			}
 		}
 	}
@@ -168,7 +189,7 @@ func (c *chemistry) Expand(ctx context.Context, k search.Key) (search.Expansion,
 }
 
 func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion, error) {
-	steps, err := c.world.Book.Expand(ctx, c.molecule(k), c.stocked)
+	steps, err := c.steps(ctx, k)
 	if err != nil {
 		return search.Expansion{}, err
 	}
@@ -179,14 +200,20 @@ func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion,
 			x.LeftOut++
 			continue
 		}
-		if !c.filter.step(s) || fatal(s) {
+		if fatal(s) {
+			continue
+		}
+		if why := c.filter.step(s); why != nil {
+			c.turnDown(why, len(s.Conditions))
 			continue
 		}
 		var usable []option
 		for _, cond := range s.Conditions {
-			if c.filter.conditions(cond) {
-				usable = append(usable, c.newOption(s, cond))
+			if why := c.filter.conditions(cond); why != nil {
+				c.turnDown(why, 1)
+				continue
 			}
+			usable = append(usable, c.newOption(s, cond))
 		}
 		if len(usable) > 0 {
 			edges = join(edges, usable)
@@ -199,6 +226,32 @@ func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion,
 	c.options[k] = edges
 	c.mu.Unlock()
 	return x, nil
+}
+
+// steps asks the rules how a molecule is made.
+func (c *chemistry) steps(ctx context.Context, k search.Key) ([]*reactions.Step, error) {
+	if j := c.judged; j != nil {
+		j.mu.Lock()
+		steps, ok := j.steps[k]
+		j.mu.Unlock()
+		if ok {
+			return steps, nil
+		}
+	}
+	steps, err := c.world.Book.Expand(ctx, c.molecule(k), c.stocked)
+	if j := c.judged; j != nil && err == nil {
+		j.mu.Lock()
+		j.steps[k] = steps
+		j.mu.Unlock()
+	}
+	return steps, err
+}
+
+// turnDown counts ways that a wish keeps out.
+func (c *chemistry) turnDown(why *refusal, ways int) {
+	c.mu.Lock()
+	c.tally.way(why, ways)
+	c.mu.Unlock()
 }
 
 // fatal says whether an objection makes the step unsound.
@@ -276,7 +329,7 @@ func (o *option) origins() []search.Origin {
 func (c *chemistry) edge(options []option) search.Edge {
 	e := search.Edge{Children: options[0].children, Origins: options[0].origins()}
 	for i := range options {
-		e.Variants = append(e.Variants, c.world.variant(c.by, &options[i]))
+		e.Variants = append(e.Variants, c.world.variant(c.by, c.scale, &options[i]))
 	}
 	return e
 }
@@ -286,11 +339,24 @@ func (c *chemistry) edge(options []option) search.Edge {
 func (c *chemistry) Leaf(k search.Key) (float64, bool) {
 	mat := c.material(k)
 	m := c.molecule(k)
-	required := slices.ContainsFunc(c.from, func(f *molecule.Molecule) bool { return search.Key(f.Key()) == k })
-	if !required && (!mat.OnShelf && hasCarbon(m) || !c.filter.material(mat, m)) {
-		return 0, false
+	if !c.required(k) {
+		if !mat.OnShelf && hasCarbon(m) {
+			return 0, false
+		}
+		if why := c.filter.material(mat, m); why != nil {
+			if !c.refused[k] {
+				c.refused[k] = true
+				c.turnDown(why, 1)
+			}
+			return 0, false
+		}
 	}
 	return c.world.leaf(c.by, mat), true
+}
+
+// required says whether k is an item of From.
+func (c *chemistry) required(k search.Key) bool {
+	return slices.ContainsFunc(c.from, func(f *molecule.Molecule) bool { return search.Key(f.Key()) == k })
 }
 
 const carbon = molecule.Element(6)

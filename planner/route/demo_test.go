@@ -99,7 +99,7 @@ func TestDemoPrint(t *testing.T) {
 		t.Fatal(err)
 	}
 	cold := -20.0
-	o := route.Options{MaxSteps: 5, Count: 10, Time: 15e9, Bench: &route.Bench{ColdestC: &cold}, Avoid: strings.Fields(os.Getenv("AVOID")), RankBy: route.RankBy(os.Getenv("RANK"))}
+	o := route.Options{MaxSteps: 5, Count: 10, Time: 15e9, Bench: &route.Bench{Coldest: &cold}, Avoid: strings.Fields(os.Getenv("AVOID")), RankBy: route.RankBy(os.Getenv("RANK"))}
 	if os.Getenv("MAKE") != "" {
 		o.MakeMol = 10 / 128.21
 	}

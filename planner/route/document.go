@@ -51,6 +51,8 @@ type Step struct {
 	Hazards        []string    `json:"hazards"`
 	Cautions       []string    `json:"cautions"`
 	Objections     []Objection `json:"objections"`
+	AtScale        []string    `json:"at_scale"` // what practice avoids at scale; filled when asked for
+	FlaskML        float64     `json:"flask_ml"` // volume charged for the scale of the plan, about; 0 unknown
 	Racemic        bool        `json:"racemic"`
 	Source         string      `json:"source"`
 
@@ -116,6 +118,25 @@ type PriceFigures struct {
 	Of       int     `json:"of"`       // materials in all
 }
 
+// Stock says in one word whether the shelf holds enough for the scale of the plan.
+func (r *Route) Stock() string {
+	switch {
+	case len(r.Short) > 0:
+		return "short"
+	case len(r.StockUnknown) > 0:
+		return "unknown"
+	}
+	return "suffices"
+}
+
+// enough is 0 if the stock is known to suffice, 1 if not: an amount that nobody wrote down moves no route up.
+func (r *Route) enough() int {
+	if r.Stock() == "suffices" {
+		return 0
+	}
+	return 1
+}
+
 // Route is one way from the shelf to the target with its figures.
 type Route struct {
 	Rank              int                `json:"rank"`
@@ -135,6 +156,7 @@ type Route struct {
 	Alternatives      []Alternative      `json:"alternatives"`
 	VariantOf         string             `json:"variant_of"`    // code of a route with the same reactions in another order
 	Short             []string           `json:"short"`         // stock that does not suffice for the scale of the plan
+	StockUnknown      []string           `json:"stock_unknown"` // on the shelf, but nobody wrote down how much
 	GravestClass      int                `json:"gravest_class"` // 0 slight to 4; unknown hazards count as 4
 	Days              float64            `json:"days"`          // working days of eight hours, added up along the bench order
 	Doubts            []string           `json:"doubts"`

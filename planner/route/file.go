@@ -40,6 +40,9 @@ func Load(path string) (*Plan, error) {
 	if p.Target.SMILES == "" {
 		return nil, fmt.Errorf("%s: not a plan file: no target", path)
 	}
+	if p.LeftOut == nil { // written before it was kept
+		p.LeftOut = []LeftOut{}
+	}
 	for i := range p.Routes {
 		if err := p.Routes[i].whole(); err != nil {
 			return nil, fmt.Errorf("%s: damaged plan: route %d: %w", path, i+1, err)
@@ -92,7 +95,7 @@ func (p *Plan) Route(name string) (*Route, error) {
 // Restore brings back the judged steps and the condition sets behind a plan that was read from a file,
 // by working out again how each product is made. It fails if the rules no longer hold a step.
 func (p *Plan) Restore(ctx context.Context, w *World) error {
-	c := newChemistry(w, p.RankedBy, &filter{world: w}, nil)
+	c := newChemistry(w, p.RankedBy, &filter{world: w}, nil, nil)
 	target, err := w.Read(p.Target.SMILES)
 	if err != nil {
 		return fmt.Errorf("plan: target %s: %w", p.Target.SMILES, err)

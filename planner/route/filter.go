@@ -2,6 +2,7 @@ package route
 
 import (
 	"fmt"
+	"maps"
 	"regexp"
 	"slices"
 	"sort"
@@ -12,12 +13,18 @@ import (
 	"shelfward/rules"
 )
 
-// filter says which steps, condition sets and materials may be used.
+// filter says which steps, condition sets and materials may be used: the wishes of one planning.
 type filter struct {
-	world    *World
-	avoid    []avoided
-	bench    *Bench
-	elements []molecule.Element
+	world     *World
+	avoid     []avoided
+	bench     *Bench
+	onlyShelf bool
+	ceiling   *ceiling // nil: any hazard
+}
+
+// restrains says whether any wish can keep a way out.
+func (f *filter) restrains() bool {
+	return len(f.avoid) > 0 || f.bench != nil && f.bench.restrains() || f.onlyShelf || f.ceiling != nil
 }
 
 // avoided is one word of --avoid, understood.
@@ -26,6 +33,7 @@ type avoided struct {
 	kind    string // hazard, element, transform, substance
 	element molecule.Element
 	other   Material // of a substance: what its name stands for
+	byBench bool     // said under never: in the bench file
 }
 
 var (
@@ -48,43 +56,69 @@ func (f *filter) Avoided() []string {
 			out = append(out, a.word)
 		}
 	}
+	if f.ceiling != nil {
+		out = append(out, "everything graver than "+f.ceiling.word+" and what was never looked up")
+	}
+	if f.onlyShelf {
+		out = append(out, "reagents and solvents that are not on the shelf")
+	}
+	if f.bench != nil && f.bench.restrains() {
+		out = append(out, "what the room cannot do ("+f.bench.File+")")
+	}
 	return out
 }
 
-// newFilter understands the words to avoid. A word that means nothing is an error that offers near
-// ones. bench may be nil.
-func newFilter(w *World, words []string, bench *Bench) (*filter, error) {
-	f := &filter{world: w, bench: bench}
-	if bench != nil {
-		words = append(words[:len(words):len(words)], bench.Never...)
-	}
+// newFilter understands the wishes of o. A word that means nothing is an error that offers near ones.
+func newFilter(w *World, o *Options) (*filter, error) {
+	f := &filter{world: w, bench: o.Bench, onlyShelf: o.OnlyShelf}
 	known := w.words()
-	for _, word := range words {
-		word = strings.TrimSpace(word)
-		a := avoided{word: word}
-		element, isElement := molecule.ElementBySymbol(word)
-		switch {
-		case hazardCode.MatchString(word):
-			a.kind, a.word = "hazard", strings.ToUpper(word[:len(word)-len(tail(word))])+tail(word)
-		case known.transforms[word]:
-			a.kind = "transform"
-		case known.substances[strings.ToLower(word)]:
-			a.kind = "substance"
-		case isElement && symbol.MatchString(word):
-			a.kind, a.element = "element", element
-			f.elements = append(f.elements, element)
-		default:
-			if _, ok := w.Materials.Named(word); !ok {
-				return nil, fmt.Errorf("avoid %q: no reagent, solvent, hazard code, element symbol or transform is called that%s", word, near(word, known.all))
-			}
-			a.kind = "substance"
-		}
-		if a.kind == "substance" {
-			a.other, _ = w.Materials.Named(word)
+	for _, word := range o.Avoid {
+		a, err := w.understand(word, known)
+		if err != nil {
+			return nil, fmt.Errorf("avoid %w", err)
 		}
 		f.avoid = append(f.avoid, a)
 	}
-	return f, nil
+	if o.Bench != nil {
+		if err := o.Bench.check(w, known); err != nil {
+			return nil, err
+		}
+		for _, word := range o.Bench.Never {
+			a, err := w.understand(word.Value, known)
+			if err != nil {
+				return nil, word.Errorf(o.Bench.File, "never: %v", err)
+			}
+			a.byBench = true
+			f.avoid = append(f.avoid, a)
+		}
+	}
+	var err error
+	f.ceiling, err = w.ceiling(o.MaxHazard)
+	return f, err
+}
+
+// understand reads one word to avoid.
+func (w *World) understand(word string, known vocabulary) (avoided, error) {
+	word = strings.TrimSpace(word)
+	a := avoided{word: word, kind: "substance"}
+	element, isElement := molecule.ElementBySymbol(word)
+	switch {
+	case hazardCode.MatchString(word):
+		a.kind, a.word = "hazard", strings.ToUpper(word[:len(word)-len(tail(word))])+tail(word)
+	case known.transforms[word]:
+		a.kind = "transform"
+	case known.substances[strings.ToLower(word)]:
+	case isElement && symbol.MatchString(word):
+		a.kind, a.element = "element", element
+	default:
+		if _, ok := w.Materials.Named(word); !ok {
+			return a, fmt.Errorf("%q: no reagent, solvent, hazard code, element symbol or transform is called that%s", word, near(word, known.all))
+		}
+	}
+	if a.kind == "substance" {
+		a.other, _ = w.Materials.Named(word)
+	}
+	return a, nil
 }
 
 // tail is the letters behind the digits of a hazard code.
@@ -96,10 +130,12 @@ func tail(code string) string {
 type vocabulary struct {
 	transforms, substances map[string]bool
 	all                    []string
+	needs                  []string // what condition sets need of a room, sorted
 }
 
 func (w *World) words() vocabulary {
-	v := vocabulary{map[string]bool{}, map[string]bool{}, nil}
+	v := vocabulary{transforms: map[string]bool{}, substances: map[string]bool{}}
+	needs := map[string]bool{}
 	for _, t := range w.Transforms {
 		v.transforms[t.ID] = true
 		for _, c := range t.Conditions {
@@ -108,6 +144,9 @@ func (w *World) words() vocabulary {
 			}
 			for _, s := range c.Solvents {
 				v.substances[strings.ToLower(s.Name)] = true
+			}
+			for _, n := range c.Needs {
+				needs[n] = true
 			}
 		}
 	}
@@ -118,83 +157,103 @@ func (w *World) words() vocabulary {
 		v.all = append(v.all, word)
 	}
 	sort.Strings(v.all)
+	v.needs = slices.Sorted(maps.Keys(needs))
 	return v
 }
 
-// step says whether a step may be used at all.
-func (f *filter) step(s *reactions.Step) bool {
-	for _, a := range f.avoid {
-		if a.kind != "transform" {
-			continue
-		}
-		if s.Transform.ID == a.word || slices.ContainsFunc(s.Together, func(t *reactions.Transform) bool { return t.ID == a.word }) {
-			return false
-		}
-	}
-	for _, r := range s.Reactants {
-		formula := r.Molecule.Formula()
-		for _, e := range f.elements {
-			if formula.Count[e] > 0 {
-				return false
+// step says what keeps a step out whatever its conditions; nil if nothing does.
+func (f *filter) step(s *reactions.Step) *refusal {
+	for i := range f.avoid {
+		a := &f.avoid[i]
+		switch a.kind {
+		case "transform":
+			if s.Transform.ID == a.word || slices.ContainsFunc(s.Together, func(t *reactions.Transform) bool { return t.ID == a.word }) {
+				return a.refuses(s.Transform.Name)
+			}
+		case "element":
+			for _, r := range s.Reactants {
+				if r.Molecule.Formula().Count[a.element] > 0 {
+					return a.refuses(f.world.called(r.Molecule))
+				}
 			}
 		}
 	}
-	return true
+	return nil
 }
 
-// conditions says whether a condition set may be used.
-func (f *filter) conditions(c *reactions.Conditions) bool {
-	if f.bench != nil && !f.bench.can(c) {
-		return false
+// conditions says what keeps a condition set out; nil if nothing does.
+func (f *filter) conditions(c *reactions.Conditions) *refusal {
+	if f.bench != nil {
+		if r := f.bench.refuses(c); r != nil {
+			return r
+		}
 	}
-	if len(f.avoid) == 0 {
-		return true
+	if len(f.avoid) == 0 && !f.onlyShelf && f.ceiling == nil {
+		return nil
 	}
 	for _, r := range c.Reagents {
 		m, _ := f.world.named(r.Name)
-		if !r.Optional && !f.substance(r.Name, &m) {
-			return false
+		if why := f.substance(r.Name, &m); why != nil && !r.Optional {
+			return why
 		}
 	}
 	for _, s := range c.Solvents {
 		m, _ := f.world.named(s.Name)
-		if !f.substance(s.Name, &m) {
-			return false
+		if why := f.substance(s.Name, &m); why != nil {
+			return why
 		}
 	}
-	return true
+	return nil
 }
 
-// material says whether a material may be taken from the shelf.
-func (f *filter) material(m *Material, mol *molecule.Molecule) bool {
-	if !f.substance(m.Name, m) {
-		return false
+// material says what keeps a material from being taken from the shelf; nil if nothing does.
+func (f *filter) material(m *Material, mol *molecule.Molecule) *refusal {
+	if why := f.substance(m.Name, m); why != nil {
+		return why
 	}
 	formula := mol.Formula()
-	return !slices.ContainsFunc(f.elements, func(e molecule.Element) bool { return formula.Count[e] > 0 })
-}
-
-// substance tests a name, its hazards and its elements against the words.
-func (f *filter) substance(name string, m *Material) bool {
-	for _, a := range f.avoid {
-		switch a.kind {
-		case "substance":
-			if strings.EqualFold(a.word, name) || strings.EqualFold(a.word, m.Name) || a.word == m.CAS ||
-				a.other.Name != "" && strings.EqualFold(a.other.Name, m.Name) || a.other.SMILES != "" && a.other.SMILES == m.SMILES {
-				return false
-			}
-		case "hazard":
-			if slices.ContainsFunc(m.Hazards, func(h string) bool { return covers(a.word, h) }) {
-				return false
-			}
-		case "element":
-			if f.holds(m, a.element) {
-				return false
-			}
+	for i := range f.avoid {
+		if a := &f.avoid[i]; a.kind == "element" && formula.Count[a.element] > 0 {
+			return a.refuses(nameOr(m.Name, m.SMILES))
 		}
 	}
-	return true
+	return nil
 }
+
+// substance tests a name, its hazards and its elements against the wishes.
+func (f *filter) substance(name string, m *Material) *refusal {
+	for i := range f.avoid {
+		a := &f.avoid[i]
+		matched := false
+		switch a.kind {
+		case "substance":
+			matched = strings.EqualFold(a.word, name) || strings.EqualFold(a.word, m.Name) || a.word == m.CAS ||
+				a.other.Name != "" && strings.EqualFold(a.other.Name, m.Name) || a.other.SMILES != "" && a.other.SMILES == m.SMILES
+		case "hazard":
+			matched = slices.ContainsFunc(m.Hazards, func(h string) bool { return covers(a.word, h) })
+		case "element":
+			matched = f.holds(m, a.element)
+		}
+		if matched {
+			return a.refuses(nameOr(name, m.SMILES))
+		}
+	}
+	if isWater(m) {
+		return nil
+	}
+	if f.ceiling != nil {
+		if why := f.ceiling.refuses(f.world, name, m); why != nil {
+			return why
+		}
+	}
+	if f.onlyShelf && !m.OnShelf && !fromTheAir[strings.ToLower(name)] {
+		return &refusal{wish: "only-shelf", word: "only what is on the shelf", needs: "needs what is not on the shelf", need: "need what is not on the shelf", matched: nameOr(name, m.SMILES)}
+	}
+	return nil
+}
+
+// fromTheAir needs no bottle.
+var fromTheAir = map[string]bool{"air": true}
 
 // covers says whether a code named covers a code found: H360 covers H360FD, H360F covers H360FD.
 func covers(named, found string) bool {

@@ -2,10 +2,14 @@ package route
 
 import (
 	"context"
+	"math"
+	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 
 	"shelfward/reactions"
+	"shelfward/rules"
 )
 
 // avoidWorld: two ways to the same ketone, one by chromium, one by bleach; a third from a bromide.
@@ -72,6 +76,106 @@ func TestAvoidUnknownWord(t *testing.T) {
 	}
 }
 
+// lookUp marks the hazards of every bottle as known.
+func (b *bottles) lookUp() {
+	for k, m := range b.bySeen {
+		m.HazardsKnown = true
+		b.bySeen[k] = m
+	}
+	for k, m := range b.byName {
+		m.HazardsKnown = true
+		b.byName[k] = m
+	}
+}
+
+func benchWords(words ...string) (out []rules.Text) {
+	for _, w := range words {
+		out = append(out, rules.Text{Value: w})
+	}
+	return out
+}
+
+// TestLeftOut: what the wishes keep out is counted, by ways among what was opened and by routes among
+// those that would come first without them, and what they met is named.
+func TestLeftOut(t *testing.T) {
+	cold := -20.0
+	for _, c := range []struct {
+		o     Options
+		says  string // of the first reason
+		met   string
+		ways  int
+		codes int // routes left
+	}{
+		{Options{Avoid: []string{"butan-2-ol"}}, "1 route uses butan-2-ol", "butan-2-ol", 1, 1},
+		{Options{Avoid: []string{"H360"}}, "1 route charges a material with H360", "bromoethane", 1, 1},
+		{Options{Avoid: []string{"from-bromide"}}, "1 route uses from-bromide", "from-bromide", 1, 1},
+		{Options{Bench: &Bench{Coldest: &cold}}, "0 routes need a bath of -80 C", "", 1, 2},
+		{Options{Bench: &Bench{Lacks: benchWords("cold")}}, "0 routes need cold -78", "", 1, 2},
+		{Options{MaxHazard: "H226"}, "1 route charges something graver than H226", "bromoethane H360FD", 1, 1},
+		{Options{MaxHazard: "2"}, "1 route charges something graver than class 2", "bromoethane H360FD", 1, 1},
+	} {
+		w := avoidWorld(t)
+		w.Materials.(*bottles).lookUp()
+		p := plan(t, w, "CCC(C)=O", c.o)
+		if len(p.LeftOut) == 0 {
+			t.Fatalf("%+v: nothing left out", c.o)
+		}
+		l := p.LeftOut[0]
+		if l.Says != c.says || strings.Join(l.Matched, ", ") != c.met || l.Ways != c.ways || len(p.Routes) != c.codes || p.LeftOutOf != 2 {
+			t.Errorf("%+v: %+v of %d, %d routes", c.o, l, p.LeftOutOf, len(p.Routes))
+		}
+	}
+}
+
+func TestOnlyShelf(t *testing.T) {
+	w := avoidWorld(t)
+	w.Transforms[0].Conditions[0].Reagents[0].Name = "no such bottle"
+	p := plan(t, w, "CCC(C)=O", Options{OnlyShelf: true})
+	if len(p.Routes) != 2 || p.Routes[0].Steps[0].Conditions != "chromic" {
+		t.Errorf("routes %+v", p.Routes)
+	}
+	if len(p.LeftOut) != 1 || strings.Join(p.LeftOut[0].Matched, "") != "no such bottle" {
+		t.Errorf("left out %+v", p.LeftOut)
+	}
+}
+
+func TestBenchErrors(t *testing.T) {
+	for _, c := range []struct{ text, want string }{
+		{"coldest: 20\nhottest: 10\n", "coldest: 20 C is above hottest: 10 C"},
+		{"largest_flask: big\n", "1: largest_flask: \"big\": a volume such as 2 L"},
+		{"largest_flask: 0 L\n", "1: largest_flask: \"0 L\": a volume above 0"},
+		{"coldest: -20\nlacks: [hydrogenator]\n", "2: lacks: \"hydrogenator\" is nothing that the loaded rules need"},
+		{"needs_approval: [moonlight]\n", "1: needs_approval: \"moonlight\" is nothing"},
+		{"never: [bleech]\n", "1: never: \"bleech\": no reagent"},
+		{"lack: [hydrogen]\n", "lacks"},
+	} {
+		path := filepath.Join(t.TempDir(), "bench.yaml")
+		if err := os.WriteFile(path, []byte(c.text), 0o600); err != nil {
+			t.Fatal(err)
+		}
+		b, err := LoadBench(path)
+		if err == nil {
+			_, err = Make(context.Background(), avoidWorld(t), mustRead(t, "CCC(C)=O"), Options{Bench: b})
+		}
+		if err == nil || !strings.Contains(err.Error(), c.want) {
+			t.Errorf("%q: %v, want %q", c.text, err, c.want)
+		}
+	}
+}
+
+// TestBatches: a flask is filled to two thirds.
+func TestBatches(t *testing.T) {
+	b := &Bench{flaskML: 1500}
+	for ml, want := range map[float64]int{0: 1, 999: 1, 1000: 1, 1001: 2, 2500: 3} {
+		if got := b.batches(ml); got != want {
+			t.Errorf("%g mL in a flask of 1.5 L: %d batches, want %d", ml, got, want)
+		}
+	}
+	if (*Bench)(nil).batches(1e6) != 1 {
+		t.Error("without a bench file there is no limit")
+	}
+}
+
 func TestBench(t *testing.T) {
 	cold := -20.0
 	for _, c := range []struct {
@@ -79,10 +183,11 @@ func TestBench(t *testing.T) {
 		want  int // condition sets of the oxidation left
 	}{
 		{Bench{}, 2},
-		{Bench{ColdestC: &cold}, 1},
-		{Bench{Lacks: []string{"cold"}}, 1},
-		{Bench{Lacks: []string{"cold"}, Has: []string{"cold -78"}}, 2},
-		{Bench{Never: []string{"Cr"}}, 1},
+		{Bench{Coldest: &cold}, 1},
+		{Bench{Lacks: benchWords("cold")}, 1},
+		{Bench{Lacks: benchWords("cold"), Has: benchWords("cold -78")}, 2},
+		{Bench{Lacks: benchWords("Bleach")}, 1},
+		{Bench{Never: benchWords("Cr")}, 1},
 	} {
 		p := plan(t, avoidWorld(t), "CCC(C)=O", Options{Bench: &c.bench})
 		if got := 1 + len(p.Routes[0].Alternatives); got != c.want {
@@ -92,13 +197,14 @@ func TestBench(t *testing.T) {
 }
 
 func TestStockSuffices(t *testing.T) {
+	bromide := 0.2
 	world := func() *World {
 		f := newFakeBook(t)
 		f.makes("short-way", "CCCCO", 0.5, "CCCCBr")
 		f.makes("second-step", "CCCCO", 0.9, "CCCC=O")
 		f.makes("first-step", "CCCC=O", 0.9, "CCC=O")
 		b := newBottles()
-		b.put(t, "1-bromobutane", "CCCCBr", func(m *Material) { m.StockMol = 0.2 })
+		b.put(t, "1-bromobutane", "CCCCBr", func(m *Material) { m.StockMol = bromide })
 		b.put(t, "propanal", "CCC=O", func(m *Material) { m.StockMol = 10 })
 		return f.world(b)
 	}
@@ -118,6 +224,14 @@ func TestStockSuffices(t *testing.T) {
 	if p.Search.ProvenRoutes != 2 {
 		t.Errorf("both routes there are stand in order; %d proven", p.Search.ProvenRoutes)
 	}
+	bromide = math.NaN() // an amount that nobody wrote down moves no route up
+	for _, mol := range []float64{0.09, 0.11} {
+		q := plan(t, world(), "CCCCO", Options{MakeMol: mol})
+		if r := q.Routes[1]; r.Stock() != "unknown" || len(r.StockUnknown) != 1 || r.Steps[0].Transform != "short-way" {
+			t.Errorf("make %v mol, stock not written down: %q, %v", mol, r.Stock(), r.StockUnknown)
+		}
+	}
+	bromide = 0.2
 	if p = plan(t, world(), "CCCCO", Options{MakeMol: 0.11, MaxExpanded: 1}); len(p.Routes) != 1 || p.Search.ProvenBest {
 		t.Errorf("one route that is short of stock, search cut off: %+v", p.Search)
 	}

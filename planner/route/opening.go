@@ -22,9 +22,11 @@ const maxOpenings = 5
 // openings proposes purchases: substances with a known name first, as they can be bought.
 func (c *chemistry) openings(found []search.Opening) []Opening {
 	out := []Opening{}
+	buying := *c.filter
+	buying.onlyShelf = false
 	for _, x := range found {
 		m := c.molecule(x.Key)
-		if !hasCarbon(m) || !c.filter.material(c.material(x.Key), m) {
+		if !hasCarbon(m) || buying.material(c.material(x.Key), m) != nil {
 			continue
 		}
 		out = append(out, Opening{SMILES: c.world.Write(m), Name: c.world.Name(m), Steps: x.Steps,

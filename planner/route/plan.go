@@ -18,6 +18,9 @@ type Options struct {
 	RankBy        RankBy
 	Avoid         []string
 	Bench         *Bench
+	OnlyShelf     bool   // reagents and solvents too must stand on the shelf
+	MaxHazard     string // nothing graver is charged: an H code or a class 0-4; "": anything
+	AtScale       bool   // what practice avoids at scale costs more
 	OneEnantiomer bool
 	MakeAnyway    bool
 	MakeMol       float64 // mol of target wanted, 0: not said; figures are then for DefaultMakeG
@@ -62,12 +65,12 @@ type SearchFigures struct {
 
 // Plan is the answer: routes in order of rank and how far they are proven.
 type Plan struct {
-	Version   int           `json:"version"`
-	Target    Target        `json:"target"`
-	From      []string      `json:"from"`
-	RankedBy  RankBy        `json:"ranked_by"`
-	Minimised string        `json:"minimised"` // what weight is, in words
-	Avoided   []string      `json:"avoided"`
+	Version   int      `json:"version"`
+	Target    Target   `json:"target"`
+	From      []string `json:"from"`
+	RankedBy  RankBy   `json:"ranked_by"`
+	Minimised string   `json:"minimised"` // what weight is, in words
+	Kept
 	MaxSteps  int           `json:"max_steps"`
 	MakeG     float64       `json:"make_g"` // g of target that prices, purchases and shortages are for
 	MakeAsked bool          `json:"make_asked"`
@@ -88,7 +91,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	if err != nil {
 		return nil, err
 	}
-	f, err := newFilter(w, o.Avoid, o.Bench)
+	f, err := newFilter(w, &o)
 	if err != nil {
 		return nil, err
 	}
@@ -98,7 +101,11 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	if o.MaxSteps <= 0 {
 		o.MaxSteps = 8
 	}
-	c := newChemistry(w, by, f, o.From)
+	var scale *Scale
+	if o.AtScale {
+		scale = w.Scale
+	}
+	c := newChemistry(w, by, f, o.From, scale)
 	c.oneEnantiomer = o.OneEnantiomer
 	root := c.enter(target)
 	p := c.newPlan(target, root, &o)
@@ -119,7 +126,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	for _, m := range o.From {
 		options.From = append(options.From, c.enter(m))
 	}
-	found, err := c.find(ctx, root, options)
+	found, err := c.findWished(ctx, root, options, p)
 	if err != nil {
 		return nil, err
 	}
@@ -166,6 +173,35 @@ func (c *chemistry) find(ctx context.Context, root search.Key, o search.Options)
 	return again, err
 }
 
+// findWished is find with a look at what the wishes keep out before it, where there are any.
+func (c *chemistry) findWished(ctx context.Context, root search.Key, o search.Options, p *Plan) (*search.Result, error) {
+	if !c.filter.restrains() {
+		return c.find(ctx, root, o)
+	}
+	began := time.Now()
+	var err error
+	if p.LeftOutOf, err = c.countLeftOut(ctx, root, o); err != nil {
+		return nil, err
+	}
+	before := time.Since(began)
+	if o.Time > 0 {
+		o.Time = max(time.Millisecond, o.Time-before)
+	}
+	found, err := c.find(ctx, root, o)
+	if err != nil {
+		return nil, err
+	}
+	for i := range c.filter.avoid { // a word that met nothing says so
+		c.tally.entry(c.filter.avoid[i].refuses(""))
+	}
+	p.LeftOut = c.tally.sorted()
+	found.Elapsed += before
+	for i := range found.Routes {
+		found.Routes[i].Stood += before
+	}
+	return found, nil
+}
+
 // later counts the time before a second search into its figures; a route that the first look had found
 // stood then already.
 func (c *chemistry) later(again, first *search.Result, before time.Duration) {
@@ -182,11 +218,14 @@ func (c *chemistry) later(again, first *search.Result, before time.Duration) {
 
 func (c *chemistry) newPlan(target *molecule.Molecule, root search.Key, o *Options) *Plan {
 	formula := target.Formula()
-	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Avoided: c.filter.Avoided(), MaxSteps: o.MaxSteps,
+	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Kept: Kept{Avoided: c.filter.Avoided(), LeftOut: []LeftOut{}}, MaxSteps: o.MaxSteps,
 		From: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Doubts: []string{}, Molecule: target,
 		Target: Target{SMILES: c.world.Write(target), Name: c.world.Name(target), Formula: formula.String(), MolarMass: formula.MolarMass(), OnShelf: c.material(root).OnShelf}}
 	for _, m := range o.From {
 		p.From = append(p.From, c.world.Write(m))
+	}
+	if o.AtScale {
+		p.Minimised += c.by.atScale()
 	}
 	p.MakeG, p.MakeAsked = DefaultMakeG, o.MakeMol > 0
 	if p.MakeAsked {
@@ -209,7 +248,7 @@ func (c *chemistry) takenFromShelf(root search.Key) Route {
 
 func emptyRoute() Route {
 	return Route{Steps: []Step{}, Hazard: HazardFigures{Gravest: []string{}}, StartingMaterials: []StartingMaterial{}, ToBuy: []Purchase{},
-		Alternatives: []Alternative{}, Short: []string{}, Doubts: []string{}}
+		Alternatives: []Alternative{}, Short: []string{}, StockUnknown: []string{}, Doubts: []string{}}
 }
 
 func (p *Plan) fillSearch(r *search.Result) {
@@ -229,7 +268,7 @@ func (p *Plan) finish(everything bool) {
 	for i := range p.Routes {
 		r := &p.Routes[i]
 		r.Rank = i + 1
-		if p.MakeAsked && len(r.Short) > 0 && !everything { // a route whose stock suffices may come yet
+		if p.MakeAsked && r.enough() > 0 && !everything { // a route whose stock suffices may come yet
 			r.Proven = false
 		}
 		if r.Proven && s.ProvenRoutes == i {

@@ -6,7 +6,7 @@ import (
 	"slices"
 )
 
-// order ranks the routes: with an amount asked for, those whose stock suffices first; then by weight;
+// order ranks the routes: with an amount asked for, those whose stock is known to suffice first; then by weight;
 // ties by steps, yield, hazard data, price and waste, and by code at last. It keeps count of them.
 func (p *Plan) order(count int) {
 	before := make([]string, len(p.Routes))
@@ -15,15 +15,15 @@ func (p *Plan) order(count int) {
 	}
 	slices.SortStableFunc(p.Routes, func(a, b Route) int {
 		if p.MakeAsked {
-			if c := cmp.Compare(min(len(a.Short), 1), min(len(b.Short), 1)); c != 0 {
+			if c := cmp.Compare(a.enough(), b.enough()); c != 0 {
 				return c
 			}
 		}
 		return compareRoutes(&a, &b)
 	})
 	for i := range p.Routes {
-		if r := &p.Routes[i]; p.MakeAsked && len(r.Short) == 0 && i < len(before) && before[i] != r.Code && len(p.Routes) > 1 {
-			p.Doubts = append(p.Doubts, fmt.Sprintf("Routes for which the stock does not suffice at %s g stand behind the others.", figure(p.MakeG)))
+		if r := &p.Routes[i]; p.MakeAsked && r.enough() == 0 && i < len(before) && before[i] != r.Code && len(p.Routes) > 1 {
+			p.Doubts = append(p.Doubts, fmt.Sprintf("Routes for which the stock is not known to suffice at %s g stand behind the others.", figure(p.MakeG)))
 			break
 		}
 	}

@@ -18,9 +18,7 @@ const originKey = "origin of conditions and yields: P published for this substra
 // route with its ladder and steps. The line that echoes the target is the caller's.
 func (p *Plan) WriteText(w io.Writer) error {
 	t := &writer{w: w}
-	if len(p.Avoided) > 0 {
-		t.line("avoided: %s", strings.Join(p.Avoided, "; "))
-	}
+	p.WriteWishes(t.w)
 	for _, d := range p.Doubts {
 		t.line("Doubt: %s", d)
 	}
@@ -89,10 +87,16 @@ func (p *Plan) writeNothing(t *writer) {
 
 func (p *Plan) writeTable(t *writer) {
 	rows := [][]string{{"", "route", "steps", "run", "yield", "worst branch", "waste", "no water", "price", "gravest hazards", "doubts"}}
+	if p.MakeAsked {
+		rows[0] = append(rows[0], "stock")
+	}
 	for i := range p.Routes {
 		r := &p.Routes[i]
 		rows = append(rows, []string{fmt.Sprint(r.Rank), r.Code, fmt.Sprint(len(r.Steps)), fmt.Sprint(r.LongestRun), Percent(r.OverallYield), Percent(r.WorstBranchYield),
 			short(r.Waste.WithWater), short(r.Waste.WithoutWater), r.Materials.String(), r.Hazard.String(), fmt.Sprint(len(r.Doubts))})
+		if p.MakeAsked {
+			rows[i+1] = append(rows[i+1], r.Stock())
+		}
 	}
 	t.table(rows)
 }
@@ -220,6 +224,9 @@ func (s *Step) write(t *writer) {
 	}
 	if len(s.Hazards) > 0 {
 		t.line("     hazards charged: %s", strings.Join(s.Hazards[:min(len(s.Hazards), 8)], " "))
+	}
+	if len(s.AtScale) > 0 {
+		t.line("     avoided at scale: %s", strings.Join(s.AtScale, "; "))
 	}
 	for _, c := range s.Cautions {
 		t.line("     caution: %s", c)

@@ -56,6 +56,14 @@ func (r RankBy) Says() string {
 	return "steps, with loss of yield, hazards, objections, purchases and prices added in stated parts"
 }
 
+// atScale says what asking for a large batch does to the order.
+func (r RankBy) atScale() string {
+	if r == Balanced || r == Steps {
+		return ", and what practice avoids at scale"
+	}
+	return "; what practice avoids at scale is named with each step, not weighed"
+}
+
 // cost is the way in which the search combines the weights of this order.
 func (r RankBy) cost() search.Cost {
 	switch r {
@@ -221,8 +229,8 @@ func (w *World) setFigures(c *reactions.Conditions) setFigures {
 // isWater says whether a material is plain water.
 func isWater(m *Material) bool { return m.SMILES == "O" || strings.EqualFold(m.Name, "water") }
 
-// variant weighs one option for an order.
-func (w *World) variant(by RankBy, o *option) search.Variant {
+// variant weighs one option for an order; scale (may be nil) adds to the orders that count balance.
+func (w *World) variant(by RankBy, scale *Scale, o *option) search.Variant {
 	s, c := o.step, o.conditions
 	y, _ := yieldOf(s, c)
 	v := search.Variant{Yield: clampYield(y.Usual)}
@@ -233,7 +241,7 @@ func (w *World) variant(by RankBy, o *option) search.Variant {
 	case Yield:
 		v.Weight = -math.Log(v.Yield)
 	case Steps:
-		v.Weight = 1 + 0.01*w.balancedStep(s, c, v.Yield)
+		v.Weight = 1 + 0.01*w.balancedStep(s, c, v.Yield, scale)
 	case Hazard:
 		v.Weight = hazardPoints[w.setFigures(c).class]
 	case Cost:
@@ -248,7 +256,7 @@ func (w *World) variant(by RankBy, o *option) search.Variant {
 			}
 		}
 	default:
-		v.Weight = w.balancedStep(s, c, v.Yield)
+		v.Weight = w.balancedStep(s, c, v.Yield, scale)
 	}
 	return v
 }
@@ -256,7 +264,7 @@ func (w *World) variant(by RankBy, o *option) search.Variant {
 func clampYield(y float64) float64 { return min(max(y, 0.01), 1) }
 
 // balancedStep is the weight of one step in the balanced order: never below 1.
-func (w *World) balancedStep(s *reactions.Step, c *reactions.Conditions, yield float64) float64 {
+func (w *World) balancedStep(s *reactions.Step, c *reactions.Conditions, yield float64, scale *Scale) float64 {
 	figures := w.setFigures(c)
 	weight := 1 - partYieldLoss*math.Log(yield) + partHazard*float64(figures.class)
 	switch s.Share {
@@ -269,7 +277,8 @@ func (w *World) balancedStep(s *reactions.Step, c *reactions.Conditions, yield f
 	if c.Origin == "estimated" || c.Origin == "" {
 		weight += partEstimated
 	}
-	return weight + partPurchase*float64(min(figures.buy, 3))
+	adds, _ := scale.of(c)
+	return weight + adds + partPurchase*float64(min(figures.buy, 3))
 }
 
 // leaf weighs a material taken from stock.

@@ -27,6 +27,9 @@ type planFlags struct {
 	makeAnyway    bool
 	make          string
 	bench         string
+	onlyShelf     bool
+	maxHazard     string
+	atScale       bool
 }
 
 func (f *planFlags) bind(cmd *cobra.Command) {
@@ -42,6 +45,9 @@ func (f *planFlags) bind(cmd *cobra.Command) {
 	fl.BoolVar(&f.makeAnyway, "make-anyway", false, "plan a target that stands on the shelf")
 	fl.StringVar(&f.make, "make", "", "amount of target that prices and stock are worked out for, such as 10g")
 	fl.StringVar(&f.bench, "bench", "", "bench file: what the room can do")
+	fl.BoolVar(&f.onlyShelf, "only-shelf", false, "reagents and solvents too must stand on the shelf (water and air excepted)")
+	fl.StringVar(&f.maxHazard, "max-hazard", "", "charge nothing graver than this H code or class (0 none to 4 gravest); what was never looked up counts as the gravest")
+	fl.BoolVar(&f.atScale, "scale", false, "let cost more what practice avoids at scale: cryogenic baths, gases, exotherms, chromatography, ether")
 }
 
 // maxMaxSteps bounds --max-steps: no route on paper is longer, and the search keeps a table per step left.
@@ -75,14 +81,15 @@ func (f *planFlags) check() error {
 
 // options turns flags and case file into planning options.
 func (app *App) options(j *job, f *planFlags) (route.Options, error) {
-	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OneEnantiomer: f.oneEnantiomer,
+	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OnlyShelf: f.onlyShelf, MaxHazard: f.maxHazard, AtScale: f.atScale, OneEnantiomer: f.oneEnantiomer,
 		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.time, MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
 	for _, word := range f.avoid {
-		if hazardCode.MatchString(word) {
-			if err := j.room.Hazards.CheckCode("H" + word[1:]); err != nil {
-				return o, usageError("--avoid: %v", err)
-			}
+		if err := checkCode(j, "--avoid", word); err != nil {
+			return o, err
 		}
+	}
+	if err := checkCode(j, "--max-hazard", f.maxHazard); err != nil {
+		return o, err
 	}
 	var err error
 	if o.RankBy, err = route.ParseRankBy(f.rankBy); err != nil {
@@ -110,6 +117,17 @@ func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 		}
 	}
 	return o, nil
+}
+
+// checkCode refuses an H code that the GHS does not have.
+func checkCode(j *job, flag, word string) error {
+	if !hazardCode.MatchString(word) {
+		return nil
+	}
+	if err := j.room.Hazards.CheckCode("H" + word[1:]); err != nil {
+		return usageError("%s: %v", flag, err)
+	}
+	return nil
 }
 
 func (j *job) resolveAll(flag string, texts []string) ([]*molecule.Molecule, error) {
@@ -247,7 +265,7 @@ func (app *App) header(j *job) {
 
 // emptyPlan is the object of a search that had no target to begin with.
 func emptyPlan(doubts []string) *route.Plan {
-	return &route.Plan{From: []string{}, Avoided: []string{}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Doubts: doubts}
+	return &route.Plan{From: []string{}, Kept: route.Kept{Avoided: []string{}, LeftOut: []route.LeftOut{}}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Doubts: doubts}
 }
 
 // nothingFound turns a plan without routes into status 3; the reason has been printed.
