@@ -8,6 +8,7 @@ func (m *Molecule) Builder() *Builder {
 		Bonds:       append(make([]Bond, 0, len(m.bonds)+4), m.bonds...),
 		Centers:     append([]Center(nil), m.centers...),
 		DoubleBonds: append([]DoubleBond(nil), m.doubleBonds...),
+		LeftOut:     int(m.leftOut),
 	}
 	for i := range b.Atoms {
 		b.Atoms[i].Aromatic = false
@@ -81,6 +82,7 @@ func Join(ms ...*Molecule) *Molecule {
 // and bond indices of c were shifted.
 func (b *Builder) Append(c *Builder) (atomShift, bondShift int) {
 	da, db := int32(len(b.Atoms)), int32(len(b.Bonds))
+	b.LeftOut += c.LeftOut
 	b.Atoms = append(b.Atoms, c.Atoms...)
 	for _, x := range c.Bonds {
 		x.A, x.B = x.A+da, x.B+da
@@ -201,7 +203,7 @@ func (m *Molecule) WithoutStereo() *Molecule {
 // shallow returns a molecule that shares all of m but the stereo marks and what depends on them.
 func (m *Molecule) shallow() *Molecule {
 	return &Molecule{atoms: m.atoms, bonds: m.bonds, first: m.first, neighbors: m.neighbors, rings: m.rings, bondRing: m.bondRing,
-		redraw: m.redraw}
+		redraw: m.redraw, leftOut: m.leftOut}
 }
 
 // EqualsMirror says whether m is the same as its mirror image: no centre is marked, or the marks

@@ -25,6 +25,7 @@ type Builder struct {
 	Bonds       []Bond // Ring is ignored; Order may be OrderAromatic
 	Centers     []Center
 	DoubleBonds []DoubleBond
+	LeftOut     int // stereo marks of the input that neither list can hold; see Molecule.MarksLeftOut
 }
 
 // Error says which atom or bond (index, -1 none) a molecule could not be built for.
@@ -83,8 +84,9 @@ func (p *perceiver) build(b *Builder) (*Molecule, error) {
 		return nil, &Error{-1, -1, fmt.Sprintf("the structure has %d atoms; at most %d are accepted", len(b.Atoms), MaxAtoms)}
 	}
 	m := &Molecule{
-		atoms: append(make([]Atom, 0, len(b.Atoms)), b.Atoms...),
-		bonds: append(make([]Bond, 0, len(b.Bonds)), b.Bonds...),
+		atoms:   append(make([]Atom, 0, len(b.Atoms)), b.Atoms...),
+		bonds:   append(make([]Bond, 0, len(b.Bonds)), b.Bonds...),
+		leftOut: uint16(min(b.LeftOut, MaxAtoms)),
 	}
 	p.m = m
 	if err := p.connect(); err != nil {

@@ -64,7 +64,8 @@ type Molecule struct {
 	bondRing    []uint16 // bond -> size of its smallest ring, 0 none; nil without rings
 	centers     []Center
 	doubleBonds []DoubleBond
-	redraw      bool // some nitrogen has five bonds or some halogen a positive charge
+	redraw      bool   // some nitrogen has five bonds or some halogen a positive charge
+	leftOut     uint16 // see MarksLeftOut
 
 	exact, flat, seen atomic.Pointer[identity] // made when first asked for
 }
@@ -141,6 +142,11 @@ func (m *Molecule) Centers() []Center { return m.centers }
 
 // DoubleBonds lists the double bond marks kept (void marks are dropped): shared, read only.
 func (m *Molecule) DoubleBonds() []DoubleBond { return m.doubleBonds }
+
+// MarksLeftOut is the number of stereo marks of the input that a Molecule does not hold: axes (allenes,
+// biaryls), shapes other than the tetrahedron, wedges that contradict each other. The molecule is the
+// one without them; who reads it should say so.
+func (m *Molecule) MarksLeftOut() int { return int(m.leftOut) }
 
 // HasStereo says whether any stereo mark is kept.
 func (m *Molecule) HasStereo() bool { return len(m.centers)+len(m.doubleBonds) > 0 }

@@ -75,6 +75,44 @@ func TestWedges(t *testing.T) {
 	}
 }
 
+// TestDrawingsThatSayNothing: wedges that contradict each other or mean no tetrahedron leave the centre
+// open, and are counted. Seen from the raised F (in front) Cl, Br, I run counterclockwise.
+func TestDrawingsThatSayNothing(t *testing.T) {
+	cross := func(marks ...int) string { // F east, Cl north, Br west, I south
+		s := "cross\n\n\n  5  4  0  0  0  0  0  0  0  0999 V2000\n" + row(0, 0, 0, "C", "") +
+			row(1, 0, 0, "F", "") + row(0, 1, 0, "Cl", "") + row(-1, 0, 0, "Br", "") + row(0, -1, 0, "I", "")
+		for i, m := range marks {
+			s += fmt.Sprintf("  1%3d  1%3d\n", i+2, m)
+		}
+		return s + "M  END\n"
+	}
+	allene := "allene\n\n\n  6  5  0  0  0  0  0  0  0  0999 V2000\n" + row(0, 0, 0, "C", "") + row(1, 0, 0, "C", "") + row(2, 0, 0, "C", "") +
+		row(-0.5, 0.8, 0, "F", "") + row(-0.5, -0.8, 0, "Cl", "") + row(2.5, 0.8, 0, "Br", "") +
+		"  1  2  2  0\n  2  3  2  0\n  1  4  1  1\n  1  5  1  0\n  3  6  1  0\nM  END\n"
+	up := "FC(Cl)(Br)I"
+	for _, c := range []struct {
+		name, text, want string
+		leftOut          int
+	}{
+		{"one wedge", cross(1, 0, 0, 0), "F[C@](Cl)(Br)I", 0},
+		{"two opposite wedges", cross(1, 0, 1, 0), "F[C@](Cl)(Br)I", 0},
+		{"a wedge beside a hash", cross(1, 6, 0, 0), "F[C@](Cl)(Br)I", 0},
+		{"two wedges side by side", cross(1, 1, 0, 0), up, 1},
+		{"a wedge against a hash", cross(1, 0, 6, 0), up, 1},
+		{"a wavy bond", cross(1, 0, 0, 4), up, 0},
+		{"wedges at an allene", allene, "FC(Cl)=C=CBr", 1},
+	} {
+		r, err := Read(strings.NewReader(c.text))
+		if err != nil {
+			t.Errorf("%s: %v", c.name, err)
+			continue
+		}
+		if got, want := smiles.Write(r.Molecule), smiles.Write(read(t, c.want)); got != want || r.Molecule.MarksLeftOut() != c.leftOut {
+			t.Errorf("%s: %s, %d left out; want %s, %d", c.name, got, r.Molecule.MarksLeftOut(), want, c.leftOut)
+		}
+	}
+}
+
 // TestSpaceAndParity: the same centre from 3D coordinates and from the parity of the atom line.
 func TestSpaceAndParity(t *testing.T) {
 	head := "x\n\n\n  4  3  0  0  0  0  0  0  0  0999 V2000\n"

@@ -2,6 +2,7 @@ package molfile
 
 import (
 	"bufio"
+	"bytes"
 	"errors"
 	"fmt"
 	"io"
@@ -21,6 +22,17 @@ type Reader struct {
 	record int
 	held   *string // line to be read again
 	ended  bool
+}
+
+// Looks says whether head, the beginning of a file, is that of a molfile or SD file: its fourth line bears a
+// version.
+func Looks(head []byte) bool {
+	lines := bytes.SplitN(head, []byte("\n"), 5)
+	if len(lines) < 5 {
+		return false
+	}
+	counts := bytes.TrimRight(lines[3], " \t\r")
+	return bytes.HasSuffix(counts, []byte("V2000")) || bytes.HasSuffix(counts, []byte("V3000"))
 }
 
 // NewReader returns a Reader of r.

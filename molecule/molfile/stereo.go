@@ -112,54 +112,74 @@ func sortedAtoms(nbs []molecule.Neighbor) []int32 {
 	return list
 }
 
-// vectors returns the unit vectors from a to its neighbours, lifted by lift per neighbour.
-func (g *geometry) vectors(a int, lift func(nb molecule.Neighbor) float64) []Point {
+// vectors returns the unit vectors from a to its neighbours.
+func (g *geometry) vectors(a int) []Point {
 	var list []Point
 	for _, nb := range g.nbs[a] {
-		p, q := g.points[a], g.points[nb.Atom]
-		v := Point{q.X - p.X, q.Y - p.Y, q.Z - p.Z}
+		v := minus(g.points[nb.Atom], g.points[a])
 		if l := math.Sqrt(v.X*v.X + v.Y*v.Y + v.Z*v.Z); l > 1e-9 {
 			v = Point{v.X / l, v.Y / l, v.Z / l}
 		}
-		v.Z += lift(nb)
 		list = append(list, v)
 	}
 	return list
 }
 
-// fromWedges reads the wedges whose narrow end is a.
+// fromWedges reads the wedges whose narrow end is a. Wedges that contradict each other (two alike side by
+// side among four bonds, one up and one down among three) leave the centre open: readers differ on them.
 func (g *geometry) fromWedges(a int) {
 	if !g.candidate(a) {
+		g.leaveOut(a)
 		return
 	}
-	wedged := false
-	v := g.vectors(a, func(nb molecule.Neighbor) float64 {
+	v := g.vectors(a)
+	sense := 0.0
+	for i, nb := range g.nbs[a] {
 		if int(g.b.Bonds[nb.Bond].A) != a {
-			return 0
+			continue
 		}
+		lift := 0.0
 		switch g.stereo[nb.Bond] {
+		case stereoEither:
+			return
 		case stereoWedge:
-			wedged = true
-			return 1
+			lift = 1
 		case stereoHash:
-			wedged = true
-			return -1
+			lift = -1
+		default:
+			continue
 		}
-		return 0
-	})
-	for _, nb := range g.nbs[a] {
-		if int(g.b.Bonds[nb.Bond].A) == a && g.stereo[nb.Bond] == stereoEither {
+		v[i].Z = lift
+		alone := volume(v)
+		v[i].Z = 0
+		if sense*alone < 0 {
+			g.b.LeftOut++
 			return
 		}
+		if math.Abs(alone) > math.Abs(sense) {
+			sense = alone
+		}
 	}
-	if wedged {
-		g.addCenter(a, v)
+	g.addCenter(a, sense)
+}
+
+// leaveOut counts the wedges at an atom with a double or aromatic bond: they mean an axis (an allene, a
+// biaryl) or a plane.
+func (g *geometry) leaveOut(a int) {
+	wedged, flat := false, false
+	for _, nb := range g.nbs[a] {
+		x := g.b.Bonds[nb.Bond]
+		wedged = wedged || int(x.A) == a && (g.stereo[nb.Bond] == stereoWedge || g.stereo[nb.Bond] == stereoHash)
+		flat = flat || x.Order == molecule.OrderAromatic || x.Order == 2
+	}
+	if wedged && flat {
+		g.b.LeftOut++
 	}
 }
 
 func (g *geometry) fromSpace(a int) {
 	if g.candidate(a) {
-		g.addCenter(a, g.vectors(a, func(molecule.Neighbor) float64 { return 0 }))
+		g.addCenter(a, volume(g.vectors(a)))
 	}
 }
 
@@ -169,21 +189,32 @@ func det(u, v, w Point) float64 {
 	return u.X*(v.Y*w.Z-v.Z*w.Y) - u.Y*(v.X*w.Z-v.Z*w.X) + u.Z*(v.X*w.Y-v.Y*w.X)
 }
 
-// addCenter adds the centre a with ligands in the directions v, unless they lie in one plane.
-func (g *geometry) addCenter(a int, v []Point) {
-	c := molecule.Center{Atom: int32(a)}
-	volume := 0.0
+// volume is the triple product of the directions of three neighbours, or of three of four seen from
+// the first: its sign is the sense in which they run.
+func volume(v []Point) float64 {
 	if len(v) == 3 {
-		volume = det(v[0], v[1], v[2])
-		c.Ligands = [4]int32{g.missing(a), g.nbs[a][0].Atom, g.nbs[a][1].Atom, g.nbs[a][2].Atom}
-	} else {
-		volume = det(minus(v[1], v[0]), minus(v[2], v[0]), minus(v[3], v[0]))
-		for i := range c.Ligands {
-			c.Ligands[i] = g.nbs[a][i].Atom
-		}
+		return det(v[0], v[1], v[2])
 	}
-	if math.Abs(volume) < 0.1 {
+	return det(minus(v[1], v[0]), minus(v[2], v[0]), minus(v[3], v[0]))
+}
+
+// leastVolume is the smallest triple product of unit vectors that tells a sense: about three degrees
+// from a flat arrangement, or from a straight line through a centre whose third bond is wedged.
+const leastVolume = 0.05
+
+// addCenter adds the centre a whose neighbours span the volume.
+func (g *geometry) addCenter(a int, volume float64) {
+	if math.Abs(volume) < leastVolume {
 		return
+	}
+	c := molecule.Center{Atom: int32(a)}
+	at := 0
+	if len(g.nbs[a]) == 3 {
+		c.Ligands[0] = g.missing(a)
+		at = 1
+	}
+	for i, nb := range g.nbs[a] {
+		c.Ligands[at+i] = nb.Atom
 	}
 	// Seen from the first ligand, the others run clockwise when their triple product is positive.
 	c.Clockwise = volume > 0
@@ -208,9 +239,12 @@ func (g *geometry) doubleBonds() {
 	}
 }
 
+// wavy says that a wavy bond leaves the double bond end a open: one whose narrow end is a, or a
+// neighbour that is no centre itself.
 func (g *geometry) wavy(a int32) bool {
 	for _, nb := range g.nbs[a] {
-		if g.stereo[nb.Bond] == stereoEither && g.b.Bonds[nb.Bond].Order == 1 {
+		x := g.b.Bonds[nb.Bond]
+		if g.stereo[nb.Bond] == stereoEither && x.Order == 1 && (x.A == a || !g.candidate(int(nb.Atom))) {
 			return true
 		}
 	}
@@ -221,7 +255,7 @@ func (g *geometry) wavy(a int32) bool {
 func (g *geometry) beside(a, partner int32) (int32, bool) {
 	hydrogen := int32(-1)
 	for _, nb := range g.nbs[a] {
-		if nb.Atom == partner || g.b.Bonds[nb.Bond].Order != 1 {
+		if order := g.b.Bonds[nb.Bond].Order; nb.Atom == partner || order != 1 && order != molecule.OrderAromatic {
 			continue
 		}
 		if x := g.b.Atoms[nb.Atom]; x.Element != 1 || x.Isotope != 0 {

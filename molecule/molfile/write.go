@@ -69,6 +69,11 @@ func WriteSD(w io.Writer, r *Record) error {
 	if err := Write(w, r); err != nil {
 		return err
 	}
+	return writeFields(w, r)
+}
+
+// writeFields writes what follows the table in an SD file.
+func writeFields(w io.Writer, r *Record) error {
 	out := bufio.NewWriter(w)
 	for _, f := range r.Fields {
 		fmt.Fprintf(out, "> <%s>\n", strings.NewReplacer("<", "(", ">", ")", "\n", " ").Replace(f.Name))

@@ -19,6 +19,14 @@ func WriteV3000(w io.Writer, r *Record) error {
 	return out.Flush()
 }
 
+// WriteSDV3000 is WriteSD in the V3000 form.
+func WriteSDV3000(w io.Writer, r *Record) error {
+	if err := WriteV3000(w, r); err != nil {
+		return err
+	}
+	return writeFields(w, r)
+}
+
 // write3 writes the table from BEGIN CTAB to END CTAB.
 func (t *table) write3(out *bufio.Writer, relative bool) {
 	m := t.m

@@ -185,7 +185,8 @@ var shapes = []struct {
 	most int
 }{{"TH", 2}, {"AL", 2}, {"SP", 3}, {"TB", 20}, {"OH", 30}}
 
-// chirality reads @, @@, @TH1 and the like. marked is false for shapes that are not tetrahedral.
+// chirality reads @, @@, @TH1 and the like. marked is false for shapes that are not tetrahedral; they
+// are counted as left out.
 func (r *reader) chirality() (marked, clockwise bool, err error) {
 	if !r.is('@') {
 		return false, false, nil
@@ -209,6 +210,9 @@ func (r *reader) chirality() (marked, clockwise bool, err error) {
 		}
 		if !digits || n < 1 || n > s.most {
 			return false, false, r.fail(at+2, "expected a number from 1 to %d after '@%s', found %s", s.most, s.text, r.found(at+2))
+		}
+		if s.text != "TH" {
+			r.b.LeftOut++
 		}
 		return s.text == "TH", n == 2, nil
 	}

@@ -89,7 +89,7 @@ func (r *reader) found(i int) string {
 func (r *reader) reset(text string) {
 	r.text, r.i = text, 0
 	r.b.Atoms, r.b.Bonds = r.b.Atoms[:0], r.b.Bonds[:0]
-	r.b.Centers, r.b.DoubleBonds = r.b.Centers[:0], r.b.DoubleBonds[:0]
+	r.b.Centers, r.b.DoubleBonds, r.b.LeftOut = r.b.Centers[:0], r.b.DoubleBonds[:0], 0
 	r.atoms, r.bonds = r.atoms[:0], r.bonds[:0]
 	r.branches, r.marks = r.branches[:0], r.marks[:0]
 	if r.openCount != 0 {

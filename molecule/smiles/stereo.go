@@ -3,8 +3,12 @@ package smiles
 import "shelfward/molecule"
 
 // addCenter turns a mark into a centre of the builder. Marks whose atom has not three or four
-// ligands are left out; Build drops those that its atom cannot hold.
+// ligands are left out, those of an allene or a shape with more ligands counted so; Build drops those that
+// its atom cannot hold.
 func (r *reader) addCenter(k *mark) {
+	if k.count > 4 || k.count == 2 && r.bondSum(k.atom) == 4 && r.b.Atoms[k.atom].Hydrogens == 0 {
+		r.b.LeftOut++
+	}
 	if k.count == 3 {
 		// A lone pair counts as the last ligand, wherever the atom stands.
 		k.add(molecule.LigandLonePair)

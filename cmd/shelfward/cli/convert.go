@@ -24,19 +24,21 @@ import (
 
 // convertOptions are the flags of convert.
 type convertOptions struct {
-	app  *App
-	to   string
-	file string
+	app   *App
+	to    string
+	v3000 bool
+	file  string
 }
 
 func newConvertCommand(app *App) *cobra.Command {
 	o := &convertOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, formula, name, svg", Args: exactly(1),
+		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, rxn, formula, name, svg", Args: exactly(1),
 		Long: "Reads a .smi, .mol, .sdf or .rxn file; '-' is standard input. To smiles, formula and name it prints one line per record:\n" +
 			"value, tab, title. A .rxn file becomes one line of reaction SMILES, or its molecules in the order reactants, agents,\n" +
-			"products. A structure that has no name here gives an empty one. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" +
-			"SD, mol and SVG output leave failed records out.\n" + exitHelp,
+			"products; --to rxn takes a .rxn file or reaction SMILES, one a line, with titles. A structure that has no name here gives an empty one. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" +
+			"SD, mol, rxn and SVG output leave failed records out. What of a record its structure does not hold (axes, relative marks) is\n" +
+			"noted on standard error.\n" + exitHelp,
 		Example: "  shelfward convert shelf.smi --to smiles\n  echo 'OCC ethanol' | shelfward convert - --to formula\n  shelfward convert drawing.sdf --to smiles",
 		RunE: func(c *cobra.Command, args []string) error {
 			o.file = args[0]
@@ -44,23 +46,27 @@ func newConvertCommand(app *App) *cobra.Command {
 		},
 	}
 	cmd.Flags().StringVar(&o.to, "to", "smiles", formatNames)
+	cmd.Flags().BoolVar(&o.v3000, "v3000", false, "write mol, sdf and rxn in the V3000 form (V2000 otherwise, up to 999 atoms)")
 	return cmd
 }
 
 // formatNames lists the values of --to.
-const formatNames = "smiles, mol, sdf, formula, name or svg"
+const formatNames = "smiles, mol, sdf, rxn, formula, name or svg"
 
-// formats turn one record into its text. The line formats give a value for 'value, tab, title'; the
+// format turns one record into its text. A line format gives a value for 'value, tab, title'; the
 // others give a whole block of lines.
-var formats = map[string]struct {
+type format struct {
 	write func(*molfile.Record) (string, error)
 	line  bool
-}{
+}
+
+var formats = map[string]format{
 	"smiles":  {func(r *molfile.Record) (string, error) { return smiles.Write(r.Molecule), nil }, true},
 	"formula": {func(r *molfile.Record) (string, error) { return r.Molecule.Formula().String(), nil }, true},
 	"name":    {func(r *molfile.Record) (string, error) { text, _ := name.OfWithStereo(r.Molecule); return text, nil }, true},
 	"mol":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.Write) }, false},
 	"sdf":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteSD) }, false},
+	"rxn":     {}, // whole reactions, see reactionAnswer
 	"svg": {func(r *molfile.Record) (string, error) {
 		return draw.SVG(r.Molecule, draw.Options{Title: r.Title}) + "\n", nil
 	}, false},
@@ -68,20 +74,42 @@ var formats = map[string]struct {
 
 // molText writes a record with the coordinates it came with, or with those of our own picture.
 func molText(r *molfile.Record, write func(io.Writer, *molfile.Record) error) (string, error) {
-	whole := *r
-	if whole.Coordinates == nil {
-		for _, p := range draw.Layout(r.Molecule) {
-			whole.Coordinates = append(whole.Coordinates, molfile.Point{X: p.X, Y: p.Y})
-		}
-	}
 	var text strings.Builder
-	err := write(&text, &whole)
+	err := write(&text, drawn(r))
 	return text.String(), err
+}
+
+// drawn is r with coordinates.
+func drawn(r *molfile.Record) *molfile.Record {
+	if r.Coordinates != nil {
+		return r
+	}
+	whole := *r
+	for _, p := range draw.Layout(r.Molecule) {
+		whole.Coordinates = append(whole.Coordinates, molfile.Point{X: p.X, Y: p.Y})
+	}
+	return &whole
+}
+
+// answer converts one record, or one reaction where the output is a reaction file.
+func (o *convertOptions) answer(it item) converted {
+	switch {
+	case o.to == "rxn":
+		return reactionAnswer(it, o.v3000)
+	case o.v3000 && o.to == "mol":
+		return it.convert(func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteV3000) })
+	case o.v3000:
+		return it.convert(func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteSDV3000) })
+	}
+	return it.convert(formats[o.to].write)
 }
 
 func (o *convertOptions) run(ctx context.Context) error {
 	if _, ok := formats[o.to]; !ok {
 		return usageError("--to %s: %s was expected", o.to, formatNames)
+	}
+	if o.v3000 && o.to != "mol" && o.to != "sdf" && o.to != "rxn" {
+		return usageError("--v3000 goes with --to mol, sdf or rxn, not with %s", o.to)
 	}
 	in, closeIn, err := o.app.open(o.file)
 	if err != nil {
@@ -128,7 +156,7 @@ func (o *convertOptions) source(in io.Reader) (source, error) {
 	reader := bufio.NewReaderSize(in, 1<<16)
 	switch strings.ToLower(filepath.Ext(o.file)) {
 	case ".mol", ".sdf", ".sd":
-		return &molSource{in: molfile.NewReader(reader)}, nil
+		return o.molSource(reader)
 	case ".rxn":
 		return o.reactionSource(reader)
 	}
@@ -137,17 +165,27 @@ func (o *convertOptions) source(in io.Reader) (source, error) {
 		switch {
 		case bytes.HasPrefix(head, []byte("$RXN")):
 			return o.reactionSource(reader)
-		case bytes.Contains(head, []byte("V2000\n")), bytes.Contains(head, []byte("V2000\r")):
-			return &molSource{in: molfile.NewReader(reader)}, nil
+		case molfile.Looks(head):
+			return o.molSource(reader)
 		}
 	}
 	return &lineSource{in: reader}, nil
+}
+
+func (o *convertOptions) molSource(in io.Reader) (source, error) {
+	if o.to == "rxn" {
+		return nil, usageError("%s: a .rxn file or lines of reaction SMILES were expected for --to rxn, found structures", fileLabel(o.file))
+	}
+	return &molSource{in: molfile.NewReader(in)}, nil
 }
 
 func (o *convertOptions) reactionSource(in io.Reader) (source, error) {
 	r, err := molfile.ReadReaction(in)
 	if err != nil {
 		return nil, usageError("%s: %v", fileLabel(o.file), err)
+	}
+	if o.to == "rxn" {
+		return &listSource{items: []item{{reaction: r}}}, nil
 	}
 	if o.to == "smiles" {
 		line := joinRecords(r.Reactants) + ">" + joinRecords(r.Agents) + ">" + joinRecords(r.Products)
@@ -192,6 +230,9 @@ func (o *convertOptions) convert(ctx context.Context, src source) error {
 			if r.trouble != "" {
 				failed++
 				fmt.Fprintf(o.app.ErrOut, "shelfward: %s: record %d: %s\n", fileLabel(o.file), record, r.trouble)
+			} else if r.note != "" {
+				fmt.Fprintf(o.app.ErrOut, "note: %s: record %d: %s\n", fileLabel(o.file), record, r.note)
+				object.Doubts = append(object.Doubts, fmt.Sprintf("record %d: %s", record, r.note))
 			}
 			if o.app.JSON {
 				object.Records = append(object.Records, recordJSON{r.value, r.title})
@@ -243,7 +284,7 @@ func (o *convertOptions) batches(batches [][]item, workers int) []converted {
 			for i := range next {
 				results[i] = make([]converted, len(batches[i]))
 				for k, it := range batches[i] {
-					results[i][k] = it.convert(formats[o.to].write)
+					results[i][k] = o.answer(it)
 				}
 			}
 		}()

@@ -3,6 +3,7 @@ package cli
 import (
 	"bufio"
 	"bytes"
+	"fmt"
 	"io"
 	"strings"
 
@@ -95,4 +96,58 @@ func readReaction(text string) (reactants, products []*molecule.Molecule, err er
 		}
 	}
 	return reactants, products, nil
+}
+
+// reactionAnswer writes a reaction, read from a file or still a line of reaction SMILES, as a reaction file.
+func reactionAnswer(it item, v3000 bool) converted {
+	x := it.reaction
+	if x == nil {
+		text, title, trouble := splitLine(it.line)
+		if trouble == "" {
+			var err error
+			if x, err = reactionLine(text); err != nil {
+				trouble = err.Error()
+			}
+		}
+		if trouble != "" {
+			return converted{title: title, trouble: trouble}
+		}
+		x.Title = title
+	}
+	for _, list := range [][]*molfile.Record{x.Reactants, x.Agents, x.Products} {
+		for i, r := range list {
+			list[i] = drawn(r)
+		}
+	}
+	write := molfile.WriteReaction
+	if v3000 {
+		write = molfile.WriteReactionV3000
+	}
+	var text strings.Builder
+	if err := write(&text, x); err != nil {
+		return converted{title: x.Title, trouble: err.Error()}
+	}
+	return converted{value: text.String(), title: x.Title}
+}
+
+// reactionLine reads 'A.B>C>D' with every molecule a record of its own; either side may be empty.
+func reactionLine(text string) (*molfile.Reaction, error) {
+	sides := strings.Split(text, ">")
+	if len(sides) != 3 {
+		return nil, fmt.Errorf("%s: a reaction 'A.B>>C' was expected", quoted(text))
+	}
+	x := &molfile.Reaction{}
+	for i, list := range []*[]*molfile.Record{&x.Reactants, &x.Agents, &x.Products} {
+		if sides[i] == "" {
+			continue
+		}
+		m, err := smiles.Read(sides[i])
+		if err != nil {
+			return nil, fmt.Errorf("%s: %w", quoted(sides[i]), err)
+		}
+		for _, part := range m.Split() {
+			*list = append(*list, &molfile.Record{Molecule: part})
+		}
+	}
+	return x, nil
 }

@@ -7,6 +7,7 @@ import (
 	"io"
 	"strings"
 
+	"shelfward/molecule"
 	"shelfward/molecule/molfile"
 	"shelfward/molecule/smiles"
 )
@@ -25,14 +26,15 @@ type source interface {
 // item is one record before its conversion: a line still to be read, a structure, or what is already
 // known about it.
 type item struct {
-	line   string
-	record *molfile.Record
-	title  string
-	done   *converted
+	line     string
+	record   *molfile.Record
+	reaction *molfile.Reaction
+	title    string
+	done     *converted
 }
 
-// converted is the answer for one record.
-type converted struct{ value, title, trouble string }
+// converted is the answer for one record; a note is said beside a value, a trouble in its place.
+type converted struct{ value, title, trouble, note string }
 
 // convert reads the record where that is still to be done, and writes it.
 func (it item) convert(write func(*molfile.Record) (string, error)) converted {
@@ -54,7 +56,32 @@ func (it item) convert(write func(*molfile.Record) (string, error)) converted {
 	if err != nil {
 		return converted{title: it.title, trouble: err.Error()}
 	}
-	return converted{value: value, title: it.title}
+	return converted{value: value, title: it.title, note: recordNote(it.record)}
+}
+
+// recordNote says what of a record its structure does not hold, "" where it holds all.
+func recordNote(r *molfile.Record) string {
+	note := marksNote(r.Molecule)
+	if r.Relative && len(r.Molecule.Centers()) > 0 {
+		if note != "" {
+			note += "; "
+		}
+		note += "its marks are relative: the racemate or one of two mirror images"
+	}
+	return note
+}
+
+// marksNote says that stereo marks of m were left out, "" where none were.
+func marksNote(m *molecule.Molecule) string {
+	n := m.MarksLeftOut()
+	if n == 0 {
+		return ""
+	}
+	marks := "stereo marks"
+	if n == 1 {
+		marks = "stereo mark"
+	}
+	return fmt.Sprintf("%d %s left out (an axis such as an allene or a biaryl, a shape that is no tetrahedron, or wedges that contradict each other)", n, marks)
 }
 
 // splitLine parts a line of a SMILES file into structure and title.

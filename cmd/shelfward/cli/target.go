@@ -381,7 +381,11 @@ func (j *job) echo() string {
 	if name == "" {
 		name = smiles.Write(j.target)
 	}
-	return fmt.Sprintf("target: %s, %s, %.2f g/mol, read as %s", name, f, f.MolarMass(), j.readAs)
+	line := fmt.Sprintf("target: %s, %s, %.2f g/mol, read as %s", name, f, f.MolarMass(), j.readAs)
+	if note := marksNote(j.target); note != "" {
+		line += "; " + note
+	}
+	return line
 }
 
 func dirOf(path string) string { return filepath.Dir(path) }
