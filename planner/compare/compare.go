@@ -15,8 +15,9 @@ import (
 
 // Row is one route with the start it was asked for.
 type Row struct {
-	From     string `json:"from"` // SMILES of the start, several joined by dots; empty if none was asked for
-	FromName string `json:"from_name"`
+	From     string   `json:"from"` // SMILES of the start, several joined by dots; empty if none was asked for
+	FromName string   `json:"from_name"`
+	BeatenBy []string `json:"beaten_by"` // codes of rows nowhere worse and somewhere better; a gap counts as worst
 	route.Route
 }
 
@@ -31,12 +32,13 @@ type First struct {
 type Table struct {
 	Target route.Target `json:"target"`
 	route.Kept
-	MakeG   float64  `json:"make_g"`
-	Asked   bool     `json:"make_asked"` // the amount was asked for, and stock looked at
-	Rows    []Row    `json:"rows"`
-	Missing []string `json:"missing"` // starts without a route, with the reason
-	FirstBy []First  `json:"first_by"`
-	Doubts  []string `json:"doubts"`
+	MakeG    float64  `json:"make_g"`
+	Asked    bool     `json:"make_asked"` // the amount was asked for, and stock looked at
+	Rows     []Row    `json:"rows"`
+	Missing  []string `json:"missing"`  // starts without a route, with the reason
+	Unbeaten []string `json:"unbeaten"` // codes of the rows that no other beats in every column
+	FirstBy  []First  `json:"first_by"`
+	Doubts   []string `json:"doubts"`
 }
 
 // FromPlan compares the routes of a plan.
@@ -46,12 +48,12 @@ func FromPlan(p *route.Plan) *Table {
 	for _, r := range p.Routes {
 		t.Rows = append(t.Rows, Row{From: from, Route: r})
 	}
-	t.FirstBy = firsts(t.Rows)
+	t.FirstBy, t.Unbeaten = firsts(t.Rows), unbeaten(t.Rows)
 	return t
 }
 
 func empty(p *route.Plan) *Table {
-	return &Table{Target: p.Target, Kept: p.Kept, MakeG: p.MakeG, Asked: p.MakeAsked, Rows: []Row{}, Missing: []string{}, FirstBy: []First{}, Doubts: p.Doubts}
+	return &Table{Target: p.Target, Kept: p.Kept, MakeG: p.MakeG, Asked: p.MakeAsked, Rows: []Row{}, Missing: []string{}, FirstBy: []First{}, Unbeaten: []string{}, Doubts: p.Doubts}
 }
 
 // EachFrom plans the target once from each start, with the options otherwise alike, and compares the
@@ -93,7 +95,7 @@ func EachFrom(ctx context.Context, w *route.World, target *molecule.Molecule, st
 		t.Rows = append(t.Rows, Row{From: w.Write(start), FromName: name, Route: r})
 	}
 	if t != nil {
-		t.FirstBy = firsts(t.Rows)
+		t.FirstBy, t.Unbeaten = firsts(t.Rows), unbeaten(t.Rows)
 	}
 	return t, plans, nil
 }

@@ -30,18 +30,12 @@ func (t *Table) WriteText(w io.Writer) error {
 	b.WriteString("\nfirst by\n")
 	var rows [][]string
 	for _, f := range t.FirstBy {
-		text := strings.Join(f.Codes, ", ")
-		if len(f.Codes) == len(t.Rows) && len(t.Rows) > 1 {
-			text = "all alike"
-		}
-		if f.Clause != "" {
-			text += " (" + f.Clause + ")"
-		}
-		rows = append(rows, []string{"  " + f.Column, text})
+		rows = append(rows, []string{"  " + f.Column, t.firstText(f)})
 	}
 	if err := route.WriteColumns(&b, rows); err != nil {
 		return err
 	}
+	t.writeStanding(&b)
 	for i := range t.Rows {
 		r := &t.Rows[i]
 		fmt.Fprintf(&b, "\n%s", r.Code)
@@ -55,9 +49,66 @@ func (t *Table) WriteText(w io.Writer) error {
 		for _, s := range r.Steps {
 			fmt.Fprintf(&b, "  %d  %s\n", s.Number, s.Line())
 		}
+		for _, w := range r.waysOut() {
+			fmt.Fprintf(&b, "  way out: %s\n", w)
+		}
 	}
 	_, err := io.WriteString(w, b.String())
 	return err
+}
+
+// firstText is the answer of one column in words.
+func (t *Table) firstText(f First) string {
+	text := strings.Join(f.Codes, ", ")
+	if len(f.Codes) == len(t.Rows) && len(t.Rows) > 1 {
+		text = "all alike"
+	}
+	if f.Clause != "" {
+		text += " (" + f.Clause + ")"
+	}
+	return text
+}
+
+// writeStanding says which routes no other beats in every figure, and what beats the others.
+func (t *Table) writeStanding(b *strings.Builder) {
+	if len(t.Rows) < 2 {
+		return
+	}
+	fmt.Fprintf(b, "\nnot beaten in every figure at once: %s\n", strings.Join(t.Unbeaten, ", "))
+	for i := range t.Rows {
+		r := &t.Rows[i]
+		if len(r.BeatenBy) == 0 {
+			continue
+		}
+		fmt.Fprintf(b, "  %s is beaten by %s", r.Code, strings.Join(r.BeatenBy, ", "))
+		if gaps := r.gaps(); len(gaps) > 0 {
+			fmt.Fprintf(b, " as far as known (%s: gaps in the data)", strings.Join(gaps, ", "))
+		}
+		b.WriteString("\n")
+	}
+}
+
+// waysOut says for each intermediate what is left if the step that takes it on fails.
+func (r *Row) waysOut() (out []string) {
+	for _, w := range r.WaysOut {
+		name := w.Name
+		if name == "" {
+			name = w.Product
+		}
+		out = append(out, fmt.Sprintf("from %s (step %d): %s for the next step, %s on to the target opened", name, w.Step,
+			count(w.Conditions, "set of conditions", "sets of conditions"), count(w.Steps, "way", "ways")))
+	}
+	return out
+}
+
+func count(n int, one, many string) string {
+	switch n {
+	case 0:
+		return "no other " + one
+	case 1:
+		return "1 other " + one
+	}
+	return fmt.Sprintf("%d other %s", n, many)
 }
 
 func (r *Row) start() string {

@@ -104,7 +104,7 @@ func (c *chemistry) build(found search.Route, p *Plan) (*Route, error) {
 		return nil, err
 	}
 	r := emptyRoute()
-	r.Weight, r.Proven, r.stood = found.Cost, found.Proven, found.Stood
+	r.Weight, r.Proven, r.stood, r.made = found.Cost, found.Proven, found.Stood, list
 	if len(list) == 0 { // the target itself is an item of From
 		taken := c.takenFromShelf(found.Tree.Key)
 		taken.Weight, taken.stood = found.Cost, found.Stood

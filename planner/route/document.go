@@ -154,6 +154,7 @@ type Route struct {
 	StartingMaterials []StartingMaterial `json:"starting_materials"`
 	ToBuy             []Purchase         `json:"to_buy"`
 	Alternatives      []Alternative      `json:"alternatives"`
+	WaysOut           []WayOut           `json:"ways_out"`      // per intermediate: what is left if the step that takes it on fails
 	VariantOf         string             `json:"variant_of"`    // code of a route with the same reactions in another order
 	Short             []string           `json:"short"`         // stock that does not suffice for the scale of the plan
 	StockUnknown      []string           `json:"stock_unknown"` // on the shelf, but nobody wrote down how much
@@ -162,4 +163,5 @@ type Route struct {
 	Doubts            []string           `json:"doubts"`
 
 	stood time.Duration // after the start of the search
+	made  []making      // parallel to Steps; of a plan just made
 }

@@ -44,11 +44,24 @@ func Load(path string) (*Plan, error) {
 		p.LeftOut = []LeftOut{}
 	}
 	for i := range p.Routes {
+		p.Routes[i].fill()
 		if err := p.Routes[i].whole(); err != nil {
 			return nil, fmt.Errorf("%s: damaged plan: route %d: %w", path, i+1, err)
 		}
 	}
 	return &p, nil
+}
+
+// fill makes empty lists of those that an older plan file does not hold.
+func (r *Route) fill() {
+	for _, list := range []*[]string{&r.Short, &r.StockUnknown, &r.Doubts} {
+		if *list == nil {
+			*list = []string{}
+		}
+	}
+	if r.WaysOut == nil {
+		r.WaysOut = []WayOut{}
+	}
 }
 
 // whole checks what printing takes for granted of a route that was read from a file: lists of equal

@@ -212,33 +212,40 @@ func (c *chemistry) keepsOut(free *chemistry, t *search.Tree) *refusal {
 // matchedShown is how many of the things that a wish met are named in text; JSON has all.
 const matchedShown = 4
 
-// WriteWishes prints what was avoided with what it met, and how many of the routes that would have come
-// first the wishes keep out.
+// WriteWishes prints what was avoided, and what that kept out.
 func (p *Kept) WriteWishes(w io.Writer) {
+	for _, line := range p.WishLines() {
+		fmt.Fprintln(w, line)
+	}
+}
+
+// WishLines says what was avoided, how many of the routes that would have come first the wishes keep out,
+// and what each word met; no line where nothing was wished.
+func (p *Kept) WishLines() (lines []string) {
 	if len(p.Avoided) > 0 {
-		fmt.Fprintf(w, "avoided: %s\n", strings.Join(p.Avoided, "; "))
+		lines = append(lines, "avoided: "+strings.Join(p.Avoided, "; "))
 	}
 	var routes []string
 	for i := range p.LeftOut {
-		l := &p.LeftOut[i]
-		if l.Routes > 0 {
+		if l := &p.LeftOut[i]; l.Routes > 0 {
 			routes = append(routes, l.Says)
 		}
 	}
 	switch {
 	case p.LeftOutOf > 0 && len(routes) > 0:
-		fmt.Fprintf(w, "left out: %s (of the %d that come first without these wishes)\n", strings.Join(routes, "; "), p.LeftOutOf)
+		lines = append(lines, fmt.Sprintf("left out: %s (of the %d that come first without these wishes)", strings.Join(routes, "; "), p.LeftOutOf))
 	case p.LeftOutOf > 0:
-		fmt.Fprintf(w, "left out: none of the %d routes that come first without these wishes\n", p.LeftOutOf)
+		lines = append(lines, fmt.Sprintf("left out: none of the %d routes that come first without these wishes", p.LeftOutOf))
 	}
 	for i := range p.LeftOut {
 		switch l := &p.LeftOut[i]; {
 		case len(l.Matched) > 0:
-			fmt.Fprintf(w, "  %s met %s: %d %s left out\n", l.Word, l.named(), l.Ways, plural(l.Ways, "way", "ways"))
+			lines = append(lines, fmt.Sprintf("  %s met %s: %d %s left out", l.Word, l.named(), l.Ways, plural(l.Ways, "way", "ways")))
 		case l.Ways == 0:
-			fmt.Fprintf(w, "  %s met nothing among the molecules opened\n", l.Word)
+			lines = append(lines, fmt.Sprintf("  %s met nothing among the molecules opened", l.Word))
 		}
 	}
+	return lines
 }
 
 // named lists what a wish met.

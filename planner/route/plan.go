@@ -141,6 +141,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	p.fillSearch(found)
 	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), len(w.Shelf)
 	p.order(o.Count)
+	c.waysOut(p, root)
 	p.finish(found.Exhausted && len(p.Routes) == len(found.Routes))
 	return p, nil
 }
@@ -248,7 +249,7 @@ func (c *chemistry) takenFromShelf(root search.Key) Route {
 
 func emptyRoute() Route {
 	return Route{Steps: []Step{}, Hazard: HazardFigures{Gravest: []string{}}, StartingMaterials: []StartingMaterial{}, ToBuy: []Purchase{},
-		Alternatives: []Alternative{}, Short: []string{}, StockUnknown: []string{}, Doubts: []string{}}
+		Alternatives: []Alternative{}, WaysOut: []WayOut{}, Short: []string{}, StockUnknown: []string{}, Doubts: []string{}}
 }
 
 func (p *Plan) fillSearch(r *search.Result) {

@@ -3,6 +3,7 @@ package cli
 import (
 	"context"
 	"fmt"
+	"os"
 
 	"github.com/spf13/cobra"
 
@@ -13,6 +14,7 @@ type compareOptions struct {
 	app      *App
 	flags    planFlags
 	eachFrom []string
+	html     string
 }
 
 func newCompareCommand(app *App) *cobra.Command {
@@ -20,11 +22,12 @@ func newCompareCommand(app *App) *cobra.Command {
 	cmd := &cobra.Command{
 		Use: "compare TARGET", Short: "the routes, or the first from each start, side by side", Args: exactly(1),
 		Long:    "TARGET is as for routes, or a plan file written by `routes --out`.\n" + exitHelp,
-		Example: "  shelfward compare testdata/demo/lure-4.yaml\n  shelfward compare 'CCCC(C)C(=O)CC' --each-from propanal --each-from 'ethyl propanoate'",
+		Example: "  shelfward compare testdata/demo/lure-4.yaml\n  shelfward compare 'CCCC(C)C(=O)CC' --each-from propanal --each-from 'ethyl propanoate'\n  shelfward compare testdata/demo/lure-4.yaml --html routes.html",
 		RunE:    func(c *cobra.Command, args []string) error { return o.run(c.Context(), args[0]) },
 	}
 	o.flags.bind(cmd)
 	cmd.Flags().StringArrayVar(&o.eachFrom, "each-from", nil, "compare the first route from each of these starts (repeatable)")
+	cmd.Flags().StringVar(&o.html, "html", "", "write the comparison with a plot as an HTML page to this file")
 	return cmd
 }
 
@@ -39,6 +42,12 @@ func (o *compareOptions) run(ctx context.Context, text string) error {
 	table, err := o.table(ctx, j)
 	if err != nil {
 		return err
+	}
+	if o.html != "" && len(table.Rows) > 0 {
+		err := writeWhole(o.html, func(f *os.File) error { return table.HTML(f, o.app.headerLines(j), j.room.Hazards.ShortCaution()) })
+		if err != nil {
+			return err
+		}
 	}
 	if o.app.JSON {
 		if err := printJSON(o.app.Out, table); err != nil {

@@ -257,10 +257,17 @@ func (o *routesOptions) run(ctx context.Context, text string) error {
 
 // header prints what was read, and that the shelf is invented where it is.
 func (app *App) header(j *job) {
-	fmt.Fprintln(app.Out, j.echo())
-	if j.room.Invented {
-		fmt.Fprintln(app.Out, "shelf: the built-in example; its amounts, places and prices are INVENTED")
+	for _, line := range app.headerLines(j) {
+		fmt.Fprintln(app.Out, line)
 	}
+}
+
+func (app *App) headerLines(j *job) []string {
+	lines := []string{j.echo()}
+	if j.room.Invented {
+		lines = append(lines, "shelf: the built-in example; its amounts, places and prices are INVENTED")
+	}
+	return lines
 }
 
 // emptyPlan is the object of a search that had no target to begin with.
