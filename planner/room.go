@@ -71,14 +71,14 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 
 // World is the room as route planning sees it.
 func (r *Room) World() *route.World {
-	return &route.World{Book: r.Book, Transforms: r.Book.Transforms, Materials: r.stock, Shelf: r.Shelf.Molecules(),
+	return &route.World{Book: r.Book, Transforms: r.Book.Transforms, Materials: r.stock, Shelf: r.Shelf.Sample(), ShelfItems: r.Shelf.Structures(),
 		Gravity: r.Hazards.Gravity, Scale: r.scale, Name: r.Name, Declined: r.declined, Write: smiles.Write, Read: smiles.Read}
 }
 
 // declined says whether a route may not pass through m. What stands on the shelf is a reagent charged,
 // not an intermediate isolated.
 func (r *Room) declined(m *molecule.Molecule) bool {
-	return len(r.Shelf.Find(m)) == 0 && r.Restricted.Intermediate(m).Declined()
+	return !r.Shelf.Has(m) && r.Restricted.Intermediate(m).Declined()
 }
 
 // Desk is the room as the route sheet sees it.
@@ -130,6 +130,14 @@ func (s *stock) Molecule(m *molecule.Molecule) route.Material {
 	}
 	return mat
 }
+
+// OtherMarks finds a structure on the shelf that is m but for stereo marks.
+func (s *stock) OtherMarks(m *molecule.Molecule) *molecule.Molecule {
+	return s.room.Shelf.OtherMarks(m)
+}
+
+// CarbonPrice asks the whole shelf.
+func (s *stock) CarbonPrice() (float64, bool, int) { return s.room.Shelf.CarbonPrice() }
 
 // Named describes a reagent or solvent by the name that conditions use.
 func (s *stock) Named(name string) (route.Material, bool) {

@@ -22,7 +22,8 @@ type World struct {
 	Book       Book
 	Transforms []*reactions.Transform // all that Book holds; used for bounds, words to avoid and counts
 	Materials  Materials
-	Shelf      []*molecule.Molecule                     // what stands on the shelf; used for the order of the work only
+	Shelf      []*molecule.Molecule                     // stand for the shelf: all of a small one, a sample of a large one; used for the order of the work only
+	ShelfItems int                                      // structures on the shelf
 	Gravity    func(hazard string) int                  // place of a GHS code in the order of gravity, 0 the gravest
 	Name       func(*molecule.Molecule) string          // "" if none is known
 	Declined   func(*molecule.Molecule) bool            // restricted intermediates; nil: none
@@ -40,9 +41,8 @@ type chemistry struct {
 	by            RankBy
 	filter        *filter
 	from          []*molecule.Molecule
-	flatShelf     map[molecule.Key]*molecule.Molecule // shelf items by their key without stereo marks
-	floor         float64                             // no step weighs less
-	carbonPrice   float64                             // least price of one mol of carbon, for Cost
+	floor         float64 // no step weighs less
+	carbonPrice   float64 // least price of one mol of carbon, for Cost
 	oneEnantiomer bool
 	scale         *Scale // nil: the size of the batch plays no part
 	guesser       *guesser
@@ -65,18 +65,12 @@ type judgedSteps struct {
 
 func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, scale *Scale) *chemistry {
 	c := emptyChemistry(w, by, f, from, scale)
-	c.flatShelf = map[molecule.Key]*molecule.Molecule{}
 	c.guesser = newGuesser(w.Shelf, from)
 	c.guesser.lookAhead(w.Book, w.Shelf, from, false)
-	for _, m := range w.Shelf {
-		if k := flatKey(m); c.flatShelf[k] == nil || !marked(m) {
-			c.flatShelf[k] = m
-		}
-	}
 	return c
 }
 
-// emptyChemistry is a graph without a shelf by flat key and without a guesser.
+// emptyChemistry is a graph without a guesser.
 func emptyChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, scale *Scale) *chemistry {
 	c := &chemistry{world: w, by: by, filter: f, from: from, scale: scale, molecules: map[search.Key]*molecule.Molecule{}, options: map[search.Key][][]option{},
 		expanded: map[search.Key]search.Expansion{}, materials: map[search.Key]*Material{}, refused: map[search.Key]bool{}}
@@ -378,16 +372,20 @@ func (c *chemistry) Bound(k search.Key, _ uint8) (int, float64) {
 	return 1, c.floor
 }
 
-// cheapestCarbon is the least price of one mol of carbon among the materials at hand.
+// cheapestCarbon is a price that no mol of carbon among the materials at hand undercuts.
 func (c *chemistry) cheapestCarbon() float64 {
-	least := math.Inf(1)
-	for _, list := range [][]*molecule.Molecule{c.world.Shelf, c.from} {
-		for _, m := range list {
-			if n := m.Formula().Count[carbon]; n > 0 {
-				mat := c.world.Materials.Molecule(m)
-				price, _ := mat.Price()
-				least = min(least, price/float64(n))
-			}
+	least, priced, unpriced := c.world.Materials.CarbonPrice()
+	if !priced {
+		least = math.Inf(1)
+	}
+	if unpriced > 0 {
+		least = min(least, unknownPrice/float64(unpriced))
+	}
+	for _, m := range c.from {
+		if n := m.Formula().Count[carbon]; n > 0 {
+			mat := c.world.Materials.Molecule(m)
+			price, _ := mat.Price()
+			least = min(least, price/float64(n))
 		}
 	}
 	if math.IsInf(least, 1) {

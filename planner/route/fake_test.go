@@ -44,7 +44,7 @@ func (f *fakeBook) makes(id, product string, yield float64, reactants ...string)
 
 // world makes a world of the fake book and a shelf.
 func (f *fakeBook) world(b *bottles) *World {
-	w := &World{Book: f, Materials: b, Shelf: b.list, Gravity: testGravity,
+	w := &World{Book: f, Materials: b, Shelf: b.list, ShelfItems: len(b.list), Gravity: testGravity,
 		Name: func(*molecule.Molecule) string { return "" }, Write: smiles.Write, Read: smiles.Read}
 	seen := map[string]bool{}
 	for _, list := range f.steps {

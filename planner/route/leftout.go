@@ -153,7 +153,7 @@ const (
 // It returns the number of routes looked at. What it opened is kept for the search with the wishes.
 func (c *chemistry) countLeftOut(ctx context.Context, root search.Key, o search.Options) (of int, err error) {
 	free := emptyChemistry(c.world, c.by, &filter{world: c.world}, c.from, c.scale)
-	free.flatShelf, free.guesser, free.oneEnantiomer, free.judged = c.flatShelf, c.guesser, c.oneEnantiomer, c.judged
+	free.guesser, free.oneEnantiomer, free.judged = c.guesser, c.oneEnantiomer, c.judged
 	free.enter(c.molecule(root))
 	for _, m := range c.from {
 		free.enter(m)

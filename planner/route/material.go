@@ -62,6 +62,12 @@ type Materials interface {
 	// Molecule describes a molecule that a step consumes. OnShelf is true only if the shelf holds it
 	// (salts and tautomers seen through). A molecule that is known nowhere gets its computed mass.
 	Molecule(m *molecule.Molecule) Material
+	// OtherMarks returns the structure of a shelf item that is m but for stereo marks (salts and
+	// tautomers seen through), one without marks if there is one; nil if there is none.
+	OtherMarks(m *molecule.Molecule) *molecule.Molecule
+	// CarbonPrice returns the least price of one mol of carbon in any item of the shelf with a price
+	// (priced is false if there is none), and the most carbon atoms in an item without (0: none).
+	CarbonPrice() (perMol float64, priced bool, unpricedCarbon int)
 	// Named describes a reagent or solvent by the name that conditions use; ok is false if no list
 	// knows the name.
 	Named(name string) (mat Material, ok bool)

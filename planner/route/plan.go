@@ -139,7 +139,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	}
 	p.WouldOpen = c.openings(found.Openings)
 	p.fillSearch(found)
-	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), len(w.Shelf)
+	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), w.ShelfItems
 	p.order(o.Count)
 	c.waysOut(p, root)
 	p.finish(found.Exhausted && len(p.Routes) == len(found.Routes))

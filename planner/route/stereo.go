@@ -36,7 +36,7 @@ func meets(f, m *molecule.Molecule) (ok, racemic bool) {
 
 // otherMarks looks for a shelf item that meets m with other marks.
 func (c *chemistry) otherMarks(m *molecule.Molecule) (Material, bool) {
-	f := c.flatShelf[flatKey(m)]
+	f := c.world.Materials.OtherMarks(m)
 	if f == nil {
 		return Material{}, false
 	}

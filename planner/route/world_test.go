@@ -54,6 +54,31 @@ func (b *bottles) Molecule(m *molecule.Molecule) Material {
 	return Computed(m, smiles.Write(m))
 }
 
+func (b *bottles) OtherMarks(m *molecule.Molecule) (found *molecule.Molecule) {
+	for _, x := range b.list {
+		if flatKey(x) == flatKey(m) && (found == nil || !marked(x)) {
+			found = x
+		}
+	}
+	return found
+}
+
+func (b *bottles) CarbonPrice() (least float64, priced bool, unpriced int) {
+	for _, m := range b.list {
+		n := int(m.Formula().Count[carbon])
+		if n == 0 {
+			continue
+		}
+		mat := b.Molecule(m)
+		if price, known := mat.Price(); !known {
+			unpriced = max(unpriced, n)
+		} else if !priced || price/float64(n) < least {
+			least, priced = price/float64(n), true
+		}
+	}
+	return least, priced, unpriced
+}
+
 func (b *bottles) Named(name string) (Material, bool) {
 	mat, ok := b.byName[strings.ToLower(name)]
 	return mat, ok
@@ -73,7 +98,7 @@ func worldWith(t testing.TB, b *bottles) *World {
 	if err != nil {
 		t.Logf("rules: %.300s", err.Error())
 	}
-	return &World{Book: rulesBook, Transforms: rulesBook.Transforms, Materials: b, Shelf: b.list,
+	return &World{Book: rulesBook, Transforms: rulesBook.Transforms, Materials: b, Shelf: b.list, ShelfItems: len(b.list),
 		Gravity: testGravity, Name: func(*molecule.Molecule) string { return "" }, Write: smiles.Write, Read: smiles.Read}
 }
 

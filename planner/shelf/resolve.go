@@ -101,7 +101,7 @@ func readSMILES(text string) (Reading, error) {
 }
 
 func (s *Shelf) readCAS(number string) (Reading, error) {
-	for _, it := range s.cas[number] {
+	for _, it := range s.numbered(number) {
 		if it.Molecule != nil {
 			return Reading{Molecule: it.Molecule, As: "CAS number", Item: it}, nil
 		}
@@ -113,7 +113,7 @@ func (s *Shelf) readCAS(number string) (Reading, error) {
 }
 
 func (s *Shelf) readName(name string) (Reading, error) {
-	for _, it := range s.names[strings.ToLower(name)] {
+	for _, it := range s.named(name) {
 		if it.Molecule != nil {
 			return Reading{Molecule: it.Molecule, As: "name", Item: it}, nil
 		}

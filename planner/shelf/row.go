@@ -22,6 +22,8 @@ type row struct {
 	line  int
 	value map[string]string
 	extra []Field
+
+	molecule *molecule.Molecule // of a record that was drawn; nil otherwise
 }
 
 func (r row) errorf(format string, args ...any) *rules.Error {

@@ -90,7 +90,7 @@ func TestBuiltin(t *testing.T) {
 func table(t testing.TB, name, text string) []string {
 	t.Helper()
 	k := *known(t)
-	k.builtin = builtin(t).Items()
+	k.builtin = builtin(t).items
 	rep := Read(name, []byte(text), &k)
 	var lines []string
 	for _, row := range rep.Rows {
@@ -225,7 +225,7 @@ func TestForms(t *testing.T) {
 		"hydrogen,10 L,,,,,",
 	}, "\n")
 	k := *known(t)
-	k.builtin = builtin(t).Items()
+	k.builtin = builtin(t).items
 	items := Read("s.csv", []byte(rows), &k).Items()
 	if len(items) != 5 {
 		t.Fatalf("%d items", len(items))
@@ -399,7 +399,7 @@ func TestBuiltinForms(t *testing.T) {
 		t.Fatal(err)
 	}
 	lines := strings.Split(string(data), "\n")
-	for _, it := range builtin(t).Items() {
+	for _, it := range builtin(t).items {
 		if line := lines[it.Line-1]; strings.Contains(line, "smiles:") && !strings.Contains(line, "strength:") && it.Strength.Known() {
 			t.Errorf("%s became %v", it.Name, it.Strength)
 		}

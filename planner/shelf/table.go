@@ -2,7 +2,9 @@ package shelf
 
 import (
 	"bytes"
+	"errors"
 	"fmt"
+	"io"
 	"slices"
 	"strings"
 	"unicode/utf8"
@@ -28,6 +30,10 @@ func decodeText(data []byte) string {
 	if utf8.Valid(data) {
 		return string(data)
 	}
+	return windows1252Text(data)
+}
+
+func windows1252Text(data []byte) string {
 	var sb strings.Builder
 	for _, b := range data {
 		if b >= 0x80 && b < 0xa0 {
@@ -46,22 +52,77 @@ type record struct {
 	broken bool // a quotation mark is never closed
 }
 
-// splitRecords reads delimited text with quoted fields ("" stands for one quotation mark). A quote
-// that is never closed ends with its line, so that one mistake does not swallow the rest of the file.
-func splitRecords(text string, delimiter byte) []record {
-	var records []record
-	line := 1
-	for pos := 0; pos < len(text) && len(records) <= maxRows; {
-		r := record{line: line}
+// tableReader reads delimited text with quoted fields ("" stands for one quotation mark) record by record, so
+// that a file of any length takes little memory. A quote that is never closed ends with its line, so that
+// one mistake does not swallow the rest of the file.
+type tableReader struct {
+	path      string
+	in        io.Reader
+	text      string // what has been read and not yet handed out, from pos
+	pos       int
+	ended     bool // in holds no more
+	heldCR    bool // the last byte read was a carriage return, which may be half of a line end
+	line      int  // of pos, from 1
+	delimiter byte
+	names     []string // the columns
+}
+
+// Sizes of the window on the text: how much is read at once, and how much must stand in it before a
+// record is read, so that every quoted field a record may hold is seen whole.
+const (
+	chunkBytes = 4 << 20
+	aheadBytes = maxQuoted*maxColumns + 1<<12
+)
+
+// fill reads on until at least most bytes lie ahead or the text ends. Line ends become "\n".
+func (t *tableReader) fill(most int) error {
+	for !t.ended && len(t.text)-t.pos < most {
+		chunk := make([]byte, chunkBytes)
+		n, err := io.ReadFull(t.in, chunk)
+		if err == io.EOF || err == io.ErrUnexpectedEOF {
+			t.ended = true
+		} else if err != nil {
+			return err
+		}
+		piece := string(chunk[:n])
+		if t.heldCR {
+			piece = "\r" + piece
+		}
+		if t.heldCR = !t.ended && strings.HasSuffix(piece, "\r"); t.heldCR {
+			piece = piece[:len(piece)-1]
+		}
+		if strings.Contains(piece, "\r") {
+			piece = strings.ReplaceAll(strings.ReplaceAll(piece, "\r\n", "\n"), "\r", "\n")
+		}
+		t.text, t.pos = t.text[t.pos:]+piece, 0
+	}
+	return nil
+}
+
+// record returns the next record that is not blank, false at the end.
+func (t *tableReader) record() (record, bool, error) {
+	for need := aheadBytes; ; {
+		if err := t.fill(need); err != nil {
+			return record{}, false, err
+		}
+		if t.pos >= len(t.text) {
+			return record{}, false, nil
+		}
+		r := record{line: t.line}
 		var next int
-		r.fields, next, r.broken = readRecord(text, pos, delimiter)
-		line += strings.Count(text[pos:next], "\n")
-		pos = next
+		r.fields, next, r.broken = readRecord(t.text, t.pos, t.delimiter)
+		if !t.ended && len(t.text)-next < maxQuoted { // the record may go on behind the window
+			if need = 2 * (len(t.text) - t.pos); need > maxFileBytes {
+				return record{}, false, &rules.Error{Path: t.path, Line: t.line, Text: fmt.Sprintf("a row is longer than %d MB", maxFileBytes>>20)}
+			}
+			continue
+		}
+		t.line += strings.Count(t.text[t.pos:next], "\n")
+		t.pos, need = next, aheadBytes
 		if len(r.fields) > 1 || strings.TrimSpace(r.fields[0]) != "" {
-			records = append(records, r)
+			return r, true, nil
 		}
 	}
-	return records
 }
 
 // readRecord reads the fields of the record at pos and returns where the next one begins.
@@ -154,42 +215,87 @@ func columnName(header string) string {
 	return name
 }
 
-// csvRows reads a table into rows; mistakes of the table itself are errors of their lines.
-func csvRows(path string, text string) ([]row, rules.ErrorList) {
-	text = strings.ReplaceAll(strings.ReplaceAll(text, "\r\n", "\n"), "\r", "\n")
-	header := strings.TrimLeft(text, "\n \t")
-	records := splitRecords(text, delimiterOf(header))
-	if len(records) == 0 {
-		return nil, rules.ErrorList{{Path: path, Text: "the file is empty: expected a header such as name,cas,smiles,amount"}}
+// newTable reads the header of a table. Mistakes are *rules.Error.
+func newTable(path string, in io.Reader) (*tableReader, error) {
+	t := &tableReader{path: path, in: in, line: 1}
+	if err := t.fill(aheadBytes); err != nil {
+		return nil, err
 	}
-	var errs rules.ErrorList
-	names, err := headerNames(path, records[0])
+	t.delimiter = delimiterOf(strings.TrimLeft(t.text, "\n \t"))
+	head, ok, err := t.record()
 	if err != nil {
-		return nil, rules.ErrorList{err}
+		return nil, err
 	}
-	if len(records) > maxRows {
-		return nil, rules.ErrorList{{Path: path, Text: fmt.Sprintf("more than %d rows", maxRows)}}
+	if !ok {
+		return nil, &rules.Error{Path: path, Text: "the file is empty: expected a header such as name,cas,smiles,amount"}
 	}
-	var rows []row
-	for _, rec := range records[1:] {
-		r := row{path: path, line: rec.line, value: map[string]string{}}
-		if rec.broken {
-			errs = append(errs, r.errorf("a quotation mark is never closed"))
-			continue
+	names, bad := headerNames(path, head)
+	if bad != nil {
+		return nil, bad
+	}
+	t.names = names
+	return t, nil
+}
+
+// next returns the next row, the mistake found in its place, or io.EOF.
+func (t *tableReader) next() (row, *rules.Error, error) {
+	for {
+		rec, ok, err := t.record()
+		if err != nil {
+			return row{}, nil, err
 		}
-		if len(rec.fields) > len(names) && strings.Join(rec.fields[len(names):], "") != "" {
-			errs = append(errs, r.errorf("%d fields under %d columns: a text with the delimiter in it needs quotation marks", len(rec.fields), len(names)))
-			continue
+		if !ok {
+			return row{}, nil, io.EOF
+		}
+		r := row{path: t.path, line: rec.line, value: map[string]string{}}
+		if rec.broken {
+			return r, r.errorf("a quotation mark is never closed"), nil
+		}
+		if len(rec.fields) > len(t.names) && strings.Join(rec.fields[len(t.names):], "") != "" {
+			return r, r.errorf("%d fields under %d columns: a text with the delimiter in it needs quotation marks", len(rec.fields), len(t.names)), nil
 		}
 		if strings.TrimSpace(strings.Join(rec.fields, "")) == "" {
 			continue
 		}
-		for i, field := range rec.fields[:min(len(rec.fields), len(names))] {
-			r.set(names[i], field)
+		for i, field := range rec.fields[:min(len(rec.fields), len(t.names))] {
+			r.set(t.names[i], field)
 		}
-		rows = append(rows, r)
+		return r, nil, nil
+	}
+}
+
+// csvRows reads a table into rows; mistakes of the table itself are errors of their lines.
+func csvRows(path string, text string) ([]row, rules.ErrorList) {
+	t, err := newTable(path, strings.NewReader(text))
+	var rows []row
+	var errs rules.ErrorList
+	for err == nil {
+		var r row
+		var bad *rules.Error
+		if r, bad, err = t.next(); err != nil {
+			break
+		}
+		if bad != nil {
+			errs = append(errs, bad)
+			continue
+		}
+		if rows = append(rows, r); len(rows) >= maxRows {
+			return nil, rules.ErrorList{{Path: path, Text: fmt.Sprintf("more than %d rows: `shelfward shelf import` makes an index of it", maxRows)}}
+		}
+	}
+	if err != io.EOF {
+		return nil, rules.ErrorList{asError(path, err)}
 	}
 	return rows, errs
+}
+
+// asError gives any error the place of a file.
+func asError(path string, err error) *rules.Error {
+	var e *rules.Error
+	if errors.As(err, &e) {
+		return e
+	}
+	return &rules.Error{Path: path, Text: err.Error()}
 }
 
 // set stores a field under its column, or keeps it as one the program does not know.

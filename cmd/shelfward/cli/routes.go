@@ -165,7 +165,7 @@ func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan,
 		return nil, err
 	}
 	for _, m := range o.From { // a start counts as in stock, but not as standing on the shelf
-		if v := j.room.Restricted.Intermediate(m); v.Declined() && len(j.room.Shelf.Find(m)) == 0 {
+		if v := j.room.Restricted.Intermediate(m); v.Declined() && !j.room.Shelf.Has(m) {
 			return nil, app.declined(v)
 		}
 	}
@@ -173,6 +173,9 @@ func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan,
 		return app.planFromAny(ctx, j, o)
 	}
 	p, err := route.Make(ctx, j.room.World(), j.target, o)
+	if err == nil {
+		err = j.room.Shelf.Err()
+	}
 	if err != nil {
 		return nil, failWith(exitUsage, err)
 	}

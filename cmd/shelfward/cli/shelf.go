@@ -12,12 +12,12 @@ import (
 )
 
 func newShelfCommand(app *App) *cobra.Command {
-	cmd := &cobra.Command{Use: "shelf", Short: "what is on the shelf: list, find, check", Args: cobra.ArbitraryArgs, RunE: subcommandOnly,
+	cmd := &cobra.Command{Use: "shelf", Short: "what is on the shelf: list, find, check, import", Args: cobra.ArbitraryArgs, RunE: subcommandOnly,
 		Long:    "The shelf: the built-in example, or the files given with --shelf.\n" + exitHelp,
 		Example: "  shelfward shelf list\n  shelfward shelf check testdata/demo/lure-shelf.csv"}
 	cmd.AddCommand(&cobra.Command{
 		Use: "list", Short: "list the shelf", Args: exactly(0),
-		Long: "Lists every item with structure, amount, strength, hazards and place.\n" + exitHelp, Example: "  shelfward shelf list\n  shelfward shelf list --shelf testdata/demo/lure-shelf.csv",
+		Long: "Lists every item with structure, amount, strength, hazards and place; of a shelf with an index the first 1,000.\n" + exitHelp, Example: "  shelfward shelf list\n  shelfward shelf list --shelf testdata/demo/lure-shelf.csv",
 		RunE: func(*cobra.Command, []string) error { return app.shelfList("") },
 	}, &cobra.Command{
 		Use: "find WORD", Short: "find items by name, synonym, CAS number or structure", Args: exactly(1),
@@ -27,7 +27,7 @@ func newShelfCommand(app *App) *cobra.Command {
 		Use: "check FILE", Short: "check a shelf file row by row", Args: exactly(1),
 		Long: "Says for each row how it was read, and for each mistake the line and what was expected.\n" + exitHelp, Example: "  shelfward shelf check testdata/demo/lure-shelf.csv",
 		RunE: func(_ *cobra.Command, args []string) error { return app.shelfCheck(args[0]) },
-	})
+	}, newShelfImportCommand(app))
 	return cmd
 }
 
@@ -36,16 +36,26 @@ func (app *App) shelfList(word string) error {
 	if err != nil {
 		return err
 	}
-	items := room.Shelf.Items()
+	items, more := listed(room.Shelf)
 	if word != "" {
-		items = findItems(room.Shelf, word)
-		if len(items) == 0 {
+		items, more = findItems(room.Shelf, word), 0
+		if len(items) == 0 && room.Shelf.Err() == nil {
 			reason := fmt.Sprintf("nothing on the shelf is called %q", word)
 			return app.nothing(shelfJSON(nil, reason), reason)
 		}
 	}
+	if err := room.Shelf.Err(); err != nil {
+		return failWith(exitUsage, err)
+	}
+	var doubts []string
+	if more > 0 {
+		doubts = append(doubts, fmt.Sprintf("the first %d of %d items; `shelfward shelf find` looks for one", len(items), len(items)+more))
+	}
 	if app.JSON {
-		return printJSON(app.Out, shelfJSON(items))
+		return printJSON(app.Out, shelfJSON(items, doubts...))
+	}
+	for _, d := range doubts {
+		fmt.Fprintln(app.Out, d)
 	}
 	if room.Invented {
 		fmt.Fprintln(app.Out, "shelf: the built-in example; its amounts, places and prices are INVENTED")
@@ -62,6 +72,18 @@ func (app *App) shelfList(word string) error {
 	return nil
 }
 
+// maxListed bounds what is listed of a shelf that may hold millions of items.
+const maxListed = 1000
+
+// listed gives the items to list, and how many more there are.
+func listed(s *shelf.Shelf) (items []*shelf.Item, more int) {
+	s.Each(func(it *shelf.Item) bool {
+		items = append(items, it)
+		return !s.Indexed() || len(items) < maxListed
+	})
+	return items, s.Len() - len(items)
+}
+
 // findItems looks up by exact name, number or structure, else by part of the name.
 func findItems(s *shelf.Shelf, word string) []*shelf.Item {
 	if items := s.FindText(word); len(items) > 0 {
@@ -72,13 +94,7 @@ func findItems(s *shelf.Shelf, word string) []*shelf.Item {
 			return items
 		}
 	}
-	var out []*shelf.Item
-	for _, it := range s.Items() {
-		if strings.Contains(strings.ToLower(it.Name+" "+strings.Join(it.Synonyms, " ")), strings.ToLower(word)) {
-			out = append(out, it)
-		}
-	}
-	return out
+	return s.Containing(word, maxListed)
 }
 
 func strengthText(it *shelf.Item) string {
@@ -111,6 +127,9 @@ func shelfJSON(items []*shelf.Item, doubts ...string) map[string]any {
 }
 
 func (app *App) shelfCheck(path string) error {
+	if shelf.IsIndex(path) {
+		return app.indexCheck(path)
+	}
 	if err := checkFile(path); err != nil {
 		return err
 	}
@@ -142,6 +161,38 @@ func (app *App) shelfCheck(path string) error {
 		return failWith(exitUsage, errSilent)
 	}
 	return nil
+}
+
+// indexCheck reads every row of an index again and looks its molecule up.
+func (app *App) indexCheck(path string) error {
+	app.Shelves = []string{path}
+	room, err := app.room(nil, "")
+	if err != nil {
+		return err
+	}
+	rows, structures, lost := 0, 0, 0
+	room.Shelf.Each(func(it *shelf.Item) bool {
+		rows++
+		if it.Molecule != nil {
+			structures++
+			if !room.Shelf.Has(it.Molecule) {
+				lost++
+			}
+		}
+		return true
+	})
+	err = room.Shelf.Err()
+	if err == nil && (lost > 0 || rows != room.Shelf.Len()) {
+		err = fmt.Errorf("%s: %d of %d rows cannot be found: make it again with `shelfward shelf import`", path, max(lost, room.Shelf.Len()-rows), room.Shelf.Len())
+	}
+	if err != nil {
+		return failWith(exitUsage, err)
+	}
+	if app.JSON {
+		return printJSON(app.Out, map[string]any{"rows": []any{}, "count": rows, "structures": structures, "doubts": []string{}})
+	}
+	_, err = fmt.Fprintf(app.Out, "%s: an index of %d rows, %d with a structure; every row can be read and every structure found\n", path, rows, structures)
+	return err
 }
 
 // readingText says how a row was read.

@@ -63,6 +63,9 @@ func (app *App) room(caseShelves []string, dir string) (*planner.Room, error) {
 		if dir != "" && !filepath.IsAbs(file) {
 			file = filepath.Join(dir, file)
 		}
+		if shelf.IsIndex(file) {
+			continue // of any size
+		}
 		if err := checkFile(file); err != nil {
 			return nil, err
 		}
