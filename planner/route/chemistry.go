@@ -140,7 +140,9 @@ func (c *chemistry) material(k search.Key) *Material {
 	}
 	m := c.molecule(k)
 	found := c.world.Materials.Molecule(m)
-	if !found.OnShelf {
+	if held, ok := c.filter.held(c.world, m); ok {
+		found = held
+	} else if !found.OnShelf {
 		if other, ok := c.otherMarks(m); ok {
 			found = other
 		}
@@ -194,7 +196,7 @@ func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion,
 			x.LeftOut++
 			continue
 		}
-		if fatal(s) {
+		if fatal(s) || c.filter.bans(s) {
 			continue
 		}
 		if why := c.filter.step(s); why != nil {

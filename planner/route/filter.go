@@ -20,6 +20,10 @@ type filter struct {
 	bench     *Bench
 	onlyShelf bool
 	ceiling   *ceiling // nil: any hazard
+
+	not        []Banned
+	notThrough []*molecule.Molecule
+	inHand     []InHand
 }
 
 // restrains says whether any wish can keep a way out.
@@ -70,7 +74,7 @@ func (f *filter) Avoided() []string {
 
 // newFilter understands the wishes of o. A word that means nothing is an error that offers near ones.
 func newFilter(w *World, o *Options) (*filter, error) {
-	f := &filter{world: w, bench: o.Bench, onlyShelf: o.OnlyShelf}
+	f := &filter{world: w, bench: o.Bench, onlyShelf: o.OnlyShelf, not: o.Not, notThrough: o.NotThrough, inHand: o.InHand}
 	known := w.words()
 	for _, word := range o.Avoid {
 		a, err := w.understand(word, known)
@@ -159,6 +163,39 @@ func (w *World) words() vocabulary {
 	sort.Strings(v.all)
 	v.needs = slices.Sorted(maps.Keys(needs))
 	return v
+}
+
+// bans says whether a step is one of those that may not be used, or takes what no route may pass through.
+func (f *filter) bans(s *reactions.Step) bool {
+	for _, m := range f.notThrough {
+		if takes(s, m) {
+			return true
+		}
+	}
+	return slices.ContainsFunc(f.not, func(b Banned) bool {
+		return b.Product.Key() == s.Product.Key() && len(b.Reactants) == len(s.Reactants) &&
+			!slices.ContainsFunc(b.Reactants, func(m *molecule.Molecule) bool { return !takes(s, m) })
+	})
+}
+
+func takes(s *reactions.Step, m *molecule.Molecule) bool {
+	return slices.ContainsFunc(s.Reactants, func(r reactions.Reactant) bool {
+		ok, _ := meets(m, r.Molecule)
+		return ok
+	})
+}
+
+// held describes m if it is in hand besides the shelf. It costs nothing; its hazards count no more than
+// those of any intermediate.
+func (f *filter) held(w *World, m *molecule.Molecule) (Material, bool) {
+	for _, h := range f.inHand {
+		if h.Molecule.SeenThroughKey() == m.SeenThroughKey() {
+			mat := Computed(h.Molecule, w.Write(h.Molecule))
+			mat.Name, mat.OnShelf, mat.PricePerMol, mat.StockMol, mat.HazardsKnown = w.Name(h.Molecule), true, 0, h.Mol, true
+			return mat, true
+		}
+	}
+	return Material{}, false
 }
 
 // step says what keeps a step out whatever its conditions; nil if nothing does.

@@ -18,9 +18,12 @@ type Options struct {
 	RankBy        RankBy
 	Avoid         []string
 	Bench         *Bench
-	OnlyShelf     bool   // reagents and solvents too must stand on the shelf
-	MaxHazard     string // nothing graver is charged: an H code or a class 0-4; "": anything
-	AtScale       bool   // what practice avoids at scale costs more
+	OnlyShelf     bool                 // reagents and solvents too must stand on the shelf
+	MaxHazard     string               // nothing graver is charged: an H code or a class 0-4; "": anything
+	AtScale       bool                 // what practice avoids at scale costs more
+	Not           []Banned             // steps that may not be used
+	NotThrough    []*molecule.Molecule // molecules that no step may consume
+	InHand        []InHand             // what is there besides the shelf, and costs nothing
 	OneEnantiomer bool
 	MakeAnyway    bool
 	MakeMol       float64 // mol of target wanted, 0: not said; figures are then for DefaultMakeG

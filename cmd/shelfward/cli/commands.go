@@ -10,6 +10,7 @@ func (app *App) commands() []*cobra.Command {
 		newRoutesCommand(app),
 		newCompareCommand(app),
 		newSheetCommand(app),
+		newMendCommand(app),
 		newJudgeCommand(app),
 		newConvertCommand(app),
 		newShelfCommand(app),
