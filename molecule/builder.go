@@ -19,6 +19,10 @@ const OrderAromatic uint8 = 5
 // small enough that a hostile text costs milliseconds.
 const MaxAtoms = 2000
 
+// MaxRings is the most independent rings that Build accepts (C60 has 31); it bounds the search for the
+// smallest ones as MaxAtoms does the rest.
+const MaxRings = 1000
+
 // Builder collects atoms and bonds; Build perceives and freezes them. Not safe for concurrent use.
 type Builder struct {
 	Atoms       []Atom
@@ -88,6 +92,9 @@ func (p *perceiver) build(b *Builder) (*Molecule, error) {
 		bonds:   append(make([]Bond, 0, len(b.Bonds)), b.Bonds...),
 		leftOut: uint16(min(b.LeftOut, MaxAtoms)),
 	}
+	if rings := len(b.Bonds) - len(b.Atoms); rings > MaxRings {
+		return nil, &Error{-1, -1, fmt.Sprintf("the structure has %d rings; at most %d are accepted", rings, MaxRings)}
+	}
 	p.m = m
 	if err := p.connect(); err != nil {
 		return nil, err
@@ -98,7 +105,9 @@ func (p *perceiver) build(b *Builder) (*Molecule, error) {
 	}
 	p.perceiveAromaticity()
 	if len(b.Centers)+len(b.DoubleBonds) > 0 {
-		p.keepStereo(b)
+		if err := p.keepStereo(b); err != nil {
+			return nil, err
+		}
 	}
 	return m, nil
 }

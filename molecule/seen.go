@@ -175,7 +175,7 @@ func (m *Molecule) sharedKey(shared *mobile) Key {
 	}
 	m.addGroups(g, shared)
 	// Marks that meant something in one tautomer may say nothing now.
-	keepCenter, keepAxis := p.worker.DropVoid(g)
+	keepCenter, keepAxis, _ := p.worker.DropVoid(g) // where too many depend on each other all stay
 	if keepCenter != nil || keepAxis != nil {
 		g.Centers, g.Axes = filter(g.Centers, keepCenter), filter(g.Axes, keepAxis)
 	}

@@ -1,6 +1,8 @@
 package molecule
 
 import (
+	"fmt"
+
 	"shelfward/molecule/canon"
 )
 
@@ -10,7 +12,7 @@ const smallestStereoRing = 8
 
 // keepStereo copies the marks of b that can mean something to the molecule, then drops those that
 // say nothing.
-func (p *perceiver) keepStereo(b *Builder) {
+func (p *perceiver) keepStereo(b *Builder) error {
 	m := p.m
 	for _, c := range b.Centers {
 		if p.legalCenter(&c) {
@@ -23,12 +25,15 @@ func (p *perceiver) keepStereo(b *Builder) {
 		}
 	}
 	if !m.HasStereo() {
-		return
+		return nil
 	}
 	p.fillGraph(m, true)
-	keepCenter, keepAxis := p.worker.DropVoid(&p.graph)
+	keepCenter, keepAxis, ok := p.worker.DropVoid(&p.graph)
+	if !ok {
+		return &Error{-1, -1, fmt.Sprintf("more than %d stereo marks depend on each other", canon.MaxDependent)}
+	}
 	if keepCenter == nil && keepAxis == nil {
-		return
+		return nil
 	}
 	centers := m.centers[:0]
 	for i, c := range m.centers {
@@ -44,6 +49,7 @@ func (p *perceiver) keepStereo(b *Builder) {
 		}
 	}
 	m.doubleBonds = marks
+	return nil
 }
 
 // legalCenter says that the ligands of c are what its atom has and that the atom can hold a

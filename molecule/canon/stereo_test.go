@@ -178,7 +178,7 @@ func renumbered(g *Graph, edges [][2]int32, r *rand.Rand) *Graph {
 // pruned is g without void marks.
 func pruned(w *Worker, g *Graph) *Graph {
 	h := *g
-	centers, axes := w.DropVoid(g)
+	centers, axes, _ := w.DropVoid(g)
 	if centers == nil && axes == nil {
 		return &h
 	}
@@ -304,7 +304,7 @@ func TestVoidAgainstForce(t *testing.T) {
 	kinds := map[string]int{}
 	for round := range 1500 {
 		g, edges := rings(r)
-		keep, _ := w.DropVoid(g)
+		keep, _, _ := w.DropVoid(g)
 		p := pruned(&w, g)
 		var gone []int
 		for i, k := range keep {

@@ -10,17 +10,24 @@ import "slices"
 // stays as a whole. Three like centres in a ring, two up and one down, show why: turning over either of
 // the two gives the same graph, but with both left open nothing would be known of them. Classes are
 // judged one after the other in canonical order, each against what is left.
-func (w *Worker) DropVoid(g *Graph) (keepCenter, keepAxis []bool) {
+//
+// It is not ok when more than MaxDependent marks of one component depend on each other: labelling
+// such a ring of like centers costs a refinement per center and atom.
+func (w *Worker) DropVoid(g *Graph) (keepCenter, keepAxis []bool, ok bool) {
 	h := *g
 	centerAt, axisAt := w.dropTwins(g, &h)
 	v := voidWork{w: w, left: maxWork / max(1, len(g.Colours)*len(g.Colours))}
 	v.marks = marks{h, centerAt, axisAt, nil, nil}
-	if v.suspects() {
+	suspects, most := v.suspects()
+	if most > MaxDependent {
+		return nil, nil, false
+	}
+	if suspects {
 		for v.dropClass() {
 		}
 	}
 	if len(v.graph.Centers) == len(g.Centers) && len(v.graph.Axes) == len(g.Axes) {
-		return nil, nil
+		return nil, nil, true
 	}
 	keepCenter, keepAxis = make([]bool, len(g.Centers)), make([]bool, len(g.Axes))
 	for _, i := range v.centerAt {
@@ -29,8 +36,12 @@ func (w *Worker) DropVoid(g *Graph) (keepCenter, keepAxis []bool) {
 	for _, i := range v.axisAt {
 		keepAxis[i] = true
 	}
-	return keepCenter, keepAxis
+	return keepCenter, keepAxis, true
 }
+
+// MaxDependent is the most marks of one component that only each other may tell apart: far above any
+// molecule on a shelf.
+const MaxDependent = 150
 
 // dropTwins leaves out marks with two twin ligands and tells where the rest stood in g.
 func (w *Worker) dropTwins(g, h *Graph) (centerAt, axisAt []int) {
@@ -65,9 +76,9 @@ func (w *Worker) dropTwins(g, h *Graph) (centerAt, axisAt []int) {
 }
 
 // maxWork bounds the labellings spent on one graph, times the square of its atoms, which is what one
-// costs in a ring of equal centres: thousands of labellings for any molecule on a shelf, about a
+// costs in a ring of equal centres: hundreds of labellings for any molecule on a shelf, a fraction of a
 // second for a hostile one (a ring of hundreds of centres), whose void marks then stay.
-const maxWork = 2_000_000
+const maxWork = 700_000
 
 // marks is a graph with what is known of each of its marks.
 type marks struct {
@@ -150,12 +161,12 @@ type voidWork struct {
 }
 
 // suspects finds the marks with ligands which the flat refinement cannot tell apart, and reports
-// whether there are any. The others always count: the sign relative to the flat order is an
+// whether there are any and how many at most in one component. The others always count: the sign relative to the flat order is an
 // invariant of the atom, and flipping one changes how often it occurs.
-func (v *voidWork) suspects() bool {
+func (v *voidWork) suspects() (found bool, most int) {
 	h := &v.graph
 	if len(h.Centers)+len(h.Axes) == 0 {
-		return false
+		return false, 0
 	}
 	flat := *h
 	flat.Centers, flat.Axes = nil, nil
@@ -165,17 +176,22 @@ func (v *voidWork) suspects() bool {
 	p := &v.w.search.level[0]
 	r.start(p)
 	r.refine(p)
-	any := false
+	inPiece := make([]int, v.w.split(h))
+	note := func(sign uint64, a int32) bool {
+		if sign == 0 {
+			inPiece[v.w.piece[a]]++
+		}
+		return sign == 0
+	}
 	v.center, v.axis = make([]bool, len(h.Centers)), make([]bool, len(h.Axes))
 	for i := range h.Centers {
-		v.center[i] = h.Centers[i].sign(p.cell) == 0
-		any = any || v.center[i]
+		v.center[i] = note(h.Centers[i].sign(p.cell), h.Centers[i].Atom)
 	}
 	for i := range h.Axes {
-		v.axis[i] = h.Axes[i].sign(p.cell) == 0
-		any = any || v.axis[i]
+		v.axis[i] = note(h.Axes[i].sign(p.cell), h.Axes[i].A)
 	}
-	return any
+	most = slices.Max(inPiece)
+	return most > 0, most
 }
 
 // dropClass drops the first void class of marks in canonical order and reports whether there was one.
