@@ -6,6 +6,7 @@ import (
 	"io"
 	"math"
 	"os"
+	"strconv"
 	"strings"
 	"testing"
 
@@ -292,7 +293,28 @@ func TestReadReaction(t *testing.T) {
 	}
 }
 
+// addCorpus adds what earlier fuzzing found worth keeping: one input a line, its strings quoted as in Go.
+func addCorpus(f *testing.F) {
+	f.Helper()
+	data, err := os.ReadFile("testdata/corpus.txt")
+	if err != nil {
+		f.Fatal(err)
+	}
+	for line := range strings.Lines(string(data)) {
+		var values []any
+		for _, quoted := range strings.Split(strings.TrimSuffix(line, "\n"), "\t") {
+			text, err := strconv.Unquote(quoted)
+			if err != nil {
+				f.Fatalf("%s: %v", quoted, err)
+			}
+			values = append(values, text)
+		}
+		f.Add(values...)
+	}
+}
+
 func FuzzReader(f *testing.F) {
+	addCorpus(f)
 	f.Add(methane + "$$$$\n" + star("I", 1))
 	f.Add(star("H", 6) + "> <A>\nb\n$$$$\n")
 	f.Add("$RXN\n\n\n\n  1  1\n$MOL\n" + methane)

@@ -3,7 +3,9 @@ package pattern
 import (
 	"fmt"
 	"math/rand"
+	"os"
 	"slices"
+	"strconv"
 	"strings"
 	"testing"
 
@@ -220,7 +222,28 @@ func TestNothingPerCall(t *testing.T) {
 	}
 }
 
+// addCorpus adds what earlier fuzzing found worth keeping: one input a line, its strings quoted as in Go.
+func addCorpus(f *testing.F) {
+	f.Helper()
+	data, err := os.ReadFile("testdata/corpus.txt")
+	if err != nil {
+		f.Fatal(err)
+	}
+	for line := range strings.Lines(string(data)) {
+		var values []any
+		for _, quoted := range strings.Split(strings.TrimSuffix(line, "\n"), "\t") {
+			text, err := strconv.Unquote(quoted)
+			if err != nil {
+				f.Fatalf("%s: %v", quoted, err)
+			}
+			values = append(values, text)
+		}
+		f.Add(values...)
+	}
+}
+
 func FuzzCompile(f *testing.F) {
+	addCorpus(f)
 	c, _ := sixty(f)
 	for _, p := range c.Patterns {
 		f.Add(p.Pattern, "1", "sp3")

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math/rand"
 	"os"
+	"strconv"
 	"strings"
 	"testing"
 )
@@ -133,7 +134,28 @@ func TestReference(t *testing.T) {
 	}
 }
 
+// addCorpus adds what earlier fuzzing found worth keeping: one input a line, its strings quoted as in Go.
+func addCorpus(f *testing.F) {
+	f.Helper()
+	data, err := os.ReadFile("testdata/corpus.txt")
+	if err != nil {
+		f.Fatal(err)
+	}
+	for line := range strings.Lines(string(data)) {
+		var values []any
+		for _, quoted := range strings.Split(strings.TrimSuffix(line, "\n"), "\t") {
+			text, err := strconv.Unquote(quoted)
+			if err != nil {
+				f.Fatalf("%s: %v", quoted, err)
+			}
+			values = append(values, text)
+		}
+		f.Add(values...)
+	}
+}
+
 func FuzzRead(f *testing.F) {
+	addCorpus(f)
 	for _, s := range []string{"C", "c1ccccc1", "F/C=C/F", "C[C@H](N)C(=O)O", "[13CH3:7][Na+]", "C1CC%(12)C1C%12", "[nH]1cccc1", "*1cccc*1",
 		"[H]/N=C/C", "C[S@+]1([O-])CC1", "O=C1C=CC(=O)C=C1.[Cl-]", "C/C=C/C=CC(/[H])=C/C", "[N@]1(C)CC1C", "c1ccc2c(c1)[se]c1ccccc12", "B\n0"} {
 		f.Add(s)
