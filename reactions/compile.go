@@ -51,9 +51,8 @@ func (l *loader) loadFile(name string) {
 	shown := rules.PathOf(l.fsys, name)
 	for i := range file.Transforms {
 		src := &file.Transforms[i]
-		t, err := l.compile(src, file.Family, shown)
-		if err != nil {
-			l.addErr(src.Place, err)
+		t := l.compile(src, file.Family, shown)
+		if t == nil {
 			continue
 		}
 		if first := l.byID[t.ID]; first != nil {
@@ -79,18 +78,29 @@ func (l *loader) addErr(p rules.Place, err error) {
 	}
 }
 
-// compile makes one transform; the stages stand in order, each needs the ones before.
-func (l *loader) compile(src *sourceTransform, family, file string) (*Transform, error) {
+// compile makes one transform, or nil after noting its mistakes. The stages stand in order: without its parts
+// there is nothing more to say of a transform; of the stages after them each tells its own mistakes.
+func (l *loader) compile(src *sourceTransform, family, file string) *Transform {
 	t := &Transform{ID: src.ID.Value, Name: src.Name.Value, Family: family, Summary: src.Summary, Everywhere: src.Everywhere, Once: src.Once,
 		Dangers: src.Dangers, Source: src.Source.source(), File: src.Place.String(), closes: src.Closes}
-	for _, stage := range []func(*Transform, *sourceTransform, string) error{
-		l.compileSides, l.compileParts, l.compileChoices, l.compilePreferences, l.compileConditions, l.compileExamples,
-	} {
+	before := len(l.errs)
+	for _, stage := range []func(*Transform, *sourceTransform, string) error{l.compileSides, l.compileParts} {
 		if err := stage(t, src, file); err != nil {
-			return nil, err
+			l.addErr(src.Place, err)
+			return nil
 		}
 	}
-	return t, nil
+	for _, stage := range []func(*Transform, *sourceTransform, string) error{
+		l.compileChoices, l.compilePreferences, l.compileConditions, l.compileExamples,
+	} {
+		if err := stage(t, src, file); err != nil {
+			l.addErr(src.Place, err)
+		}
+	}
+	if len(l.errs) > before {
+		return nil
+	}
+	return t
 }
 
 func texts(ts []rules.Text) []string {
@@ -409,6 +419,20 @@ func (l *loader) compilePreferences(t *Transform, src *sourceTransform, file str
 	}
 	t.findSignificant()
 	return nil
+}
+
+// mostListed is how many words a message names where none is near.
+const mostListed = 12
+
+// expectedOne names the word that was probably meant, or else what could stand there.
+func expectedOne(word string, known []string) string {
+	if near := didYouMean(word, known); near != "" {
+		return near
+	}
+	if len(known) > mostListed {
+		return "; expected one of " + strings.Join(known[:mostListed], ", ") + fmt.Sprintf(" or %d more", len(known)-mostListed)
+	}
+	return "; expected one of " + strings.Join(known, ", ")
 }
 
 func didYouMean(word string, known []string) string {

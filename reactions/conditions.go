@@ -22,10 +22,7 @@ func (l *loader) compileConditions(t *Transform, src *sourceTransform, file stri
 	seen := map[string]bool{}
 	for i := range src.Conditions {
 		sc := &src.Conditions[i]
-		c, err := l.conditions(t, sc, file)
-		if err != nil {
-			return err
-		}
+		c := l.conditions(t, sc, file)
 		if seen[c.ID] {
 			return sc.ID.Errorf(file, "two condition sets have the id %q", c.ID)
 		}
@@ -35,7 +32,8 @@ func (l *loader) compileConditions(t *Transform, src *sourceTransform, file stri
 	return nil
 }
 
-func (l *loader) conditions(t *Transform, sc *sourceConditions, file string) (*Conditions, error) {
+// conditions makes one condition set; its mistakes are noted, each at its place.
+func (l *loader) conditions(t *Transform, sc *sourceConditions, file string) *Conditions {
 	c := &Conditions{ID: sc.ID.Value, Media: texts(sc.Media), OnlyWith: texts(sc.OnlyWith), NeverWith: texts(sc.NeverWith),
 		Order: sc.Order, Temperature: [2]float64{sc.Temperature.Low, sc.Temperature.High}, Hours: [2]float64{sc.Time.Low, sc.Time.High},
 		Origin: sc.Origin, TriedAt: sc.TriedAt, Workup: sc.Workup, WorkupMaterials: sc.WorkupMaterials, Watch: sc.Watch,
@@ -43,7 +41,7 @@ func (l *loader) conditions(t *Transform, sc *sourceConditions, file string) (*C
 		Source: sc.Source.source(), File: sc.Place.String()}
 	for _, m := range sc.Media {
 		if !l.media.has(m.Value) {
-			return nil, m.Errorf(file, "no medium %q in rules/tolerance.yaml%s", m.Value, didYouMean(m.Value, l.media.ids()))
+			l.errs = append(l.errs, m.Errorf(file, "no medium %q in rules/tolerance.yaml%s", m.Value, expectedOne(m.Value, l.media.ids())))
 		}
 	}
 	if c.Source.Text == "" {
@@ -53,19 +51,23 @@ func (l *loader) conditions(t *Transform, sc *sourceConditions, file string) (*C
 		c.Origin = "estimated"
 	}
 	if !origins[c.Origin] {
-		return nil, sc.Place.Errorf("origin is published, near, class, estimated or own, not %q", c.Origin)
+		l.errs = append(l.errs, sc.Place.Errorf("origin is published, near, class, estimated or own, not %q", c.Origin))
 	}
 	if len(sc.Yield) != 3 || sc.Yield[0] > sc.Yield[1] || sc.Yield[1] > sc.Yield[2] || sc.Yield[2] > 100 || sc.Yield[0] <= 0 {
-		return nil, sc.Place.Errorf("yield lists low, usual and high in %%")
+		l.errs = append(l.errs, sc.Place.Errorf("yield lists low, usual and high in %%, rising, as in [60, 75, 85]"))
+	} else {
+		c.Yield = Range{sc.Yield[0] / 100, sc.Yield[1] / 100, sc.Yield[2] / 100}
 	}
-	c.Yield = Range{sc.Yield[0] / 100, sc.Yield[1] / 100, sc.Yield[2] / 100}
 	for _, r := range sc.Reagents {
 		c.Reagents = append(c.Reagents, Charge{r.Name.Value, r.Equiv, r.Optional, r.Like, r.Note})
 	}
 	for _, s := range sc.Solvents {
 		c.Solvents = append(c.Solvents, Solvent{s.Name.Value, s.MLPerG})
 	}
-	return c, l.conditionAmounts(t, c, sc, file)
+	if err := l.conditionAmounts(t, c, sc, file); err != nil {
+		l.addErr(sc.Place, err)
+	}
+	return c
 }
 
 func (l *loader) conditionAmounts(t *Transform, c *Conditions, sc *sourceConditions, file string) error {

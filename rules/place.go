@@ -64,7 +64,7 @@ func (t Text) ErrorAt(path string, offset int, format string, args ...any) *Erro
 	return e
 }
 
-// Error is one mistake in a file. Its message is one line, "path:line: what".
+// Error is one mistake in a file. Its message is one line, "path:line:column: what".
 type Error struct {
 	Path         string
 	Line, Column int    // from 1; 0 unknown
@@ -74,8 +74,11 @@ type Error struct {
 
 // Error returns the one-line message.
 func (e *Error) Error() string {
-	if e.Line == 0 {
+	switch {
+	case e.Line == 0:
 		return e.Path + ": " + e.Text
+	case e.Column > 0:
+		return fmt.Sprintf("%s:%d:%d: %s", e.Path, e.Line, e.Column, e.Text)
 	}
 	return fmt.Sprintf("%s:%d: %s", e.Path, e.Line, e.Text)
 }
