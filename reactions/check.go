@@ -9,6 +9,7 @@ import (
 
 	"shelfward/molecule"
 	"shelfward/molecule/smiles"
+	"shelfward/reactions/reagent"
 )
 
 // Fault is one thing wrong with a transform, found by running its examples.
@@ -27,6 +28,33 @@ func (b *Book) Check(t *Transform) []Fault {
 	for _, ex := range t.Rejects {
 		if text := b.checkReject(t, ex); text != "" {
 			faults = append(faults, Fault{ex.File, t.ID, text})
+		}
+	}
+	return faults
+}
+
+// CheckNames asks that every reagent, solvent and material of a work-up stands in the table.
+func (t *Transform) CheckNames(table *reagent.Table) []Fault {
+	var faults []Fault
+	ask := func(c *Conditions, what, name string) {
+		if _, ok := table.Named(name); ok {
+			return
+		}
+		near := ""
+		if list := table.Near(name, 3); len(list) > 0 {
+			near = "; near: " + strings.Join(list, ", ")
+		}
+		faults = append(faults, Fault{c.File, t.ID, fmt.Sprintf("no %s %q in rules/reagents.yaml%s", what, name, near)})
+	}
+	for _, c := range t.Conditions {
+		for _, r := range c.Reagents {
+			ask(c, "reagent", r.Name)
+		}
+		for _, s := range c.Solvents {
+			ask(c, "solvent", s.Name)
+		}
+		for _, name := range c.WorkupMaterials {
+			ask(c, "material of a work-up", name)
 		}
 	}
 	return faults

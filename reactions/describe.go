@@ -13,6 +13,8 @@ func Describe(w io.Writer, t *Transform) {
 		fmt.Fprintln(w, t.Summary)
 	}
 	fmt.Fprintf(w, "  from  %s\n  to    %s\n", strings.Join(t.Reactants, "  +  "), strings.Join(t.Products, "  +  "))
+	left, right := t.drawing()
+	fmt.Fprintf(w, "\n  %s\n    ->  %s\n\n", left, right)
 	if t.Everywhere {
 		fmt.Fprintln(w, "  all like sites react at once")
 	}
@@ -60,10 +62,26 @@ func describeConditions(w io.Writer, c *Conditions) {
 	fmt.Fprintf(w, "\n  %s: %s\n", c.ID, strings.Join(with, "; "))
 	fmt.Fprintf(w, "    %.0f to %.0f C, %.3g to %.3g h, yield %.0f-%.0f-%.0f %% (%s)\n", c.Temperature[0], c.Temperature[1],
 		c.Hours[0], c.Hours[1], 100*c.Yield.Low, 100*c.Yield.Usual, 100*c.Yield.High, c.Origin)
+	if len(c.Media) > 0 {
+		fmt.Fprintf(w, "    the other groups meet: %s\n", strings.Join(c.Media, ", "))
+	}
 	if c.Order != "" {
 		fmt.Fprintln(w, "    "+c.Order)
+	}
+	for _, s := range c.Workup {
+		fmt.Fprintln(w, "    then: "+s)
+	}
+	if c.Watch != "" {
+		fmt.Fprintln(w, "    watch: "+c.Watch)
+	}
+	if len(c.Needs) > 0 {
+		fmt.Fprintln(w, "    needs: "+strings.Join(c.Needs, ", "))
 	}
 	for _, s := range c.Cautions {
 		fmt.Fprintln(w, "    caution: "+s)
 	}
+	if c.TriedAt != "" {
+		fmt.Fprintln(w, "    tried at: "+c.TriedAt)
+	}
+	fmt.Fprintf(w, "    source: %s\n", c.Source)
 }

@@ -1,6 +1,7 @@
 package rules
 
 import (
+	"fmt"
 	"strings"
 	"testing"
 
@@ -65,32 +66,32 @@ items:
 // TestDecodeErrors gives for each text every line of the message, at its place.
 func TestDecodeErrors(t *testing.T) {
 	cases := []struct{ name, text, want string }{
-		{"unknown key, near", "titel: x", `s.yaml:1: unknown key "titel" (did you mean "title"?)`},
-		{"unknown key, far", "zebra: x", `s.yaml:1: unknown key "zebra" (known here: title, items)`},
-		{"twice", "title: x\ntitle: y", `s.yaml:2: the key "title" is written twice (first on line 1)`},
-		{"number for text", "title: 7", `s.yaml:1: expected a text, found the number 7: put it in single quotes`},
-		{"word for text", "title: true", `s.yaml:1: expected a text, found the word true: put it in single quotes`},
-		{"list for text", "title: [CH3]", `s.yaml:1: expected a text, found a list; a text that begins with a bracket needs quotes: put it in single quotes`},
-		{"nothing for text", "title:", `s.yaml:1: expected a text, found nothing: write one, or '' for none`},
-		{"list for Text", "items:\n - id: [C:1]", `s.yaml:2: expected a text, found a list; a text that begins with a bracket needs quotes: put it in single quotes`},
-		{"text for list", "items:\n - {id: x, names: abc}", `s.yaml:2: expected a list, found the text "abc": write [abc]`},
-		{"text for number", "items:\n - {id: x, weight: heavy}", `s.yaml:2: expected a number, found the text "heavy"`},
-		{"quoted number", "items:\n - {id: x, weight: '1.5'}", `s.yaml:2: expected a number, found the text "1.5": leave out the quotes`},
-		{"decimal comma", "items:\n - id: x\n   weight: 1,5", `s.yaml:3: expected a number, found the text "1,5" (write a decimal point)`},
-		{"not a number", "items:\n - {id: x, weight: .nan}", `s.yaml:2: expected a number, found the number .nan`},
-		{"fraction for count", "items:\n - {id: x, count: 1.5}", `s.yaml:2: expected a whole number, found the number 1.5`},
-		{"missing", "items:\n - {weight: 1}", `s.yaml:2: the key "id" is missing: write id: aldol`},
-		{"short array", "items:\n - {id: x, span: [1]}", `s.yaml:2: expected a list of 2, found a list of 1`},
-		{"alias", "title: &a x\nitems: *a", `s.yaml:2: an alias (*a) is not accepted here: write the value out`},
-		{"merge", "title: x\n<<: {a: b}", `s.yaml:2: merge keys (<<) are not accepted: write the keys out`},
-		{"not a mapping", "- x", `s.yaml:1: expected keys and values (title, items), found a list of 1`},
+		{"unknown key, near", "titel: x", `s.yaml:1:1: unknown key "titel" (did you mean "title"?)`},
+		{"unknown key, far", "zebra: x", `s.yaml:1:1: unknown key "zebra" (known here: title, items)`},
+		{"twice", "title: x\ntitle: y", `s.yaml:2:1: the key "title" is written twice (first on line 1)`},
+		{"number for text", "title: 7", `s.yaml:1:8: expected a text, found the number 7: put it in single quotes`},
+		{"word for text", "title: true", `s.yaml:1:8: expected a text, found the word true: put it in single quotes`},
+		{"list for text", "title: [CH3]", `s.yaml:1:8: expected a text, found a list; a text that begins with a bracket needs quotes: put it in single quotes`},
+		{"nothing for text", "title:", `s.yaml:1:7: expected a text, found nothing: write one, or '' for none`},
+		{"list for Text", "items:\n - id: [C:1]", `s.yaml:2:8: expected a text, found a list; a text that begins with a bracket needs quotes: put it in single quotes`},
+		{"text for list", "items:\n - {id: x, names: abc}", `s.yaml:2:19: expected a list, found the text "abc": write [abc]`},
+		{"text for number", "items:\n - {id: x, weight: heavy}", `s.yaml:2:20: expected a number, found the text "heavy"`},
+		{"quoted number", "items:\n - {id: x, weight: '1.5'}", `s.yaml:2:20: expected a number, found the text "1.5": leave out the quotes`},
+		{"decimal comma", "items:\n - id: x\n   weight: 1,5", `s.yaml:3:12: expected a number, found the text "1,5" (write a decimal point)`},
+		{"not a number", "items:\n - {id: x, weight: .nan}", `s.yaml:2:20: expected a number, found the number .nan`},
+		{"fraction for count", "items:\n - {id: x, count: 1.5}", `s.yaml:2:19: expected a whole number, found the number 1.5`},
+		{"missing", "items:\n - {weight: 1}", `s.yaml:2:4: the key "id" is missing: write id: aldol`},
+		{"short array", "items:\n - {id: x, span: [1]}", `s.yaml:2:18: expected a list of 2, found a list of 1`},
+		{"alias", "title: &a x\nitems: *a", `s.yaml:2:8: an alias (*a) is not accepted here: write the value out`},
+		{"merge", "title: x\n<<: {a: b}", `s.yaml:2:1: merge keys (<<) are not accepted: write the keys out`},
+		{"not a mapping", "- x", `s.yaml:1:1: expected keys and values (title, items), found a list of 1`},
 		{"two documents", "title: x\n---\ntitle: y", `s.yaml:2: a second document begins here; a file holds one`},
 		{"all of them, by place", "items:\n - {weight: x}\n - {id: 3}\ntitel: x", strings.Join([]string{
-			`s.yaml:2: the key "id" is missing: write id: aldol`,
-			`s.yaml:2: expected a number, found the text "x"`,
-			`s.yaml:3: expected a text, found the number 3: put it in single quotes`,
-			`s.yaml:4: unknown key "titel" (did you mean "title"?)`}, "\n")},
-		{"capped", "items: [" + strings.Repeat("{id: 1},", 12) + "]", strings.Repeat("s.yaml:1: expected a text, found the number 1: put it in single quotes\n", 10) + "... and 2 more"},
+			`s.yaml:2:4: the key "id" is missing: write id: aldol`,
+			`s.yaml:2:13: expected a number, found the text "x"`,
+			`s.yaml:3:9: expected a text, found the number 3: put it in single quotes`,
+			`s.yaml:4:1: unknown key "titel" (did you mean "title"?)`}, "\n")},
+		{"capped", "items: [" + strings.Repeat("{id: 1},", 12) + "]", repeated("s.yaml:1:%d: expected a text, found the number 1: put it in single quotes\n", 14, 8, 10) + "... and 2 more"},
 	}
 	for _, c := range cases {
 		t.Run(c.name, func(t *testing.T) {
@@ -103,6 +104,15 @@ func TestDecodeErrors(t *testing.T) {
 			}
 		})
 	}
+}
+
+// repeated writes the line count times, its column growing by step.
+func repeated(line string, column, step, count int) string {
+	var sb strings.Builder
+	for i := range count {
+		fmt.Fprintf(&sb, line, column+i*step)
+	}
+	return sb.String()
 }
 
 func TestDecodeSyntaxError(t *testing.T) {
@@ -135,7 +145,7 @@ func TestDecodeUnmarshaler(t *testing.T) {
 		t.Errorf("got %+v, %v", v, err)
 	}
 	err := Decode("s.yaml", []byte("a: auto\nb: [3]"), &v)
-	if want := "s.yaml:2: expected a number, found a list of 1"; err == nil || err.Error() != want {
+	if want := "s.yaml:2:4: expected a number, found a list of 1"; err == nil || err.Error() != want {
 		t.Errorf("got %v, want %s", err, want)
 	}
 }
@@ -153,7 +163,7 @@ func TestErrorAt(t *testing.T) {
 		t.Fatal(err)
 	}
 	e := s.Items[0].ID.ErrorAt("s.yaml", 1, "'[' is never closed")
-	if e.Error() != "s.yaml:2: '[' is never closed" || e.Column != 10 || e.Detail != "    C[C\n     ^" {
+	if e.Error() != "s.yaml:2:10: '[' is never closed" || e.Column != 10 || e.Detail != "    C[C\n     ^" {
 		t.Errorf("got %q, column %d, detail\n%s", e, e.Column, e.Detail)
 	}
 }

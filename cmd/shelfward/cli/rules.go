@@ -12,6 +12,7 @@ import (
 	"shelfward/molecule/restricted"
 	"shelfward/molecule/smiles"
 	"shelfward/reactions"
+	"shelfward/reactions/reagent"
 	"shelfward/rules"
 )
 
@@ -32,9 +33,10 @@ func newRulesCommand(app *App) *cobra.Command {
 		Example: "  shelfward rules show fischer-esterification",
 		RunE:    func(_ *cobra.Command, args []string) error { return app.rulesShow(args[0]) },
 	}, &cobra.Command{
-		Use: "check [ID]...", Short: "check the rules and run their examples in both directions",
-		Long:    "Prints one line for each mistake: file, line, transform and what was expected. With --rules and without an ID only\nthe transforms of those folders are run.\n" + exitHelp,
-		Example: "  shelfward rules check\n  shelfward rules check --rules my-rules",
+		Use: "check [ID|FOLDER]...", Short: "check the rules and run their examples in both directions",
+		Long: "Prints one line for each mistake: file, line, column, transform and what was expected. A FOLDER counts as one given\n" +
+			"with --rules; with a folder and without an ID only the transforms of the folders are run.\n" + exitHelp,
+		Example: "  shelfward rules check\n  shelfward rules check my-rules\n  shelfward rules check my-silylation --rules my-rules",
 		RunE:    func(c *cobra.Command, args []string) error { return app.rulesCheck(c.Context(), args) },
 	}, newRulesNewCommand(app))
 	return cmd
@@ -124,7 +126,8 @@ func nearIDs(b *reactions.Book, id string) string {
 	return "; near: " + strings.Join(near, ", ")
 }
 
-func (app *App) rulesCheck(ctx context.Context, ids []string) error {
+func (app *App) rulesCheck(ctx context.Context, args []string) error {
+	ids := app.takeFolders(args)
 	fsys, err := app.ruleFiles()
 	if err != nil {
 		return err
@@ -134,8 +137,12 @@ func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 	if loadErr != nil && !errors.As(loadErr, &list) {
 		return failWith(exitUsage, loadErr)
 	}
+	blanks, err := app.blanks()
+	if err != nil {
+		return err
+	}
 	for _, id := range ids {
-		if b.Transform(id) == nil && len(list) == 0 {
+		if b.Transform(id) == nil && len(list)+len(blanks) == 0 {
 			return usageError("no transform %q%s", id, nearIDs(b, id))
 		}
 	}
@@ -143,10 +150,11 @@ func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 	if err != nil {
 		return failWith(exitUsage, err)
 	}
-	var lines []string
-	for _, e := range list {
-		lines = append(lines, e.Error())
+	table, err := reagent.Load(fsys)
+	if err != nil {
+		return failWith(exitUsage, err)
 	}
+	lines := checkLines(list, blanks)
 	checked, read := 0, 0
 	for _, t := range b.Transforms {
 		if !app.wantsCheck(t, ids) {
@@ -159,7 +167,7 @@ func (app *App) rulesCheck(ctx context.Context, ids []string) error {
 		if t.HasReadSource() {
 			read++
 		}
-		for _, f := range append(b.Check(t), refusedExamples(screen, t)...) {
+		for _, f := range slices.Concat(t.CheckNames(table), b.Check(t), refusedExamples(screen, t)) {
 			lines = append(lines, f.String())
 		}
 	}

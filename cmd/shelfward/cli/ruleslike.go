@@ -7,6 +7,7 @@ import (
 	"text/tabwriter"
 
 	"shelfward/planner"
+	"shelfward/planner/shelf"
 	"shelfward/reactions/sketch"
 )
 
@@ -75,13 +76,17 @@ func (o *rulesNewOptions) writeLike(id, path, dir string) error {
 	return err
 }
 
+// itemsTried bounds how much of a large shelf a new transform is tried on.
+const itemsTried = 5000
+
 func shelfItems(room *planner.Room) []sketch.Item {
 	var items []sketch.Item
-	for _, it := range room.Shelf.Items() {
+	room.Shelf.Each(func(it *shelf.Item) bool {
 		if it.Molecule != nil {
 			items = append(items, sketch.Item{Name: it.Name, Molecule: it.Molecule.FreeForm()})
 		}
-	}
+		return len(items) < itemsTried
+	})
 	return items
 }
 

@@ -114,7 +114,7 @@ func skeleton(id, parts, reagents, example string) string {
 
 // transformSkeleton holds every key that most transforms need; FILL marks what the chemist writes.
 const transformSkeleton = `# Fill in every FILL; rules/transforms.md says what each key means.
-family: FILL
+family: FILL                              # what it belongs to, as in rules/transforms: esters
 transforms:
 - id: NEW-ID
   name: FILL                              # what a chemist says aloud
@@ -123,7 +123,7 @@ PARTS
   - id: usual
     reagents:                             # names from rules/reagents.yaml
 REAGENTS
-    solvents: [{name: FILL, ml_per_g: 5}]
+    solvents: [{name: FILL, ml_per_g: 5}] # mL per g of the first reactant part; [] for none
     media: [FILL]                         # a medium of rules/tolerance.yaml: what the other groups meet
     order: 'FILL'                         # what is added to what, and how fast
     temperature: [20, 25]                 # C
@@ -131,17 +131,17 @@ REAGENTS
     yield: [50, 70, 85]                   # %: low, usual, high
     origin: estimated                     # published, near, class or estimated
     tried_at: 'FILL'                      # the scale it was done at
-    workup: ['FILL']
+    workup: ['FILL']                      # one sentence for each operation
     workup_materials: []
     watch: 'FILL'                         # how to see that it is over
-    cautions: ['FILL']
+    cautions: ['FILL']                    # what can hurt; [] for nothing beyond the usual
     needs: ['fume hood']
     uses: []                              # reagents consumed, balanced, as SMILES; check says what is missing
     gives: []                             # what they become
     source: {text: 'FILL', provenance: FILL}   # memory, common practice, own; read with address: https://...
-  source: {text: 'FILL', provenance: FILL}
+  source: {text: 'FILL', provenance: FILL}     # of the transform; 'textbook chemistry, no single source', memory
   examples:
   - EXAMPLE
   rejects:
-  - {from: ['FILL', 'FILL'], to: 'FILL', why: 'FILL'}
+  - {from: ['FILL', 'FILL'], to: 'FILL', why: 'FILL'}   # what must not come out, as SMILES, and why
 `
