@@ -27,7 +27,7 @@ func TestSourceNote(t *testing.T) {
 
 func TestSourceNoteErrors(t *testing.T) {
 	for _, c := range []struct{ yaml, want string }{
-		{"{text: a page, provenance: read}", "x.yaml:1: a source that was read needs its address"},
+		{"{text: a page, provenance: read}", "x.yaml:1:9: a source that was read needs its address"},
 		{"{text: a page, provenance: memory, address: 'https://example.org'}", "an address goes with provenance: read"},
 		{"{text: a page, provenance: read, address: 'example.org/x'}", "expected https://"},
 		{"{text: a page, provenance: 'https://example.org/x'}", "write provenance: read, address: 'https://example.org/x'"},

@@ -23,7 +23,7 @@ func TestGuideAdds(t *testing.T) {
 	}
 	for _, c := range []struct{ text, want string }{
 		{"controls:\n- {codes: [H225], says: 'Bench 3 only.'}\n", ""},
-		{"controls:\n- {acts: [no-such-act], says: 'x'}\n", `sheet.yaml:2: unknown act "no-such-act"`},
+		{"controls:\n- {acts: [no-such-act], says: 'x'}\n", `sheet.yaml:2:11: unknown act "no-such-act"`},
 		{"holds:\n- {at: noon, says: 'x', otherwise: 'y'}\n", "start, run or end"},
 		{"rinses:\n- {name: xyzzyum}\n", `"xyzzyum" is no reagent`},
 		{"hold:\n- {}\n", "sheet.yaml:1"},

@@ -120,11 +120,11 @@ func TestLoadErrors(t *testing.T) {
 		t.Fatal(err)
 	}
 	for text, want := range map[string]string{
-		"- {name: x, acts: [oxident]}":             `rules/reagents.yaml:2: unknown act "oxident" (did you mean "oxidant"?)`,
+		"- {name: x, acts: [oxident]}":             `rules/reagents.yaml:2:20: unknown act "oxident" (did you mean "oxidant"?)`,
 		"- {name: x, cas: 64-17-6}":                "check digit should be 5",
 		"- {name: x, form: plasma}":                "form is solid, liquid, solution or gas",
 		"- {name: x, strength: strong}":            "expected a strength",
-		"- {name: x}\n- {name: y, also: [X]}":      `rules/reagents.yaml:3: the name "X" stands for x already`,
+		"- {name: x}\n- {name: y, also: [X]}":      `rules/reagents.yaml:3:3: the name "X" stands for x already`,
 		"- {name: x, means: [z]}":                  `x means "z", which is no reagent`,
 		"- {nane: x}":                              `unknown key "nane" (did you mean "name"?)`,
 		"- {name: x, smiles: [Na+]}":               "put it in single quotes",

@@ -6,6 +6,7 @@
 package sketch
 
 import (
+	"errors"
 	"fmt"
 	"strings"
 
@@ -34,8 +35,23 @@ const maxHeavy = 160
 // Read works out the transform of a drawn reaction. Molecules may be salts; agents may stand among the
 // reactants. The error says what keeps the drawing from being a transform.
 func Read(reactants, products []*molecule.Molecule) (*Sketch, error) {
+	s, err := readOnce(free(reactants), products)
+	if !errors.Is(err, errCarbonMissing) {
+		return s, err
+	}
+	for _, m := range free(reactants) { // drawn once, taken twice
+		if twice, againErr := readOnce(append(free(reactants), m), products); againErr == nil {
+			return twice, nil
+		}
+	}
+	return nil, err
+}
+
+// errCarbonMissing says that the product has carbon that no reactant gives.
+var errCarbonMissing = errors.New("draw every reactant that gives carbon (carbon dioxide, methyl iodide, DMF and the like too)")
+
+func readOnce(all, products []*molecule.Molecule) (*Sketch, error) {
 	s := &Sketch{}
-	all := free(reactants)
 	s.Products = free(products)
 	n := 0
 	for _, m := range append(append([]*molecule.Molecule(nil), all...), s.Products...) {
@@ -116,7 +132,7 @@ func (s *Sketch) checkCarbon() error {
 	case len(s.Reactants) == 0:
 		return fmt.Errorf("no reactant gives carbon to the product")
 	case missing > 0:
-		return fmt.Errorf("%d carbon atoms of the product come from none of the reactants drawn: draw every reactant that gives carbon (carbon dioxide, methyl iodide, DMF and the like too)", missing)
+		return fmt.Errorf("%d carbon atoms of the product come from none of the reactants drawn: %w", missing, errCarbonMissing)
 	}
 	return nil
 }
