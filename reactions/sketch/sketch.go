@@ -39,8 +39,8 @@ func Read(reactants, products []*molecule.Molecule) (*Sketch, error) {
 	if !errors.Is(err, errCarbonMissing) {
 		return s, err
 	}
-	for _, m := range free(reactants) { // drawn once, taken twice
-		if twice, againErr := readOnce(append(free(reactants), m), products); againErr == nil {
+	for _, m := range free(reactants) { // drawn once, taken twice, if then no carbon is left over
+		if twice, againErr := readOnce(append(free(reactants), m), products); againErr == nil && twice.usesAllCarbon() {
 			return twice, nil
 		}
 	}
@@ -71,6 +71,20 @@ func readOnce(all, products []*molecule.Molecule) (*Sketch, error) {
 		return nil, err
 	}
 	return s, s.findCore()
+}
+
+// usesAllCarbon says that every carbon of the reactants comes to stand in a product.
+func (s *Sketch) usesAllCarbon() bool {
+	left := 0
+	for _, m := range s.Reactants {
+		left += carbons(m)
+	}
+	for p, q := range s.to {
+		if q >= 0 && s.right.Atom(p).Element == carbon {
+			left--
+		}
+	}
+	return left == 0
 }
 
 // free splits a side into its molecules, each in its free form, as transforms are written.
