@@ -142,11 +142,11 @@ func TestOnlyShelf(t *testing.T) {
 func TestBenchErrors(t *testing.T) {
 	for _, c := range []struct{ text, want string }{
 		{"coldest: 20\nhottest: 10\n", "coldest: 20 C is above hottest: 10 C"},
-		{"largest_flask: big\n", "1: largest_flask: \"big\": a volume such as 2 L"},
-		{"largest_flask: 0 L\n", "1: largest_flask: \"0 L\": a volume above 0"},
-		{"coldest: -20\nlacks: [hydrogenator]\n", "2: lacks: \"hydrogenator\" is nothing that the loaded rules need"},
-		{"needs_approval: [moonlight]\n", "1: needs_approval: \"moonlight\" is nothing"},
-		{"never: [bleech]\n", "1: never: \"bleech\": no reagent"},
+		{"largest_flask: big\n", "1:16: largest_flask: \"big\": a volume such as 2 L"},
+		{"largest_flask: 0 L\n", "1:16: largest_flask: \"0 L\": a volume above 0"},
+		{"coldest: -20\nlacks: [hydrogenator]\n", "2:9: lacks: \"hydrogenator\" is nothing that the loaded rules need"},
+		{"needs_approval: [moonlight]\n", "1:18: needs_approval: \"moonlight\" is nothing"},
+		{"never: [bleech]\n", "1:9: never: \"bleech\": no reagent"},
 		{"lack: [hydrogen]\n", "lacks"},
 	} {
 		path := filepath.Join(t.TempDir(), "bench.yaml")

@@ -70,8 +70,8 @@ func TestScaleRows(t *testing.T) {
 
 func TestScaleErrors(t *testing.T) {
 	for text, want := range map[string]string{
-		"avoided_at_scale:\n- {id: x, says: y, adds: -1, gas: true}\n": "scale.yaml:2: adds: -1",
-		"avoided_at_scale:\n- {id: x, says: y, adds: 1}\n":             "scale.yaml:2: x tests nothing",
+		"avoided_at_scale:\n- {id: x, says: y, adds: -1, gas: true}\n": "scale.yaml:2:3: adds: -1",
+		"avoided_at_scale:\n- {id: x, says: y, adds: 1}\n":             "scale.yaml:2:3: x tests nothing",
 		"avoided_at_scale:\n- {id: x, says: y}\n":                      "adds",
 	} {
 		dir := t.TempDir()
