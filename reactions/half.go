@@ -9,7 +9,8 @@ import (
 
 // otherHalf builds the co-product that makes the reactant symmetrical: the acid that goes with the acyl
 // group of a target to one anhydride, the second carbonyl compound of a symmetrical alkene. Each atom of
-// the missing part takes over what hangs, in the target, on its counterpart in the same reactant part.
+// the missing part takes over what hangs, in the target, on its counterpart in the same reactant part, or in
+// the part that must be the same molecule (the aldehyde of a disproportionation).
 // It returns nil where there is no counterpart or what hangs on it runs back into the pattern.
 func (t *Transform) otherHalf(target *molecule.Molecule, part int, s site) *molecule.Molecule {
 	at := t.laidSlots(s)
@@ -35,7 +36,11 @@ func (t *Transform) otherHalf(target *molecule.Molecule, part int, s site) *mole
 		b.AddBond(index[qb.A], index[qb.B], order)
 	}
 	for q := range pq.query.Atoms {
-		twin := t.script.counterpart(t.script.slotOf[backward][pq.first+q])
+		slot := t.script.slotOf[backward][pq.first+q]
+		twin := t.script.counterpart(slot)
+		if twin < 0 {
+			twin = t.inSamePart(slot)
+		}
 		if twin < 0 || at[twin] < 0 {
 			continue
 		}
@@ -79,6 +84,25 @@ func (s *script) counterpart(slot int) int {
 		}
 	}
 	return -1
+}
+
+// inSamePart returns the slot at the same place of the other reactant part that must be the same molecule, -1 if none.
+func (t *Transform) inSamePart(slot int) int {
+	q := t.script.slots[slot].at[forward]
+	if q < 0 || len(t.same) != 2 {
+		return -1
+	}
+	parts := t.part[forward]
+	mine, other := parts[t.same[0]], parts[t.same[1]]
+	if p := t.script.partOf(forward, q); p == t.same[1] {
+		mine, other = other, mine
+	} else if p != t.same[0] {
+		return -1
+	}
+	if len(mine.query.Atoms) != len(other.query.Atoms) {
+		return -1
+	}
+	return t.script.slotOf[forward][other.first+q-mine.first]
 }
 
 // reactantSurroundings is the element of a reactant query atom and its sorted bonds (order, element).
