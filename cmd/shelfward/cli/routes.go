@@ -22,6 +22,7 @@ type planFlags struct {
 	rankBy        string
 	avoid         []string
 	time          time.Duration
+	timeGiven     func() bool
 	maxExpanded   int
 	oneEnantiomer bool
 	makeAnyway    bool
@@ -39,7 +40,8 @@ func (f *planFlags) bind(cmd *cobra.Command) {
 	fl.IntVar(&f.maxSteps, "max-steps", 8, "steps along the longest run")
 	fl.StringVar(&f.rankBy, "rank-by", "balanced", "balanced, steps, yield, hazard, cost or waste")
 	fl.StringArrayVar(&f.avoid, "avoid", nil, "reagent, solvent, H code, element symbol or transform id to do without (repeatable)")
-	fl.DurationVar(&f.time, "time", 10*time.Second, "search limit; what was found by then is returned and marked")
+	fl.DurationVar(&f.time, "time", 10*time.Second, "search limit; what was found by then is returned and marked (none with --max-expanded, unless given)")
+	f.timeGiven = func() bool { return fl.Changed("time") }
 	fl.IntVar(&f.maxExpanded, "max-expanded", 0, "limit on molecules opened; gives the same bytes every time")
 	fl.BoolVar(&f.oneEnantiomer, "one-enantiomer", false, "ask for absolute configuration")
 	fl.BoolVar(&f.makeAnyway, "make-anyway", false, "plan a target that stands on the shelf")
@@ -79,10 +81,19 @@ func (f *planFlags) check() error {
 	return failWith(exitUsage, err)
 }
 
+// limit is the time of the search. A count of molecules stands for itself: by the clock as well, a busy machine
+// would answer otherwise than an idle one.
+func (f *planFlags) limit() time.Duration {
+	if f.maxExpanded > 0 && !f.timeGiven() {
+		return 0
+	}
+	return f.time
+}
+
 // options turns flags and case file into planning options.
 func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OnlyShelf: f.onlyShelf, MaxHazard: f.maxHazard, AtScale: f.atScale, OneEnantiomer: f.oneEnantiomer,
-		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.time, MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
+		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.limit(), MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
 	for _, word := range f.avoid {
 		if err := checkCode(j, "--avoid", word); err != nil {
 			return o, err
