@@ -75,15 +75,14 @@ func (l *loader) compileArene(a *arene, src *sourceArene, file string) {
 
 // rate returns the score of ring atom a for an electrophile with the reaction constant rho; ortho is added
 // for each substituent beside it (a bulky electrophile).
-func (ar *arene) rate(s *pattern.Subject, a int32, rho, ortho float64) (float64, []string) {
+func (ar *arene) rate(s *pattern.Subject, a int32, rho, ortho float64) float64 {
 	total := 0.0
 	for _, p := range ar.position {
-		if atClassOne(p.query, s, a) {
+		if p.query.FitsAt(s, []int32{a}) {
 			total = p.base
 			break
 		}
 	}
-	var why []string
 	for _, place := range ringPlaces(s, a) {
 		sub := ar.substituentAt(s, place.substituent)
 		if sub == nil {
@@ -101,27 +100,17 @@ func (ar *arene) rate(s *pattern.Subject, a int32, rho, ortho float64) (float64,
 		case 3:
 			total += rho * sub.para
 		}
-		if sub.name != "" {
-			why = append(why, [4]string{"", "ortho to ", "meta to ", "para to "}[place.distance]+sub.name)
-		}
 	}
-	return total, why
+	return total
 }
 
 func (ar *arene) substituentAt(s *pattern.Subject, a int32) *areneSubstituent {
 	for i := range ar.substituent {
-		if atClassOne(ar.substituent[i].query, s, a) {
+		if ar.substituent[i].query.FitsAt(s, []int32{a}) {
 			return &ar.substituent[i]
 		}
 	}
 	return nil
-}
-
-func atClassOne(q *pattern.Query, s *pattern.Subject, a int32) bool {
-	one, found := q.AtomOfClass(1), false
-	q.EachWithin(s, func(qa, atom int) bool { return qa != one || int32(atom) == a },
-		func(pattern.Mapping) bool { found = true; return false })
-	return found
 }
 
 // ringPlace is a substituent (its first atom) and its distance along the ring: 1 ortho, 2 meta, 3 para;

@@ -1,10 +1,10 @@
 package reactions
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
-	"sort"
 
 	"shelfward/molecule"
 )
@@ -70,10 +70,10 @@ func fatal(list []Objection) bool {
 }
 
 // assess runs t on the molecules and compares with the target.
-func (b *Book) assess(t *Transform, ms []*subject, target *molecule.Molecule) assessment {
+func (w *workspace) assess(t *Transform, ms []*subject, target *molecule.Molecule) assessment {
 	var a assessment
-	outs := t.run(b, ms)
-	a.weigh(outs, target)
+	outs := t.run(w, ms)
+	a.weigh(w, outs, target)
 	if !a.found {
 		a.objections = append(a.objections, Objection{Kind: KindNoReaction, Fatal: true,
 			Text: fmt.Sprintf("%s does not give this product from these materials", t.Name)})
@@ -81,53 +81,51 @@ func (b *Book) assess(t *Transform, ms []*subject, target *molecule.Molecule) as
 	}
 	a.judgeShare(t)
 	a.judgeStereo(ms)
-	a.judgeOver(b, t, ms)
+	a.judgeOver(w, t, ms)
 	return a
 }
 
 // weigh finds the outcomes that give the target and their part of all outcomes.
-func (a *assessment) weigh(outs []outcome, target *molecule.Molecule) {
-	type group struct {
+func (a *assessment) weigh(w *workspace, outs []outcome, target *molecule.Molecule) {
+	type group struct { // outcomes that give the same molecules
+		key    setKey
 		weight float64
 		first  int
-		hit    bool
+		cover  covering
 	}
-	groups := map[string]*group{}
-	var order []string
+	var groups []group
 	total, wanted := 0.0, 0.0
 	best := -1
-	covers := map[string]covering{}
 	top := topScore(outs)
 	for i := range outs {
 		o := &outs[i]
-		key := o.productKey()
-		g := groups[key]
-		if g == nil {
-			g = &group{first: i}
-			groups[key] = g
-			order = append(order, key)
-			covers[key], _, _ = o.gives(target)
-			g.hit = covers[key].ok
+		key := w.setOf(o.pieces)
+		at := slices.IndexFunc(groups, func(g group) bool { return g.key == key })
+		if at < 0 {
+			at = len(groups)
+			c, _, _ := o.gives(target)
+			groups = append(groups, group{key: key, first: i, cover: c})
 		}
-		if g.hit && (best < 0 || better(covers[key], o, a.cover, &outs[best])) {
-			best, a.cover = i, covers[key]
+		g := &groups[at]
+		if g.cover.ok && (best < 0 || better(g.cover, o, a.cover, &outs[best])) {
+			best, a.cover = i, g.cover
 		}
 		if o.blocked != "" {
 			continue
 		}
 		g.weight += o.weight(top)
 		total += o.weight(top)
-		if g.hit && !covers[key].wrong {
+		if g.cover.ok && !g.cover.wrong {
 			wanted += o.weight(top)
 		}
 	}
 	a.products = nil
-	for _, key := range order {
-		if g := groups[key]; g.weight > 0 {
+	for i := range groups {
+		if g := &groups[i]; g.weight > 0 {
 			a.products = append(a.products, Product{Molecule: outs[g.first].mainPiece(), Fraction: g.weight / total, Share: shareOf(g.weight / total)})
 		}
 	}
-	sort.SliceStable(a.products, func(i, j int) bool { return a.products[i].Fraction > a.products[j].Fraction })
+	slices.SortStableFunc(a.products, func(p, q Product) int { return cmp.Compare(q.Fraction, p.Fraction) })
 	if best < 0 {
 		return
 	}
@@ -296,8 +294,8 @@ func (a *assessment) loses(ms []*subject) bool {
 }
 
 // judgeOver looks for a second reaction at an equal or better site of the product.
-func (a *assessment) judgeOver(b *Book, t *Transform, ms []*subject) {
-	product := b.subject(a.outcome.pieces[a.pieceIndex].m)
+func (a *assessment) judgeOver(w *workspace, t *Transform, ms []*subject) {
+	product := w.subjectOf(&a.outcome.pieces[a.pieceIndex])
 	for _, g := range t.goesOn {
 		partner := ms[a.outcome.copies[a.outcome.laid[g.part].copy]]
 		if g.query.Matches(partner.Subject) && t.fitsAgain(product, g.part) {
@@ -310,11 +308,11 @@ func (a *assessment) judgeOver(b *Book, t *Transform, ms []*subject) {
 	}
 	for part := range t.part[forward] {
 		s := ms[a.outcome.copies[a.outcome.laid[part].copy]]
-		before := len(disjoint(&t.part[forward][part], t.part[forward][part].matches(s.Subject, nil)))
+		before := len(disjoint(&t.part[forward][part], t.part[forward][part].matches(w, s.Subject, nil)))
 		if before < 2 || t.reusesPart(a, part) {
 			continue
 		}
-		again := t.scoreAgain(b, ms, product, part, a)
+		again := t.scoreAgain(w, ms, product, part, a)
 		if again >= a.outcome.score-0.3 {
 			a.over = append(a.over, overReaction{part, Objection{Kind: KindOverReaction, Source: preferenceSource(t), Text: fmt.Sprintf(
 				"the product has another such site that reacts as fast: part of it goes on (%s in excess helps)", written(s.M))}})
@@ -344,7 +342,7 @@ func (t *Transform) fitsAgain(product *subject, partner int) bool {
 }
 
 // scoreAgain runs the transform with the product in place of the molecule of one part.
-func (t *Transform) scoreAgain(b *Book, ms []*subject, product *subject, part int, a *assessment) float64 {
+func (t *Transform) scoreAgain(w *workspace, ms []*subject, product *subject, part int, a *assessment) float64 {
 	best := -99.0
 	now := a.outcome.attempt
 	list := []*subject{}
@@ -353,13 +351,13 @@ func (t *Transform) scoreAgain(b *Book, ms []*subject, product *subject, part in
 	}
 	at := now.laid[part].copy
 	list[at] = product
-	for _, match := range t.part[forward][part].matches(product.Subject, nil) {
+	for _, match := range t.part[forward][part].matches(w, product.Subject, nil) {
 		next := attempt{copies: make([]int, len(list)), laid: append([]laid(nil), now.laid...)}
 		for i := range next.copies {
 			next.copies[i] = i
 		}
 		next.laid[part] = laid{at, match}
-		if o, ok := t.attempt(b, list, next); ok && o.blocked == "" && o.score > best {
+		if o, ok := t.attempt(w, list, next); ok && o.blocked == "" && o.score > best {
 			best = o.score
 		}
 	}

@@ -1,8 +1,8 @@
 package reactions
 
 import (
-	"bytes"
 	"math/bits"
+	"slices"
 	"sort"
 
 	"shelfward/molecule"
@@ -26,18 +26,25 @@ type proposal struct {
 }
 
 // backwards proposes the precursor sets of one target under one transform.
-func (t *Transform) backwards(b *Book, target *subject, stocked Stocked, cache *subjects) []proposal {
+func (t *Transform) backwards(w *workspace, target *subject, stocked Stocked) []proposal {
 	if t.Everywhere && len(t.part[forward]) == 1 && t.part[forward][0].query.Matches(target.Subject) {
 		return nil // what reacts everywhere would have left no such site
 	}
-	sites := t.sites(target)
+	sites := t.sites(w, target)
 	if len(sites) == 0 {
 		return nil
 	}
-	nearFeaturesFirst(target.M, sites)
-	x := &undoer{t: t, b: b, target: target, stocked: stocked, cache: cache, seen: map[string]bool{}}
-	for _, subset := range t.subsets(sites) {
-		x.undo(subset)
+	nearFeaturesFirst(target, sites)
+	clear(w.seen)
+	x := &undoer{t: t, w: w, target: target, stocked: stocked, seen: w.seen}
+	for i := range sites {
+		x.undo(sites[i : i+1])
+		if len(x.out) >= maxProposals {
+			return x.out
+		}
+	}
+	for _, several := range t.together(sites) {
+		x.undo(several)
 		if len(x.out) >= maxProposals {
 			break
 		}
@@ -45,72 +52,92 @@ func (t *Transform) backwards(b *Book, target *subject, stocked Stocked, cache *
 	return x.out
 }
 
-// site is a way to lay product parts on the target; parts not laid are completed by co-products.
-type site struct {
-	laid map[int]partMatch
-}
+// site is a way to lay product parts on the target: the match of each part, nil for one that is completed
+// by a co-product.
+type site []partMatch
 
 // sites lists the ways to lay a non-empty set of product parts, disjoint, on the target.
-func (t *Transform) sites(target *subject) []site {
+func (t *Transform) sites(w *workspace, target *subject) []site {
 	parts := t.part[backward]
-	found := make([][]partMatch, len(parts))
+	x := siteFinder{t: t, w: w}
+	if len(parts) > len(x.room) {
+		x.found = make([][]partMatch, len(parts))
+	} else {
+		x.found = x.room[:len(parts)]
+	}
+	any := false
 	for i := range parts {
-		found[i] = parts[i].matches(target.Subject, nil)
+		x.found[i] = parts[i].matches(w, target.Subject, nil)
+		any = any || len(x.found[i]) > 0
 	}
-	var out []site
-	var grow func(part int, now map[int]partMatch)
-	grow = func(part int, now map[int]partMatch) {
-		if len(out) >= maxProposals {
-			return
-		}
-		if part == len(parts) {
-			if len(now) > 0 {
-				cp := map[int]partMatch{}
-				for k, v := range now {
-					cp[k] = v
-				}
-				out = append(out, site{cp})
-			}
-			return
-		}
-		for _, m := range found[part] {
-			if !overlapsLaid(now, m) {
-				now[part] = m
-				grow(part+1, now)
-				delete(now, part)
-			}
-		}
-		if len(t.partChoices[part]) > 0 {
-			grow(part+1, now)
-		}
+	if !any {
+		return nil
 	}
-	grow(0, map[int]partMatch{})
-	return out
+	x.now = w.matches.take(len(parts))
+	x.grow(0, 0)
+	return x.out
 }
 
-func overlapsLaid(now map[int]partMatch, m partMatch) bool {
+// siteFinder grows sites part by part.
+type siteFinder struct {
+	t     *Transform
+	w     *workspace
+	found [][]partMatch // per part
+	now   site
+	out   []site
+	room  [4][]partMatch
+}
+
+func (x *siteFinder) grow(part, laid int) {
+	if len(x.out) >= maxProposals {
+		return
+	}
+	if part == len(x.found) {
+		if laid > 0 {
+			x.out = append(x.out, x.w.matches.keep(x.now))
+		}
+		return
+	}
+	for _, m := range x.found[part] {
+		if !overlapsLaid(x.now, m) {
+			x.now[part] = m
+			x.grow(part+1, laid+1)
+			x.now[part] = nil
+		}
+	}
+	if len(x.t.partChoices[part]) > 0 {
+		x.grow(part+1, laid)
+	}
+}
+
+func overlapsLaid(now site, m partMatch) bool {
 	for _, old := range now {
-		for _, a := range old {
-			for _, b := range m {
-				if a == b {
-					return true
-				}
+		if meet(old, m) {
+			return true
+		}
+	}
+	return false
+}
+
+// meet says whether two matches share an atom.
+func meet(m, n partMatch) bool {
+	for _, a := range m {
+		for _, b := range n {
+			if a == b {
+				return true
 			}
 		}
 	}
 	return false
 }
 
-// subsets returns the sets of sites to undo together: single ones, and for an everywhere transform every
-// subset of at most maxSites disjoint sites, or all of them at once where there are more.
-func (t *Transform) subsets(sites []site) [][]site {
-	var out [][]site
-	for _, s := range sites {
-		out = append(out, []site{s})
-	}
+// together returns the sets of several sites to undo at once: for an everywhere transform every subset of
+// at most maxSites disjoint sites, or all of them where there are more.
+func (t *Transform) together(sites []site) [][]site {
 	if !t.Everywhere || len(sites) < 2 {
-		return out
+		return nil
 	}
+	var out [][]site
 	for laid := 1; laid < 1<<len(t.part[backward]); laid++ {
 		var alike []site
 		for _, s := range sites {
@@ -126,8 +153,10 @@ func (t *Transform) subsets(sites []site) [][]site {
 // parts returns the set of parts laid, as bits.
 func (s site) parts() int {
 	set := 0
-	for part := range s.laid {
-		set |= 1 << part
+	for part, m := range s {
+		if m != nil {
+			set |= 1 << part
+		}
 	}
 	return set
 }
@@ -138,8 +167,8 @@ func apart(sites []site) []site {
 next:
 	for _, s := range sites {
 		for _, old := range out {
-			for _, m := range s.laid {
-				if overlapsLaid(old.laid, m) {
+			for _, m := range s {
+				if overlapsLaid(old, m) {
 					continue next
 				}
 			}
@@ -173,11 +202,10 @@ func setsOf(sites []site) [][]site {
 // undoer collects the proposals of one target and transform.
 type undoer struct {
 	t       *Transform
-	b       *Book
+	w       *workspace
 	target  *subject
 	stocked Stocked
-	cache   *subjects
-	seen    map[string]bool
+	seen    map[setKey]bool
 	out     []proposal
 
 	plain     bool // the site at hand is nothing but chain carbon
@@ -186,9 +214,8 @@ type undoer struct {
 
 // undo runs the script backwards at the sites with every choice of co-products and leaving groups.
 func (x *undoer) undo(sites []site) {
-	missing := x.missingParts(sites[0])
 	x.plain = x.plainChain(sites)
-	for _, co := range x.coproductChoices(missing) {
+	for _, co := range x.coproductChoices(sites[0]) {
 		p, mappings := x.lay(sites, co)
 		if p == nil {
 			continue
@@ -203,9 +230,9 @@ const hopeless = 2
 
 // withFragments runs the script backwards once for each combination of leaving groups.
 func (x *undoer) withFragments(p *pool, mappings [][]int32) []proposal {
-	var list []proposal
-	for fi, frags := range x.t.fragmentChoices() {
-		pieces, err := x.t.script.edit(backward, p, mappings, frags)
+	list := x.w.tried[:0]
+	for fi := range x.t.combinations {
+		pieces, err := x.t.script.edit(x.w, backward, p, mappings, &x.t.combinations[fi])
 		if err == nil {
 			if next := (proposal{pieces}); x.sound(next) {
 				list = append(list, next)
@@ -215,6 +242,7 @@ func (x *undoer) withFragments(p *pool, mappings [][]int32) []proposal {
 			break
 		}
 	}
+	x.w.tried = list
 	return list
 }
 
@@ -222,10 +250,11 @@ func (x *undoer) withFragments(p *pool, mappings [][]int32) []proposal {
 // an unsaturation there is possible anywhere and worth trying in a few places only, those near a feature
 // of the molecule first.
 func (x *undoer) plainChain(sites []site) bool {
+	far := x.target.featureDistance()
 	for _, s := range sites {
-		for _, m := range s.laid {
+		for _, m := range s {
 			for _, a := range m {
-				if feature(x.target.M, int(a)) {
+				if far[a] == 0 {
 					return false
 				}
 			}
@@ -248,59 +277,58 @@ func feature(m *molecule.Molecule, a int) bool {
 }
 
 // nearFeaturesFirst orders sites by their distance from the nearest feature, stably.
-func nearFeaturesFirst(m *molecule.Molecule, sites []site) {
-	far := featureDistance(m)
-	away := func(s site) int {
-		least := len(far)
-		for _, match := range s.laid {
+func nearFeaturesFirst(target *subject, sites []site) {
+	if len(sites) < 2 {
+		return
+	}
+	far := target.featureDistance()
+	away := func(s site) int32 {
+		least := int32(len(far))
+		for _, match := range s {
 			for _, a := range match {
 				least = min(least, far[a])
 			}
 		}
 		return least
 	}
-	sort.SliceStable(sites, func(i, j int) bool { return away(sites[i]) < away(sites[j]) })
+	slices.SortStableFunc(sites, func(s, r site) int { return int(away(s) - away(r)) })
 }
 
 // featureDistance gives each atom its distance in bonds from the nearest feature.
-func featureDistance(m *molecule.Molecule) []int {
-	far := make([]int, m.NumAtoms())
-	var queue []int
-	for a := range far {
-		far[a] = m.NumAtoms()
+func (s *subject) featureDistance() []int32 {
+	if len(s.far) > 0 {
+		return s.far
+	}
+	m := s.M
+	var queue []int32
+	for a := range m.NumAtoms() {
+		s.far = append(s.far, int32(m.NumAtoms()))
 		if feature(m, a) {
-			far[a] = 0
-			queue = append(queue, a)
+			s.far[a] = 0
+			queue = append(queue, int32(a))
 		}
 	}
 	for len(queue) > 0 {
 		a := queue[0]
 		queue = queue[1:]
-		for _, n := range m.Neighbors(a) {
-			if far[n.Atom] > far[a]+1 {
-				far[n.Atom] = far[a] + 1
-				queue = append(queue, int(n.Atom))
+		for _, n := range m.Neighbors(int(a)) {
+			if s.far[n.Atom] > s.far[a]+1 {
+				s.far[n.Atom] = s.far[a] + 1
+				queue = append(queue, n.Atom)
 			}
 		}
 	}
-	return far
+	return s.far
 }
 
-func (x *undoer) missingParts(s site) []int {
-	var missing []int
-	for i := range x.t.part[backward] {
-		if _, ok := s.laid[i]; !ok {
-			missing = append(missing, i)
-		}
-	}
-	return missing
-}
-
-// coproductChoices lists the combinations of co-products for the missing parts; one empty combination
-// where none is missing.
-func (x *undoer) coproductChoices(missing []int) [][]coproduct {
+// coproductChoices lists the combinations of co-products for the parts missing in s; one empty combination
+// where none is.
+func (x *undoer) coproductChoices(s site) [][]coproduct {
 	combos := [][]coproduct{nil}
-	for _, part := range missing {
+	for part, m := range s {
+		if m != nil {
+			continue
+		}
 		var longer [][]coproduct
 		for _, c := range combos {
 			for _, choice := range x.t.partChoices[part] {
@@ -312,16 +340,16 @@ func (x *undoer) coproductChoices(missing []int) [][]coproduct {
 	return combos
 }
 
-// lay builds the pool of the target and, per site, the co-products, and the mappings slot -> pool atom.
+// lay builds the pool of the target and, per site, the co-products in the order of the parts missing, and
+// the mappings slot -> pool atom. It returns nil where a co-product cannot be made or laid.
 func (x *undoer) lay(sites []site, co []coproduct) (*pool, [][]int32) {
-	ms := []*molecule.Molecule{x.target.M}
-	type extra struct {
-		site, part, at int
-		c              coproduct
-	}
-	var extras []extra
-	for si, s := range sites {
-		for k, part := range x.missingParts(s) {
+	ms := append(x.w.molecules.take(1 + len(sites)*len(co))[:0], x.target.M)
+	for _, s := range sites {
+		k := 0
+		for part, m := range s {
+			if m != nil {
+				continue
+			}
 			if k >= len(co) {
 				return nil, nil
 			}
@@ -331,27 +359,28 @@ func (x *undoer) lay(sites []site, co []coproduct) (*pool, [][]int32) {
 					return nil, nil
 				}
 			}
-			extras = append(extras, extra{si, part, len(ms), co[k]})
 			ms = append(ms, m)
+			k++
 		}
 	}
-	p := newPool(ms)
-	mappings := make([][]int32, len(sites))
+	p := x.w.newPool(ms)
+	mappings := x.w.mappings.take(len(sites))
+	at := 1
 	for si, s := range sites {
-		mappings[si] = make([]int32, len(x.t.script.slots))
-		for i := range mappings[si] {
-			mappings[si][i] = -1
+		to := x.w.emptyMapping(x.t)
+		k := 0
+		for part, m := range s {
+			offset := int32(0)
+			if m == nil {
+				if m = x.completing(part, ms[at], co[k]); m == nil {
+					return nil, nil
+				}
+				offset = p.offset[at]
+				at, k = at+1, k+1
+			}
+			x.t.layPart(to, part, m, offset)
 		}
-		for part, m := range s.laid {
-			x.t.layPart(mappings[si], part, m, 0)
-		}
-	}
-	for _, e := range extras {
-		m := x.completing(e.part, ms[e.at], e.c, sites[e.site])
-		if m == nil {
-			return nil, nil
-		}
-		x.t.layPart(mappings[e.site], e.part, m, p.offset[e.at])
+		mappings[si] = to
 	}
 	return p, mappings
 }
@@ -365,17 +394,25 @@ func (t *Transform) layPart(to []int32, part int, m partMatch, offset int32) {
 }
 
 // completing lays the part on its co-product, numbered classes at the numbered atoms.
-func (x *undoer) completing(part int, m *molecule.Molecule, c coproduct, s site) partMatch {
-	pq := &x.t.part[backward][part]
-	matches := pq.matches(pattern.NewSubject(m, x.b.groups), // not the cached one: classAt counts atoms of m itself
-		func(q, a int) bool {
-			at, fixed := c.classAt[pq.query.Atoms[q].Class]
-			return !fixed || int(at) == a
-		})
-	if len(matches) == 0 {
-		return nil
+func (x *undoer) completing(part int, m *molecule.Molecule, c coproduct) partMatch {
+	if !c.same {
+		return c.laid
 	}
-	return matches[0]
+	return x.t.layCoproduct(x.w.b.groups, part, m, c.classAt)
+}
+
+// layCoproduct lays a product part on m, its numbered classes at the atoms of classAt; nil where it does
+// not fit.
+func (t *Transform) layCoproduct(groups *pattern.Groups, part int, m *molecule.Molecule, classAt map[int]int32) (at partMatch) {
+	q := t.part[backward][part].query
+	q.EachWithin(pattern.NewSubject(m, groups), func(i, a int) bool {
+		place, fixed := classAt[q.Atoms[i].Class]
+		return !fixed || int(place) == a
+	}, func(to pattern.Mapping) bool {
+		at = append(at, to...)
+		return false
+	})
+	return at
 }
 
 // maxFragments bounds the combinations of leaving groups tried at one site.
@@ -384,25 +421,24 @@ const maxFragments = 36
 // fragmentChoices lists what may stand for the classes that leave: every combination, those early in
 // their lists first.
 func (t *Transform) fragmentChoices() []fragments {
+	slots := len(t.script.slots)
 	classes := make([]int, 0, len(t.choices))
 	for class := range t.choices {
 		classes = append(classes, class)
 	}
 	sort.Ints(classes)
 	type combination struct {
-		frags fragments
-		late  int
+		at   []*molecule.Molecule
+		late int
 	}
-	combos := []combination{{fragments{}, 0}}
+	combos := []combination{{make([]*molecule.Molecule, slots), 0}}
 	for _, class := range classes {
 		var longer []combination
 		for _, c := range combos {
 			for i, m := range t.choices[class] {
-				f := fragments{class: m}
-				for k, v := range c.frags {
-					f[k] = v
-				}
-				longer = append(longer, combination{f, c.late + i})
+				at := slices.Clone(c.at)
+				at[t.script.slotOfClass(class)] = m
+				longer = append(longer, combination{at, c.late + i})
 			}
 		}
 		combos = longer
@@ -410,7 +446,7 @@ func (t *Transform) fragmentChoices() []fragments {
 	sort.SliceStable(combos, func(i, j int) bool { return combos[i].late < combos[j].late })
 	out := make([]fragments, 0, len(combos))
 	for _, c := range combos {
-		out = append(out, c.frags)
+		out = append(out, fragments{c.at, t.script.insideFragments(c.at)})
 	}
 	return out[:min(len(out), maxFragments)]
 }
@@ -420,7 +456,7 @@ func (t *Transform) fragmentChoices() []fragments {
 func (x *undoer) keep(list []proposal) {
 	loose := 0
 	for _, p := range list {
-		key := precursorKey(p.pieces)
+		key := x.w.setOf(p.pieces)
 		if x.seen[key] {
 			continue
 		}
@@ -439,26 +475,34 @@ func (x *undoer) keep(list []proposal) {
 }
 
 func (x *undoer) anyStocked(p proposal) bool {
-	for _, pc := range p.pieces {
-		if x.stocked(pc.m) {
+	for i := range p.pieces {
+		if x.w.subjectOf(&p.pieces[i]).isStocked(x.stocked) {
 			return true
 		}
 	}
 	return false
 }
 
+// isStocked asks the shelf once.
+func (s *subject) isStocked(stocked Stocked) bool {
+	if s.stock == unknown {
+		s.stock = answerOf(stocked(s.M))
+	}
+	return s.stock == yes
+}
+
 // sound refuses precursors that are the target itself, carry broken rings, or that the reactant side
 // does not match.
 func (x *undoer) sound(p proposal) bool {
-	for _, pc := range p.pieces {
-		if pc.m.Key() == x.target.key || !saneRings(pc.m) {
+	for i := range p.pieces {
+		if !p.pieces[i].saneRings() || x.w.subjectOf(&p.pieces[i]).key == x.target.key {
 			return false
 		}
 	}
 	for i := range x.t.part[forward] {
 		matched := false
-		for _, pc := range p.pieces {
-			if x.t.part[forward][i].query.Matches(x.cache.of(pc.m).Subject) {
+		for k := range p.pieces {
+			if x.t.part[forward][i].query.Matches(x.w.subjectOf(&p.pieces[k]).Subject) {
 				matched = true
 				break
 			}
@@ -468,15 +512,4 @@ func (x *undoer) sound(p proposal) bool {
 		}
 	}
 	return true
-}
-
-// precursorKey identifies a multiset of molecules.
-func precursorKey(pieces []piece) string {
-	keys := make([][]byte, len(pieces))
-	for i, p := range pieces {
-		k := p.m.Key()
-		keys[i] = k[:]
-	}
-	sort.Slice(keys, func(i, j int) bool { return bytes.Compare(keys[i], keys[j]) < 0 })
-	return string(bytes.Join(keys, nil))
 }

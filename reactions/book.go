@@ -99,7 +99,9 @@ func (l *loader) ids() []string {
 // leaving groups and co-products that a transform leaves free, those that complete to such a molecule
 // come first. The order is fixed by the rule set alone.
 func (b *Book) Expand(ctx context.Context, target *molecule.Molecule, stocked Stocked) ([]*Step, error) {
-	x := &expander{b: b, target: b.subject(target), stocked: stocked, subjects: b.newSubjects()}
+	w := b.newWorkspace()
+	defer w.release()
+	x := &expander{b: b, w: w, target: w.of(target), stocked: stocked}
 	for _, t := range b.Transforms {
 		if err := ctx.Err(); err != nil {
 			return nil, err
@@ -109,13 +111,12 @@ func (b *Book) Expand(ctx context.Context, target *molecule.Molecule, stocked St
 	return x.steps, nil
 }
 
-// expander collects the steps of one target; subjects are kept because many transforms propose the
-// same precursors.
+// expander collects the steps of one target.
 type expander struct {
 	b        *Book
 	target   *subject
 	stocked  Stocked
-	subjects *subjects
+	w        *workspace
 	steps    []*Step
 	rejected []rejectedStep
 	keepAll  bool
@@ -129,24 +130,15 @@ type rejectedStep struct {
 }
 
 func (x *expander) expand(t *Transform) {
-	for _, p := range t.backwards(x.b, x.target, x.stocked, x.subjects) {
+	for _, p := range t.backwards(x.w, x.target, x.stocked) {
 		d := x.draft(t, p)
 		if step, reasons := d.step(); step != nil {
 			x.steps = append(x.steps, step)
 		} else if x.keepAll {
-			x.rejected = append(x.rejected, rejectedStep{t, moleculesOf(d.reactants, all(len(d.reactants))), reasons})
+			x.rejected = append(x.rejected, rejectedStep{t, d.molecules(), reasons})
 		}
 		x.expandTogether(d)
 	}
-}
-
-// all lists the indices below n.
-func all(n int) []int {
-	out := make([]int, n)
-	for i := range out {
-		out[i] = i
-	}
-	return out
 }
 
 // draft is a proposal run forwards, before its condition sets are looked at.
@@ -163,14 +155,23 @@ type draft struct {
 	uses []int    // copies of each reactant
 }
 
+// molecules lists the reactants.
+func (d *draft) molecules() []*molecule.Molecule {
+	out := make([]*molecule.Molecule, len(d.reactants))
+	for i, r := range d.reactants {
+		out[i] = r.M
+	}
+	return out
+}
+
 func (x *expander) draft(t *Transform, p proposal) *draft {
 	d := &draft{b: x.b, t: t, target: x.target}
 	d.origins = make([]Origin, x.target.M.NumAtoms())
 	for i := range d.origins {
 		d.origins[i] = Origin{-1, -1}
 	}
-	for _, pc := range p.pieces {
-		s := x.subjects.of(pc.m)
+	for k, pc := range p.pieces {
+		s := x.w.subjectOf(&p.pieces[k])
 		at := -1
 		for i, r := range d.reactants {
 			if r.key == s.key {
@@ -188,7 +189,7 @@ func (x *expander) draft(t *Transform, p proposal) *draft {
 			}
 		}
 	}
-	d.assessment = x.b.assess(t, d.reactants, x.target.M)
+	d.assessment = x.w.assess(t, d.reactants, x.target.M)
 	if d.found {
 		d.busy = d.outcome.busyAtoms(d.reactants)
 		d.uses = make([]int, len(d.reactants))
@@ -292,7 +293,7 @@ func (d *draft) conditionSets() []*Conditions {
 func (d *draft) mediaObjections(c *Conditions) []Objection {
 	var out []Objection
 	for i, r := range d.reactants {
-		out = append(out, d.b.media.objections(c.Media, r.Subject, d.b.groups, d.busy[i], nil)...)
+		out = append(out, d.b.media.objections(c.Media, r.Subject, d.busy[i], nil)...)
 	}
 	return worstPerText(out)
 }

@@ -95,7 +95,7 @@ func (b *Book) checkExample(t *Transform, ex Example) []Fault {
 	if err != nil {
 		return fault("%v", err)
 	}
-	a := b.assess(t, from, target)
+	a := b.newWorkspace().assess(t, from, target)
 	if !a.found && b.stepFrom(t, from, target) != nil {
 		return nil // with a companion in the same flask
 	}
@@ -120,7 +120,7 @@ func (b *Book) stepFrom(t *Transform, from []*subject, target *molecule.Molecule
 	for _, s := range from {
 		have[s.M.SeenThroughKey()] = true
 	}
-	x := &expander{b: b, target: b.subject(target), subjects: b.newSubjects(),
+	x := &expander{b: b, target: b.subject(target), w: b.newWorkspace(),
 		stocked: func(m *molecule.Molecule) bool { return have[m.SeenThroughKey()] }}
 	x.expand(t)
 	for _, s := range x.steps {
@@ -177,7 +177,7 @@ func (b *Book) checkMedia(t *Transform, ex Example, a *assessment, from []*subje
 // the last one where none is clean.
 func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject) (sets int, last []Objection) {
 	busy := a.outcome.busyAtoms(from)
-	weighed := t.otherSites(from, busy)
+	weighed := t.otherSites(b.newWorkspace(), from, busy)
 	for _, c := range t.Conditions {
 		if ex.With != "" && c.ID != ex.With || !t.appliesTo(c, &a.outcome) {
 			continue
@@ -185,7 +185,7 @@ func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject
 		sets++
 		list := a.under(c)
 		for i, r := range from {
-			list = append(list, b.media.objections(c.Media, r.Subject, b.groups, busy[i], weighed[i])...)
+			list = append(list, b.media.objections(c.Media, r.Subject, busy[i], weighed[i])...)
 		}
 		if len(list) == 0 {
 			return sets, nil
@@ -212,7 +212,7 @@ func (b *Book) checkBackwards(t *Transform, ex Example, from []*subject, target 
 		return false
 	}
 	var seen []string
-	for _, p := range t.backwards(b, b.subject(target), stocked, b.newSubjects()) {
+	for _, p := range t.backwards(b.newWorkspace(), b.subject(target), stocked) {
 		var keys, names []string
 		for _, pc := range p.pieces {
 			k := pc.m.WithoutStereo().SeenThroughKey()
@@ -239,7 +239,7 @@ func (b *Book) checkReject(t *Transform, ex Example) string {
 	if err != nil {
 		return err.Error()
 	}
-	a := b.assess(t, from, target)
+	a := b.newWorkspace().assess(t, from, target)
 	if !a.found {
 		return ""
 	}

@@ -299,9 +299,16 @@ func (l *loader) compileChoices(t *Transform, src *sourceTransform, file string)
 			if err != nil || part < 1 || part > len(src.Products) {
 				return fmt.Errorf("choices: there is no product part %q", number)
 			}
-			if t.partChoices[part-1], err = coproducts(src.Choices[k], file); err != nil {
+			list, err := coproducts(src.Choices[k], file)
+			if err != nil {
 				return err
 			}
+			for i := range list {
+				if c := &list[i]; !c.same {
+					c.laid = t.layCoproduct(l.groups, part-1, c.m, c.classAt)
+				}
+			}
+			t.partChoices[part-1] = list
 			continue
 		}
 		class, err := strconv.Atoi(k)
@@ -316,6 +323,7 @@ func (l *loader) compileChoices(t *Transform, src *sourceTransform, file string)
 			t.choices[class] = append(t.choices[class], m)
 		}
 	}
+	t.combinations = t.fragmentChoices()
 	return t.checkChoices()
 }
 

@@ -2,6 +2,7 @@ package reactions
 
 import (
 	"errors"
+	"slices"
 	"sync"
 
 	"shelfward/molecule"
@@ -12,15 +13,6 @@ type pool struct {
 	molecules []*molecule.Molecule
 	offset    []int32 // first atom of each molecule
 	atoms     int
-}
-
-func newPool(ms []*molecule.Molecule) *pool {
-	p := &pool{molecules: ms}
-	for _, m := range ms {
-		p.offset = append(p.offset, int32(p.atoms))
-		p.atoms += m.NumAtoms()
-	}
-	return p
 }
 
 // locate returns the molecule and its atom for a pool atom.
@@ -34,7 +26,7 @@ func (p *pool) locate(a int32) (which int, atom int32) {
 
 // piece is one molecule after an edit, with the pool atom of each of its atoms (-1: new).
 type piece struct {
-	m    *molecule.Molecule
+	*made
 	from []int32
 }
 
@@ -55,9 +47,10 @@ type editor struct {
 	gained   links     // and gained
 	course   []coursed // stereo course of the atoms that the script names
 
-	sum, arom, degree             []int // scratch of bondSums
-	label, root, index, bondIndex []int32
-	builders                      []molecule.Builder
+	sum, arom, degree              []int // scratch of bondSums
+	label, sizes, index, bondIndex []int32
+	to, madeOf                     []int32 // the mapping with the atoms made; per atom: 1 + its query atom on the side made
+	builders                       []molecule.Builder
 }
 
 // links lists pairs of an atom and a ligand; an edit touches a handful of atoms.
@@ -83,18 +76,22 @@ type coursed struct {
 	word string
 }
 
-// fragments is what is attached for a class that stands only on the side made.
-type fragments map[int]*molecule.Molecule // class -> fragment whose first atom is attached
+// fragments is one combination of what is attached for the slots that stand only on the side made.
+type fragments struct {
+	at     []*molecule.Molecule // slot -> fragment whose first atom is attached, nil: the pattern's own atom
+	inside []bool               // slot -> some fragment brings its atom
+}
 
 // edit applies the script to p once per mapping (slot -> pool atom, -1 where the slot is not found)
 // and returns the connected pieces, those with found atoms and the rest alike.
-func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments) ([]piece, error) {
+func (s *script) edit(w *workspace, d direction, p *pool, mappings [][]int32, frags *fragments) ([]piece, error) {
 	e := editors.Get().(*editor)
 	defer editors.Put(e)
 	e.reset(s, d, p)
 	e.load()
 	for _, to := range mappings {
-		to = append([]int32(nil), to...)
+		e.to = append(e.to[:0], to...)
+		to := e.to
 		if err := e.makeAtoms(to, frags); err != nil {
 			return nil, err
 		}
@@ -115,7 +112,7 @@ func (s *script) edit(d direction, p *pool, mappings [][]int32, frags fragments)
 		return nil, err
 	}
 	e.mendMarks()
-	return e.pieces()
+	return e.pieces(w)
 }
 
 // editors keeps the scratch of edits: the search makes hundreds for every molecule that it opens.
@@ -127,6 +124,14 @@ func (e *editor) reset(s *script, d direction, p *pool) {
 	e.b.Atoms, e.b.Bonds = e.b.Atoms[:0], e.b.Bonds[:0]
 	e.b.Centers, e.b.DoubleBonds = e.b.Centers[:0], e.b.DoubleBonds[:0]
 	e.lost, e.gained, e.course = e.lost[:0], e.gained[:0], e.course[:0]
+}
+
+// sized returns a slice of n values, whatever they are, in the room of old.
+func sized[T any](old []T, n int) []T {
+	if cap(old) < n {
+		return make([]T, n, n+8)
+	}
+	return old[:n]
 }
 
 // zeroed returns a slice of n zero values in the room of old.
@@ -142,7 +147,7 @@ func zeroed[T any](old []T, n int) []T {
 // load copies the molecules into one builder. Aromatic bonds are given as such only where the script
 // changes an aromatic bond; otherwise the Kekulé form kept by the molecule serves as it is.
 func (e *editor) load() {
-	aromatic := e.s.changesAromatic()
+	aromatic := e.s.aromatic
 	e.hBefore, e.sumBefor = zeroed(e.hBefore, e.p.atoms), zeroed(e.sumBefor, e.p.atoms)
 	for i, m := range e.p.molecules {
 		e.loadMolecule(m, e.p.offset[i], aromatic)
@@ -188,15 +193,6 @@ func (e *editor) loadMolecule(m *molecule.Molecule, off int32, aromatic bool) {
 	}
 }
 
-func (s *script) changesAromatic() bool {
-	for _, b := range s.bonds {
-		if b.order[0] == molecule.OrderAromatic || b.order[1] == molecule.OrderAromatic {
-			return true
-		}
-	}
-	return false
-}
-
 func (e *editor) addAtom(a molecule.Atom, slot int) int32 {
 	e.b.Atoms = append(e.b.Atoms, a)
 	e.dead = append(e.dead, false)
@@ -206,17 +202,17 @@ func (e *editor) addAtom(a molecule.Atom, slot int) int32 {
 }
 
 // makeAtoms creates the atoms that stand only on the side made.
-func (e *editor) makeAtoms(to []int32, frags fragments) error {
-	inside := e.s.insideFragments(e.d, frags)
-	for i, sl := range e.s.slots {
-		if sl.found(e.d) >= 0 || sl.made(e.d) < 0 || inside[i] {
+func (e *editor) makeAtoms(to []int32, frags *fragments) error {
+	for i := range e.s.slots {
+		sl := &e.s.slots[i]
+		if sl.found(e.d) >= 0 || sl.made(e.d) < 0 || frags != nil && frags.inside[i] {
 			continue
 		}
-		if f := frags[sl.class]; f != nil && e.d == backward && sl.class != 0 {
-			to[i] = e.attach(f, i)
+		if frags != nil && frags.at[i] != nil {
+			to[i] = e.attach(frags.at[i], i)
 			continue
 		}
-		qa := e.s.side[1-e.d].Atoms[sl.made(e.d)]
+		qa := &e.s.side[1-e.d].Atoms[sl.made(e.d)]
 		el, ok := qa.SingleElement()
 		if !ok {
 			return errNoFit
@@ -237,11 +233,12 @@ func (e *editor) makeAtoms(to []int32, frags fragments) error {
 // part are those of an atom that stays takes over what hangs there. So the other half of an anhydride is
 // the same acid.
 func (e *editor) mirrorHalves(to []int32) error {
-	for i, sl := range e.s.slots {
+	for i := range e.s.slots {
+		sl := &e.s.slots[i]
 		if to[i] < 0 || e.newSlot[to[i]] != i+1 || sl.at[forward] < 0 || sl.at[backward] >= 0 {
 			continue
 		}
-		twin := e.s.counterpart(i)
+		twin := e.s.twin[i]
 		if twin < 0 || to[twin] < 0 || int(to[twin]) >= e.p.atoms || e.s.slots[twin].at[backward] < 0 {
 			continue
 		}
@@ -273,18 +270,15 @@ func (e *editor) copyBranches(on, twin int32, to []int32) bool {
 
 // insideFragments marks the leaving atoms without choices of their own that hang on a class for which a whole fragment
 // stands in: the fragment brings them.
-func (s *script) insideFragments(d direction, frags fragments) []bool {
+func (s *script) insideFragments(at []*molecule.Molecule) []bool {
 	inside := make([]bool, len(s.slots))
-	if d != backward {
-		return inside
-	}
 	for changed := true; changed; {
 		changed = false
 		for _, be := range s.bonds {
 			for _, pair := range [2][2]int{{be.a, be.b}, {be.b, be.a}} {
 				from, to := s.slots[pair[0]], s.slots[pair[1]]
-				whole := from.class != 0 && frags[from.class] != nil && from.at[backward] < 0 || inside[pair[0]]
-				if whole && frags[to.class] == nil && to.at[backward] < 0 && !inside[pair[1]] {
+				whole := at[pair[0]] != nil && from.at[backward] < 0 || inside[pair[0]]
+				if whole && at[pair[1]] == nil && to.at[backward] < 0 && !inside[pair[1]] {
 					inside[pair[1]], changed = true, true
 				}
 			}
@@ -296,9 +290,9 @@ func (s *script) insideFragments(d direction, frags fragments) []bool {
 // attach copies a fragment into the builder; its first atom gives up the hydrogens that the bonds to
 // the molecule replace.
 func (e *editor) attach(f *molecule.Molecule, slotIndex int) int32 {
-	src := f.Builder()
 	first := int32(len(e.b.Atoms))
-	for i, a := range src.Atoms {
+	for i := range f.NumAtoms() {
+		a := f.Atom(i)
 		if i == 0 {
 			need := 0
 			for _, be := range e.s.bonds {
@@ -311,7 +305,8 @@ func (e *editor) attach(f *molecule.Molecule, slotIndex int) int32 {
 		a.Class, a.Aromatic = 0, false
 		e.addAtom(a, slotIndex)
 	}
-	for _, b := range src.Bonds {
+	for i := range f.NumBonds() {
+		b := f.Bond(i)
 		b.A, b.B, b.Aromatic = b.A+first, b.B+first, false
 		e.b.Bonds = append(e.b.Bonds, b)
 	}
@@ -364,11 +359,12 @@ func (e *editor) changeBonds(to []int32) error {
 
 // changeAtoms sets charges; hydrogens follow later.
 func (e *editor) changeAtoms(to []int32) error {
-	for i, sl := range e.s.slots {
+	for i := range e.s.slots {
+		sl := &e.s.slots[i]
 		if to[i] < 0 || sl.at[0] < 0 || sl.at[1] < 0 || !e.s.touched[i] {
 			continue
 		}
-		f, m := e.s.side[e.d].Atoms[sl.found(e.d)], e.s.side[1-e.d].Atoms[sl.made(e.d)]
+		f, m := &e.s.side[e.d].Atoms[sl.found(e.d)], &e.s.side[1-e.d].Atoms[sl.made(e.d)]
 		e.touched[to[i]] = true
 		if sl.course != "" {
 			e.course = append(e.course, coursed{to[i], sl.course})
@@ -386,11 +382,8 @@ func (e *editor) dropAtoms(to []int32) error {
 	if e.d == forward {
 		return nil
 	}
-	known := map[int32]bool{}
-	for _, a := range to {
-		known[a] = true
-	}
-	for i, sl := range e.s.slots {
+	for i := range e.s.slots {
+		sl := &e.s.slots[i]
 		if sl.at[forward] >= 0 || to[i] < 0 {
 			continue
 		}
@@ -401,7 +394,7 @@ func (e *editor) dropAtoms(to []int32) error {
 				continue
 			}
 			other := b.A + b.B - a
-			if !known[other] {
+			if !slices.Contains(to, other) {
 				return errNoFit
 			}
 			b.Order = 0

@@ -1,12 +1,10 @@
 package reactions
 
 import (
-	"bytes"
 	"math"
 	"slices"
 	"sort"
 
-	"shelfward/molecule"
 	"shelfward/molecule/pattern"
 )
 
@@ -14,53 +12,23 @@ import (
 // steps have fewer than fifty. What lies beyond is left out of the shares.
 const maxCombinations = 600
 
-// subject is a molecule ready for matching, with its key.
-type subject struct {
-	*pattern.Subject
-	key      molecule.Key
-	ion      bool // drawn as an anion: its acid is not in the flask
-	relative bool // its marks say only how centres stand to each other: a racemate
-}
-
-func (b *Book) subject(m *molecule.Molecule) *subject {
-	return &subject{Subject: pattern.NewSubject(m, b.groups), key: m.Key()}
-}
-
-// subjects keeps the molecules of one expansion: many transforms propose the same precursors. Not safe
-// for concurrent use.
-type subjects struct {
-	b     *Book
-	byKey map[molecule.Key]*subject
-}
-
-func (b *Book) newSubjects() *subjects { return &subjects{b, map[molecule.Key]*subject{}} }
-
-func (c *subjects) of(m *molecule.Molecule) *subject {
-	k := m.Key()
-	if s := c.byKey[k]; s != nil {
-		return s
-	}
-	s := &subject{Subject: pattern.NewSubject(m, c.b.groups), key: k}
-	c.byKey[k] = s
-	return s
-}
-
 // partMatch is one way to lay a part on a molecule: the atom of each of the part's query atoms.
 type partMatch []int32
 
 // matches lists the ways to lay part p on s that differ in a significant atom. keep filters (may be nil).
-func (p *partQuery) matches(s *pattern.Subject, keep func(queryAtom, a int) bool) []partMatch {
-	var out []partMatch
+func (p *partQuery) matches(w *workspace, s *pattern.Subject, keep func(queryAtom, a int) bool) []partMatch {
+	out := w.laying[:0]
 	p.query.EachWithin(s, keep, func(to pattern.Mapping) bool {
 		for _, old := range out {
 			if p.sameSites(old, to) {
 				return true
 			}
 		}
-		out = append(out, append(partMatch(nil), to...))
+		out = append(out, w.atoms.keep(to))
 		return len(out) < maxCombinations
 	})
-	return out
+	w.laying = out
+	return w.matches.keep(out)
 }
 
 func (p *partQuery) sameSites(a partMatch, b pattern.Mapping) bool {
@@ -91,31 +59,30 @@ type outcome struct {
 	pieces   []piece
 	mappings [][]int32 // slot -> pool atom, one per application
 	score    float64
-	why      []string
 	blocked  string // a preference model says that nothing happens, or something else
 	stopped  Kind   // the kind of that objection
 	sites    int    // applications (more than one with everywhere)
 }
 
 // run lays the transform on the molecules in every way and edits. The molecules may be used more than once.
-func (t *Transform) run(b *Book, ms []*subject) []outcome {
-	found := t.layEach(ms)
+func (t *Transform) run(w *workspace, ms []*subject) []outcome {
+	found := t.layEach(w, ms)
 	var out []outcome
 	if t.Everywhere {
-		out = t.runEverywhere(b, ms, found)
+		out = t.runEverywhere(w, ms, found)
 	}
-	x := &combiner{t: t, b: b, ms: ms, found: found, intramolecularOnly: t.Everywhere}
+	x := &combiner{t: t, w: w, ms: ms, found: found, intramolecularOnly: t.Everywhere}
 	x.next(0)
 	return append(out, x.out...)
 }
 
 // layEach lists the matches of every part on every molecule.
-func (t *Transform) layEach(ms []*subject) [][][]partMatch {
-	found := make([][][]partMatch, len(t.part[forward]))
+func (t *Transform) layEach(w *workspace, ms []*subject) [][][]partMatch {
+	found := w.found.take(len(t.part[forward]))
 	for i := range t.part[forward] {
-		found[i] = make([][]partMatch, len(ms))
+		found[i] = w.perPart.take(len(ms))
 		for j, s := range ms {
-			found[i][j] = t.part[forward][i].matches(s.Subject, nil)
+			found[i][j] = t.part[forward][i].matches(w, s.Subject, nil)
 		}
 	}
 	return found
@@ -124,7 +91,7 @@ func (t *Transform) layEach(ms []*subject) [][][]partMatch {
 // combiner runs over all ways to give each part a molecule, a copy and a match.
 type combiner struct {
 	t                  *Transform
-	b                  *Book
+	w                  *workspace
 	ms                 []*subject
 	found              [][][]partMatch
 	now                attempt
@@ -142,7 +109,7 @@ func (x *combiner) next(part int) {
 		if x.intramolecularOnly && (len(x.now.copies) > 1 || len(x.found) < 2) {
 			return
 		}
-		if o, ok := x.t.attempt(x.b, x.ms, x.now); ok {
+		if o, ok := x.t.attempt(x.w, x.ms, x.now); ok {
 			x.out = append(x.out, o)
 		}
 		return
@@ -209,27 +176,17 @@ func (t *Transform) sameAllowed(now attempt, part int, l laid) bool {
 }
 
 // attempt edits one combination and scores it; ok is false where it does not fit.
-func (t *Transform) attempt(b *Book, ms []*subject, now attempt) (outcome, bool) {
-	o := outcome{attempt: attempt{append([]int(nil), now.copies...), append([]laid(nil), now.laid...)}, sites: 1}
-	o.pool = newPool(moleculesOf(ms, o.copies))
-	o.mappings = [][]int32{t.mapping(o.pool, o.laid)}
-	return o, t.finish(b, ms, &o)
-}
-
-func moleculesOf(ms []*subject, which []int) []*molecule.Molecule {
-	out := make([]*molecule.Molecule, len(which))
-	for i, w := range which {
-		out[i] = ms[w].M
-	}
-	return out
+func (t *Transform) attempt(w *workspace, ms []*subject, now attempt) (outcome, bool) {
+	o := outcome{attempt: attempt{w.counts.keep(now.copies), w.laid.keep(now.laid)}, sites: 1}
+	o.pool = w.poolOf(ms, o.copies)
+	o.mappings = w.mappings.take(1)
+	o.mappings[0] = t.mapping(w, o.pool, o.laid)
+	return o, t.finish(w, ms, &o)
 }
 
 // mapping turns laid parts into slot -> pool atom.
-func (t *Transform) mapping(p *pool, parts []laid) []int32 {
-	to := make([]int32, len(t.script.slots))
-	for i := range to {
-		to[i] = -1
-	}
+func (t *Transform) mapping(w *workspace, p *pool, parts []laid) []int32 {
+	to := w.emptyMapping(t)
 	for i, l := range parts {
 		pq := &t.part[forward][i]
 		for q, a := range l.match {
@@ -240,25 +197,26 @@ func (t *Transform) mapping(p *pool, parts []laid) []int32 {
 }
 
 // finish edits, checks rings and scores.
-func (t *Transform) finish(b *Book, ms []*subject, o *outcome) bool {
+func (t *Transform) finish(w *workspace, ms []*subject, o *outcome) bool {
 	var err error
-	if o.pieces, err = t.script.edit(forward, o.pool, o.mappings, nil); err != nil {
+	if o.pieces, err = t.script.edit(w, forward, o.pool, o.mappings, nil); err != nil {
 		return false
 	}
 	bonus, ok := t.ringCheck(o)
-	if !ok || !o.sane() || o.idle() {
+	if !ok || !o.sane() || o.idle(w) {
 		return false
 	}
 	o.score = bonus
-	t.rate(b, ms, o)
+	t.rate(w, ms, o)
 	return true
 }
 
 // rate adds the scores of the preference models at the first application.
-func (t *Transform) rate(b *Book, ms []*subject, o *outcome) {
+func (t *Transform) rate(w *workspace, ms []*subject, o *outcome) {
 	to := o.mappings[0]
-	for _, p := range t.prefers {
-		which, atoms := -1, make([]int32, len(p.slots))
+	for k := range t.prefers {
+		p := &t.prefers[k]
+		which, atoms := -1, w.atoms.take(len(p.slots))
 		for i, s := range p.slots {
 			atoms[i] = -1
 			if to[s] < 0 {
@@ -276,14 +234,12 @@ func (t *Transform) rate(b *Book, ms []*subject, o *outcome) {
 			continue
 		}
 		var points float64
-		var why []string
 		if s := ms[o.copies[which]].Subject; p.model.ring {
-			points, why = b.arene.rate(s, atoms[0], p.rho, p.ortho)
+			points = w.b.arene.rate(s, atoms[0], p.rho, p.ortho)
 		} else {
-			points, why = p.model.rate(s, atoms)
+			points = p.model.rate(s, atoms)
 		}
 		o.score += points
-		o.why = append(o.why, why...)
 		if p.hasMin && points < p.needs && o.blocked == "" {
 			o.blocked, o.stopped = p.whyNot, KindNoReaction
 			if !p.model.ring {
@@ -351,57 +307,36 @@ func (o *outcome) ringThrough(a, b int32) int {
 }
 
 // idle says that the products are the molecules charged: nothing has happened.
-func (o *outcome) idle() bool {
+func (o *outcome) idle(w *workspace) bool {
 	if len(o.pieces) != len(o.pool.molecules) {
 		return false
 	}
-	as := make([]piece, len(o.pool.molecules))
-	for i, m := range o.pool.molecules {
-		as[i].m = m
+	var charged setKey
+	for _, m := range o.pool.molecules {
+		charged.add(m.Key())
 	}
-	return precursorKey(as) == precursorKey(o.pieces)
+	return charged == w.setOf(o.pieces)
 }
 
 func (o *outcome) sane() bool {
-	for _, p := range o.pieces {
-		if !saneRings(p.m) {
+	for i := range o.pieces {
+		if !o.pieces[i].saneRings() {
 			return false
-		}
-	}
-	return true
-}
-
-// saneRings refuses what ring strain forbids: a triple bond or cumulated double bonds in a ring under
-// eight, and a double bond at the bridgehead of a small bicycle (Bredt's rule).
-func saneRings(m *molecule.Molecule) bool {
-	for i := 0; i < m.NumBonds(); i++ {
-		bd := m.Bond(i)
-		if bd.Aromatic || bd.Order < 2 || !bd.Ring {
-			continue
-		}
-		size := m.SmallestBondRing(i)
-		if bd.Order == 3 && size < 8 {
-			return false
-		}
-		for _, a := range [2]int{int(bd.A), int(bd.B)} {
-			if size < 8 && (m.Atom(a).Element == 6 && pattern.Hybridisation(m, a) == "sp" || pattern.Bridgehead(m, a)) {
-				return false
-			}
 		}
 	}
 	return true
 }
 
 // runEverywhere lets all like sites of one molecule react at once, each with a fresh copy of the partners.
-func (t *Transform) runEverywhere(b *Book, ms []*subject, found [][][]partMatch) []outcome {
+func (t *Transform) runEverywhere(w *workspace, ms []*subject, found [][][]partMatch) []outcome {
 	var out []outcome
 	for i := range ms {
-		sites := disjoint(&t.part[forward][0], t.byPreference(b, ms[i], found[0][i]))
+		sites := disjoint(&t.part[forward][0], t.byPreference(ms[i], found[0][i]))
 		if len(sites) == 0 {
 			continue
 		}
 		for _, partners := range partnerChoices(found[1:], len(ms)) {
-			if o, ok := t.attemptEverywhere(b, ms, i, sites, partners); ok {
+			if o, ok := t.attemptEverywhere(w, ms, i, sites, partners); ok {
 				out = append(out, o)
 			}
 			if len(out) >= maxCombinations {
@@ -414,7 +349,7 @@ func (t *Transform) runEverywhere(b *Book, ms []*subject, found [][][]partMatch)
 
 // byPreference orders the matches of the first part, the site that the preferences favour first: where two
 // overlap (the two sides of an ether) it is the one that reacts.
-func (t *Transform) byPreference(b *Book, s *subject, matches []partMatch) []partMatch {
+func (t *Transform) byPreference(s *subject, matches []partMatch) []partMatch {
 	if len(t.prefers) == 0 || len(matches) < 2 {
 		return matches
 	}
@@ -431,8 +366,7 @@ func (t *Transform) byPreference(b *Book, s *subject, matches []partMatch) []par
 				}
 			}
 			if atoms[0] >= 0 && !p.model.ring {
-				add, _ := p.model.rate(s.Subject, atoms)
-				points[i] += add
+				points[i] += p.model.rate(s.Subject, atoms)
 			}
 		}
 	}
@@ -489,7 +423,7 @@ next:
 	return picked
 }
 
-func (t *Transform) attemptEverywhere(b *Book, ms []*subject, substrate int, sites []partMatch, partners partnerChoice) (outcome, bool) {
+func (t *Transform) attemptEverywhere(w *workspace, ms []*subject, substrate int, sites []partMatch, partners partnerChoice) (outcome, bool) {
 	o := outcome{sites: len(sites)}
 	o.copies = []int{substrate}
 	var perSite [][]laid
@@ -502,22 +436,11 @@ func (t *Transform) attemptEverywhere(b *Book, ms []*subject, substrate int, sit
 		perSite = append(perSite, parts)
 	}
 	o.laid = perSite[0]
-	o.pool = newPool(moleculesOf(ms, o.copies))
+	o.pool = w.poolOf(ms, o.copies)
 	for _, parts := range perSite {
-		o.mappings = append(o.mappings, t.mapping(o.pool, parts))
+		o.mappings = append(o.mappings, t.mapping(w, o.pool, parts))
 	}
-	return o, t.finish(b, ms, &o)
-}
-
-// productKey groups outcomes by what they give: the sorted keys of the pieces.
-func (o *outcome) productKey() string {
-	keys := make([][]byte, len(o.pieces))
-	for i, p := range o.pieces {
-		k := p.m.Key()
-		keys[i] = k[:]
-	}
-	sort.Slice(keys, func(i, j int) bool { return bytes.Compare(keys[i], keys[j]) < 0 })
-	return string(bytes.Join(keys, nil))
+	return o, t.finish(w, ms, &o)
 }
 
 // weight is the share that the score stands for beside the strongest score top, before normalisation.

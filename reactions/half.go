@@ -37,7 +37,7 @@ func (t *Transform) otherHalf(target *molecule.Molecule, part int, s site) *mole
 	}
 	for q := range pq.query.Atoms {
 		slot := t.script.slotOf[backward][pq.first+q]
-		twin := t.script.counterpart(slot)
+		twin := t.script.twin[slot]
 		if twin < 0 {
 			twin = t.inSamePart(slot)
 		}
@@ -65,7 +65,7 @@ func (t *Transform) laidSlots(s site) []int32 {
 	for i := range at {
 		at[i] = -1
 	}
-	for part, m := range s.laid {
+	for part, m := range s {
 		t.layPart(at, part, m, 0)
 	}
 	return at

@@ -1,17 +1,14 @@
 package reactions
 
-import (
-	"shelfward/molecule"
-	"shelfward/molecule/pattern"
-)
+import "shelfward/molecule"
 
 // setHydrogens gives every touched atom the hydrogens that its new bonds leave room for.
 func (e *editor) setHydrogens(mappings [][]int32) error {
-	made := make(map[int32]pattern.QueryAtom)
+	e.madeOf = zeroed(e.madeOf, len(e.b.Atoms))
 	for _, to := range mappings {
-		for i, sl := range e.s.slots {
-			if to[i] >= 0 && sl.made(e.d) >= 0 {
-				made[to[i]] = e.s.side[1-e.d].Atoms[sl.made(e.d)]
+		for i := range e.s.slots {
+			if q := e.s.slots[i].made(e.d); to[i] >= 0 && q >= 0 {
+				e.madeOf[to[i]] = int32(q + 1)
 			}
 		}
 	}
@@ -20,16 +17,12 @@ func (e *editor) setHydrogens(mappings [][]int32) error {
 		if !e.touched[a] || e.dead[a] {
 			continue
 		}
-		qa, known := made[int32(a)]
-		written, lower := -1, false
-		if known {
-			written, lower = qa.Hydrogens, qa.OnlyAromatic()
-		}
-		if !known {
+		if e.madeOf[a] == 0 {
 			e.neutralise(a, sum[a])
 			continue
 		}
-		h, ok := e.hydrogensAfter(a, sum[a], arom[a], degree[a], written, lower)
+		qa := &e.s.side[1-e.d].Atoms[e.madeOf[a]-1]
+		h, ok := e.hydrogensAfter(a, sum[a], arom[a], degree[a], qa.Hydrogens, qa.OnlyAromatic())
 		if !ok {
 			return errNoFit
 		}

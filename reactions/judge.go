@@ -31,7 +31,7 @@ const (
 // read as their free forms; ions without a structure of their own are dropped. described is false when
 // no conditions were given: then any condition set of a transform will do.
 func (b *Book) Judge(ctx context.Context, reactants, products []*molecule.Molecule, with reagent.Description, described bool, table *reagent.Table) (Judgement, error) {
-	j := &judge{b: b, table: table, with: with, described: described, names: map[string]*reagent.Reagent{}}
+	j := &judge{b: b, w: b.newWorkspace(), table: table, with: with, described: described, names: map[string]*reagent.Reagent{}}
 	for _, m := range reactants {
 		j.add(m)
 	}
@@ -51,6 +51,7 @@ func (b *Book) Judge(ctx context.Context, reactants, products []*molecule.Molecu
 // judge is the state of one judgement.
 type judge struct {
 	b         *Book
+	w         *workspace
 	table     *reagent.Table
 	with      reagent.Description
 	described bool
@@ -313,7 +314,7 @@ func (j *judge) try(t *Transform, pool []*subject) {
 			break
 		}
 	}
-	outs := t.run(j.b, pool)
+	outs := t.run(j.w, pool)
 	if len(outs) == 0 {
 		return
 	}
@@ -341,7 +342,7 @@ func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) asse
 			continue
 		}
 		var a assessment
-		a.weigh(outs, claim)
+		a.weigh(j.w, outs, claim)
 		if !a.found {
 			if best.products == nil {
 				best.products = a.products
@@ -350,7 +351,7 @@ func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) asse
 		}
 		a.judgeShare(t)
 		a.judgeStereo(pool)
-		a.judgeOver(j.b, t, pool)
+		a.judgeOver(j.w, t, pool)
 		return a
 	}
 	return best
@@ -365,7 +366,7 @@ func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject, 
 			j.markCompanion(companion, pool, busy)
 		}
 	}
-	weighed := t.otherSites(pool, busy)
+	weighed := t.otherSites(j.w, pool, busy)
 	var out []Objection
 	for i, s := range pool {
 		used := false
@@ -373,7 +374,7 @@ func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject, 
 			used = used || which == i
 		}
 		if used {
-			out = append(out, j.b.media.objections(c.Media, s.Subject, j.b.groups, busy[i], weighed[i])...)
+			out = append(out, j.b.media.objections(c.Media, s.Subject, busy[i], weighed[i])...)
 		}
 	}
 	return worstPerText(out)
@@ -382,7 +383,7 @@ func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject, 
 // markCompanion marks the atoms that a companion transform of the same flask takes care of.
 func (j *judge) markCompanion(t *Transform, pool []*subject, busy [][]bool) {
 	for i, s := range pool {
-		for _, m := range t.part[forward][0].matches(s.Subject, nil) {
+		for _, m := range t.part[forward][0].matches(j.w, s.Subject, nil) {
 			for _, a := range m {
 				busy[i][a] = true
 			}

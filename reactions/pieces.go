@@ -3,90 +3,90 @@ package reactions
 import "shelfward/molecule"
 
 // pieces builds the connected pieces that are left.
-func (e *editor) pieces() ([]piece, error) {
-	n := len(e.b.Atoms)
-	e.label = zeroed(e.label, n)
-	label := e.label
+func (e *editor) pieces(w *workspace) ([]piece, error) {
+	e.label = sized(e.label, len(e.b.Atoms))
+	label := e.label // union-find: an atom of the same piece, the lowest at the root
 	for i := range label {
 		label[i] = int32(i)
 	}
-	var find func(a int32) int32
-	find = func(a int32) int32 {
-		for label[a] != a {
-			label[a] = label[label[a]]
-			a = label[a]
-		}
-		return a
-	}
-	for _, b := range e.b.Bonds {
+	for i := range e.b.Bonds {
+		b := &e.b.Bonds[i]
 		if b.Order == 0 || e.dead[b.A] || e.dead[b.B] {
 			continue
 		}
-		x, y := find(b.A), find(b.B)
+		x, y := rootOf(label, b.A), rootOf(label, b.B)
 		if x != y {
 			label[max(x, y)] = min(x, y)
 		}
 	}
-	return e.build(e.number(find, label), label)
+	return e.build(w, e.number(label))
 }
 
-// number turns the roots of the union into piece numbers, written into label; it returns their count.
-func (e *editor) number(find func(int32) int32, label []int32) int {
-	count := 0
-	e.root = zeroed(e.root, len(label))
-	piece := e.root
-	for a := range label {
-		if e.dead[a] {
-			continue
-		}
-		if root := find(int32(a)); int(root) == a {
-			piece[a] = int32(count)
-			count++
-		}
+// rootOf follows label to the root of a and shortens the way.
+func rootOf(label []int32, a int32) int32 {
+	for label[a] != a {
+		label[a] = label[label[a]]
+		a = label[a]
 	}
-	for a := range label {
-		label[a] = find(int32(a))
-	}
-	for a := range label {
-		label[a] = piece[label[a]]
-	}
-	return count
+	return a
 }
 
-// build freezes the pieces; label gives the piece of every atom.
-func (e *editor) build(count int, label []int32) ([]piece, error) {
-	builders := e.emptyBuilders(count)
-	out := make([]piece, count)
-	e.index = zeroed(e.index, len(label))
+// number turns the roots into piece numbers, written into label, and counts the atoms of each piece.
+func (e *editor) number(label []int32) (sizes []int32) {
+	e.sizes = e.sizes[:0]
+	for a := range label { // a root comes before its atoms
+		switch root := label[a]; {
+		case e.dead[a]:
+			label[a] = -1
+		case int(root) == a:
+			label[a] = int32(len(e.sizes))
+			e.sizes = append(e.sizes, 1)
+		default:
+			label[a] = label[root]
+			e.sizes[label[a]]++
+		}
+	}
+	return e.sizes
+}
+
+// build freezes the pieces; label gives the piece of every atom, sizes the atoms of every piece.
+func (e *editor) build(w *workspace, sizes []int32) ([]piece, error) {
+	builders := e.emptyBuilders(len(sizes))
+	out := w.pieces.take(len(sizes))
+	for i := range out {
+		out[i].from = w.atoms.take(int(sizes[i]))
+	}
+	e.index = sized(e.index, len(e.label))
 	index := e.index
 	for a := range e.b.Atoms {
 		if e.dead[a] {
 			continue
 		}
-		p := label[a]
+		p := e.label[a]
 		index[a] = int32(builders[p].AddAtom(e.b.Atoms[a]))
 		from := int32(-1)
 		if a < e.p.atoms {
 			from = int32(a)
 		}
-		out[p].from = append(out[p].from, from)
+		out[p].from[index[a]] = from
 	}
-	e.bondIndex = zeroed(e.bondIndex, len(e.b.Bonds))
+	e.bondIndex = sized(e.bondIndex, len(e.b.Bonds))
 	bondIndex := e.bondIndex
-	for i, b := range e.b.Bonds {
+	for i := range e.b.Bonds {
+		b := &e.b.Bonds[i]
 		bondIndex[i] = -1
 		if b.Order == 0 || e.dead[b.A] || e.dead[b.B] {
 			continue
 		}
-		bondIndex[i] = int32(builders[label[b.A]].AddBond(int(index[b.A]), int(index[b.B]), b.Order))
+		bondIndex[i] = int32(builders[e.label[b.A]].AddBond(int(index[b.A]), int(index[b.B]), b.Order))
 	}
-	e.copyMarks(builders, label, index, bondIndex)
+	e.copyMarks(builders, e.label, index, bondIndex)
 	for i := range out {
-		m, err := builders[i].Build()
+		m, err := w.build(&builders[i])
 		if err != nil {
 			return nil, err
 		}
-		out[i].m = m
+		out[i].made = m
 	}
 	return out, nil
 }

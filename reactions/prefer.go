@@ -118,22 +118,17 @@ func (l *loader) compileModel(src *sourceModel, a *arene, file string) {
 	l.models[m.id] = m
 }
 
-// rate returns the score of the model at atoms (indices in s, -1 where a class lies elsewhere) and the
-// reasons that counted.
-func (m *model) rate(s *pattern.Subject, atoms []int32) (total float64, why []string) {
-	for _, sc := range m.scores {
-		if !sc.fits(s, atoms) {
-			continue
-		}
-		total += sc.add
-		if sc.why != "" {
-			why = append(why, sc.why)
-		}
-		if m.first {
-			break
+// rate returns the score of the model at atoms (indices in s, -1 where a class lies elsewhere).
+func (m *model) rate(s *pattern.Subject, atoms []int32) (total float64) {
+	for i := range m.scores {
+		if sc := &m.scores[i]; sc.fits(s, atoms) {
+			total += sc.add
+			if m.first {
+				break
+			}
 		}
 	}
-	return total, why
+	return total
 }
 
 // stopKind is the kind of objection that the score weighing most against the site names.
@@ -151,19 +146,4 @@ func (m *model) stopKind(s *pattern.Subject, atoms []int32) Kind {
 }
 
 // fits says whether the pattern matches with its classes 1, 2, ... on atoms.
-func (sc *score) fits(s *pattern.Subject, atoms []int32) bool {
-	found := false
-	for class := 1; class <= len(atoms); class++ {
-		if q := sc.query.AtomOfClass(class); q >= 0 && atoms[class-1] < 0 {
-			return false
-		}
-	}
-	sc.query.EachWithin(s, func(q, a int) bool {
-		class := sc.query.Atoms[q].Class
-		return class == 0 || class > len(atoms) || int32(a) == atoms[class-1]
-	}, func(pattern.Mapping) bool {
-		found = true
-		return false
-	})
-	return found
-}
+func (sc *score) fits(s *pattern.Subject, atoms []int32) bool { return sc.query.FitsAt(s, atoms) }

@@ -11,7 +11,7 @@ import (
 // forms, each molecule once, in a fixed order. Sites that a preference model calls dead are left out; the
 // media are not looked at: the answer is a guide to what is one step away, not a judgement.
 func (b *Book) Products(ctx context.Context, start *molecule.Molecule, partners []*molecule.Molecule) ([]*molecule.Molecule, error) {
-	cache := b.newSubjects()
+	cache := b.newWorkspace()
 	x := cache.of(start.FreeForm())
 	var mates []*subject
 	for _, p := range partners {
@@ -41,13 +41,13 @@ func (b *Book) Products(ctx context.Context, start *molecule.Molecule, partners 
 		if !t.anyPart(x) {
 			continue
 		}
-		collect(t.run(b, []*subject{x}))
+		collect(t.run(cache, []*subject{x}))
 		if len(t.part[forward]) < 2 {
 			continue
 		}
 		for _, m := range mates {
 			if t.anyPart(m) {
-				collect(t.run(b, []*subject{x, m}))
+				collect(t.run(cache, []*subject{x, m}))
 			}
 		}
 	}

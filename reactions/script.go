@@ -52,6 +52,8 @@ type script struct {
 	bonds     []bondEdit
 	relations []relation
 	touched   []bool // per slot: a bond, charge or hydrogen count changes, or the atom comes or goes
+	twin      []int  // per slot: its counterpart, see there
+	aromatic  bool   // an aromatic bond changes
 }
 
 // partOf returns the part (from 0) of a query atom on one side.
@@ -67,6 +69,10 @@ func newScript(left, right *pattern.Query, leftStart, rightStart []int) (*script
 		return nil, err
 	}
 	s.markTouched()
+	s.twin = make([]int, len(s.slots))
+	for i := range s.slots {
+		s.twin[i] = s.counterpart(i)
+	}
 	return s, nil
 }
 
@@ -133,6 +139,7 @@ func (s *script) pairBonds() error {
 			continue
 		}
 		s.bonds = append(s.bonds, e)
+		s.aromatic = s.aromatic || e.order[0] == molecule.OrderAromatic || e.order[1] == molecule.OrderAromatic
 	}
 	return nil
 }

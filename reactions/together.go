@@ -24,8 +24,8 @@ func (x *expander) undoCompanion(d *draft, c *Conditions, companion *Transform) 
 		if d.uses[i] != 1 {
 			continue
 		}
-		inner := &expander{b: x.b, target: r, stocked: x.stocked, subjects: x.subjects}
-		for _, p := range companion.backwards(x.b, r, x.stocked, x.subjects) {
+		inner := &expander{b: x.b, target: r, stocked: x.stocked, w: x.w}
+		for _, p := range companion.backwards(x.w, r, x.stocked) {
 			e := inner.draft(companion, p)
 			if !e.found || fatal(e.objections) {
 				continue

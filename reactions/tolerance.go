@@ -2,7 +2,8 @@ package reactions
 
 import (
 	"fmt"
-	"sort"
+	"maps"
+	"slices"
 
 	"shelfward/molecule/pattern"
 	"shelfward/rules"
@@ -29,15 +30,15 @@ type toleranceTable struct {
 
 type medium struct {
 	id, name, source string
-	groups           []groupLevel // sorted by group id
-	spared           []string     // groups said to survive though a wider group does not, sorted
+	groups           []groupLevel // in order of group id
+	spared           []int        // groups said to survive though a wider group does not
 }
 
+// groupLevel is what a medium does to a group that does not just survive or come back unchanged.
 type groupLevel struct {
-	group string
-	level level
-	why   string
-	kind  Kind
+	group     int // see pattern.Groups.Index
+	level     level
+	objection Objection
 }
 
 type sourceTolerance struct {
@@ -70,21 +71,20 @@ func (l *loader) loadTolerance() {
 	}
 	for _, src := range file.Media {
 		m := &medium{id: src.ID.Value, name: src.Name, source: src.Source.Text}
-		for g, word := range src.Groups {
+		for _, g := range slices.Sorted(maps.Keys(src.Groups)) {
+			word, at := src.Groups[g], l.groups.Index(g)
 			lv, ok := levels[word]
 			switch {
 			case !ok:
 				l.errs = append(l.errs, src.Place.Errorf("group %s: survives, spent, competes, reacts or first was expected, not %q", g, word))
-			case !l.groups.Has(g):
+			case at < 0:
 				l.errs = append(l.errs, src.Place.Errorf("no group %q in rules/groups.yaml%s", g, didYouMean(g, l.groups.IDs())))
 			case lv == survives:
-				m.spared = append(m.spared, g)
-			default:
-				m.groups = append(m.groups, groupLevel{g, lv, src.Why[g], kindOf(src.Kinds[g])})
+				m.spared = append(m.spared, at)
+			case lv > spent:
+				m.groups = append(m.groups, groupLevel{at, lv, m.objection(l.groups.Name(g), lv, src.Why[g], kindOf(src.Kinds[g]))})
 			}
 		}
-		sort.Strings(m.spared)
-		sort.Slice(m.groups, func(i, j int) bool { return m.groups[i].group < m.groups[j].group })
 		if l.media.media[m.id] != nil {
 			l.errs = append(l.errs, src.Place.Errorf("the medium %q stands twice", m.id))
 			continue
@@ -105,23 +105,21 @@ func kindOf(word string) Kind {
 // objections lists what the media do to the groups of s that do not overlap the atoms marked busy.
 // Atoms marked weighed (may be nil) are other sites of the same transform: its preferences weigh them, so
 // that they compete is no objection of its own.
-func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *pattern.Groups, busy, weighed []bool) []Objection {
+func (t *toleranceTable) objections(media []string, s *pattern.Subject, busy, weighed []bool) []Objection {
 	var out []Objection
 	for _, id := range media {
 		m := t.media[id]
 		if m == nil {
 			continue
 		}
-		for _, gl := range m.groups {
-			if gl.level == spent {
-				continue
-			}
+		for i := range m.groups {
+			gl := &m.groups[i]
 			taken := busy
 			if gl.level == competes && weighed != nil {
 				taken = weighed
 			}
-			if free := freeInstances(s, gl.group, m.sparing(s, taken)); free > 0 {
-				out = append(out, m.objection(gl, groups.Name(gl.group)))
+			if m.touches(s, gl.group, taken) {
+				out = append(out, gl.objection)
 			}
 		}
 	}
@@ -129,13 +127,13 @@ func (t *toleranceTable) objections(media []string, s *pattern.Subject, groups *
 }
 
 // otherSites adds to the busy atoms of each molecule the sites where t could act as well.
-func (t *Transform) otherSites(ms []*subject, busy [][]bool) [][]bool {
+func (t *Transform) otherSites(w *workspace, ms []*subject, busy [][]bool) [][]bool {
 	out := make([][]bool, len(ms))
 	for i, s := range ms {
 		out[i] = append([]bool(nil), busy[i]...)
 		for k := range t.part[forward] {
 			p := &t.part[forward][k]
-			for _, m := range p.matches(s.Subject, nil) {
+			for _, m := range p.matches(w, s.Subject, nil) {
 				for _, q := range p.significant {
 					out[i][m[q]] = true
 				}
@@ -145,39 +143,34 @@ func (t *Transform) otherSites(ms []*subject, busy [][]bool) [][]bool {
 	return out
 }
 
-// sparing adds to the busy atoms those of groups that survive in the medium.
-func (m *medium) sparing(s *pattern.Subject, busy []bool) []bool {
-	out := busy
-	for i, g := range m.spared {
-		if i == 0 {
-			out = append([]bool(nil), busy...)
-		}
-		for _, set := range s.Instances(g) {
-			for _, a := range set {
-				out[a] = true
+// touches says whether a medium finds an occurrence of the group in s that overlaps neither the atoms
+// taken nor a group that survives in it.
+func (m *medium) touches(s *pattern.Subject, group int, taken []bool) bool {
+next:
+	for _, set := range s.InstancesOf(group) {
+		for _, a := range set {
+			if taken[a] || m.spares(s, int(a)) {
+				continue next
 			}
 		}
+		return true
 	}
-	return out
+	return false
 }
 
-func freeInstances(s *pattern.Subject, group string, busy []bool) int {
-	n := 0
-	for _, set := range s.Instances(group) {
-		overlaps := false
-		for _, a := range set {
-			overlaps = overlaps || busy[a]
-		}
-		if !overlaps {
-			n++
+// spares says whether atom a belongs to a group that survives.
+func (m *medium) spares(s *pattern.Subject, a int) bool {
+	for _, g := range m.spared {
+		if s.InGroup(g, a) {
+			return true
 		}
 	}
-	return n
+	return false
 }
 
-func (m *medium) objection(gl groupLevel, name string) Objection {
-	o := Objection{Kind: gl.kind, Source: m.source, Fatal: gl.level >= reacts}
-	switch gl.level {
+func (m *medium) objection(name string, lv level, why string, kind Kind) Objection {
+	o := Objection{Kind: kind, Source: m.source, Fatal: lv >= reacts}
+	switch lv {
 	case competes:
 		o.Text = fmt.Sprintf("the %s may react too (%s)", name, m.name)
 	case reacts:
@@ -186,20 +179,19 @@ func (m *medium) objection(gl groupLevel, name string) Objection {
 		o.Text = fmt.Sprintf("the %s reacts before the wanted group (%s)", name, m.name)
 	}
 	switch {
-	case gl.why != "" && gl.kind != KindGroup:
-		o.Text = gl.why
-	case gl.why != "":
-		o.Text += ": " + gl.why
+	case why != "" && kind != KindGroup:
+		o.Text = why
+	case why != "":
+		o.Text += ": " + why
 	}
 	return o
 }
 
+// worstPerText keeps the first of objections that say the same, in the room of list.
 func worstPerText(list []Objection) []Objection {
-	var out []Objection
-	seen := map[string]bool{}
+	out := list[:0]
 	for _, o := range list {
-		if !seen[o.Text] {
-			seen[o.Text] = true
+		if !slices.ContainsFunc(out, func(old Objection) bool { return old.Text == o.Text }) {
 			out = append(out, o)
 		}
 	}

@@ -18,14 +18,15 @@ type Transform struct {
 	File                      string // file and line of its definition
 	Examples, Rejects         []Example
 
-	script      *script
-	part        [2][]partQuery // per side
-	choices     map[int][]*molecule.Molecule
-	partChoices map[int][]coproduct // product part -> molecules that the target need not contain
-	same        []int               // reactant parts (from 0) that must be one kind of molecule
-	closes      ringSizes
-	prefers     []preference
-	goesOn      []goesOn
+	script       *script
+	part         [2][]partQuery // per side
+	choices      map[int][]*molecule.Molecule
+	combinations []fragments         // of the choices, see fragmentChoices
+	partChoices  map[int][]coproduct // product part -> molecules that the target need not contain
+	same         []int               // reactant parts (from 0) that must be one kind of molecule
+	closes       ringSizes
+	prefers      []preference
+	goesOn       []goesOn
 }
 
 // partQuery is one part of a side, compiled alone: its query atoms are those of the side from first on.
@@ -39,6 +40,7 @@ type partQuery struct {
 type coproduct struct {
 	m       *molecule.Molecule
 	classAt map[int]int32
+	laid    partMatch // the part on m, nil: it does not fit, or same
 	same    bool
 }
 

@@ -65,7 +65,7 @@ func CompileParts(texts []string, where Where, groups *Groups) (q *Query, firstA
 func (q *Query) finish() {
 	q.labelParts()
 	q.countNeeded()
-	q.buildPlan()
+	q.plan = q.planFrom(-1)
 }
 
 // labelParts numbers the connected pieces in order of their first atom.
@@ -139,24 +139,46 @@ func rarity(a *QueryAtom) int {
 	return r
 }
 
-func (q *Query) buildPlan() {
+// planFrom makes a plan that begins at atom first, or at the rarest where first is negative; every
+// further part begins at its rarest atom.
+func (q *Query) planFrom(first int) (plan []planStep) {
 	done := make([]bool, len(q.Atoms))
-	for part := 0; part < q.Parts; part++ {
-		start := -1
-		for i := range q.Atoms {
-			if q.Part[i] == part && (start < 0 || rarity(&q.Atoms[i]) > rarity(&q.Atoms[start])) {
-				start = i
-			}
-		}
-		q.plan = append(q.plan, planStep{atom: start, anchor: -1, bond: -1})
-		done[start] = true
-		for q.growPlan(part, done) {
+	var starts []int
+	if first >= 0 {
+		starts = append(starts, first)
+	}
+	for part := range q.Parts {
+		if first < 0 || part != q.Part[first] {
+			starts = append(starts, q.rarest(part))
 		}
 	}
+	for _, start := range starts {
+		plan = append(plan, planStep{atom: start, anchor: -1, bond: -1})
+		done[start] = true
+		for {
+			step, more := q.nextStep(q.Part[start], done)
+			if !more {
+				break
+			}
+			plan = append(plan, step)
+		}
+	}
+	return plan
 }
 
-// growPlan adds the next atom of the part: the one with most bonds to matched atoms, then the rarest.
-func (q *Query) growPlan(part int, done []bool) bool {
+// rarest is the first of the rarest atoms of a part.
+func (q *Query) rarest(part int) int {
+	start := -1
+	for i := range q.Atoms {
+		if q.Part[i] == part && (start < 0 || rarity(&q.Atoms[i]) > rarity(&q.Atoms[start])) {
+			start = i
+		}
+	}
+	return start
+}
+
+// nextStep takes the next atom of the part: the one with most bonds to matched atoms, then the rarest.
+func (q *Query) nextStep(part int, done []bool) (step planStep, more bool) {
 	type choice struct{ atom, links, rare int }
 	var choices []choice
 	for i := range q.Atoms {
@@ -174,7 +196,7 @@ func (q *Query) growPlan(part int, done []bool) bool {
 		}
 	}
 	if len(choices) == 0 {
-		return false
+		return step, false
 	}
 	sort.SliceStable(choices, func(x, y int) bool {
 		if choices[x].links != choices[y].links {
@@ -182,7 +204,7 @@ func (q *Query) growPlan(part int, done []bool) bool {
 		}
 		return choices[x].rare > choices[y].rare
 	})
-	step := planStep{atom: choices[0].atom, anchor: -1}
+	step = planStep{atom: choices[0].atom, anchor: -1}
 	for bi, b := range q.Bonds {
 		other := -1
 		if b.A == step.atom && done[b.B] {
@@ -199,6 +221,5 @@ func (q *Query) growPlan(part int, done []bool) bool {
 		}
 	}
 	done[step.atom] = true
-	q.plan = append(q.plan, step)
-	return true
+	return step, true
 }

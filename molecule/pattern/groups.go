@@ -2,7 +2,6 @@ package pattern
 
 import (
 	"fmt"
-	"slices"
 	"strconv"
 	"strings"
 )
@@ -65,6 +64,9 @@ func coreAtoms(q *Query, classes []int) []int {
 	return at
 }
 
+// Index numbers the groups from 0 in order of definition; -1 for an unknown id.
+func (g *Groups) Index(id string) int { return g.index(id) }
+
 func (g *Groups) index(id string) int {
 	if g == nil {
 		return -1
@@ -93,77 +95,6 @@ func (g *Groups) Name(id string) string {
 		return g.list[i].Name
 	}
 	return id
-}
-
-// fill finds the atoms of a group. A group can only ask for earlier groups, so there is no circle.
-func (s *Subject) fill(g int) *groupAtoms {
-	if s.member == nil {
-		s.member = make([]*groupAtoms, len(s.groups.list))
-	}
-	if ga := s.member[g]; ga != nil {
-		return ga
-	}
-	var ga *groupAtoms
-	for qi, q := range s.groups.list[g].Queries {
-		c := q.screened()
-		if !q.possible(s, c) {
-			continue
-		}
-		x := newMatcher(q, s, c)
-		x.core, x.group = s.groups.list[g].core[qi], ga
-		x.step(0)
-		ga = x.group
-		x.free()
-	}
-	if ga == nil {
-		ga = noAtoms
-	}
-	s.member[g] = ga
-	return ga
-}
-
-// list finds the occurrences of a group.
-func (s *Subject) list(g int) [][]int32 {
-	ga := s.fill(g)
-	if ga.listed {
-		return ga.instances
-	}
-	ga.listed = true
-	for qi, q := range s.groups.list[g].Queries {
-		core := s.groups.list[g].core[qi]
-		q.Each(s, func(to Mapping) bool {
-			set := make([]int32, len(core))
-			for i, c := range core {
-				set[i] = to[c]
-			}
-			slices.Sort(set)
-			if !slices.ContainsFunc(ga.instances, func(s []int32) bool { return slices.Equal(s, set) }) {
-				ga.instances = append(ga.instances, set)
-			}
-			return true
-		})
-	}
-	return ga.instances
-}
-
-func (s *Subject) inGroup(g, a int) bool {
-	in := s.fill(g).in
-	return in != nil && in[a>>6]>>(a&63)&1 != 0
-}
-
-// In says whether atom a belongs to the core of the group; an unknown id is in no molecule.
-func (s *Subject) In(id string, a int) bool {
-	g := s.groups.index(id)
-	return g >= 0 && s.inGroup(g, a)
-}
-
-// Instances returns the occurrences of a group, each the sorted atoms of its core: shared, read only.
-func (s *Subject) Instances(id string) [][]int32 {
-	g := s.groups.index(id)
-	if g < 0 {
-		return nil
-	}
-	return s.list(g)
 }
 
 // within keeps the keys whose classes text has, where a group has several alternative patterns.

@@ -16,32 +16,29 @@ type Subject struct {
 	bond     []uint8 // order bits and bondRingBit
 	elements [2]uint64
 	features features
-	count    [119]uint16   // atoms per element, a quick refusal
-	member   []*groupAtoms // per group, filled on first use
+	count    [119]uint16 // atoms per element, a quick refusal
+	members  members
 
 	atomRoom [24]atomCode // where atom and bond of most molecules lie
 	bondRoom [28]uint8
 }
-
-// groupAtoms holds the occurrences of one group in one molecule.
-type groupAtoms struct {
-	in        []uint64 // bit set of the atoms of the core, nil: none
-	small     [1]uint64
-	listed    bool // instances are known
-	instances [][]int32
-}
-
-// mark adds a to the atoms of the core.
-func (ga *groupAtoms) mark(a int32) { ga.in[a>>6] |= 1 << (a & 63) }
-
-// noAtoms is shared by all groups that do not occur.
-var noAtoms = &groupAtoms{listed: true}
 
 // NewSubject prepares m; groups may be nil.
 func NewSubject(m *molecule.Molecule, groups *Groups) *Subject {
 	s := &Subject{M: m, groups: groups}
 	s.index()
 	return s
+}
+
+// Reset makes s the subject of another molecule, in the same memory.
+func (s *Subject) Reset(m *molecule.Molecule, groups *Groups) {
+	s.M, s.groups = m, groups
+	s.elements, s.features, s.count = [2]uint64{}, features{}, [119]uint16{}
+	s.members.at = s.members.at[:0]
+	s.index()
+	if groups != nil {
+		s.members.reset(len(groups.list), len(s.atom))
+	}
 }
 
 // Mapping gives for each query atom the atom of the molecule.
@@ -65,6 +62,35 @@ func (q *Query) EachWithin(s *Subject, allowed func(queryAtom, a int) bool, yiel
 	x.free()
 }
 
+// FitsAt says whether q occurs in s with its atom of class 1 on atoms[0], that of class 2 on atoms[1] and
+// so on; what has a higher class or none goes anywhere. A negative entry fits no atom.
+func (q *Query) FitsAt(s *Subject, atoms []int32) bool {
+	c := q.screened()
+	for _, i := range c.numbered {
+		class := q.Atoms[i].Class
+		if class > len(atoms) {
+			continue
+		}
+		if a := atoms[class-1]; a < 0 || s.atom[a]&c.atoms[i].mask != c.atoms[i].value {
+			return false
+		}
+	}
+	if !q.possible(s, c) {
+		return false
+	}
+	x := newMatcher(q, s, c)
+	x.plan, x.pins = c.fromFirst, x.set
+	for i := range x.pins {
+		x.pins[i] = -1
+		if class := q.Atoms[i].Class; class > 0 && class <= len(atoms) {
+			x.pins[i] = atoms[class-1]
+		}
+	}
+	found := !x.step(0)
+	x.free()
+	return found
+}
+
 // Matches says whether q occurs in s at all.
 func (q *Query) Matches(s *Subject) bool {
 	c := q.screened()
@@ -84,9 +110,11 @@ type matcher struct {
 	screen  *screen
 	allowed func(queryAtom, a int) bool
 	yield   func(Mapping) bool
-	collect bool        // gather sets of atoms instead of calling yield
-	core    []int       // with group: the query atoms to mark
-	group   *groupAtoms // mark atoms in it instead of calling yield
+	collect bool  // gather sets of atoms instead of calling yield
+	core    []int // the query atoms to mark in the set mark instead of calling yield
+	mark    []uint64
+	plan    []planStep
+	pins    []int32 // per query atom the atom it must take, -1 any; nil: all are free
 	to      []int32
 	used    []bool
 	sets    []int32 // the sets gathered, one after the other, each sorted
@@ -97,7 +125,7 @@ var matchers = sync.Pool{New: func() any { return new(matcher) }}
 
 func newMatcher(q *Query, s *Subject, c *screen) *matcher {
 	x := matchers.Get().(*matcher)
-	x.q, x.s, x.screen = q, s, c
+	x.q, x.s, x.screen, x.plan = q, s, c, q.plan
 	if cap(x.to) < len(q.Atoms) {
 		x.to, x.set = make([]int32, MaxAtoms), make([]int32, MaxAtoms)
 	}
@@ -110,28 +138,35 @@ func newMatcher(q *Query, s *Subject, c *screen) *matcher {
 
 // free gives x back. A run that panics keeps it.
 func (x *matcher) free() {
-	x.q, x.s, x.screen, x.allowed, x.yield, x.collect, x.core, x.group = nil, nil, nil, nil, nil, false, nil, nil
+	x.q, x.s, x.screen, x.allowed, x.yield, x.collect, x.core, x.mark, x.pins = nil, nil, nil, nil, nil, false, nil, nil, nil
 	matchers.Put(x)
 }
 
 // step matches the plan from place k on and returns false when no more is wanted.
 func (x *matcher) step(k int) bool {
-	if k == len(x.q.plan) {
+	if k == len(x.plan) {
 		switch {
 		case x.collect:
 			x.addSet()
 			return true
 		case x.core != nil:
-			x.markCore()
+			for _, i := range x.core {
+				a := x.to[i]
+				x.mark[a>>6] |= 1 << (a & 63)
+			}
 			return true
 		case x.yield == nil:
 			return false
 		}
 		return x.yield(x.to)
 	}
-	st := &x.q.plan[k]
+	st := &x.plan[k]
 	c := &x.screen.atoms[st.atom]
 	if st.anchor < 0 {
+		if x.pins != nil && x.pins[st.atom] >= 0 {
+			a := int(x.pins[st.atom])
+			return x.s.atom[a]&c.mask != c.value || x.used[a] || x.try(st, c, a, k)
+		}
 		for a, code := range x.s.atom {
 			if code&c.mask == c.value && !x.used[a] && !x.try(st, c, a, k) {
 				return false
@@ -162,6 +197,9 @@ func (x *matcher) try(st *planStep, c *atomScreen, a, k int) bool {
 	if c.several && c.elements[x.s.atom[a]&elementMask>>6]>>(x.s.atom[a]&63)&1 == 0 {
 		return true
 	}
+	if x.pins != nil && x.pins[st.atom] >= 0 && x.pins[st.atom] != int32(a) {
+		return true
+	}
 	if c.slow && !x.q.Atoms[st.atom].restFits(x.s, a) || x.allowed != nil && !x.allowed(st.atom, a) {
 		return true
 	}
@@ -175,19 +213,6 @@ func (x *matcher) try(st *planStep, c *atomScreen, a, k int) bool {
 	more := x.step(k + 1)
 	x.used[a] = false
 	return more
-}
-
-// markCore marks the atoms of the core in the group, which is made by the first.
-func (x *matcher) markCore() {
-	if x.group == nil {
-		x.group = &groupAtoms{}
-		if x.group.in = x.group.small[:]; len(x.s.atom) > 64 {
-			x.group.in = make([]uint64, (len(x.s.atom)+63)/64)
-		}
-	}
-	for _, i := range x.core {
-		x.group.mark(x.to[i])
-	}
 }
 
 // restFits checks what the code of an atom does not hold.

@@ -5,6 +5,9 @@ type screen struct {
 	atoms    []atomScreen
 	features features
 	sets     [][2]uint64 // the molecule must have an element of each
+
+	numbered  []int      // atoms with a class
+	fromFirst []planStep // a plan that begins at class 1, where there is one
 }
 
 // atomScreen is a query atom in the form of atomCode.
@@ -30,6 +33,12 @@ func (q *Query) screened() *screen {
 	}
 	q.addFacts(s)
 	q.markLikeFirst(s)
+	for i := range q.Atoms {
+		if q.Atoms[i].Class > 0 {
+			s.numbered = append(s.numbered, i)
+		}
+	}
+	s.fromFirst = q.planFrom(q.AtomOfClass(1))
 	q.screen.Store(s)
 	return s
 }
