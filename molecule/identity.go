@@ -71,3 +71,30 @@ func (m *Molecule) Key() Key { return m.exactIdentity().key }
 
 // FlatKey is the identity without stereo.
 func (m *Molecule) FlatKey() Key { return m.flatIdentity().key }
+
+// Sketch is a hash of the atoms with their neighbours and bonds that equal molecules share, stereo left out.
+// Different molecules may share it as well, but it costs a fraction of Key: where two sketches differ, no
+// key need be made.
+func (m *Molecule) Sketch() uint64 {
+	sum := uint64(0)
+	for a := range m.atoms {
+		around := uint64(0)
+		for _, nb := range m.Neighbors(a) {
+			b := &m.bonds[nb.Bond]
+			order := uint64(b.Order)
+			if b.Aromatic {
+				order = uint64(OrderAromatic)
+			}
+			around += stir(atomColour(&m.atoms[nb.Atom], m.Degree(int(nb.Atom))) ^ order<<56)
+		}
+		sum += stir(around + atomColour(&m.atoms[a], m.Degree(a)))
+	}
+	return sum
+}
+
+func stir(x uint64) uint64 {
+	x *= 0x9e3779b97f4a7c15
+	x ^= x >> 32
+	x *= 0xd6e8feb86659fd93
+	return x ^ x>>29
+}

@@ -88,7 +88,7 @@ func (w *workspace) assess(t *Transform, ms []*subject, target *molecule.Molecul
 // weigh finds the outcomes that give the target and their part of all outcomes.
 func (a *assessment) weigh(w *workspace, outs []outcome, target *molecule.Molecule) {
 	type group struct { // outcomes that give the same molecules
-		key    setKey
+		lines  uint64 // sum of the sketches
 		weight float64
 		first  int
 		cover  covering
@@ -99,12 +99,14 @@ func (a *assessment) weigh(w *workspace, outs []outcome, target *molecule.Molecu
 	top := topScore(outs)
 	for i := range outs {
 		o := &outs[i]
-		key := w.setOf(o.pieces)
-		at := slices.IndexFunc(groups, func(g group) bool { return g.key == key })
+		lines := sketchOf(o.pieces)
+		at := slices.IndexFunc(groups, func(g group) bool {
+			return g.lines == lines && w.setOf(outs[g.first].pieces) == w.setOf(o.pieces)
+		})
 		if at < 0 {
 			at = len(groups)
 			c, _, _ := o.gives(target)
-			groups = append(groups, group{key: key, first: i, cover: c})
+			groups = append(groups, group{lines: lines, first: i, cover: c})
 		}
 		g := &groups[at]
 		if g.cover.ok && (best < 0 || better(g.cover, o, a.cover, &outs[best])) {
@@ -365,10 +367,10 @@ func (t *Transform) scoreAgain(w *workspace, ms []*subject, product *subject, pa
 }
 
 // busyAtoms marks, per reactant molecule, the atoms that the outcome's mappings cover.
-func (o *outcome) busyAtoms(ms []*subject) [][]bool {
-	busy := make([][]bool, len(ms))
+func (o *outcome) busyAtoms(w *workspace, ms []*subject) [][]bool {
+	busy := w.busy.take(len(ms))
 	for i, s := range ms {
-		busy[i] = make([]bool, s.M.NumAtoms())
+		busy[i] = w.flags.take(s.M.NumAtoms())
 	}
 	for _, to := range o.mappings {
 		for _, a := range to {

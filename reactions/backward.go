@@ -38,6 +38,9 @@ func (t *Transform) backwards(w *workspace, target *subject, stocked Stocked) []
 	clear(w.seen)
 	x := &undoer{t: t, w: w, target: target, stocked: stocked, seen: w.seen}
 	for i := range sites {
+		if x.done(sites[i], sites[:i]) {
+			continue
+		}
 		x.undo(sites[i : i+1])
 		if len(x.out) >= maxProposals {
 			return x.out
@@ -59,16 +62,13 @@ type site []partMatch
 // sites lists the ways to lay a non-empty set of product parts, disjoint, on the target.
 func (t *Transform) sites(w *workspace, target *subject) []site {
 	parts := t.part[backward]
-	x := siteFinder{t: t, w: w}
-	if len(parts) > len(x.room) {
-		x.found = make([][]partMatch, len(parts))
-	} else {
-		x.found = x.room[:len(parts)]
-	}
+	x := &w.finder
+	*x = siteFinder{t: t, w: w, found: x.found[:0], out: x.out[:0]}
 	any := false
 	for i := range parts {
-		x.found[i] = parts[i].matches(w, target.Subject, nil)
-		any = any || len(x.found[i]) > 0
+		found := parts[i].matches(w, target.Subject, nil)
+		x.found = append(x.found, found)
+		any = any || len(found) > 0
 	}
 	if !any {
 		return nil
@@ -85,7 +85,6 @@ type siteFinder struct {
 	found [][]partMatch // per part
 	now   site
 	out   []site
-	room  [4][]partMatch
 }
 
 func (x *siteFinder) grow(part, laid int) {
@@ -210,6 +209,16 @@ type undoer struct {
 
 	plain     bool // the site at hand is nothing but chain carbon
 	plainKept int
+}
+
+// done says whether a site is like an earlier one by the symmetry of the target: what it gives is known.
+func (x *undoer) done(s site, earlier []site) bool {
+	for _, old := range earlier {
+		if x.target.alike(old, s, x.w) {
+			return true
+		}
+	}
+	return false
 }
 
 // undo runs the script backwards at the sites with every choice of co-products and leaving groups.

@@ -19,6 +19,9 @@ type Book struct {
 	groups     *pattern.Groups
 	arene      *arene
 	media      *toleranceTable
+
+	sieve   *pattern.Sieve // of all product parts, transform after transform
+	sieveOf []*Transform   // per product part its transform
 }
 
 // Load reads and compiles the rules of fsys (rules.Files() or an overlay). The error is a
@@ -33,7 +36,34 @@ func Load(fsys fs.FS) (*Book, error) {
 	l.loadTolerance()
 	l.loadTransforms()
 	l.checkTogether()
-	return &Book{Transforms: l.list, byID: l.byID, groups: l.groups, arene: a, media: l.media}, l.errs.Err()
+	b := &Book{Transforms: l.list, byID: l.byID, groups: l.groups, arene: a, media: l.media}
+	b.sift()
+	return b, l.errs.Err()
+}
+
+// sift makes the sieve of the product parts.
+func (b *Book) sift() {
+	var parts []*pattern.Query
+	for _, t := range b.Transforms {
+		for i := range t.part[backward] {
+			parts = append(parts, t.part[backward][i].query)
+			b.sieveOf = append(b.sieveOf, t)
+		}
+	}
+	b.sieve = pattern.NewSieve(parts)
+}
+
+// eachFor calls yield with the transforms, in order, of which some product part may occur in s, until it
+// returns false.
+func (b *Book) eachFor(s *subject, yield func(*Transform) bool) {
+	var last *Transform
+	for i := b.sieve.Next(s.Subject, 0); i >= 0; i = b.sieve.Next(s.Subject, i+1) {
+		if t := b.sieveOf[i]; t != last {
+			if last = t; !yield(t) {
+				return
+			}
+		}
+	}
 }
 
 // Groups returns the functional groups of the rule set.
@@ -102,11 +132,15 @@ func (b *Book) Expand(ctx context.Context, target *molecule.Molecule, stocked St
 	w := b.newWorkspace()
 	defer w.release()
 	x := &expander{b: b, w: w, target: w.of(target), stocked: stocked}
-	for _, t := range b.Transforms {
-		if err := ctx.Err(); err != nil {
-			return nil, err
+	err := ctx.Err()
+	b.eachFor(x.target, func(t *Transform) bool {
+		if err = ctx.Err(); err == nil {
+			x.expand(t)
 		}
-		x.expand(t)
+		return err == nil
+	})
+	if err != nil {
+		return nil, err
 	}
 	return x.steps, nil
 }
@@ -165,7 +199,9 @@ func (d *draft) molecules() []*molecule.Molecule {
 }
 
 func (x *expander) draft(t *Transform, p proposal) *draft {
-	d := &draft{b: x.b, t: t, target: x.target}
+	d := &x.w.drafts.take(1)[0]
+	d.b, d.t, d.target = x.b, t, x.target
+	d.reactants = x.w.subjectsOf.take(len(p.pieces))[:0]
 	d.origins = make([]Origin, x.target.M.NumAtoms())
 	for i := range d.origins {
 		d.origins[i] = Origin{-1, -1}
@@ -182,17 +218,27 @@ func (x *expander) draft(t *Transform, p proposal) *draft {
 			at = len(d.reactants)
 			d.reactants = append(d.reactants, s)
 		}
-		onto := atomsOf(pc.m, s.M)
+		onto := []int32(nil) // the same numbering
+		if pc.m != s.M {
+			onto = atomsOf(pc.m, s.M)
+		}
 		for i, from := range pc.from {
-			if from >= 0 && int(from) < len(d.origins) {
-				d.origins[from] = Origin{int32(at), onto[i]}
+			if from < 0 || int(from) >= len(d.origins) {
+				continue
 			}
+			atom := int32(i)
+			if onto != nil {
+				atom = onto[i]
+			}
+			d.origins[from] = Origin{int32(at), atom}
 		}
 	}
+	x.w.expected = x.w.expect(d)
 	d.assessment = x.w.assess(t, d.reactants, x.target.M)
+	x.w.expected = nil
 	if d.found {
-		d.busy = d.outcome.busyAtoms(d.reactants)
-		d.uses = make([]int, len(d.reactants))
+		d.busy = d.outcome.busyAtoms(x.w, d.reactants)
+		d.uses = x.w.counts.take(len(d.reactants))
 		for _, c := range d.outcome.copies {
 			d.uses[c]++
 		}

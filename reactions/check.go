@@ -176,8 +176,9 @@ func (b *Book) checkMedia(t *Transform, ex Example, a *assessment, from []*subje
 // cleanSet looks for a condition set without objections; it returns how many apply and the objections of
 // the last one where none is clean.
 func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject) (sets int, last []Objection) {
-	busy := a.outcome.busyAtoms(from)
-	weighed := t.otherSites(b.newWorkspace(), from, busy)
+	w := b.newWorkspace()
+	busy := a.outcome.busyAtoms(w, from)
+	weighed := t.otherSites(w, from, busy)
 	for _, c := range t.Conditions {
 		if ex.With != "" && c.ID != ex.With || !t.appliesTo(c, &a.outcome) {
 			continue

@@ -17,18 +17,31 @@ type partMatch []int32
 
 // matches lists the ways to lay part p on s that differ in a significant atom. keep filters (may be nil).
 func (p *partQuery) matches(w *workspace, s *pattern.Subject, keep func(queryAtom, a int) bool) []partMatch {
-	out := w.laying[:0]
-	p.query.EachWithin(s, keep, func(to pattern.Mapping) bool {
-		for _, old := range out {
-			if p.sameSites(old, to) {
-				return true
-			}
+	g := &w.gatherer
+	g.p, g.out = p, g.out[:0]
+	p.query.EachWithin(s, keep, g.add)
+	if len(g.out) == 0 {
+		return nil
+	}
+	return w.matches.keep(g.out)
+}
+
+// gatherer collects the matches of one part.
+type gatherer struct {
+	w   *workspace
+	p   *partQuery
+	out []partMatch
+	add func(pattern.Mapping) bool // take
+}
+
+func (g *gatherer) take(to pattern.Mapping) bool {
+	for _, old := range g.out {
+		if g.p.sameSites(old, to) {
+			return true
 		}
-		out = append(out, w.atoms.keep(to))
-		return len(out) < maxCombinations
-	})
-	w.laying = out
-	return w.matches.keep(out)
+	}
+	g.out = append(g.out, g.w.atoms.keep(to))
+	return len(g.out) < maxCombinations
 }
 
 func (p *partQuery) sameSites(a partMatch, b pattern.Mapping) bool {
@@ -71,9 +84,11 @@ func (t *Transform) run(w *workspace, ms []*subject) []outcome {
 	if t.Everywhere {
 		out = t.runEverywhere(w, ms, found)
 	}
-	x := &combiner{t: t, w: w, ms: ms, found: found, intramolecularOnly: t.Everywhere}
+	x := &w.combiner
+	*x = combiner{t: t, w: w, ms: ms, found: found, intramolecularOnly: t.Everywhere, out: append(x.out[:0], out...),
+		now: attempt{x.now.copies[:0], x.now.laid[:0]}}
 	x.next(0)
-	return append(out, x.out...)
+	return w.outcomes.keep(x.out)
 }
 
 // layEach lists the matches of every part on every molecule.
@@ -203,7 +218,7 @@ func (t *Transform) finish(w *workspace, ms []*subject, o *outcome) bool {
 		return false
 	}
 	bonus, ok := t.ringCheck(o)
-	if !ok || !o.sane() || o.idle(w) {
+	if !ok || !o.sane() || o.idle(w, ms) {
 		return false
 	}
 	o.score = bonus
@@ -307,8 +322,15 @@ func (o *outcome) ringThrough(a, b int32) int {
 }
 
 // idle says that the products are the molecules charged: nothing has happened.
-func (o *outcome) idle(w *workspace) bool {
+func (o *outcome) idle(w *workspace, ms []*subject) bool {
 	if len(o.pieces) != len(o.pool.molecules) {
+		return false
+	}
+	lines := uint64(0)
+	for _, which := range o.copies {
+		lines += ms[which].sketch()
+	}
+	if lines != sketchOf(o.pieces) {
 		return false
 	}
 	var charged setKey

@@ -360,7 +360,7 @@ func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) asse
 // media lists what the surroundings do to the other groups. A companion transform of the same flask excuses
 // its groups only where the product asked for is not the one that keeps them (companions).
 func (j *judge) media(t *Transform, c *Conditions, o *outcome, pool []*subject, companions bool) []Objection {
-	busy := o.busyAtoms(pool)
+	busy := o.busyAtoms(j.w, pool)
 	for _, id := range c.Together {
 		if companion := j.b.byID[id]; companion != nil && companions {
 			j.markCompanion(companion, pool, busy)

@@ -19,24 +19,36 @@ type workspace struct {
 	spare    []*subject      // subjects of earlier expansions whose memory can be used again
 	taken    int             // how many of them are in use
 
-	makings   arena[made]
-	pieces    arena[piece]
-	atoms     arena[int32]
-	counts    arena[int]
-	mappings  arena[[]int32]
-	pools     arena[pool]
-	molecules arena[*molecule.Molecule]
-	laid      arena[laid]
-	matches   arena[partMatch]
-	perPart   arena[[]partMatch]
-	found     arena[[][]partMatch]
+	makings    arena[made]
+	pieces     arena[piece]
+	atoms      arena[int32]
+	counts     arena[int]
+	mappings   arena[[]int32]
+	pools      arena[pool]
+	molecules  arena[*molecule.Molecule]
+	laid       arena[laid]
+	matches    arena[partMatch]
+	perPart    arena[[]partMatch]
+	found      arena[[][]partMatch]
+	outcomes   arena[outcome]
+	drafts     arena[draft]
+	subjectsOf arena[*subject]
+	busy       arena[[]bool]
+	flags      arena[bool]
 
-	laying []partMatch // scratch of matches
-	tried  []proposal  // scratch of withFragments
+	expected *expectation // of the run at hand, nil: none
+
+	gatherer gatherer   // scratch of matches
+	tried    []proposal // scratch of withFragments
+	finder   siteFinder // scratch of sites
+	combiner combiner   // scratch of run
 }
 
 var workspaces = sync.Pool{New: func() any {
-	return &workspace{built: map[molecule.Fingerprint]*made{}, subjects: map[molecule.Key]*subject{}, seen: map[setKey]bool{}}
+	w := &workspace{built: map[molecule.Fingerprint]*made{}, subjects: map[molecule.Key]*subject{}, seen: map[setKey]bool{}}
+	w.gatherer.w = w
+	w.gatherer.add = w.gatherer.take
+	return w
 }}
 
 func (b *Book) newWorkspace() *workspace {
@@ -68,6 +80,12 @@ func (w *workspace) release() {
 	w.matches.reset()
 	w.perPart.reset()
 	w.found.reset()
+	w.outcomes.reset()
+	w.drafts.reset()
+	w.subjectsOf.reset()
+	w.busy.reset()
+	w.flags.reset()
+	w.expected = nil
 	workspaces.Put(w)
 }
 
@@ -105,6 +123,21 @@ type made struct {
 	m     *molecule.Molecule
 	s     *subject
 	rings answer // whether its rings are sane
+	lines uint64 // its sketch, once asked for
+}
+
+func (x *made) sketch() uint64 {
+	if x.lines == 0 {
+		x.lines = x.m.Sketch()
+	}
+	return x.lines
+}
+
+// madeFrom is the subject as if an edit had made it.
+func (w *workspace) madeFrom(s *subject) *made {
+	x := &w.makings.take(1)[0]
+	x.m, x.s = s.M, s
+	return x
 }
 
 // answer to a question that may not have been asked yet.
@@ -147,6 +180,14 @@ type subject struct {
 	relative bool    // its marks say only how centres stand to each other: a racemate
 	stock    answer  // whether it is at hand
 	far      []int32 // see featureDistance
+	lines    uint64  // its sketch, once asked for
+}
+
+func (s *subject) sketch() uint64 {
+	if s.lines == 0 {
+		s.lines = s.M.Sketch()
+	}
+	return s.lines
 }
 
 func (b *Book) subject(m *molecule.Molecule) *subject {
@@ -196,6 +237,14 @@ func (w *workspace) setOf(pieces []piece) (s setKey) {
 		s.add(pieces[i].m.Key())
 	}
 	return s
+}
+
+// sketchOf is the sum of the sketches of pieces.
+func sketchOf(pieces []piece) (sum uint64) {
+	for i := range pieces {
+		sum += pieces[i].sketch()
+	}
+	return sum
 }
 
 func (w *workspace) newPool(ms []*molecule.Molecule) *pool {
