@@ -29,6 +29,7 @@ type Options struct {
 	MakeMol       float64 // mol of target wanted, 0: not said; figures are then for DefaultMakeG
 	Time          time.Duration
 	MaxExpanded   int
+	Openings      int // purchases proposed where there is no route; 5
 	Workers       int
 	Progress      func(search.Progress)
 }
@@ -140,7 +141,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		}
 		p.Routes = append(p.Routes, *built)
 	}
-	p.WouldOpen = c.openings(found.Openings)
+	p.WouldOpen = c.openings(found.Openings, o.Openings)
 	p.fillSearch(found)
 	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), w.ShelfItems
 	p.order(o.Count)

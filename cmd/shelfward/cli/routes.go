@@ -175,9 +175,16 @@ func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan,
 	if err := app.screen(j); err != nil {
 		return nil, err
 	}
+	p, err := app.search(ctx, j, o)
+	return p, app.printDeclined(err)
+}
+
+// search plans a target that has been screened; that its starts or all its routes are restricted is a
+// *declinedError.
+func (app *App) search(ctx context.Context, j *job, o route.Options) (*route.Plan, error) {
 	for _, m := range o.From { // a start counts as in stock, but not as standing on the shelf
 		if v := j.room.Restricted.Intermediate(m); v.Declined() && !j.room.Shelf.Has(m) {
-			return nil, app.declined(v)
+			return nil, &declinedError{v}
 		}
 	}
 	if len(o.From) == 0 && len(j.fromAny) > 0 {
@@ -216,28 +223,49 @@ type routesOptions struct {
 	graph string
 
 	routeGraph string
+	targets    string
 }
 
 func newRoutesCommand(app *App) *cobra.Command {
 	o := &routesOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "routes TARGET", Short: "ranked routes to a target from the shelf or from given starting materials", Args: exactly(1),
+		Use: "routes TARGET", Short: "ranked routes to a target from the shelf or from given starting materials",
+		Args: func(c *cobra.Command, args []string) error {
+			if o.targets != "" && len(args) > 0 {
+				return usageError("--targets %s names the targets; found %s as well", o.targets, quoted(args[0]))
+			}
+			if o.targets != "" {
+				return nil
+			}
+			return exactly(1)(c, args)
+		},
 		Long: "TARGET is SMILES, a name, synonym or CAS number on the shelf, or a case file (.yaml). With --from every route\n" +
-			"consumes every item given.\n" + exitHelp,
-		Example: "  shelfward routes 'CCCC(C)C(=O)CC'\n  shelfward routes testdata/demo/lure-4.yaml --avoid H360\n  shelfward routes cyclohexanone --make-anyway --count 3",
-		RunE:    func(c *cobra.Command, args []string) error { return o.run(c.Context(), args[0]) },
+			"consumes every item given.\n\n" +
+			"With --targets FILE (SMILES one a line with a title, or an SD file) every target of a list is planned, several at a\n" +
+			"time, each within --time, --max-expanded and its part of the cores. One JSON line a target, in the order of the list,\n" +
+			"goes to standard output or to --out FILE; in FILE they are safe as soon as written: after an interrupt, a crash or\n" +
+			"a power cut the same command goes on with the first target that has no line. At the end stand the solved share,\n" +
+			"the throughput, and the single purchases that would open most of the targets without a route.\n" + exitHelp,
+		Example: "  shelfward routes 'CCCC(C)C(=O)CC'\n  shelfward routes --targets targets.smi --out answers.jsonl --time 2s\n  shelfward routes testdata/demo/lure-4.yaml --avoid H360\n  shelfward routes cyclohexanone --make-anyway --count 3",
+		RunE: func(c *cobra.Command, args []string) error {
+			if err := o.flags.check(); err != nil {
+				return err
+			}
+			if o.targets != "" {
+				return o.runList(c.Context())
+			}
+			return o.run(c.Context(), args[0])
+		},
 	}
 	o.flags.bind(cmd)
-	cmd.Flags().StringVar(&o.out, "out", "", "save the plan as a JSON file for compare and sheet")
+	cmd.Flags().StringVar(&o.targets, "targets", "", "plan every target of a file of SMILES or an SD file")
+	cmd.Flags().StringVar(&o.out, "out", "", "save the plan as a JSON file for compare and sheet; with --targets the file of answers")
 	cmd.Flags().StringVar(&o.graph, "graph", "", "write the explored network of molecules and steps as a DOT file")
 	cmd.Flags().StringVar(&o.routeGraph, "route-graph", "", "write the first route's network as a DOT file")
 	return cmd
 }
 
 func (o *routesOptions) run(ctx context.Context, text string) error {
-	if err := o.flags.check(); err != nil {
-		return err
-	}
 	j, err := o.app.openFor(ctx, text, func(doubts []string) any { return emptyPlan(doubts) })
 	if err != nil {
 		return err

@@ -2,6 +2,7 @@ package cli
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"io/fs"
 	"time"
@@ -58,7 +59,7 @@ func (app *App) decline(s *restricted.Screen, m *molecule.Molecule) error {
 // secondLook bounds the search that tells 'no route' from 'no route but through restricted compounds'.
 const secondLook = 5 * time.Second
 
-// declineLeftOut ends with status 4 when a search that left steps out found nothing, and one without the
+// declineLeftOut is a *declinedError when a search that left steps out found nothing, and one without the
 // screen finds routes: then every route passes through a restricted intermediate. Of those routes only
 // their number and the class of the intermediate are told.
 func (app *App) declineLeftOut(ctx context.Context, j *job, p *route.Plan, o route.Options) error {
@@ -80,11 +81,25 @@ func (app *App) declineLeftOut(ctx context.Context, j *job, p *route.Plan, o rou
 			}
 			if v := j.room.Restricted.Intermediate(m); v.Declined() {
 				v.Text = fmt.Sprintf("No route is shown. %s Class: %s. The official list is published by %s.", j.room.Restricted.LeftOut(len(all.Routes)), v.Class, v.Publisher)
-				return app.declined(v)
+				return &declinedError{v}
 			}
 		}
 	}
 	return nil
+}
+
+// declinedError is the refusal of a target or of all its routes, not printed yet.
+type declinedError struct{ verdict restricted.Verdict }
+
+func (e *declinedError) Error() string { return e.verdict.Text }
+
+// printDeclined prints a refusal, and passes other errors on.
+func (app *App) printDeclined(err error) error {
+	var d *declinedError
+	if errors.As(err, &d) {
+		return app.declined(d.verdict)
+	}
+	return err
 }
 
 // declined prints the refusal and nothing else.

@@ -46,6 +46,7 @@ func TestScripts(t *testing.T) {
 			"object":   scriptObject,
 			"sametext": scriptSameText,
 			"longfile": scriptLongFile,
+			"cutfile":  scriptCutFile,
 		},
 		Condition: func(cond string) (bool, error) {
 			if cond == "slow" {
@@ -182,7 +183,7 @@ func findNull(v any, place string) string {
 }
 
 // timeLine matches what may differ between two runs of the same input.
-var timeLine = regexp.MustCompile(`"(seconds|first_after)": [0-9.e+-]+`)
+var timeLine = regexp.MustCompile(`"(seconds|first_after)": ?[0-9.e+-]+`)
 
 // scriptSameText compares two files but for measured times.
 func scriptSameText(ts *testscript.TestScript, neg bool, args []string) {
@@ -204,4 +205,14 @@ func scriptLongFile(ts *testscript.TestScript, neg bool, args []string) {
 	ts.Check(err)
 	unescape := strings.NewReplacer(`\n`, "\n").Replace
 	ts.Check(os.WriteFile(ts.MkAbs(args[0]), []byte(unescape(args[1])+strings.Repeat(unescape(args[2]), n)+unescape(args[4])), 0o644))
+}
+
+// scriptCutFile cuts bytes off the end of a file, as a crash may: cutfile FILE N.
+func scriptCutFile(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 2 {
+		ts.Fatalf("usage: cutfile FILE N")
+	}
+	n, err := strconv.Atoi(args[1])
+	ts.Check(err)
+	ts.Check(os.Truncate(ts.MkAbs(args[0]), int64(len(ts.ReadFile(args[0]))-n)))
 }
