@@ -213,6 +213,7 @@ func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion,
 		}
 		if len(usable) > 0 {
 			edges = join(edges, usable)
+			x.Bytes += heldBytes(s)
 		}
 	}
 	for _, options := range edges {

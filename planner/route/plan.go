@@ -29,7 +29,9 @@ type Options struct {
 	MakeMol       float64 // mol of target wanted, 0: not said; figures are then for DefaultMakeG
 	Time          time.Duration
 	MaxExpanded   int
-	Openings      int // purchases proposed where there is no route; 5
+	Memory        int         // bytes that the program may take for this planning; 0: no limit
+	Full          func() bool // says that memory is short all the same; nil: never
+	Openings      int         // purchases proposed where there is no route; 5
 	Workers       int
 	Progress      func(search.Progress)
 }
@@ -126,7 +128,7 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		wanted += moreForStock
 	}
 	options := search.Options{Cost: by.cost(), Count: wanted, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
-		Time: o.Time, Workers: o.Workers, Progress: o.Progress, Accept: c.oneWayEach}
+		MaxBytes: int(partOfMemory * float64(o.Memory)), Full: o.Full, Time: o.Time, Workers: o.Workers, Progress: o.Progress, Accept: c.oneWayEach}
 	for _, m := range o.From {
 		options.From = append(options.From, c.enter(m))
 	}

@@ -186,6 +186,17 @@ func (g *graph) expand(id int32, x Expansion, at int64) {
 	}
 }
 
+// weight estimates the bytes that an expanded node takes, with the nodes that its edges may have added.
+func (g *graph) weight(id int32) int {
+	const perNode, perEdge, perState = 400, 160, 28
+	n := 0
+	for i := range g.nodes[id].edges {
+		e := &g.nodes[id].edges[i]
+		n += perEdge + len(e.children)*(perNode+24*g.sets) + 48*len(e.variants) + 8*len(e.origins)
+	}
+	return n + perNode + perState*(g.steps+1)*g.sets
+}
+
 // soil marks the states of a node at one number of steps left as out of date.
 func (g *graph) soil(id int32, steps int) {
 	if steps > g.steps || g.nodes[id].open {

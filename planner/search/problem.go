@@ -53,6 +53,7 @@ type Expansion struct {
 	Edges   []Edge
 	Tried   int // ways looked at, for the count in Result
 	LeftOut int // ways left out because they may not be shown
+	Bytes   int // of memory that the problem keeps for this expansion, estimated from the answer alone
 }
 
 // Problem is what the search asks about a graph. Every method must be a pure function of its

@@ -19,6 +19,8 @@ type Options struct {
 	MakeRoot    bool          // the target is made even if it could be taken from stock
 	MaxExpanded int           // nodes opened at most; no limit
 	MaxNodes    int           // nodes held at most, for the memory; 1,000,000
+	MaxBytes    int           // of memory held at most, by estimates that depend on the input alone; no limit
+	Full        func() bool   // says that memory is short all the same; nil: never
 	Time        time.Duration // by the clock; no limit
 	Workers     int           // goroutines that expand; the number of processors
 	Progress    func(Progress)
@@ -30,6 +32,7 @@ type Options struct {
 // Progress is reported between batches.
 type Progress struct {
 	Expanded, Routes int
+	Bytes            int // of memory held, as estimated
 	Bound            float64
 	Elapsed          time.Duration
 }
@@ -122,6 +125,7 @@ type run struct {
 	result   Result
 	routes   []*tree // drawn last, at most Count and ties
 	cut      bool    // the last drawing spent its budget
+	bytes    int     // of memory held, as estimated
 	sequence int     // number of the batch
 }
 
@@ -145,7 +149,7 @@ func Find(ctx context.Context, p Problem, target Key, options Options) (*Result,
 		r.g.propagate()
 		r.draw(drawBudget)
 		if o.Progress != nil {
-			o.Progress(Progress{r.result.Expanded, min(len(r.routes), o.Count), r.bound(), time.Since(r.start)})
+			o.Progress(Progress{r.result.Expanded, min(len(r.routes), o.Count), r.bytes, r.bound(), time.Since(r.start)})
 		}
 	}
 	r.finish()
@@ -176,7 +180,7 @@ func (r *run) stop(ctx context.Context) Stop {
 		return Proven
 	case r.o.MaxExpanded > 0 && r.result.Expanded >= r.o.MaxExpanded:
 		return ByCount
-	case len(r.g.nodes) >= r.o.MaxNodes:
+	case len(r.g.nodes) >= r.o.MaxNodes, r.o.MaxBytes > 0 && r.bytes >= r.o.MaxBytes, r.o.Full != nil && r.o.Full():
 		return ByMemory
 	case r.late(), errors.Is(ctx.Err(), context.DeadlineExceeded):
 		return ByClock
@@ -218,6 +222,11 @@ func (r *run) choose() []int32 {
 
 // batch opens one batch of nodes in parallel and enters what was found in the order of the batch.
 func (r *run) batch(ctx context.Context) error {
+	if r.o.Time > 0 { // a long expansion is cut, too
+		var cancel context.CancelFunc
+		ctx, cancel = context.WithDeadline(ctx, r.start.Add(r.o.Time))
+		defer cancel()
+	}
 	ids := r.choose()
 	found := make([]Expansion, len(ids))
 	failed := make([]error, len(ids))
@@ -250,6 +259,7 @@ func (r *run) batch(ctx context.Context) error {
 			r.result.Expanded++
 			r.result.Tried += found[i].Tried
 			r.result.LeftOut += found[i].LeftOut
+			r.bytes += found[i].Bytes + r.g.weight(id)
 		case errors.Is(err, context.Canceled), errors.Is(err, context.DeadlineExceeded):
 		default:
 			return err

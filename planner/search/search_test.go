@@ -72,6 +72,41 @@ func TestSameBytesForAnyWorkers(t *testing.T) {
 
 // TestLimitsStayHonest stops searches early: what is called proven must stand first in the blind
 // list, and no route outside the list may undercut the bound reported.
+// heavy says that every expansion takes some memory.
+type heavy struct{ *made }
+
+func (h heavy) Expand(ctx context.Context, k Key) (Expansion, error) {
+	x, err := h.made.Expand(ctx, k)
+	x.Bytes = 10_000 + number(k)
+	return x, err
+}
+
+// TestMemoryLimit: the estimate ends the search at the same node for any number of workers, within one
+// batch of the limit; a shortage that the estimate did not see ends it, too.
+func TestMemoryLimit(t *testing.T) {
+	for seed := range uint64(10) {
+		var first string
+		for _, workers := range []int{1, 2, 8} {
+			most := 0
+			o := Options{Count: 500, MaxSteps: 6, MaxBytes: 2_000_000, Workers: workers, Progress: func(p Progress) { most = p.Bytes }}
+			r := find(t, heavy{wide(seed)}, o)
+			if r.Stopped == ByMemory && (most < o.MaxBytes || most > o.MaxBytes+600_000) {
+				t.Errorf("seed %d: ended at %d bytes of %d", seed, most, o.MaxBytes)
+			}
+			if d := dump(r); first == "" {
+				first = d
+			} else if d != first {
+				t.Errorf("seed %d, %d workers:\n%s\nwant\n%s", seed, workers, d, first)
+			}
+		}
+	}
+	asked := 0
+	r := find(t, wide(1), Options{Count: 500, MaxSteps: 6, Full: func() bool { asked++; return asked > 3 }})
+	if r.Stopped != ByMemory {
+		t.Errorf("stopped by %s, want memory", r.Stopped)
+	}
+}
+
 func TestLimitsStayHonest(t *testing.T) {
 	early, proven := 0, 0
 	for seed := uint64(0); seed < 1500; seed++ {

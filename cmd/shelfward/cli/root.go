@@ -11,6 +11,7 @@ import (
 	"os"
 	"os/signal"
 	"strings"
+	"syscall"
 
 	"github.com/spf13/cobra"
 	"github.com/spf13/pflag"
@@ -96,8 +97,9 @@ func Main(args []string, in io.Reader, out, errOut io.Writer) int {
 
 // main runs one command line.
 func (app *App) main(args []string) int {
-	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
+	context.AfterFunc(ctx, stop) // a second interrupt ends the program at once
 	root := app.rootCommand()
 	root.SetArgs(args)
 	root.SetIn(app.In)

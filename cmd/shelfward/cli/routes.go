@@ -30,6 +30,7 @@ type planFlags struct {
 	bench         string
 	onlyShelf     bool
 	maxHazard     string
+	memory        string
 	atScale       bool
 }
 
@@ -43,6 +44,7 @@ func (f *planFlags) bind(cmd *cobra.Command) {
 	fl.DurationVar(&f.time, "time", 10*time.Second, "search limit; what was found by then is returned and marked (none with --max-expanded, unless given)")
 	f.timeGiven = func() bool { return fl.Changed("time") }
 	fl.IntVar(&f.maxExpanded, "max-expanded", 0, "limit on molecules opened; gives the same bytes every time")
+	fl.StringVar(&f.memory, "memory", "2GiB", "search limit; what was found by then is returned and marked")
 	fl.BoolVar(&f.oneEnantiomer, "one-enantiomer", false, "ask for absolute configuration")
 	fl.BoolVar(&f.makeAnyway, "make-anyway", false, "plan a target that stands on the shelf")
 	fl.StringVar(&f.make, "make", "", "amount of target that prices and stock are worked out for, such as 10g")
@@ -77,6 +79,9 @@ func (f *planFlags) check() error {
 			return usageError("--make: %v", err)
 		}
 	}
+	if _, err := parseMemory(f.memory); err != nil {
+		return err
+	}
 	_, err := route.ParseRankBy(f.rankBy)
 	return failWith(exitUsage, err)
 }
@@ -103,6 +108,10 @@ func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 		return o, err
 	}
 	var err error
+	if o.Memory, err = parseMemory(f.memory); err != nil {
+		return o, err
+	}
+	o.Full = limitMemory(o.Memory)
 	if o.RankBy, err = route.ParseRankBy(f.rankBy); err != nil {
 		return o, failWith(exitUsage, err)
 	}

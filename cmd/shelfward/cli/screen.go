@@ -68,7 +68,11 @@ func (app *App) declineLeftOut(ctx context.Context, j *job, p *route.Plan, o rou
 	}
 	world := j.room.World()
 	world.Declined = nil
-	o.Time, o.Progress = min(o.Time, secondLook), nil
+	left := o.Time - time.Duration(p.Search.Seconds*float64(time.Second))
+	if left <= 0 {
+		return nil // what the rest of the search would have found is not known
+	}
+	o.Time, o.Progress = min(left, secondLook), nil
 	all, err := route.Make(ctx, world, j.target, o)
 	if err != nil {
 		return failWith(exitUsage, err)

@@ -196,6 +196,7 @@ func (l *targetList) answer(ctx context.Context, rec *targetRecord, workers int)
 		return nil, err
 	}
 	o.Workers, o.Progress, o.Openings = workers, nil, purchasesKept
+	o.Memory /= max(1, l.app.workers()/workers) // as many are planned at a time, whatever the length of the list
 	p, err := l.app.search(ctx, j, o)
 	var declined *declinedError
 	switch {
