@@ -48,11 +48,12 @@ type overReaction struct {
 // excessEquiv is the number of equivalents of a material from which its second reaction is held back.
 const excessEquiv = 1.8
 
-// under returns the objections that hold under a condition set (nil: under any).
-func (a *assessment) under(c *Conditions) []Objection {
+// under returns the objections that hold under a condition set (nil: under any). measured says of a part
+// that its partner is stated to be one equivalent, so that the excess of the condition set is not there.
+func (a *assessment) under(c *Conditions, measured func(part int) bool) []Objection {
 	list := append([]Objection(nil), a.objections...)
 	for _, o := range a.over {
-		if c == nil || o.part < 0 || c.ReactantEquiv[o.part+1] < excessEquiv {
+		if c == nil || o.part < 0 || c.ReactantEquiv[o.part+1] < excessEquiv || measured != nil && measured(o.part) {
 			list = append(list, o.Objection)
 		}
 	}

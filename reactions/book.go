@@ -250,7 +250,7 @@ func (x *expander) draft(t *Transform, p proposal) *draft {
 func (d *draft) step() (*Step, []Objection) {
 	d.orderByParts()
 	if !d.found || fatal(d.objections) {
-		return nil, d.under(nil)
+		return nil, d.under(nil, nil)
 	}
 	for _, n := range d.uses {
 		if n == 0 {
@@ -264,7 +264,7 @@ func (d *draft) step() (*Step, []Objection) {
 	var good []fit
 	var worst []Objection
 	for _, c := range d.conditionSets() {
-		list := append(d.under(c), d.mediaObjections(c)...)
+		list := append(d.under(c, nil), d.mediaObjections(c)...)
 		if fatal(list) {
 			worst = append(worst, list...)
 			continue

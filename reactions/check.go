@@ -184,7 +184,7 @@ func (b *Book) cleanSet(t *Transform, ex Example, a *assessment, from []*subject
 			continue
 		}
 		sets++
-		list := a.under(c)
+		list := a.under(c, nil)
 		for i, r := range from {
 			list = append(list, b.media.objections(c.Media, r.Subject, busy[i], weighed[i])...)
 		}

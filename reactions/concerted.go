@@ -9,6 +9,7 @@ import "shelfward/molecule"
 
 // concerted are the words, with the number of classes that each needs.
 var concerted = map[string]int{
+	"exo":          7, // as endo, with group 7 away from the diene (furans: the adduct that equilibrium favours)
 	"endo":         7, // diene 1-2-3-4, dienophile 5-6 (4 joins 5, 6 joins 1), group 7 on 6 under the diene
 	"disrotatory":  6, // triene 1-2-3-4-5-6 closes between its ends
 	"conrotatory":  6, // the same by light
@@ -34,8 +35,8 @@ func (e *editor) concertedCourse(word string, at []int32) {
 		return
 	}
 	switch word {
-	case "endo":
-		e.cycloadd(at)
+	case "endo", "exo":
+		e.cycloadd(at, word == "endo")
 	case "disrotatory", "conrotatory":
 		if e.within(m, at[5]) && orderBetween(m, at[0]-off, at[1]-off) == 2 {
 			e.closeEnds(at, [2]int32{at[5], at[0]}, word == "disrotatory")
@@ -107,8 +108,8 @@ func (e *editor) closeEnds(at []int32, fresh [2]int32, together bool) {
 }
 
 // cycloadd marks the ring of a Diels-Alder reaction: the dienophile comes to one face of the diene with
-// the group 7 below it. Fewer than two centres say nothing and stay unmarked.
-func (e *editor) cycloadd(at []int32) {
+// the group 7 below it (endo) or away from it. Fewer than two centres say nothing and stay unmarked.
+func (e *editor) cycloadd(at []int32, endo bool) {
 	m, i6, off, ok := e.original(at[5])
 	dm, _, dieneOff, okDiene := e.original(at[0])
 	if !ok || !okDiene || orderBetween(m, i6, at[4]-off) < 2 || orderBetween(dm, at[0]-dieneOff, at[1]-dieneOff) != 2 {
@@ -116,7 +117,7 @@ func (e *editor) cycloadd(at []int32) {
 	}
 	list := e.endCenters(at[0], at[1], at[2], at[1], at[2], at[3], [2]int32{at[5], at[4]}, true)
 	if orderBetween(m, i6, at[4]-off) == 2 {
-		list = append(list, e.dienophileCenters(m, off, at)...)
+		list = append(list, e.dienophileCenters(m, off, at, endo)...)
 	}
 	if len(list) > 1 {
 		e.b.Centers = append(e.b.Centers, list...)
@@ -124,8 +125,8 @@ func (e *editor) cycloadd(at []int32) {
 }
 
 // dienophileCenters gives the marks of the dienophile atoms 6 and 5: seen from the new ligand below, the
-// order far end, endo, exo runs clockwise at 6 and counter-clockwise at 5.
-func (e *editor) dienophileCenters(m *molecule.Molecule, off int32, at []int32) []molecule.Center {
+// order far end, endo, exo runs clockwise at 6 and counter-clockwise at 5; exo it runs the other way.
+func (e *editor) dienophileCenters(m *molecule.Molecule, off int32, at []int32, endo bool) []molecule.Center {
 	i5, i6, group := at[4]-off, at[5]-off, at[6]-off
 	endo6, exo6 := group, int32(-1)
 	far := spectators(m, i5, i6)
@@ -142,9 +143,9 @@ func (e *editor) dienophileCenters(m *molecule.Molecule, off int32, at []int32) 
 		}
 		exo6 = other(near, group)
 	}
-	list := []molecule.Center{{Atom: at[5], Ligands: [4]int32{at[0], at[4], shifted(endo6, off), shifted(exo6, off)}, Clockwise: true}}
+	list := []molecule.Center{{Atom: at[5], Ligands: [4]int32{at[0], at[4], shifted(endo6, off), shifted(exo6, off)}, Clockwise: endo}}
 	if known {
-		list = append(list, molecule.Center{Atom: at[4], Ligands: [4]int32{at[3], at[5], shifted(r, off), shifted(s, off)}, Clockwise: false})
+		list = append(list, molecule.Center{Atom: at[4], Ligands: [4]int32{at[3], at[5], shifted(r, off), shifted(s, off)}, Clockwise: !endo})
 	}
 	return list
 }

@@ -1,6 +1,8 @@
 package reactions
 
 import (
+	"fmt"
+	"slices"
 	"strings"
 
 	"shelfward/reactions/reagent"
@@ -48,6 +50,9 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 	for i, m := range j.mentions {
 		if m.active && !explained[i] && !j.partner(t, &j.mentions[i]) {
 			s.unexplained = append(s.unexplained, m.r.Name)
+			if m.steers() {
+				s.foreign = append(s.foreign, m.r.Name)
+			}
 		}
 	}
 	if s.served > 0 && !early && len(s.unexplained) > 0 && len(s.missing) == 0 {
@@ -55,6 +60,15 @@ func (j *judge) match(t *Transform, c *Conditions) candidate {
 	}
 	s.matched = len(s.missing) == 0 && j.factsAllow(c, &s)
 	return s
+}
+
+// steering lists acts of reagents that decide what a step is: a transform that has no place for one
+// describes another step.
+var steering = []string{"organocuprate", "oxidant", "hydride-aluminium", "hydride-borohydride", "hydride-dibal", "borane", "hydrogen-gas",
+	"halogen", "halogenating-agent", "halogenating-imide", "nitrating", "sulfonating", "metal-zinc", "metal-sodium", "dissolving-metal", "diazoalkane"}
+
+func (m *mentioned) steers() bool {
+	return !m.late && !m.r.Class && slices.ContainsFunc(steering, func(act string) bool { return m.acts[act] })
 }
 
 // partner says that a substance named among the conditions is one of the materials of the transform itself.
@@ -112,10 +126,42 @@ func (j *judge) serves(m *mentioned, ch Charge) bool {
 	return false
 }
 
+// measured returns a test of the parts of an assessment: is another material stated to be limited to one
+// equivalent, and no excess of anything stated?
+func (j *judge) measured(a *assessment, pool []*subject) func(part int) bool {
+	return func(part int) bool {
+		own := pool[a.outcome.copies[a.outcome.laid[part].copy]]
+		limited := false
+		for _, st := range j.with.Stages {
+			for _, m := range st.Mentions {
+				if m.Excess {
+					return false
+				}
+				if mol := mentionMolecule(m); m.Limited && mol != nil {
+					key := mol.FreeForm().Key()
+					limited = limited || key != own.key && slices.ContainsFunc(j.reactants, func(s *subject) bool { return s.key == key })
+				}
+			}
+		}
+		return limited
+	}
+}
+
+// has says whether a fact is stated or brought by a salt among the materials.
+func (j *judge) has(fact string) bool { return j.with.Has(fact) || slices.Contains(j.brought, fact) }
+
+// needsHeatC is the lower end of a condition set from which a flask said to be cold or at room
+// temperature does nothing: a hundredfold slower for 60 degrees (rule of thumb, common practice).
+const needsHeatC = 85
+
 // factsAllow looks at heat, cold, light and the like.
 func (j *judge) factsAllow(c *Conditions, s *candidate) bool {
+	if c.Temperature[0] >= needsHeatC && j.with.Unheated() {
+		s.missing = append(s.missing, fmt.Sprintf("heat (%.0f to %.0f C)", c.Temperature[0], c.Temperature[1]))
+		return false
+	}
 	for _, f := range c.NeverWith {
-		if j.with.Has(f) {
+		if j.has(f) {
 			s.missing = append(s.missing, "not "+f)
 			return false
 		}
@@ -124,7 +170,8 @@ func (j *judge) factsAllow(c *Conditions, s *candidate) bool {
 		return true
 	}
 	for _, f := range c.OnlyWith {
-		if j.with.Has(f) {
+		if j.has(f) {
+			s.asked++ // what the set insists on is there: it is meant more than a set that does not ask
 			return true
 		}
 	}

@@ -2,6 +2,7 @@ package reactions
 
 import (
 	"context"
+	"slices"
 	"sort"
 	"strings"
 
@@ -64,6 +65,7 @@ type judge struct {
 	near      []*Transform // transforms without reagents of their own that find some of their materials
 	known     []*Transform
 	names     map[string]*reagent.Reagent // charges looked up so far
+	brought   []string                    // facts that salts among the materials bring, as sodium methoxide brings a base
 }
 
 // mentioned is a substance of the description or a reactant, as the condition sets see it.
@@ -85,7 +87,10 @@ type candidate struct {
 	matched     bool
 	unexplained []string
 	missing     []string
-	served      int // reagents asked for that the description names
+	foreign     []string // of the unexplained: reagents that change the course of a step by being there
+	served      int      // reagents asked for that the description names
+	asked       int      // facts insisted on that the description states
+	uses        int      // materials with carbon that go into the product
 }
 
 func (j *judge) add(m *molecule.Molecule) {
@@ -149,6 +154,7 @@ func (j *judge) addSalts(parts []*molecule.Molecule) {
 			if salt := molecule.Join(cation, anion); salt != nil {
 				if r, ok := j.table.ByMolecule(salt); ok {
 					j.mentions = append(j.mentions, mention(r, false))
+					j.brought = append(j.brought, j.table.Facts(r)...)
 				}
 			}
 		}
@@ -325,9 +331,11 @@ func (j *judge) try(t *Transform, pool []*subject) {
 			continue
 		}
 		if hit.found {
-			s.objections = append(hit.under(s.c), j.media(t, s.c, &hit.outcome, pool, false)...)
+			s.uses = j.used(&hit.outcome)
+			s.objections = append(hit.under(s.c, j.measured(&hit, pool)), j.media(t, s.c, &hit.outcome, pool, false)...)
 			j.found = append(j.found, s)
 		} else if s.matched {
+			s.uses = j.used(strongest(outs))
 			s.objections = j.media(t, s.c, &outs[0], pool, true)
 			j.others = append(j.others, s)
 		}
@@ -355,6 +363,28 @@ func (j *judge) assessClaims(t *Transform, outs []outcome, pool []*subject) asse
 		return a
 	}
 	return best
+}
+
+// strongest is the outcome that forms most.
+func strongest(outs []outcome) *outcome {
+	best := &outs[0]
+	for i := range outs {
+		if o := &outs[i]; o.blocked == "" && (best.blocked != "" || o.score > best.score) {
+			best = o
+		}
+	}
+	return best
+}
+
+// used counts the materials with carbon that an outcome takes up; they stand first in every pool.
+func (j *judge) used(o *outcome) int {
+	n := 0
+	for i, s := range j.reactants {
+		if slices.Contains(o.copies, i) && carbons(s.M) > 0 {
+			n++
+		}
+	}
+	return n
 }
 
 // media lists what the surroundings do to the other groups. A companion transform of the same flask excuses

@@ -94,6 +94,11 @@ func (e *editor) setGeometry(a, b int32, cis bool) {
 	if i < 0 || e.b.Bonds[i].Order != 2 {
 		return
 	}
+	for _, d := range e.b.DoubleBonds {
+		if int(d.Bond) == i {
+			return // the sense of the elimination has set it: the geometry named is for unmarked centres
+		}
+	}
 	if p, r := e.seniorLigand(a, b), e.seniorLigand(b, a); p >= 0 && r >= 0 {
 		e.markDouble(i, a, p, r, cis)
 	}

@@ -66,6 +66,12 @@ func (j *judge) concludeMatched(best *candidate, out *Judgement) {
 		out.Expected = rival.a.products
 		out.Transforms = append(out.Transforms, rival.t)
 	}
+	if best.served == 0 {
+		for _, name := range best.foreign {
+			out.Objections = append(out.Objections, Objection{Kind: KindNoReaction, Source: best.t.Source.Text,
+				Text: fmt.Sprintf("%s makes no use of %s: with it the materials meet something else", best.t.Name, name)})
+		}
+	}
 	switch {
 	case fatal(out.Objections):
 		out.Verdict = Unsound
@@ -77,12 +83,13 @@ func (j *judge) concludeMatched(best *candidate, out *Judgement) {
 }
 
 // rivalOf looks for another transform that explains more of the reagents, or needs more of them to give an
-// isomer, and gives something else.
+// isomer, or takes up a material that stays over, and gives something else.
 func (j *judge) rivalOf(best *candidate) *candidate {
 	for i := range j.others {
 		c := &j.others[i]
 		closer := len(c.unexplained) < len(best.unexplained) ||
-			len(c.unexplained) == len(best.unexplained) && best.served > 0 && c.served > best.served && isomers(best, c)
+			len(c.unexplained) == len(best.unexplained) && best.served > 0 && c.served+c.asked > best.served+best.asked && isomers(best, c) ||
+			len(c.unexplained) == len(best.unexplained) && c.uses > best.uses && c.served >= best.served && len(c.objections) == 0
 		if c.t != best.t && closer && !fatal(c.objections) && len(c.a.products) > 0 {
 			return c
 		}

@@ -58,6 +58,18 @@ func (d Description) Has(fact string) bool {
 	return slices.ContainsFunc(d.Stages, func(s Stage) bool { return s.Has(fact) })
 }
 
+// Unheated reports whether temperatures are stated and none of them is hot.
+func (d Description) Unheated() bool {
+	stated := false
+	for _, s := range d.Stages {
+		if s.Has("hot") {
+			return false
+		}
+		stated = stated || s.TemperatureC != nil || s.Has("cold")
+	}
+	return stated
+}
+
 // Does reports whether a substance with the act is named in any stage.
 func (d Description) Does(act string) bool {
 	for _, s := range d.Stages {

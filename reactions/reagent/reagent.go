@@ -206,6 +206,17 @@ func (t *Table) addName(name string, r *Reagent, p rules.Place, errs *rules.Erro
 // All lists the reagents in the order of the file. Shared, read only.
 func (t *Table) All() []*Reagent { return t.all }
 
+// Facts lists the facts that a substance brings into a stage, as a hydroxide brings 'base' (wording.yaml).
+func (t *Table) Facts(r *Reagent) []string {
+	var list []string
+	for _, act := range r.Acts {
+		for _, fact := range t.wording.factsOfAct[act] {
+			list = insert(list, fact)
+		}
+	}
+	return list
+}
+
 // Acts lists the tags of rules/acts.yaml, sorted.
 func (t *Table) Acts() []string {
 	list := make([]string, 0, len(t.acts))

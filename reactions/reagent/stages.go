@@ -218,8 +218,9 @@ func (r *reader) quantity(q quantity) {
 
 // What a chemist calls hot and cold. Source: common practice.
 const (
-	hotFromC = 45
-	coldToC  = 10
+	hotFromC    = 40
+	coldToC     = 10
+	deepColdToC = -40 // dry ice and below: what a measured reagent is picky at
 )
 
 // heat widens the stage's temperature span. An upper end alone ('below 60 C') is no heating.
@@ -237,6 +238,9 @@ func (r *reader) heat(span *[2]float64, upTo bool) {
 	}
 	if span[0] <= coldToC && !upTo || span[1] <= coldToC {
 		r.stage.Facts = insert(r.stage.Facts, "cold")
+	}
+	if span[1] <= deepColdToC {
+		r.stage.Facts = insert(r.stage.Facts, "deep-cold")
 	}
 }
 

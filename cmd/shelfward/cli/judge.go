@@ -24,9 +24,13 @@ func newJudgeCommand(app *App) *cobra.Command {
 	cmd := &cobra.Command{
 		Use: "judge 'A.B>>C'", Short: "is this one step sound? names the reaction, the expected product, the objections", Args: exactly(1),
 		Long: "Judges one step: reaction SMILES, a .rxn file, or '-' for either of them on standard input. --with takes the\n" +
-			"conditions as a chemist would write them. The status is 0 whatever the verdict.\n" + exitHelp,
+			"conditions as a chemist would write them. The status is 0 whatever the verdict.\n\n" +
+			"A file that ends in .txt, .tsv or .rsmi holds a route, one step per line: reaction SMILES, a tab, the conditions\n" +
+			"(blank lines and lines that begin with # are passed over; --with adds to every step). Each step is judged; the\n" +
+			"route is as doubtful as its weakest step, and a product that no later step takes up is pointed out.\n" + exitHelp,
 		Example: "  shelfward judge 'CCCCBr.[C-]#N.[Na+]>>CCCCC#N' --with 'dimethyl sulfoxide'\n" +
-			"  shelfward judge 'CCC(=O)OCC.CCCC(C)Br>>CCCC(C)C(=O)CC' --with 'magnesium; diethyl ether'",
+			"  shelfward judge 'CCC(=O)OCC.CCCC(C)Br>>CCCC(C)C(=O)CC' --with 'magnesium; diethyl ether'\n" +
+			"  shelfward judge route.txt --json",
 		RunE: func(c *cobra.Command, args []string) error { return o.run(c, args[0]) },
 	}
 	cmd.Flags().StringArrayVar(&o.with, "with", nil, "reagents, solvents and conditions, separated by semicolons or comma + space (repeatable)")
@@ -60,6 +64,9 @@ type objectionJSON struct {
 }
 
 func (o *judgeOptions) run(c *cobra.Command, text string) error {
+	if isRouteFile(text) {
+		return o.runRoute(c, text)
+	}
 	reactants, products, err := o.app.reaction(text)
 	if err != nil {
 		return err
