@@ -7,6 +7,7 @@ import (
 	"io"
 	"os"
 	"strings"
+	"syscall"
 	"testing"
 	"time"
 
@@ -157,6 +158,15 @@ func TestV3000Errors(t *testing.T) {
 	}
 }
 
+// processorTime is what this process has used so far: a busy machine does not count.
+func processorTime() time.Duration {
+	var u syscall.Rusage
+	if err := syscall.Getrusage(syscall.RUSAGE_SELF, &u); err != nil {
+		panic(err)
+	}
+	return time.Duration(u.Utime.Nano() + u.Stime.Nano())
+}
+
 // TestHostileInput: a megabyte of anything is read or refused within a second.
 func TestHostileInput(t *testing.T) {
 	head := "x\n\n\n  0  0  0     0  0            999 V3000\nM  V30 BEGIN CTAB\n"
@@ -172,14 +182,14 @@ func TestHostileInput(t *testing.T) {
 		{head + counts + atoms.String() + "M  V30 END ATOM\nM  V30 BEGIN BOND\n", "M  V30 1 1 1 2\nM  V30 2 1 1 3\n"}, {"$RXN V3000\n\n\n\n", "M  V30 COUNTS 99 99\n"},
 	} {
 		text := c.start + strings.Repeat(c.repeated, (1<<20-len(c.start))/len(c.repeated))
-		start := time.Now()
+		start := processorTime()
 		for r := NewReader(strings.NewReader(text)); ; {
 			if _, err := r.Next(); err == io.EOF {
 				break
 			}
 		}
 		ReadReaction(strings.NewReader(text))
-		if took := time.Since(start); took > time.Second {
+		if took := processorTime() - start; took > time.Second {
 			t.Errorf("%.20q and 1 MB of %.20q: %v", c.start, c.repeated, took)
 		}
 	}

@@ -57,7 +57,7 @@ func (app *App) decline(s *restricted.Screen, m *molecule.Molecule) error {
 }
 
 // secondLook bounds the search that tells 'no route' from 'no route but through restricted compounds'.
-const secondLook = 5 * time.Second
+const secondLook = 30 * time.Second
 
 // declineLeftOut is a *declinedError when a search that left steps out found nothing, and one without the
 // screen finds routes: then every route passes through a restricted intermediate. Of those routes only
