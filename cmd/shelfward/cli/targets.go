@@ -299,7 +299,10 @@ func (s *listSummary) writeText(w io.Writer) error {
 			fmt.Fprintf(w, ", %d %s", x.n, x.what)
 		}
 	}
-	fmt.Fprintf(w, "\nsolved share: %.0f %% of the %d that could be planned\n", 100*s.SolvedShare, s.Solved+s.OnShelf+s.Open)
+	fmt.Fprintln(w)
+	if planned := s.Solved + s.OnShelf + s.Open; planned > 0 {
+		fmt.Fprintf(w, "solved share: %.0f %% of the %d that could be planned\n", 100*s.SolvedShare, planned)
+	}
 	if s.Answered > s.Before {
 		fmt.Fprintf(w, "throughput: %.1f targets a minute (%d in %.0f s)\n", s.PerMinute, s.Answered-s.Before, s.Seconds)
 	}
