@@ -66,6 +66,7 @@ type header struct {
 	Files      []string `json:"files"` // that were read
 	Rows       int      `json:"rows"`
 	Structures int      `json:"structures"` // rows whose structure is known
+	Distinct   int      `json:"distinct"`   // structures, each once
 	Sample     []uint32 `json:"sample"`     // rows that stand for all where looking at each would take too long
 	Tally      tally    `json:"tally"`
 	Check      []check  `json:"check"` // keys of some rows: another version of the program makes others
@@ -77,7 +78,7 @@ type check struct {
 }
 
 // indexFormat counts the layouts of the file.
-const indexFormat = 1
+const indexFormat = 2
 
 // savedRow is one row as it was written.
 type savedRow struct {

@@ -81,6 +81,7 @@ const mixedRows = "smiles;cas;name;synonyms;amount;price;pack;currency;hazards;B
 	";;mystery powder;;5 g;;;;H302;;\n" +
 	"C[C@H](N)C(=O)O;;;Ala;25 g;12,5;25 g;EUR;none;;\n" +
 	"CC(N)C(=O)O;;;;25 g;;;;;;\n" +
+	"OC(=O)C(C)N;;second bottle;;5 g;;;;;;\n" +
 	"[Na+].CC([O-])=O;127-09-3;sodium acetate;;1 kg;20;1 kg;EUR;;;\n" +
 	"Oc1ccccn1;;2-hydroxypyridine;;10 g;;;;;;\n"
 
@@ -89,8 +90,8 @@ const mixedRows = "smiles;cas;name;synonyms;amount;price;pack;currency;hazards;B
 func TestIndexAnswersAsFile(t *testing.T) {
 	file := write(t, "s.csv", mixedRows)
 	index, rep := importFile(t, ImportOptions{Workers: 2}, file)
-	if rep.Rows != 6 || rep.Structures != 5 || rep.Bad != 0 {
-		t.Fatalf("report %+v, want 6 rows, 5 structures", rep)
+	if rep.Rows != 7 || rep.Structures != 6 || rep.Bad != 0 {
+		t.Fatalf("report %+v, want 7 rows, 6 structures", rep)
 	}
 	plain, indexed := loadShelf(t, file), loadShelf(t, index)
 	if plain.Len() != indexed.Len() || plain.Structures() != indexed.Structures() {

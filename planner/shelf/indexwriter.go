@@ -143,6 +143,9 @@ func (w *indexWriter) writeKeys() error {
 			b.FillPercent = 1
 			for n := 0; n < keysAtOnce && len(rest) > 0; n++ {
 				k, value := rest[0].key, []byte(nil)
+				if slices.ContainsFunc(rest[:sameKey(rest)], func(e keyEntry) bool { return e.as&asExact != 0 }) {
+					w.head.Distinct++
+				}
 				for ; len(rest) > 0 && rest[0].key == k; rest = rest[1:] {
 					value = append(binary.BigEndian.AppendUint32(value, rest[0].row), byte(rest[0].as))
 				}
@@ -157,6 +160,15 @@ func (w *indexWriter) writeKeys() error {
 		}
 	}
 	return nil
+}
+
+// sameKey counts the entries at the head of a list that have its key.
+func sameKey(list []keyEntry) int {
+	n := 1
+	for n < len(list) && list[n].key == list[0].key {
+		n++
+	}
+	return n
 }
 
 // writeTexts writes names or numbers in order.

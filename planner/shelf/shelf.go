@@ -29,7 +29,7 @@ type Shelf struct {
 	tally tally
 	few   []*molecule.Molecule
 
-	structures int // distinct ones in memory, and rows of the indexes with one
+	structures int // distinct ones in memory, and of each index
 }
 
 // under is an item under a key, as one or more identities.
@@ -196,7 +196,7 @@ func New(items []*Item, known *Known, indexes ...*Index) *Shelf {
 	}
 	for _, x := range indexes {
 		s.tally.merge(x.head.Tally)
-		s.structures += x.head.Structures
+		s.structures += x.head.Distinct
 	}
 	s.indexes = indexes
 	s.few = s.choose()
@@ -218,7 +218,7 @@ func (s *Shelf) choose() (list []*molecule.Molecule) {
 			few.add(row+c.row, c.m)
 		}
 		row += uint32(x.Len())
-		few.many = few.many || x.head.Structures > maxSample
+		few.many = few.many || x.head.Distinct > maxSample
 	}
 	for _, c := range few.chosen() {
 		list = append(list, c.m)
@@ -235,7 +235,7 @@ func (s *Shelf) Len() int {
 	return n
 }
 
-// Structures is the number of structures: each once where items are in memory, each row of an index.
+// Structures is the number of structures, each once in memory and in every index.
 func (s *Shelf) Structures() int { return s.structures }
 
 // Indexed says whether a part of the shelf is an index file.
