@@ -6,6 +6,9 @@ import (
 	"fmt"
 	"io"
 	"time"
+
+	"shelfward/molecule/smiles"
+	"shelfward/planner/route"
 )
 
 // runList answers `routes --targets FILE`.
@@ -27,6 +30,9 @@ func (o *routesOptions) runList(ctx context.Context) error {
 		return err
 	}
 	l := &targetList{app: app, flags: &o.flags, room: room, records: records, job: job}
+	if err := l.checkWishes(ctx); err != nil {
+		return err
+	}
 	take, finish, err := o.answersTo(l)
 	if err != nil {
 		return err
@@ -56,6 +62,22 @@ func (o *routesOptions) runList(ctx context.Context) error {
 		return err
 	}
 	return l.status(interrupted, o.out != "")
+}
+
+// checkWishes tries the wishes on a lone atom that nobody plans, so that a mistake in them is told before
+// anything is written, and what a target says later is about that target.
+func (l *targetList) checkWishes(ctx context.Context) error {
+	m, err := smiles.Read("[Xe]")
+	if err != nil {
+		return err
+	}
+	o, err := l.app.options(&job{room: l.room, target: m}, l.flags)
+	if err != nil {
+		return err
+	}
+	o.MaxExpanded, o.Progress = 1, nil
+	_, err = route.Make(ctx, l.room.World(), m, o)
+	return failWith(exitUsage, err)
 }
 
 // answersTo says where the answers go: to --out after those that stand there already, else to standard

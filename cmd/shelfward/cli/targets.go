@@ -25,7 +25,7 @@ const (
 	targetOnShelf    = "on shelf"   // nothing need be made
 	targetOpen       = "open"       // no route was found
 	targetDeclined   = "declined"   // restricted
-	targetUnreadable = "unreadable" // no structure
+	targetUnreadable = "unreadable" // no structure, or one that does not go with the wishes
 )
 
 // targetAnswer is the line of one target: what it was and the object that `routes --json` prints for it.
@@ -192,8 +192,9 @@ func (l *targetList) answer(ctx context.Context, rec *targetRecord, workers int)
 	}
 	j := &job{room: l.room, target: m, readAs: "SMILES"}
 	o, err := l.app.options(j, l.flags)
-	if err != nil {
-		return nil, err
+	if err != nil { // the wishes were tried before: this target does not go with them
+		a.Status, a.Error = targetUnreadable, err.Error()
+		return a, nil
 	}
 	o.Workers, o.Progress, o.Openings = workers, nil, purchasesKept
 	o.Memory /= max(1, l.app.workers()/workers) // as many are planned at a time, whatever the length of the list
