@@ -111,11 +111,15 @@ func useCelsius(q *quantity, low, high float64, _ []string) {
 	q.temperature = &[2]float64{low, high}
 }
 
-// useEquivalents notes the number; exactly one equivalent is a limit that a chemist sets on purpose.
+// useEquivalents notes the number; exactly one equivalent is a limit that a chemist sets on purpose, two and
+// more are an excess over what one group takes.
 func useEquivalents(q *quantity, low, high float64, m []string) {
 	q.equivalents = high
-	if high == 1 && strings.ContainsAny(m[0], "eqmo") {
+	switch {
+	case high == 1 && strings.ContainsAny(m[0], "eqmo"):
 		q.facts = []string{"limited"}
+	case low >= 2 && strings.ContainsAny(m[0], "eqmo"):
+		q.facts = []string{"excess"}
 	}
 }
 
