@@ -19,6 +19,9 @@ type Book struct {
 	groups     *pattern.Groups
 	arene      *arene
 	media      *toleranceTable
+	protection []*ProtectingGroup
+	takesOff   map[string]*ProtectingGroup // by transform
+	guarding   []*Transform                // take off what is looked at only in need
 
 	sieve   *pattern.Sieve // of all product parts, transform after transform
 	sieveOf []*Transform   // per product part its transform
@@ -36,9 +39,22 @@ func Load(fsys fs.FS) (*Book, error) {
 	l.loadTolerance()
 	l.loadTransforms()
 	l.checkTogether()
-	b := &Book{Transforms: l.list, byID: l.byID, groups: l.groups, arene: a, media: l.media}
+	b := &Book{Transforms: l.list, byID: l.byID, groups: l.groups, arene: a, media: l.media, protection: l.loadProtection(), takesOff: map[string]*ProtectingGroup{}}
+	b.indexProtection()
 	b.sift()
 	return b, l.errs.Err()
+}
+
+// indexProtection finds the protecting groups by the transforms that take them off.
+func (b *Book) indexProtection() {
+	for _, g := range b.protection {
+		for _, id := range g.TakeOff {
+			b.takesOff[id] = g
+			if t := b.byID[id]; t != nil && !g.Builds {
+				b.guarding = append(b.guarding, t)
+			}
+		}
+	}
 }
 
 // sift makes the sieve of the product parts.
@@ -132,6 +148,7 @@ func (b *Book) Expand(ctx context.Context, target *molecule.Molecule, stocked St
 	w := b.newWorkspace()
 	defer w.release()
 	x := &expander{b: b, w: w, target: w.of(target), stocked: stocked}
+	x.guards.watch = x.guardable()
 	err := ctx.Err()
 	b.eachFor(x.target, func(t *Transform) bool {
 		if err = ctx.Err(); err == nil {
@@ -142,6 +159,7 @@ func (b *Book) Expand(ctx context.Context, target *molecule.Molecule, stocked St
 	if err != nil {
 		return nil, err
 	}
+	x.dropUnneeded()
 	return x.steps, nil
 }
 
@@ -154,6 +172,7 @@ type expander struct {
 	steps    []*Step
 	rejected []rejectedStep
 	keepAll  bool
+	guards   guards
 }
 
 // rejectedStep remembers why a proposal was dropped.
@@ -166,9 +185,17 @@ type rejectedStep struct {
 func (x *expander) expand(t *Transform) {
 	for _, p := range t.backwards(x.w, x.target, x.stocked) {
 		d := x.draft(t, p)
-		if step, reasons := d.step(); step != nil {
+		step, reasons := d.step()
+		switch {
+		case step != nil:
+			if g := x.b.watches(t); g != nil {
+				x.guard(g, d)
+			}
 			x.steps = append(x.steps, step)
-		} else if x.keepAll {
+		case x.guards.watch && d.found:
+			x.guards.failed = append(x.guards.failed, d)
+		}
+		if step == nil && x.keepAll {
 			x.rejected = append(x.rejected, rejectedStep{t, d.molecules(), reasons})
 		}
 		x.expandTogether(d)

@@ -119,6 +119,7 @@ func (c *chemistry) build(found search.Route, p *Plan) (*Route, error) {
 	b := &bill{c: c, list: list, number: number, plan: p, route: &r}
 	b.work()
 	r.alternatives(c, list)
+	r.protections(c.world)
 	r.doubt(c, p)
 	return &r, nil
 }

@@ -154,6 +154,7 @@ type Route struct {
 	StartingMaterials []StartingMaterial `json:"starting_materials"`
 	ToBuy             []Purchase         `json:"to_buy"`
 	Alternatives      []Alternative      `json:"alternatives"`
+	Protections       []Protection       `json:"protections"`   // groups shielded over some steps
 	WaysOut           []WayOut           `json:"ways_out"`      // per intermediate: what is left if the step that takes it on fails
 	VariantOf         string             `json:"variant_of"`    // code of a route with the same reactions in another order
 	Short             []string           `json:"short"`         // stock that does not suffice for the scale of the plan

@@ -59,6 +59,9 @@ func (r *Route) fill() {
 			*list = []string{}
 		}
 	}
+	if r.Protections == nil {
+		r.Protections = []Protection{}
+	}
 	if r.WaysOut == nil {
 		r.WaysOut = []WayOut{}
 	}

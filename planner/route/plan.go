@@ -255,7 +255,7 @@ func (c *chemistry) takenFromShelf(root search.Key) Route {
 
 func emptyRoute() Route {
 	return Route{Steps: []Step{}, Hazard: HazardFigures{Gravest: []string{}}, StartingMaterials: []StartingMaterial{}, ToBuy: []Purchase{},
-		Alternatives: []Alternative{}, WaysOut: []WayOut{}, Short: []string{}, StockUnknown: []string{}, Doubts: []string{}}
+		Alternatives: []Alternative{}, Protections: []Protection{}, WaysOut: []WayOut{}, Short: []string{}, StockUnknown: []string{}, Doubts: []string{}}
 }
 
 func (p *Plan) fillSearch(r *search.Result) {

@@ -127,6 +127,9 @@ func (r *Route) write(t *writer, p *Plan) {
 	for _, d := range r.Doubts {
 		t.line("  Doubt: %s", d)
 	}
+	for i := range r.Protections {
+		t.line("  Protection: %s", r.Protections[i].text())
+	}
 	t.line("")
 	r.ladder(t, p)
 	t.line("")
