@@ -43,6 +43,9 @@ func Load(path string) (*Plan, error) {
 	if p.LeftOut == nil { // written before it was kept
 		p.LeftOut = []LeftOut{}
 	}
+	if p.Explained == nil {
+		p.Explained = []Explained{}
+	}
 	for i := range p.Routes {
 		p.Routes[i].fill()
 		if err := p.Routes[i].whole(); err != nil {

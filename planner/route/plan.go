@@ -83,6 +83,7 @@ type Plan struct {
 	Routes    []Route       `json:"routes"`
 	Search    SearchFigures `json:"search"`
 	WouldOpen []Opening     `json:"would_open"`
+	Explained []Explained   `json:"explained"` // molecules asked about
 	Doubts    []string      `json:"doubts"`
 
 	Molecule *molecule.Molecule `json:"-"`
@@ -226,7 +227,7 @@ func (c *chemistry) later(again, first *search.Result, before time.Duration) {
 func (c *chemistry) newPlan(target *molecule.Molecule, root search.Key, o *Options) *Plan {
 	formula := target.Formula()
 	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Kept: Kept{Avoided: c.filter.Avoided(), LeftOut: []LeftOut{}}, MaxSteps: o.MaxSteps,
-		From: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Doubts: []string{}, Molecule: target,
+		From: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Explained: []Explained{}, Doubts: []string{}, Molecule: target,
 		Target: Target{SMILES: c.world.Write(target), Name: c.world.Name(target), Formula: formula.String(), MolarMass: formula.MolarMass(), OnShelf: c.material(root).OnShelf}}
 	for _, m := range o.From {
 		p.From = append(p.From, c.world.Write(m))

@@ -24,6 +24,7 @@ func (p *Plan) WriteText(w io.Writer) error {
 	}
 	if len(p.Routes) == 0 {
 		p.writeNothing(t)
+		p.writeExplained(t)
 		return t.err
 	}
 	if len(p.Routes[0].Steps) == 0 {
@@ -42,7 +43,14 @@ func (p *Plan) WriteText(w io.Writer) error {
 		t.line("")
 		p.Routes[i].write(t, p)
 	}
+	p.writeExplained(t)
 	return t.err
+}
+
+func (p *Plan) writeExplained(t *writer) {
+	for i := range p.Explained {
+		p.Explained[i].write(t)
+	}
 }
 
 // writer remembers the first error so that printing reads plainly.
@@ -81,7 +89,7 @@ func (p *Plan) writeNothing(t *writer) {
 		t.line("No route was found.")
 	}
 	for _, o := range p.WouldOpen {
-		t.line("One purchase would open a route: %s (%s).", label(o.Name, o.SMILES), o.Why)
+		t.line("One purchase would open a route: %s (%s; %s).", label(o.Name, o.SMILES), o.Why, o.ClassSays)
 	}
 }
 

@@ -233,6 +233,7 @@ type routesOptions struct {
 
 	routeGraph string
 	targets    string
+	explain    []string
 }
 
 func newRoutesCommand(app *App) *cobra.Command {
@@ -269,6 +270,7 @@ func newRoutesCommand(app *App) *cobra.Command {
 	o.flags.bind(cmd)
 	cmd.Flags().StringVar(&o.targets, "targets", "", "plan every target of a file of SMILES or an SD file")
 	cmd.Flags().StringVar(&o.out, "out", "", "save the plan as a JSON file for compare and sheet; with --targets the file of answers")
+	cmd.Flags().StringArrayVar(&o.explain, "explain", nil, "say of this molecule whether it lies on the way, at what cost, and why it was not chosen (repeatable)")
 	cmd.Flags().StringVar(&o.graph, "graph", "", "write the explored network of molecules and steps as a DOT file")
 	cmd.Flags().StringVar(&o.routeGraph, "route-graph", "", "write the first route's network as a DOT file")
 	return cmd
@@ -280,12 +282,11 @@ func (o *routesOptions) run(ctx context.Context, text string) error {
 		return err
 	}
 	p := j.plan
+	if p != nil && len(o.explain) > 0 {
+		return usageError("--explain asks about a search; give the target instead of a plan file")
+	}
 	if p == nil {
-		opt, err := o.app.options(j, &o.flags)
-		if err != nil {
-			return err
-		}
-		if p, err = o.app.plan(ctx, j, opt); err != nil {
+		if p, err = o.search(ctx, j); err != nil {
 			return err
 		}
 	}
@@ -306,6 +307,38 @@ func (o *routesOptions) run(ctx context.Context, text string) error {
 	return nothingFound(p)
 }
 
+// search plans, and looks into the molecules of --explain.
+func (o *routesOptions) search(ctx context.Context, j *job) (*route.Plan, error) {
+	opt, err := o.app.options(j, &o.flags)
+	if err != nil {
+		return nil, err
+	}
+	var ask []*molecule.Molecule
+	for _, text := range o.explain {
+		m, err := j.resolve(text)
+		if err != nil {
+			return nil, usageError("--explain: %v", err)
+		}
+		if v := j.room.Restricted.Intermediate(m); v.Declined() && len(j.room.Shelf.Find(m)) == 0 {
+			return nil, o.app.declined(v)
+		}
+		ask = append(ask, m)
+	}
+	var each time.Duration
+	opt.Time, each = route.ExplainTime(opt.Time, len(ask))
+	p, err := o.app.plan(ctx, j, opt)
+	if err != nil {
+		return nil, err
+	}
+	opt.Time = each
+	for _, m := range ask {
+		if err := p.Explain(ctx, j.room.World(), m, opt); err != nil {
+			return nil, failWith(exitUsage, err)
+		}
+	}
+	return p, nil
+}
+
 // header prints what was read, and that the shelf is invented where it is.
 func (app *App) header(j *job) {
 	for _, line := range app.headerLines(j) {
@@ -323,7 +356,7 @@ func (app *App) headerLines(j *job) []string {
 
 // emptyPlan is the object of a search that had no target to begin with.
 func emptyPlan(doubts []string) *route.Plan {
-	return &route.Plan{From: []string{}, Kept: route.Kept{Avoided: []string{}, LeftOut: []route.LeftOut{}}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Doubts: doubts}
+	return &route.Plan{From: []string{}, Kept: route.Kept{Avoided: []string{}, LeftOut: []route.LeftOut{}}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Explained: []route.Explained{}, Doubts: doubts}
 }
 
 // nothingFound turns a plan without routes into status 3; the reason has been printed.
