@@ -88,14 +88,13 @@ func (p *perceiver) build(b *Builder) (*Molecule, error) {
 	if len(b.Atoms) > MaxAtoms {
 		return nil, &Error{-1, -1, fmt.Sprintf("the structure has %d atoms; at most %d are accepted", len(b.Atoms), MaxAtoms)}
 	}
-	m := &Molecule{
-		atoms:   append(make([]Atom, 0, len(b.Atoms)), b.Atoms...),
-		bonds:   append(make([]Bond, 0, len(b.Bonds)), b.Bonds...),
-		leftOut: uint16(min(b.LeftOut, MaxAtoms)),
-	}
 	if rings := len(b.Bonds) - len(b.Atoms); rings > MaxRings {
 		return nil, &Error{-1, -1, fmt.Sprintf("the structure has %d rings; at most %d are accepted", rings, MaxRings)}
 	}
+	m := newMolecule(len(b.Atoms), len(b.Bonds))
+	copy(m.atoms, b.Atoms)
+	copy(m.bonds, b.Bonds)
+	m.leftOut = uint16(min(b.LeftOut, MaxAtoms))
 	p.m = m
 	if err := p.connect(); err != nil {
 		return nil, err
@@ -117,7 +116,6 @@ func (p *perceiver) build(b *Builder) (*Molecule, error) {
 func (p *perceiver) connect() error {
 	m := p.m
 	n := len(m.atoms)
-	m.first = make([]int32, n+1)
 	for i := range m.bonds {
 		x := &m.bonds[i]
 		if x.A < 0 || x.B < 0 || int(x.A) >= n || int(x.B) >= n {
@@ -137,7 +135,6 @@ func (p *perceiver) connect() error {
 		m.first[a] = sum
 		sum += c
 	}
-	m.neighbors = make([]Neighbor, sum)
 	for i := range m.bonds {
 		x := &m.bonds[i]
 		m.neighbors[m.first[x.A]] = Neighbor{Atom: x.B, Bond: int32(i)}
@@ -220,6 +217,7 @@ type Fingerprint [2]uint64
 // numbering included. It costs a small part of Build.
 func (b *Builder) Fingerprint() Fingerprint {
 	h := Fingerprint{uint64(len(b.Atoms))<<32 | uint64(len(b.Bonds)), uint64(len(b.Centers))<<32 | uint64(len(b.DoubleBonds))}
+	h.mix(uint64(b.LeftOut))
 	for i := range b.Atoms {
 		x := &b.Atoms[i]
 		h.mix(uint64(x.Element) | uint64(uint8(x.Charge))<<8 | uint64(x.Hydrogens)<<16 | uint64(x.Isotope)<<24 | uint64(x.Class)<<40)

@@ -242,8 +242,11 @@ func (s *search) leaf(depth int) int {
 // their paths part: what hangs below there is equivalent to what was seen.
 func (s *search) automorphism(l *leaf) int {
 	var auto []int32
-	if len(s.autos) < maxStored {
-		auto = make([]int32, len(l.order))
+	if k := len(s.autos); k < maxStored {
+		if k < cap(s.autos) {
+			auto = s.autos[:k+1][k] // of an earlier graph
+		}
+		auto = resized(auto, len(l.order))
 	}
 	for i, a := range l.order {
 		b := s.now.order[i]
