@@ -30,7 +30,7 @@ func (t *Transform) byproducts(o *outcome, c *Conditions, main int, target *mole
 		add(p.m, 1/perRun)
 	}
 	for _, g := range c.Gives {
-		if m := t.given(o, g.SMILES); m != nil {
+		if m := t.given(o, &g); m != nil {
 			add(m, g.Count*float64(o.sites)/perRun)
 		}
 	}
@@ -41,7 +41,7 @@ func (t *Transform) byproducts(o *outcome, c *Conditions, main int, target *mole
 func (t *Transform) takenPieces(o *outcome, c *Conditions) map[int]bool {
 	taken := map[int]bool{}
 	for _, g := range c.Gives {
-		for _, class := range starClasses(g.SMILES) {
+		for _, class := range g.stars {
 			s := t.script.slotOfClass(class)
 			for _, to := range o.mappings {
 				if s < 0 || to[s] < 0 {
@@ -75,13 +75,10 @@ func starClasses(s string) []int {
 	return out
 }
 
-// given reads an entry of gives; a star becomes the fragment that left with its class.
-func (t *Transform) given(o *outcome, text string) *molecule.Molecule {
-	m, err := smiles.Read(text)
-	if err != nil {
-		return nil
-	}
-	for _, class := range starClasses(text) {
+// given is the molecule of an entry of gives; a star becomes the fragment that left with its class.
+func (t *Transform) given(o *outcome, g *Amount) *molecule.Molecule {
+	m := g.read
+	for _, class := range g.stars {
 		left := t.leaving(o, class)
 		if left == nil || m == nil {
 			return nil
@@ -194,7 +191,7 @@ func (t *Transform) imbalance(o *outcome, c *Conditions) string {
 		}
 	}
 	for _, g := range c.Gives {
-		if m := t.given(o, g.SMILES); m != nil {
+		if m := t.given(o, &g); m != nil {
 			sum.add(m, g.Count*float64(o.sites))
 		}
 	}

@@ -23,6 +23,7 @@ type Book struct {
 	takesOff   map[string]*ProtectingGroup // by transform
 	guarding   []*Transform                // take off what is looked at only in need
 
+	common  commonMolecules
 	sieve   *pattern.Sieve // of all product parts, transform after transform
 	sieveOf []*Transform   // per product part its transform
 }

@@ -84,7 +84,7 @@ func (l *loader) conditionAmounts(t *Transform, c *Conditions, sc *sourceConditi
 	}
 	sort.Strings(gases)
 	for _, g := range gases {
-		c.Gas = append(c.Gas, Amount{sc.Gas[g], g})
+		c.Gas = append(c.Gas, Amount{Count: sc.Gas[g], SMILES: g})
 	}
 	c.ReactantEquiv = map[int]float64{}
 	for k, v := range sc.ReactantEquiv {
@@ -117,17 +117,19 @@ func (l *loader) conditionAmounts(t *Transform, c *Conditions, sc *sourceConditi
 func amounts(list []rules.Text, file string) ([]Amount, error) {
 	var out []Amount
 	for _, text := range list {
-		a := Amount{1, text.Value}
+		a := Amount{Count: 1, SMILES: text.Value}
 		if number, rest, ok := strings.Cut(text.Value, " "); ok {
 			n, err := parseCount(number)
 			if err != nil {
 				return nil, text.Errorf(file, "%q: a number and a SMILES were expected", text.Value)
 			}
-			a = Amount{n, strings.TrimSpace(rest)}
+			a = Amount{Count: n, SMILES: strings.TrimSpace(rest)}
 		}
 		if _, err := smiles.Read(starless(a.SMILES)); err != nil {
 			return nil, text.Errorf(file, "%v", err)
 		}
+		a.read, _ = smiles.Read(a.SMILES) // nil: a star that stands for nothing readable gives nothing
+		a.stars = starClasses(a.SMILES)
 		out = append(out, a)
 	}
 	return out, nil

@@ -124,4 +124,7 @@ type Solvent struct {
 type Amount struct {
 	Count  float64
 	SMILES string
+
+	read  *molecule.Molecule // of SMILES, nil in Gas
+	stars []int              // classes of its stars
 }

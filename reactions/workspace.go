@@ -162,7 +162,13 @@ func (w *workspace) build(b *molecule.Builder) (*made, error) {
 	if x := w.built[f]; x != nil {
 		return x, nil
 	}
-	m, err := b.Build()
+	var m *molecule.Molecule
+	var err error
+	if len(b.Atoms) <= maxCommon {
+		m, err = w.b.common.build(b, f)
+	} else {
+		m, err = b.Build()
+	}
 	if err != nil {
 		return nil, err
 	}
