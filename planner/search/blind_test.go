@@ -187,7 +187,21 @@ func leaves(b *bush) (out [][]int) {
 	return out
 }
 
-// follow returns the leaf at the end of a way and whether an atom of it reaches the root.
+// inner lists the ways to the nodes of the tree that are made, the root included.
+func inner(b *bush) (out [][]int) {
+	if b.edge == nil {
+		return nil
+	}
+	out = append(out, nil)
+	for i, k := range b.kids {
+		for _, w := range inner(k) {
+			out = append(out, append([]int{i}, w...))
+		}
+	}
+	return out
+}
+
+// follow returns the node at the end of a way and which of its atoms reach the root.
 func follow(b *bush, way []int) (id int, atoms map[int32]int32) {
 	if len(way) == 0 {
 		same := map[int32]int32{}
@@ -211,11 +225,25 @@ func follow(b *bush, way []int) (id int, atoms map[int32]int32) {
 // legal says whether one leaf can be named for each item of From whose atoms reach the root, such
 // that every stock molecule that is made lies above a leaf so named.
 func (j *judge) legal(b *bush) bool {
-	ways := make([][][]int, len(j.o.From))
+	ways := make([][][]int, j.o.owed())
 	for _, w := range leaves(b) {
 		id, atoms := follow(b, w)
 		if i, ok := j.from[id]; ok && len(atoms) > 0 {
 			ways[i] = append(ways[i], w)
+		}
+	}
+	for _, w := range inner(b) {
+		id, atoms := follow(b, w)
+		for v, counts := range j.o.Via {
+			above := false // the first such node from the root is the one that counts
+			for n := range w {
+				top := upTo(b, w[:n])
+				above = above || counts(key(top))
+			}
+			if counts(key(id)) && len(atoms) > 0 && !above {
+				i := len(ways) - len(j.o.Via) + v
+				ways[i] = append(ways[i], w)
+			}
 		}
 	}
 	var choose func(i int, named [][]int) bool
@@ -300,13 +328,27 @@ func task(seed uint64) (*made, Options, map[int]int) {
 		from[id] = len(o.From)
 		o.From = append(o.From, key(id))
 	}
+	if r.IntN(6) == 0 { // one of several
+		for _, id := range r.Perm(len(m.edges))[:2] {
+			if _, taken := from[id]; !taken && !(id == 0 && o.MakeRoot) {
+				o.FromAny = append(o.FromAny, key(id))
+			}
+		}
+		for _, k := range o.FromAny {
+			from[number(k)] = len(o.From)
+		}
+	}
+	for range max(0, r.IntN(7)-4) { // a node on the way, now and then either of two
+		a, b := r.IntN(len(m.edges)), r.IntN(len(m.edges))
+		o.Via = append(o.Via, func(k Key) bool { return number(k) == a || seed%3 == 0 && number(k) == b })
+	}
 	return m, o, from
 }
 
 // TestBlind compares cost for cost and route for route with the blind enumeration: cycles, sharing,
 // limits, items owed, ties, all three costs.
 func TestBlind(t *testing.T) {
-	tried, withRoutes, withFrom, looped := 0, 0, 0, 0
+	tried, withRoutes, withFrom, withVia, looped := 0, 0, 0, 0, 0
 	for seed := uint64(0); tried < 1500; seed++ {
 		m, o, from := task(seed)
 		j := &judge{m: m, o: o, from: from, budget: 60000}
@@ -323,6 +365,9 @@ func TestBlind(t *testing.T) {
 			withRoutes++
 			if len(from) > 0 {
 				withFrom++
+			}
+			if len(o.Via) > 0 {
+				withVia++
 			}
 		}
 		if len(order) > o.Count {
@@ -349,8 +394,16 @@ func TestBlind(t *testing.T) {
 			t.Fatalf("seed %d: %d proven of %d", seed, got.ProvenRoutes, want)
 		}
 	}
-	t.Logf("%d cases: %d with routes, %d of them with items owed, %d with more routes than wanted", tried, withRoutes, withFrom, looped)
-	if withRoutes < tried/5 || withFrom < tried/20 || looped < tried/20 {
+	t.Logf("%d cases: %d with routes, %d of them with items owed, %d with a node on the way, %d with more routes than wanted", tried, withRoutes, withFrom, withVia, looped)
+	if withRoutes < tried/5 || withFrom < tried/20 || withVia < tried/40 || looped < tried/25 {
 		t.Errorf("the cases are too easy")
 	}
+}
+
+// upTo returns the node at the end of a way.
+func upTo(b *bush, way []int) int {
+	for _, i := range way {
+		b = b.kids[i]
+	}
+	return b.id
 }

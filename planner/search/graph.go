@@ -20,7 +20,8 @@ type edge struct {
 // node is one molecule of the graph. Nodes are numbered in the order in which they were met.
 type node struct {
 	key      Key
-	from     int8 // index into Options.From, -1 if none
+	from     int8  // the bit that this node pays as a leaf, -1 if none
+	via      uint8 // the bits that it pays when it is made
 	stock    bool
 	leafCost float64
 	open     bool  // not expanded yet
@@ -46,25 +47,34 @@ type graph struct {
 	problem Problem
 	cost    Cost
 	steps   int // limit on the longest run
-	sets    int // number of sets of items owed: 2^len(from)
-	nodes   []node
-	facts   []unopened // node*sets + owed
-	index   map[Key]int32
-	from    map[Key]int8
-	root    int32
-	make    bool // the root may not be taken from stock
-	dirty   [][]int32
-	marked  [][]bool
-	mark    uint32 // number of the current call of pick
-	batch   uint32 // number of the current batch, from 1
+	sets    int // number of sets of what is owed
+
+	via      []Via
+	firstVia int // its bit
+
+	nodes  []node
+	facts  []unopened // node*sets + owed
+	index  map[Key]int32
+	from   map[Key]int8
+	root   int32
+	make   bool // the root may not be taken from stock
+	dirty  [][]int32
+	marked [][]bool
+	mark   uint32 // number of the current call of pick
+	batch  uint32 // number of the current batch, from 1
 }
 
 func newGraph(p Problem, root Key, o *Options) *graph {
-	g := &graph{problem: p, cost: o.Cost, steps: o.MaxSteps, sets: 1 << len(o.From),
+	g := &graph{problem: p, cost: o.Cost, steps: o.MaxSteps, sets: 1 << o.owed(), via: o.Via, firstVia: o.owed() - len(o.Via),
 		index: map[Key]int32{}, from: map[Key]int8{}, make: o.MakeRoot}
 	for i, k := range o.From {
 		if _, twice := g.from[k]; !twice {
 			g.from[k] = int8(i)
+		}
+	}
+	for _, k := range o.FromAny {
+		if _, twice := g.from[k]; !twice {
+			g.from[k] = int8(len(o.From))
 		}
 	}
 	g.dirty = make([][]int32, g.steps+2)
@@ -89,23 +99,56 @@ func (g *graph) node(k Key) int32 {
 			n.leafCost = 0
 		}
 	}
+	for i, counts := range g.via {
+		if counts(k) {
+			n.via |= 1 << (g.firstVia + i)
+		}
+	}
 	if id == 0 && g.make {
 		n.stock, n.from, n.leafCost = false, -1, inf
 	}
 	g.nodes = append(g.nodes, n)
 	for owed := 0; owed < g.sets; owed++ {
-		var u unopened
-		if g.leafOnly(&n, uint8(owed)) {
-			u = unopened{math.MaxInt32, inf, inf}
-		} else {
-			u.minSteps, u.bound = g.problem.Bound(k, uint8(owed))
-			u.minSteps = max(u.minSteps, 1)
-			u.guess = max(u.bound, g.problem.Guess(k, uint8(owed)))
-		}
-		g.facts = append(g.facts, u)
+		g.facts = append(g.facts, g.ask(&n, uint8(owed)))
 	}
 	g.index[k] = id
 	return id
+}
+
+// ask returns what the problem says about making n when owed must be consumed below it.
+func (g *graph) ask(n *node, owed uint8) (u unopened) {
+	if g.leafOnly(n, owed) {
+		return unopened{math.MaxInt32, inf, inf}
+	}
+	u.minSteps, u.bound = g.problem.Bound(n.key, owed&^n.via)
+	u.minSteps = max(u.minSteps, 1)
+	u.guess = max(u.bound, g.problem.Guess(n.key, owed&^n.via))
+	return u
+}
+
+// refresh asks again about every node that is still open and marks what depends on it as out of date.
+func (g *graph) refresh() {
+	for id := range g.nodes {
+		n := &g.nodes[id]
+		if !n.open {
+			continue
+		}
+		changed := false
+		for owed := 0; owed < g.sets; owed++ {
+			fact := &g.facts[id*g.sets+owed]
+			if u := g.ask(n, uint8(owed)); u != *fact {
+				*fact, changed = u, true
+			}
+		}
+		if !changed {
+			continue
+		}
+		for _, p := range n.parents {
+			for steps := 1; steps <= g.steps; steps++ {
+				g.soil(p, steps)
+			}
+		}
+	}
 }
 
 // leafOnly says that n is never made when owed must be consumed at or below it: an item of From is
@@ -235,7 +278,7 @@ func (g *graph) revalue(id int32, steps int) (changed bool) {
 		if !g.leafOnly(n, uint8(owed)) {
 			for i := range n.edges {
 				e := &n.edges[i]
-				for s := firstSplit(e, uint8(owed)); s.ok; s.next() {
+				for s := firstSplit(e, uint8(owed)&^n.via); s.ok; s.next() {
 					c, b, u := g.edgeValues(e, &s, steps-1)
 					complete, bound, guess = min(complete, c), min(bound, b), min(guess, u)
 				}
@@ -296,8 +339,8 @@ func (g *graph) cheapest(e *edge, children []float64) float64 {
 // split deals the items owed out to the children of an edge; part[i] is what child i must consume.
 type split struct {
 	part  [maxChildren]uint8
-	bits  [MaxFrom]uint8 // the single items
-	at    [MaxFrom]int   // index into able of the child that takes each item
+	bits  [MaxOwed]uint8 // the single items
+	at    [MaxOwed]int   // index into able of the child that takes each item
 	count int
 	able  [maxChildren]int8 // children that give atoms
 	ables int

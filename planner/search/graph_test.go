@@ -68,7 +68,7 @@ func TestValues(t *testing.T) {
 	compared, mixed := 0, 0
 	for seed := uint64(0); seed < 600; seed++ {
 		m, o, _ := task(seed)
-		o.From = o.From[:min(len(o.From), 2)]
+		o.From, o.FromAny, o.Via = o.From[:min(len(o.From), 2)], nil, nil
 		o.MaxSteps = min(o.MaxSteps, 3)
 		g := newGraph(m, key(0), &o)
 		for range 6 {

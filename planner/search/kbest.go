@@ -14,10 +14,11 @@ type tree struct {
 	children []*tree
 	cost     float64
 	hash     uint64 // of the molecules and their arrangement
-	// reach[i] is the set of atoms of the node that come from the i-th item that the state owed, nil if
-	// that item was not owed. At a leaf of From it is nil with whole set: every atom comes from it.
-	reach [MaxFrom]atomSet
-	whole [MaxFrom]bool
+	// reach[i] is the set of atoms of the node that come from what pays the i-th bit that the state owed,
+	// nil if that was not owed. At a leaf of From, or at a node that must be made on the way, it is nil
+	// with whole set: every atom comes from it.
+	reach [MaxOwed]atomSet
+	whole [MaxOwed]bool
 }
 
 // atomSet is a set of atom indices.
@@ -174,7 +175,7 @@ func (d *drawer) begin(l *lister) {
 	for i := range n.edges {
 		e := &n.edges[i]
 	splits:
-		for s := firstSplit(e, l.owed); s.ok; s.next() {
+		for s := firstSplit(e, l.owed&^n.via); s.ok; s.next() {
 			for j, child := range e.children {
 				if low[j], _, _ = d.g.values(child, l.steps-1, s.part[j]); low[j] == inf {
 					continue splits
@@ -247,6 +248,10 @@ func (d *drawer) passes(t *tree, owed uint8) bool {
 	}
 	for i := 0; owed>>i != 0; i++ {
 		if owed&(1<<i) == 0 {
+			continue
+		}
+		if d.g.nodes[t.id].via&(1<<i) != 0 {
+			t.whole[i] = true
 			continue
 		}
 		found := false

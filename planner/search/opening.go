@@ -48,7 +48,7 @@ func (g *graph) descendToGap(h *places, at place) {
 	var costs [maxChildren]float64
 	for i := range n.edges {
 		e := &n.edges[i]
-		for s := firstSplit(e, at.owed); s.ok; s.next() {
+		for s := firstSplit(e, at.owed&^n.via); s.ok; s.next() {
 			lacking, gap := 0, 0
 			for j, child := range e.children {
 				if costs[j], _, _ = g.values(child, int(at.steps)-1, s.part[j]); costs[j] == inf {

@@ -102,7 +102,7 @@ func (g *graph) descend(h *places, at place, byGuess bool) {
 		e := &n.edges[i]
 		k := len(e.children)
 	splits:
-		for s := firstSplit(e, at.owed); s.ok; s.next() {
+		for s := firstSplit(e, at.owed&^n.via); s.ok; s.next() {
 			for j, child := range e.children {
 				c, b, u := g.values(child, int(at.steps)-1, s.part[j])
 				if open[j] = b; byGuess {

@@ -22,9 +22,13 @@ import "context"
 // Key names a node.
 type Key [16]byte
 
-// MaxFrom is the largest number of items in Options.From: the sets of items owed are bit masks, and
-// each item doubles the number of states.
-const MaxFrom = 4
+// MaxFrom is the largest number of items in Options.From, and MaxOwed of all that a route can owe: items,
+// one of several, nodes on the way. The sets of what is owed are bit masks, and each doubles the number of
+// states.
+const (
+	MaxFrom = 4
+	MaxOwed = 6
+)
 
 // Child is one node that an edge consumes.
 type Child struct {
@@ -64,12 +68,34 @@ type Problem interface {
 	Expand(ctx context.Context, k Key) (Expansion, error)
 	// Leaf returns the cost of taking k from stock, and whether that is possible.
 	Leaf(k Key) (cost float64, ok bool)
-	// Bound returns facts about k that is not taken as a leaf when the items in owed must still be
-	// consumed below it: steps that any way to it needs along its longest run (at least 1), and a cost
+	// Bound returns facts about k that is not taken as a leaf when what is in owed must still be met
+	// below it (bit i is Options.From[i]; the next bit is FromAny if there is any; then Via): steps that any way to it needs along its longest run (at least 1), and a cost
 	// that no way to it undercuts.
 	Bound(k Key, owed uint8) (minSteps int, cost float64)
 	// Guess estimates the cost of making k; it only orders the work.
 	Guess(k Key, owed uint8) float64
+}
+
+// Tightener is a Problem that also works from the stock towards the target: what that finds raises its
+// bounds. Tighten is called between batches; it may open molecules forwards on the given number of
+// goroutines and must decide from its arguments alone, so that every run does the same. Afterwards Bound
+// may have risen, never fallen.
+type Tightener interface {
+	Tighten(ctx context.Context, s Standing) (Tightening, error)
+}
+
+// Standing is what a Tightener may decide by.
+type Standing struct {
+	Expanded int     // nodes opened
+	Routes   int     // routes that stand, at most the number wanted
+	Gap      float64 // between the last route wanted and the bound, infinite while there are too few routes
+	Workers  int
+}
+
+// Tightening is what one call of Tighten did.
+type Tightening struct {
+	Opened  int  // molecules opened forwards
+	Changed bool // Bound or Guess answer otherwise from now on
 }
 
 // Cost says how the cost of a node follows from the chosen variant of an edge and the costs of its

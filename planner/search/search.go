@@ -16,6 +16,8 @@ type Options struct {
 	Count       int           // routes wanted; 5
 	MaxSteps    int           // along the longest run; 8
 	From        []Key         // items that every route must consume; at most MaxFrom
+	FromAny     []Key         // items of which every route must consume at least one
+	Via         []Via         // nodes that every route must make on its way
 	MakeRoot    bool          // the target is made even if it could be taken from stock
 	MaxExpanded int           // nodes opened at most; no limit
 	MaxNodes    int           // nodes held at most, for the memory; 1,000,000
@@ -23,10 +25,19 @@ type Options struct {
 	Full        func() bool   // says that memory is short all the same; nil: never
 	Time        time.Duration // by the clock; no limit
 	Workers     int           // goroutines that expand; the number of processors
+	Began       time.Time     // what Time, Elapsed and Stood count from where work went before; now
 	Progress    func(Progress)
 	// Accept says whether a complete route may be listed; nil accepts all. Routes are drawn until Count
 	// are accepted, so what is proven holds among accepted ones.
 	Accept func(*Tree) bool
+}
+
+// Via says whether a node counts as the one that must be made on the way. A pure function.
+type Via func(k Key) bool
+
+// owed returns the number of bits of what a route owes.
+func (o *Options) owed() int {
+	return len(o.From) + min(len(o.FromAny), 1) + len(o.Via)
 }
 
 // Progress is reported between batches.
@@ -67,6 +78,7 @@ func (t *Tree) Depth() int {
 type Result struct {
 	Routes       []Route // in order of cost; beyond Options.Count where the costs tie
 	Expanded     int
+	Forward      int // molecules opened forwards, by a Tightener
 	Tried        int // ways looked at in all expansions
 	LeftOut      int // ways left out because they may not be shown
 	Nodes        int
@@ -136,12 +148,23 @@ func Find(ctx context.Context, p Problem, target Key, options Options) (*Result,
 	if len(o.From) > MaxFrom {
 		return nil, fmt.Errorf("%d items that must be consumed; at most %d are possible", len(o.From), MaxFrom)
 	}
-	r := &run{o: o, start: time.Now()}
+	if o.owed() > MaxOwed {
+		return nil, fmt.Errorf("%d items and nodes that must be on every route; at most %d are possible", o.owed(), MaxOwed)
+	}
+	r := &run{o: o, start: o.Began}
+	if r.start.IsZero() {
+		r.start = time.Now()
+	}
 	r.g = newGraph(p, target, &o)
 	for {
 		r.result.Stopped = r.stop(ctx)
 		if r.result.Stopped != "" {
 			break
+		}
+		if changed, err := r.tighten(ctx); err != nil {
+			return nil, err
+		} else if changed {
+			continue
 		}
 		if err := r.batch(ctx); err != nil {
 			return nil, err
@@ -269,6 +292,30 @@ func (r *run) batch(ctx context.Context) error {
 		return fmt.Errorf("search: a batch of %d opened nothing", len(ids))
 	}
 	return nil
+}
+
+// tighten lets the problem raise its bounds by work from the stock, and says whether it did.
+func (r *run) tighten(ctx context.Context) (bool, error) {
+	p, ok := r.g.problem.(Tightener)
+	if !ok {
+		return false, nil
+	}
+	s := Standing{Expanded: r.result.Expanded, Routes: min(len(r.routes), r.o.Count), Gap: r.worst() - r.bound(), Workers: r.o.Workers}
+	if r.o.Time > 0 {
+		var cancel context.CancelFunc
+		ctx, cancel = context.WithDeadline(ctx, r.start.Add(r.o.Time))
+		defer cancel()
+	}
+	did, err := p.Tighten(ctx, s)
+	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
+		return false, nil // the search ends for the same reason
+	}
+	r.result.Forward += did.Opened
+	if did.Changed && err == nil {
+		r.g.refresh()
+		r.g.propagate()
+	}
+	return did.Changed, err
 }
 
 // draw lists the routes of the graph as it stands, in order of cost.

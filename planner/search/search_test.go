@@ -151,7 +151,7 @@ func TestMonotone(t *testing.T) {
 	compared := 0
 	for seed := uint64(0); seed < 800; seed++ {
 		m, o, _ := task(seed)
-		o.Count, o.From = 1, nil // with items owed, stock decides what may be made at all
+		o.Count, o.From, o.FromAny, o.Via = 1, nil, nil, nil // with items owed, stock decides what may be made at all
 		o.MakeRoot = true
 		before := find(t, m, o)
 		r := rand.New(rand.NewPCG(seed, 2))
@@ -273,7 +273,7 @@ func TestOpenings(t *testing.T) {
 	opened, looped := 0, 0
 	for seed := uint64(0); seed < 1500; seed++ {
 		m, o, _ := task(seed)
-		o.From = nil
+		o.From, o.FromAny, o.Via = nil, nil, nil
 		for _, x := range find(t, m, o).Openings {
 			id := number(x.Key)
 			m.stock[id] = 0
