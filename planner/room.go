@@ -72,8 +72,11 @@ func Open(fsys fs.FS, shelfFiles []string, dir string) (*Room, error) {
 // World is the room as route planning sees it.
 func (r *Room) World() *route.World {
 	return &route.World{Book: r.Book, Transforms: r.Book.Transforms, Materials: r.stock, Shelf: r.Shelf.Sample(), ShelfItems: r.Shelf.Structures(),
-		Gravity: r.Hazards.Gravity, Scale: r.scale, Name: r.Name, Declined: r.declined, Write: smiles.Write, Read: smiles.Read}
+		Gravity: r.Hazards.Gravity, Scale: r.scale, Name: r.Name, Declined: r.declined, Write: smiles.Write, WriteClasses: writeClasses, Read: smiles.Read}
 }
+
+// writeClasses writes canonical SMILES with the atom classes.
+func writeClasses(m *molecule.Molecule) string { return smiles.WriteInOrder(m, m.Ranks()) }
 
 // declined says whether a route may not pass through m. What stands on the shelf is a reagent charged,
 // not an intermediate isolated.

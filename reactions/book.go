@@ -58,6 +58,14 @@ func (b *Book) indexProtection() {
 	}
 }
 
+// Only returns a book that holds some of the transforms of b, in their order.
+func (b *Book) Only(list []*Transform) *Book {
+	part := *b
+	part.Transforms, part.sieveOf = list, nil
+	part.sift()
+	return &part
+}
+
 // sift makes the sieve of the product parts.
 func (b *Book) sift() {
 	var parts []*pattern.Query

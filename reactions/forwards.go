@@ -25,8 +25,8 @@ type Forwards struct {
 	fits    [][]bool // per part of all transforms, in order: the stock it lies on
 	first   []int    // per transform: index into fits of its first part
 	carried map[string][]carrier
-	halves  []Formed // what companions make from stock alone, for transforms that take more beside it
-	cache   *subjects
+	halves  []Formed   // what companions make from stock alone, for transforms that take more beside it
+	w       *workspace // of the call at hand
 }
 
 // carrier is a condition set of a transform that carries out a companion in the same flask.
@@ -37,9 +37,9 @@ type carrier struct {
 
 // Forwards prepares to run the transforms on a stock of molecules, each as it is drawn.
 func (b *Book) Forwards(stock []*molecule.Molecule) *Forwards {
-	f := &Forwards{b: b, carried: map[string][]carrier{}, cache: b.newSubjects()}
+	f := &Forwards{b: b, carried: map[string][]carrier{}}
 	for _, m := range stock {
-		f.stock = append(f.stock, f.cache.of(m))
+		f.stock = append(f.stock, b.subject(m))
 	}
 	for i, t := range b.Transforms {
 		f.first = append(f.first, len(f.fits))
@@ -62,7 +62,6 @@ func (b *Book) Forwards(stock []*molecule.Molecule) *Forwards {
 // Clone returns a second one with the same stock.
 func (f *Forwards) Clone() *Forwards {
 	c := *f
-	c.cache = f.b.newSubjects()
 	return &c
 }
 
@@ -71,15 +70,24 @@ func (f *Forwards) Clone() *Forwards {
 func (f *Forwards) Stock(ctx context.Context, visit func(start int, x Formed)) error {
 	f.halves = nil
 	for i, s := range f.stock {
-		var made []Formed
-		if err := f.all(ctx, s, i, func(x Formed) { made = append(made, x) }); err != nil {
+		if err := f.fromItem(ctx, i, s, visit); err != nil {
 			return err
 		}
-		for _, x := range made {
-			visit(i, x)
-			f.finishHalf(x, nil, func(y Formed) { visit(i, y) })
-			f.keepHalf(x, i)
-		}
+	}
+	return nil
+}
+
+func (f *Forwards) fromItem(ctx context.Context, i int, s *subject, visit func(start int, x Formed)) error {
+	f.w = f.b.newWorkspace()
+	defer f.w.release()
+	var made []Formed
+	if err := f.all(ctx, s, i, func(x Formed) { made = append(made, x) }); err != nil {
+		return err
+	}
+	for _, x := range made {
+		visit(i, x)
+		f.finishHalf(x, nil, func(y Formed) { visit(i, y) })
+		f.keepHalf(x, i)
 	}
 	return nil
 }
@@ -95,6 +103,7 @@ func (f *Forwards) keepHalf(x Formed, start int) {
 // FromStock hands over what one step gives from item i of the stock, alone and with the rest of it.
 func (f *Forwards) FromStock(ctx context.Context, i int, visit func(Formed)) error {
 	if f.halves == nil {
+		f.w = f.b.newWorkspace()
 		f.halves = []Formed{}
 		for j, s := range f.stock {
 			for ti, t := range f.b.Transforms {
@@ -103,16 +112,20 @@ func (f *Forwards) FromStock(ctx context.Context, i int, visit func(Formed)) err
 				}
 			}
 		}
+		f.w.release()
 	}
-	return f.from(ctx, f.stock[i], visit)
+	return f.from(ctx, f.stock[i].M, visit)
 }
 
 // From hands over what one step gives from start, alone and with the stock.
 func (f *Forwards) From(ctx context.Context, start *molecule.Molecule, visit func(Formed)) error {
-	return f.from(ctx, f.cache.of(start), visit)
+	return f.from(ctx, start, visit)
 }
 
-func (f *Forwards) from(ctx context.Context, s *subject, visit func(Formed)) error {
+func (f *Forwards) from(ctx context.Context, start *molecule.Molecule, visit func(Formed)) error {
+	f.w = f.b.newWorkspace()
+	defer f.w.release()
+	s := f.w.of(start)
 	var made []Formed
 	if err := f.all(ctx, s, len(f.stock), func(x Formed) { made = append(made, x) }); err != nil {
 		return err
@@ -142,7 +155,7 @@ func (f *Forwards) all(ctx context.Context, start *subject, limit int, visit fun
 // be nil) consumed as well.
 func (f *Forwards) finishHalf(x Formed, other *subject, visit func(Formed)) {
 	for _, c := range f.carried[x.Transform.ID] {
-		start := []*subject{f.cache.of(x.Product)}
+		start := []*subject{f.w.of(x.Product)}
 		if other != nil {
 			if other.key == start[0].key {
 				continue
@@ -222,7 +235,7 @@ func (x *chooser) next(from, more int) {
 // run hands over what forms when every molecule chosen is consumed.
 func (x *chooser) run() {
 	seen := map[molecule.Key]bool{}
-	outs := x.t.run(x.f.b, x.ms)
+	outs := x.t.run(x.f.w, x.ms)
 	for i := range outs {
 		o := &outs[i]
 		for which := range x.ms {

@@ -118,6 +118,7 @@ func (c *chemistry) build(found search.Route, p *Plan) (*Route, error) {
 	r.Code = codeOf(r.lines())
 	b := &bill{c: c, list: list, number: number, plan: p, route: &r}
 	b.work()
+	r.traceAtoms(c, found.Tree)
 	r.alternatives(c, list)
 	r.protections(c.world)
 	r.doubt(c, p)

@@ -19,17 +19,18 @@ type Book interface {
 
 // World is everything routes are made from. All functions must be safe for several goroutines.
 type World struct {
-	Book       Book
-	Transforms []*reactions.Transform // all that Book holds; used for bounds, words to avoid and counts
-	Materials  Materials
-	Shelf      []*molecule.Molecule                     // stand for the shelf: all of a small one, a sample of a large one; used for the order of the work only
-	ShelfItems int                                      // structures on the shelf
-	Gravity    func(hazard string) int                  // place of a GHS code in the order of gravity, 0 the gravest
-	Name       func(*molecule.Molecule) string          // "" if none is known
-	Declined   func(*molecule.Molecule) bool            // restricted intermediates; nil: none
-	Write      func(*molecule.Molecule) string          // canonical SMILES
-	Read       func(string) (*molecule.Molecule, error) // reads what Write wrote
-	Scale      *Scale                                   // what practice avoids at scale; nil: nothing
+	Book         Book
+	Transforms   []*reactions.Transform // all that Book holds; used for bounds, words to avoid and counts
+	Materials    Materials
+	Shelf        []*molecule.Molecule                     // stand for the shelf: all of a small one, a sample of a large one; used for the order of the work only
+	ShelfItems   int                                      // structures on the shelf
+	Gravity      func(hazard string) int                  // place of a GHS code in the order of gravity, 0 the gravest
+	Name         func(*molecule.Molecule) string          // "" if none is known
+	Declined     func(*molecule.Molecule) bool            // restricted intermediates; nil: none
+	Write        func(*molecule.Molecule) string          // canonical SMILES
+	WriteClasses func(*molecule.Molecule) string          // with atom classes; nil: not written
+	Read         func(string) (*molecule.Molecule, error) // reads what Write wrote
+	Scale        *Scale                                   // what practice avoids at scale; nil: nothing
 
 	names sync.Map // name -> namedMaterial, so that each is looked up once
 	sets  sync.Map // *reactions.Conditions -> setFigures
@@ -40,17 +41,21 @@ type chemistry struct {
 	world         *World
 	by            RankBy
 	filter        *filter
-	from          []*molecule.Molecule
+	from          []*molecule.Molecule // all starts named, one of several included
+	wants         wants
 	floor         float64 // no step weighs less
 	carbonPrice   float64 // least price of one mol of carbon, for Cost
 	oneEnantiomer bool
 	scale         *Scale // nil: the size of the batch plays no part
 	guesser       *guesser
+	least         []leastTransform // in order of weight
+	reach         *reach
+	counted       int // molecules run forwards that the search knows of
 
 	mu        sync.RWMutex
 	molecules map[search.Key]*molecule.Molecule
-	options   map[search.Key][][]option       // per molecule and edge
-	expanded  map[search.Key]search.Expansion // kept, because a second search may start over
+	options   map[search.Key][][]option // per molecule and edge
+	known     map[search.Key]facts
 	materials map[search.Key]*Material
 	tally     tally               // what the wishes kept out
 	refused   map[search.Key]bool // materials counted in it
@@ -63,17 +68,10 @@ type judgedSteps struct {
 	steps map[search.Key][]*reactions.Step
 }
 
+// newChemistry is a graph that is not yet ready for a search.
 func newChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, scale *Scale) *chemistry {
-	c := emptyChemistry(w, by, f, from, scale)
-	c.guesser = newGuesser(w.Shelf, from)
-	c.guesser.lookAhead(w.Book, w.Shelf, from, false)
-	return c
-}
-
-// emptyChemistry is a graph without a guesser.
-func emptyChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, scale *Scale) *chemistry {
-	c := &chemistry{world: w, by: by, filter: f, from: from, scale: scale, molecules: map[search.Key]*molecule.Molecule{}, options: map[search.Key][][]option{},
-		expanded: map[search.Key]search.Expansion{}, materials: map[search.Key]*Material{}, refused: map[search.Key]bool{}}
+	c := &chemistry{world: w, by: by, filter: f, from: from, wants: wants{from: from}, scale: scale, molecules: map[search.Key]*molecule.Molecule{}, options: map[search.Key][][]option{},
+		known: map[search.Key]facts{}, materials: map[search.Key]*Material{}, refused: map[search.Key]bool{}}
 	if f.restrains() {
 		c.judged = &judgedSteps{steps: map[search.Key][]*reactions.Step{}}
 	}
@@ -82,6 +80,14 @@ func emptyChemistry(w *World, by RankBy, f *filter, from []*molecule.Molecule, s
 		c.carbonPrice = c.cheapestCarbon()
 	}
 	return c
+}
+
+// lookFromShelf makes ready for a search: what the shelf gives bounds and guides it.
+func (c *chemistry) lookFromShelf(ctx context.Context) {
+	c.least = c.leastWeights()
+	c.reach = newReach(c)
+	c.reach.first(ctx)
+	c.guesser = newGuesser(c.world.Shelf, &c.wants, c.reach)
 }
 
 // leastStep is the least weight that any step under the loaded transforms can have: that of its
@@ -167,19 +173,14 @@ func (c *chemistry) stocked(m *molecule.Molecule) bool {
 }
 
 // Expand groups the judged steps by what they consume: one edge per set of molecules, one variant per
-// step and condition set that the filter lets through.
+// step and condition set that the filter lets through. The bounds of what they consume are worked out
+// here, where several molecules are opened at once.
 func (c *chemistry) Expand(ctx context.Context, k search.Key) (search.Expansion, error) {
-	c.mu.RLock()
-	known, ok := c.expanded[k]
-	c.mu.RUnlock()
-	if ok {
-		return known, nil
-	}
 	x, err := c.expand(ctx, k)
-	if err == nil {
-		c.mu.Lock()
-		c.expanded[k] = x
-		c.mu.Unlock()
+	for i := range x.Edges {
+		for _, child := range x.Edges[i].Children {
+			c.facts(child.Key)
+		}
 	}
 	return x, err
 }
@@ -196,7 +197,7 @@ func (c *chemistry) expand(ctx context.Context, k search.Key) (search.Expansion,
 			x.LeftOut++
 			continue
 		}
-		if fatal(s) || c.filter.bans(s) {
+		if fatal(s) || enolic(s) || c.filter.bans(s) {
 			continue
 		}
 		if why := c.filter.step(s); why != nil {
@@ -256,6 +257,12 @@ func fatal(s *reactions.Step) bool {
 	return slices.ContainsFunc(s.Objections, func(o reactions.Objection) bool { return o.Fatal })
 }
 
+// enolic says that a step takes the enol of a ketone or aldehyde for a material of its own: no bottle holds
+// one, and the ketone would react as a ketone.
+func enolic(s *reactions.Step) bool {
+	return slices.ContainsFunc(s.Reactants, func(r reactions.Reactant) bool { return r.Molecule.SimpleEnol() })
+}
+
 func (c *chemistry) restricted(s *reactions.Step) bool {
 	if c.world.Declined == nil {
 		return false
@@ -280,7 +287,7 @@ func sameEdge(a, b *option) bool {
 	if len(a.children) != len(b.children) || len(a.step.Origins) != len(b.step.Origins) {
 		return false
 	}
-	return slices.Equal(a.children, b.children) && slices.Equal(a.origins(), b.origins())
+	return slices.Equal(a.children, b.children) && slices.Equal(a.origins, b.origins)
 }
 
 // option is one way to carry out an edge: a judged step under one of its condition sets.
@@ -289,6 +296,7 @@ type option struct {
 	conditions *reactions.Conditions
 	children   []search.Child // in order of key, so that two steps that consume the same are seen as alike
 	order      []int          // order[i] is the index in step.Reactants of child i
+	origins    []search.Origin
 }
 
 // newOption sorts the reactants of a step by key. A reactant that counts as an item of From becomes
@@ -304,27 +312,51 @@ func (c *chemistry) newOption(s *reactions.Step, cond *reactions.Conditions) opt
 	for _, i := range o.order {
 		o.children = append(o.children, search.Child{Key: keys[i]})
 	}
+	o.origins = c.origins(&o)
 	return o
 }
 
-// origins gives the origin of each product atom by child.
-func (o *option) origins() []search.Origin {
+// origins gives the origin of each product atom by child. Two steps may draw the same molecule with its
+// atoms in another order; the order of the molecule entered first counts.
+func (c *chemistry) origins(o *option) []search.Origin {
 	child := make([]int32, len(o.order))
-	for c, i := range o.order {
-		child[i] = int32(c)
+	onto := make([][]int32, len(o.order))
+	for i, which := range o.order {
+		child[which] = int32(i)
+		onto[which] = renumbered(o.step.Reactants[which].Molecule, c.molecule(o.children[i].Key))
 	}
 	out := make([]search.Origin, len(o.step.Origins))
 	for a, from := range o.step.Origins {
 		out[a] = search.Origin{Child: -1, Atom: from.Atom}
 		if from.Reactant >= 0 {
 			out[a].Child = child[from.Reactant]
+			if to := onto[from.Reactant]; to != nil {
+				out[a].Atom = to[from.Atom]
+			}
 		}
 	}
 	return out
 }
 
+// renumbered gives the atom of b for each atom of a, the same molecule in another order; nil where the
+// order is the same, or where b is another form that a counts as.
+func renumbered(a, b *molecule.Molecule) []int32 {
+	if a == b || a.Key() != b.Key() {
+		return nil
+	}
+	at := make([]int32, b.NumAtoms())
+	for i, rank := range b.Ranks() {
+		at[rank] = int32(i)
+	}
+	out := make([]int32, a.NumAtoms())
+	for i, rank := range a.Ranks() {
+		out[i] = at[rank]
+	}
+	return out
+}
+
 func (c *chemistry) edge(options []option) search.Edge {
-	e := search.Edge{Children: options[0].children, Origins: options[0].origins()}
+	e := search.Edge{Children: options[0].children, Origins: options[0].origins}
 	for i := range options {
 		e.Variants = append(e.Variants, c.world.variant(c.by, c.scale, &options[i]))
 	}
@@ -334,21 +366,27 @@ func (c *chemistry) edge(options []option) search.Edge {
 // Leaf says whether k may be taken: it stands on the shelf, or it gives no carbon and is bought as a
 // reagent is, or it is required. What is avoided may not be taken.
 func (c *chemistry) Leaf(k search.Key) (float64, bool) {
+	cost, ok, why := c.takeable(k)
+	if why != nil && !c.refused[k] {
+		c.refused[k] = true
+		c.turnDown(why, 1)
+	}
+	return cost, ok
+}
+
+// takeable is Leaf with the wish that refuses a material at hand.
+func (c *chemistry) takeable(k search.Key) (cost float64, ok bool, why *refusal) {
 	mat := c.material(k)
 	m := c.molecule(k)
 	if !c.required(k) {
 		if !mat.OnShelf && hasCarbon(m) {
-			return 0, false
+			return 0, false, nil
 		}
 		if why := c.filter.material(mat, m); why != nil {
-			if !c.refused[k] {
-				c.refused[k] = true
-				c.turnDown(why, 1)
-			}
-			return 0, false
+			return 0, false, why
 		}
 	}
-	return c.world.leaf(c.by, mat), true
+	return c.world.leaf(c.by, mat), true, nil
 }
 
 // required says whether k is an item of From.
@@ -362,18 +400,6 @@ func hasCarbon(m *molecule.Molecule) bool { return m.Formula().Count[carbon] > 0
 
 // carbonMass is the molar mass of carbon in g/mol (IUPAC standard atomic weight, abridged).
 const carbonMass = 12.011
-
-// Bound: every molecule that is made needs one step at least. Its carbon comes from materials: their
-// mass is charged, and their price is at least that of the cheapest carbon on the shelf.
-func (c *chemistry) Bound(k search.Key, _ uint8) (int, float64) {
-	switch c.by {
-	case Waste:
-		return 1, carbonMass * float64(c.molecule(k).Formula().Count[carbon])
-	case Cost:
-		return 1, c.carbonPrice * float64(c.molecule(k).Formula().Count[carbon])
-	}
-	return 1, c.floor
-}
 
 // cheapestCarbon is a price that no mol of carbon among the materials at hand undercuts.
 func (c *chemistry) cheapestCarbon() float64 {

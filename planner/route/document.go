@@ -72,6 +72,7 @@ type StartingMaterial struct {
 	Name    string  `json:"name"`
 	OnShelf bool    `json:"on_shelf"`
 	Mol     float64 `json:"mol_per_mol"` // charged per mole of target at usual yields
+	Gives   string  `json:"gives"`       // atoms of the target that come from it, hydrogen left out: 'C4'
 
 	Molecule *molecule.Molecule `json:"-"`
 	Material Material           `json:"-"`
@@ -152,6 +153,8 @@ type Route struct {
 	Hazard            HazardFigures      `json:"hazard"`
 	Materials         PriceFigures       `json:"materials"`
 	StartingMaterials []StartingMaterial `json:"starting_materials"`
+	TargetByStart     string             `json:"target_by_start"` // SMILES of the target; atom class n: from starting material n
+	FromReagents      string             `json:"from_reagents"`   // atoms that reagents bring, hydrogen left out
 	ToBuy             []Purchase         `json:"to_buy"`
 	Alternatives      []Alternative      `json:"alternatives"`
 	Protections       []Protection       `json:"protections"`   // groups shielded over some steps

@@ -34,10 +34,11 @@ func (f *filter) restrains() bool {
 // avoided is one word of --avoid, understood.
 type avoided struct {
 	word    string
-	kind    string // hazard, element, transform, substance
+	kind    string // hazard, element, transform, substance, step
 	element molecule.Element
 	other   Material // of a substance: what its name stands for
-	byBench bool     // said under never: in the bench file
+	ban     *Ban
+	byBench bool // said under never: in the bench file
 }
 
 var (
@@ -56,6 +57,8 @@ func (f *filter) Avoided() []string {
 			out = append(out, "everything that contains "+a.word)
 		case "transform":
 			out = append(out, "the reaction "+a.word)
+		case "step":
+			out = append(out, "the step "+a.word)
 		default:
 			out = append(out, a.word)
 		}
@@ -75,6 +78,9 @@ func (f *filter) Avoided() []string {
 // newFilter understands the wishes of o. A word that means nothing is an error that offers near ones.
 func newFilter(w *World, o *Options) (*filter, error) {
 	f := &filter{world: w, bench: o.Bench, onlyShelf: o.OnlyShelf, not: o.Not, notThrough: o.NotThrough, inHand: o.InHand}
+	for i := range o.Bans {
+		f.avoid = append(f.avoid, avoided{word: o.Bans[i].Text, kind: "step", ban: &o.Bans[i]})
+	}
 	known := w.words()
 	for _, word := range o.Avoid {
 		a, err := w.understand(word, known)
@@ -205,6 +211,10 @@ func (f *filter) step(s *reactions.Step) *refusal {
 		switch a.kind {
 		case "transform":
 			if s.Transform.ID == a.word || slices.ContainsFunc(s.Together, func(t *reactions.Transform) bool { return t.ID == a.word }) {
+				return a.refuses(s.Transform.Name)
+			}
+		case "step":
+			if a.ban.bans(s) {
 				return a.refuses(s.Transform.Name)
 			}
 		case "element":

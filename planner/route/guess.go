@@ -2,6 +2,7 @@ package route
 
 import (
 	"context"
+	"math"
 	"math/bits"
 	"slices"
 
@@ -92,10 +93,14 @@ func (p *profile) apart(q *profile) (only, lacks int) {
 
 // guesser estimates how far a molecule is from what it could be made from.
 type guesser struct {
-	shelf     []*profile
-	owed      []*profile               // per set of items owed: the profiles of the items added up
-	near      []map[molecule.Key]uint8 // what one, two ... steps from an item of From give: the items that lead there
-	nearShelf map[molecule.Key]bool    // what one step from an item of a small shelf gives
+	shelf  []*profile
+	wants  *wants
+	owed   []*profile // per set of items of from: the profiles of the items added up
+	any    []*profile
+	via    []*profile
+	near   []map[molecule.Key]uint8 // what one, two ... steps from an item of From give: the items that lead there
+	reach  *reach
+	looked int // times that lookAhead looked
 }
 
 // forwardBook runs transforms forwards; *reactions.Book does.
@@ -122,50 +127,25 @@ type ahead struct {
 // as such before it is opened: one step with partners and a second alone; deeper takes the second with
 // partners and a third alone. It costs some hundred openings at most.
 func (g *guesser) lookAhead(book Book, shelf, from []*molecule.Molecule, deeper bool) {
+	g.looked++
 	forward, ok := book.(forwardBook)
 	if !ok {
 		return
 	}
 	partners := append(slices.Clone(from), smallest(shelf)...)
-	if !deeper {
-		g.aroundShelf(forward, shelf, partners)
-	}
 	g.near = nil
 	for i, m := range from {
 		a := &ahead{item: i, level: [][]*molecule.Molecule{{m}}, seen: map[molecule.Key]bool{m.FlatKey(): true}}
-		a.step(forward, partners, 1)
+		if g.reach.one == nil {
+			a.step(forward, partners, 1)
+		} else {
+			a.level = append(a.level, g.reach.consuming(i))
+		}
 		if deeper {
 			a.step(forward, partners, mostOn)
 		}
 		a.step(forward, nil, mostOnAlone)
 		g.remember(a)
-	}
-}
-
-// mostShelf is the size of shelf, in carbon compounds, up to which what lies one step from every item is
-// worked out; beyond it would take longer than it saves.
-const mostShelf = 40
-
-// aroundShelf finds what one step from any item of a small shelf gives.
-func (g *guesser) aroundShelf(forward forwardBook, shelf, partners []*molecule.Molecule) {
-	var items []*molecule.Molecule
-	for _, m := range shelf {
-		if hasCarbon(m) {
-			items = append(items, m)
-		}
-	}
-	if len(items) > mostShelf {
-		return
-	}
-	g.nearShelf = map[molecule.Key]bool{}
-	for _, m := range items {
-		list, err := forward.Products(context.Background(), m, partners)
-		if err != nil {
-			return
-		}
-		for _, p := range list {
-			g.nearShelf[p.FlatKey()] = true
-		}
 	}
 }
 
@@ -194,7 +174,7 @@ func (g *guesser) remember(a *ahead) {
 			g.near = append(g.near, map[molecule.Key]uint8{})
 		}
 		for _, m := range list {
-			g.near[steps][m.FlatKey()] |= 1 << a.item
+			g.near[steps][m.FlatKey()] |= g.wants.startBit(a.item)
 		}
 	}
 }
@@ -211,19 +191,25 @@ func smallest(shelf []*molecule.Molecule) []*molecule.Molecule {
 	return list[:min(len(list), mostPartners)]
 }
 
-func newGuesser(shelf, from []*molecule.Molecule) *guesser {
-	g := &guesser{owed: make([]*profile, 1<<len(from))}
+func newGuesser(shelf []*molecule.Molecule, w *wants, r *reach) *guesser {
+	g := &guesser{reach: r, wants: w, owed: make([]*profile, 1<<len(w.from))}
 	for _, m := range shelf {
 		g.shelf = append(g.shelf, profileOf(m))
 	}
 	for set := 1; set < len(g.owed); set++ {
-		sum := *profileOf(from[bits.TrailingZeros(uint(set))])
+		sum := *profileOf(w.from[bits.TrailingZeros(uint(set))])
 		if rest := set & (set - 1); rest != 0 {
 			for i := range sum {
 				sum[i] += g.owed[rest][i]
 			}
 		}
 		g.owed[set] = &sum
+	}
+	for _, m := range w.any {
+		g.any = append(g.any, profileOf(m))
+	}
+	for _, m := range w.via {
+		g.via = append(g.via, profileOf(m))
 	}
 	return g
 }
@@ -242,25 +228,39 @@ const (
 // steps estimates the steps between m and what it is made from. It orders the work of the search and
 // proves nothing.
 func (g *guesser) steps(m *molecule.Molecule, owed uint8) float64 {
-	if owed != 0 {
-		for i, near := range g.near {
-			if near[m.FlatKey()]&owed != 0 {
-				return float64(1 + i)
-			}
-		}
-	}
-	if owed == 0 && g.nearShelf[m.FlatKey()] {
-		return 1
+	if n := g.reach.within(m, owed); n > 0 {
+		return float64(n)
 	}
 	p := profileOf(m)
-	if owed != 0 {
-		return max(guessFar, p.stepsFrom(g.owed[owed]))
+	if owed == 0 {
+		least := 1 + guessPerBond*float64(m.NumBonds())
+		for _, q := range g.shelf {
+			least = min(least, p.stepsFrom(q))
+		}
+		return least
 	}
-	least := 1 + guessPerBond*float64(m.NumBonds())
-	for _, q := range g.shelf {
+	far := guessFar
+	for i, q := range g.via {
+		if owed&(1<<(g.wants.bits()-len(g.via)+i)) != 0 {
+			far = max(far, 1+p.stepsFrom(q))
+		}
+	}
+	if far > guessFar { // first to what must be made on the way
+		return far
+	}
+	for i, near := range g.near {
+		if near[m.FlatKey()]&owed != 0 {
+			return float64(1 + i)
+		}
+	}
+	if all := owed & uint8(len(g.owed)-1); all != 0 {
+		return max(far, p.stepsFrom(g.owed[all]))
+	}
+	least := math.Inf(1)
+	for _, q := range g.any {
 		least = min(least, p.stepsFrom(q))
 	}
-	return least
+	return max(far, least)
 }
 
 func (p *profile) stepsFrom(q *profile) float64 {

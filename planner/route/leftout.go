@@ -15,7 +15,7 @@ import (
 
 // refusal is why a wish keeps a way out.
 type refusal struct {
-	wish    string // avoid, never, only-shelf, max-hazard, coldest, hottest, lacks
+	wish    string // avoid, not, never, only-shelf, max-hazard, coldest, hottest, lacks
 	word    string
 	needs   string // after one route: 'needs hydrogen'
 	need    string // after several: 'need hydrogen'
@@ -26,6 +26,8 @@ type refusal struct {
 func (a *avoided) refuses(matched string) *refusal {
 	r := &refusal{wish: "avoid", word: a.word, needs: "uses " + a.word, need: "use " + a.word, matched: matched}
 	switch a.kind {
+	case "step":
+		r.wish, r.needs, r.need = "not", "uses the step "+a.word, "use the step "+a.word
 	case "hazard":
 		r.needs, r.need = "charges a material with "+a.word, "charge a material with "+a.word
 	case "element":
@@ -86,7 +88,7 @@ type Kept struct {
 
 // LeftOut is one reason for which ways were left out: what it met, and how many.
 type LeftOut struct {
-	Wish    string   `json:"wish"`    // avoid, never, only-shelf, max-hazard, coldest, hottest, lacks
+	Wish    string   `json:"wish"`    // avoid, not, never, only-shelf, max-hazard, coldest, hottest, lacks
 	Word    string   `json:"word"`    // of the wish, or what is needed
 	Matched []string `json:"matched"` // substances or reactions met, those that keep out most ways first
 	Ways    int      `json:"ways"`    // steps under one condition set each, among the molecules opened
@@ -152,8 +154,10 @@ const (
 // counts for a reason if one of its steps can be carried out in no other way between the same molecules.
 // It returns the number of routes looked at. What it opened is kept for the search with the wishes.
 func (c *chemistry) countLeftOut(ctx context.Context, root search.Key, o search.Options) (of int, err error) {
-	free := emptyChemistry(c.world, c.by, &filter{world: c.world}, c.from, c.scale)
-	free.guesser, free.oneEnantiomer, free.judged = c.guesser, c.oneEnantiomer, c.judged
+	free := newChemistry(c.world, c.by, &filter{world: c.world}, c.from, c.scale)
+	free.oneEnantiomer, free.judged, free.wants = c.oneEnantiomer, c.judged, c.wants
+	free.lookFromShelf(ctx)
+	free.guesser = c.guesser
 	free.enter(c.molecule(root))
 	for _, m := range c.from {
 		free.enter(m)

@@ -251,7 +251,7 @@ func (m *mender) conditions(ctx context.Context) error {
 		return err
 	}
 	old := &m.route.Steps[m.at]
-	c := emptyChemistry(m.w, m.plan.RankedBy, f, nil, nil)
+	c := newChemistry(m.w, m.plan.RankedBy, f, nil, nil)
 	key := c.enter(old.Molecule)
 	if _, err := c.Expand(ctx, key); err != nil {
 		return err

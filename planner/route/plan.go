@@ -13,6 +13,9 @@ import (
 // Options are the wishes and limits of one planning.
 type Options struct {
 	From          []*molecule.Molecule // every route consumes each; at most search.MaxFrom
+	FromAny       []*molecule.Molecule // every route consumes one of them
+	Via           []*molecule.Molecule // every route makes each on its way
+	Bans          []Ban                // steps that may not be used, as the user wrote them
 	Count         int                  // routes listed; 5
 	MaxSteps      int                  // along the longest run; 8
 	RankBy        RankBy
@@ -56,6 +59,7 @@ type Target struct {
 // SearchFigures say what the search did and what is proven.
 type SearchFigures struct {
 	Expanded        int      `json:"expanded"`
+	Forward         int      `json:"expanded_forwards"` // molecules run forwards from the shelf
 	TransformsTried int      `json:"transforms_tried"`
 	Seconds         float64  `json:"seconds"`
 	FirstAfter      *float64 `json:"first_after"` // null without a route
@@ -74,6 +78,8 @@ type Plan struct {
 	Version   int      `json:"version"`
 	Target    Target   `json:"target"`
 	From      []string `json:"from"`
+	FromAny   []string `json:"from_any"` // one of them suffices
+	Via       []string `json:"via"`      // made on every route
 	RankedBy  RankBy   `json:"ranked_by"`
 	Minimised string   `json:"minimised"` // what weight is, in words
 	Kept
@@ -112,7 +118,14 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	if o.AtScale {
 		scale = w.Scale
 	}
-	c := newChemistry(w, by, f, o.From, scale)
+	began := time.Now()
+	want := wants{o.From, o.FromAny, o.Via}
+	want.settle()
+	if err := want.check(target); err != nil {
+		return nil, err
+	}
+	c := newChemistry(w, by, f, want.starts(), scale)
+	c.wants = want
 	c.oneEnantiomer = o.OneEnantiomer
 	root := c.enter(target)
 	p := c.newPlan(target, root, &o)
@@ -129,10 +142,9 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		wanted += moreForStock
 	}
 	options := search.Options{Cost: by.cost(), Count: wanted, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
-		MaxBytes: int(partOfMemory * float64(o.Memory)), Full: o.Full, Time: o.Time, Workers: o.Workers, Progress: o.Progress, Accept: c.oneWayEach}
-	for _, m := range o.From {
-		options.From = append(options.From, c.enter(m))
-	}
+		MaxBytes: int(partOfMemory * float64(o.Memory)), Full: o.Full, Time: o.Time, Workers: o.Workers, Began: began, Progress: o.Progress, Accept: c.oneWayEach}
+	want.enterInto(&options, c)
+	c.lookFromShelf(ctx)
 	found, err := c.findWished(ctx, root, options, p)
 	if err != nil {
 		return nil, err
@@ -153,49 +165,23 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	return p, nil
 }
 
-// firstLook is the number of molecules opened before the starts are looked ahead from more deeply.
-const firstLook = 64
+// firstSteps and firstLook are the numbers of molecules opened before the starts are looked ahead from, and
+// before that goes deeper because no route stands.
+const (
+	firstSteps = 3
+	firstLook  = 64
+)
 
-// find searches. Where starts are given and a first look finds no route, it looks further ahead from them
-// and starts over with what has been opened so far: the order of work changes, the answer's proof does not.
-func (c *chemistry) find(ctx context.Context, root search.Key, o search.Options) (*search.Result, error) {
-	if len(o.From) == 0 || o.MaxExpanded > 0 && o.MaxExpanded <= firstLook {
-		return search.Find(ctx, c, root, o)
-	}
-	began, first := time.Now(), o
-	first.MaxExpanded = firstLook
-	found, err := search.Find(ctx, c, root, first)
-	if err != nil || len(found.Routes) > 0 && found.Stopped != search.ByCount || found.Stopped != search.ByCount {
-		return found, err
-	}
-	if len(found.Routes) == 0 {
-		c.guesser.lookAhead(c.world.Book, c.world.Shelf, c.from, true)
-	}
-	if o.Time > 0 {
-		o.Time = max(time.Millisecond, o.Time-time.Since(began))
-	}
-	again, err := search.Find(ctx, c, root, o)
-	if err == nil {
-		c.later(again, found, time.Since(began)-again.Elapsed)
-	}
-	return again, err
-}
-
-// findWished is find with a look at what the wishes keep out before it, where there are any.
+// findWished searches with a look at what the wishes keep out before it, where there are any.
 func (c *chemistry) findWished(ctx context.Context, root search.Key, o search.Options, p *Plan) (*search.Result, error) {
 	if !c.filter.restrains() {
-		return c.find(ctx, root, o)
+		return search.Find(ctx, c, root, o)
 	}
-	began := time.Now()
 	var err error
 	if p.LeftOutOf, err = c.countLeftOut(ctx, root, o); err != nil {
 		return nil, err
 	}
-	before := time.Since(began)
-	if o.Time > 0 {
-		o.Time = max(time.Millisecond, o.Time-before)
-	}
-	found, err := c.find(ctx, root, o)
+	found, err := search.Find(ctx, c, root, o)
 	if err != nil {
 		return nil, err
 	}
@@ -203,34 +189,22 @@ func (c *chemistry) findWished(ctx context.Context, root search.Key, o search.Op
 		c.tally.entry(c.filter.avoid[i].refuses(""))
 	}
 	p.LeftOut = c.tally.sorted()
-	found.Elapsed += before
-	for i := range found.Routes {
-		found.Routes[i].Stood += before
-	}
 	return found, nil
-}
-
-// later counts the time before a second search into its figures; a route that the first look had found
-// stood then already.
-func (c *chemistry) later(again, first *search.Result, before time.Duration) {
-	again.Elapsed += before
-	for i := range again.Routes {
-		again.Routes[i].Stood += before
-	}
-	for i := range first.Routes {
-		if i < len(again.Routes) {
-			again.Routes[i].Stood = min(again.Routes[i].Stood, first.Routes[i].Stood)
-		}
-	}
 }
 
 func (c *chemistry) newPlan(target *molecule.Molecule, root search.Key, o *Options) *Plan {
 	formula := target.Formula()
 	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Kept: Kept{Avoided: c.filter.Avoided(), LeftOut: []LeftOut{}}, MaxSteps: o.MaxSteps,
-		From: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Explained: []Explained{}, Doubts: []string{}, Molecule: target,
+		From: []string{}, FromAny: []string{}, Via: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Explained: []Explained{}, Doubts: []string{}, Molecule: target,
 		Target: Target{SMILES: c.world.Write(target), Name: c.world.Name(target), Formula: formula.String(), MolarMass: formula.MolarMass(), OnShelf: c.material(root).OnShelf}}
 	for _, m := range o.From {
 		p.From = append(p.From, c.world.Write(m))
+	}
+	for _, m := range o.FromAny {
+		p.FromAny = append(p.FromAny, c.world.Write(m))
+	}
+	for _, m := range o.Via {
+		p.Via = append(p.Via, c.world.Write(m))
 	}
 	if o.AtScale {
 		p.Minimised += c.by.atScale()
@@ -261,6 +235,7 @@ func emptyRoute() Route {
 
 func (p *Plan) fillSearch(r *search.Result) {
 	s := &p.Search
+	s.Forward = r.Forward
 	s.Expanded, s.TransformsTried, s.Seconds, s.LeftOut = r.Expanded, r.Tried, r.Elapsed.Seconds(), r.LeftOut
 	s.Exhausted, s.Stopped = r.Exhausted, string(r.Stopped)
 	if !math.IsInf(r.Bound, 1) {

@@ -19,6 +19,9 @@ const originKey = "origin of conditions and yields: P published for this substra
 func (p *Plan) WriteText(w io.Writer) error {
 	t := &writer{w: w}
 	p.WriteWishes(t.w)
+	for _, line := range p.wanted() {
+		t.line("%s", line)
+	}
 	for _, d := range p.Doubts {
 		t.line("Doubt: %s", d)
 	}
@@ -245,6 +248,7 @@ func (s *Step) write(t *writer) {
 }
 
 func (r *Route) writeMaterials(t *writer) {
+	r.writeAtoms(t)
 	for _, b := range r.ToBuy {
 		t.line("  not on the shelf: %s, %s (%s)", label(b.Name, b.SMILES), b.Needed, b.Why)
 	}

@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"os"
 	"regexp"
+	"slices"
+	"strings"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -17,6 +19,9 @@ import (
 // planFlags are the wishes shared by routes, compare, sheet and run.
 type planFlags struct {
 	from          []string
+	fromAny       []string
+	via           []string
+	not           []string
 	count         int
 	maxSteps      int
 	rankBy        string
@@ -37,6 +42,9 @@ type planFlags struct {
 func (f *planFlags) bind(cmd *cobra.Command) {
 	fl := cmd.Flags()
 	fl.StringArrayVar(&f.from, "from", nil, "a starting material that every route must consume (repeatable, at most four)")
+	fl.StringArrayVar(&f.fromAny, "from-any", nil, "a starting material; with several of these every route must consume one of them (repeatable)")
+	fl.StringArrayVar(&f.via, "via", nil, "an intermediate that every route must make on its way (repeatable)")
+	fl.StringArrayVar(&f.not, "not", nil, "a step 'A.B>>C' that may not be used; '>>C' bans every step to C (repeatable)")
 	fl.IntVar(&f.count, "count", 5, "routes listed")
 	fl.IntVar(&f.maxSteps, "max-steps", 8, "steps along the longest run")
 	fl.StringVar(&f.rankBy, "rank-by", "balanced", "balanced, steps, yield, hazard, cost or waste")
@@ -120,6 +128,9 @@ func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 			return o, err
 		}
 	}
+	if err = app.wants(j, f, &o); err != nil {
+		return o, err
+	}
 	if len(o.From) > search.MaxFrom { // those of a case file; check has counted the flags
 		return o, usageError("from: at most %d starting materials, found %d", search.MaxFrom, len(o.From))
 	}
@@ -146,6 +157,43 @@ func checkCode(j *job, flag, word string) error {
 	}
 	if err := j.room.Hazards.CheckCode("H" + word[1:]); err != nil {
 		return usageError("%s: %v", flag, err)
+	}
+	return nil
+}
+
+// wants reads what every route must hold besides its starts, and what none may.
+func (app *App) wants(j *job, f *planFlags, o *route.Options) (err error) {
+	o.FromAny = j.fromAny
+	if len(f.fromAny) > 0 {
+		if o.FromAny, err = j.resolveAll("--from-any", f.fromAny); err != nil {
+			return err
+		}
+	}
+	if o.Via, err = j.resolveAll("--via", f.via); err != nil {
+		return err
+	}
+	for _, text := range f.not {
+		b := route.Ban{Text: text}
+		left, right, isStep := strings.Cut(text, ">>")
+		if !isStep || strings.TrimSpace(right) == "" {
+			return usageError("--not %s: a step 'A.B>>C' was expected", quoted(text))
+		}
+		if strings.TrimSpace(left) == "" { // every step to C
+			if b.Product, err = j.resolve("smiles:" + strings.TrimSpace(right)); err != nil {
+				return usageError("--not %s: %v", quoted(text), err)
+			}
+			o.Bans = append(o.Bans, b)
+			continue
+		}
+		reactants, products, err := readReaction(text)
+		if err != nil {
+			return usageError("--not: %v", err)
+		}
+		if len(products) != 1 {
+			return usageError("--not %s: one product was expected, found %d", quoted(text), len(products))
+		}
+		b.Reactants, b.Product = reactants, products[0]
+		o.Bans = append(o.Bans, b)
 	}
 	return nil
 }
@@ -191,13 +239,10 @@ func (app *App) plan(ctx context.Context, j *job, o route.Options) (*route.Plan,
 // search plans a target that has been screened; that its starts or all its routes are restricted is a
 // *declinedError.
 func (app *App) search(ctx context.Context, j *job, o route.Options) (*route.Plan, error) {
-	for _, m := range o.From { // a start counts as in stock, but not as standing on the shelf
+	for _, m := range append(slices.Clone(o.From), o.FromAny...) { // a start counts as in stock, but not as standing on the shelf
 		if v := j.room.Restricted.Intermediate(m); v.Declined() && !j.room.Shelf.Has(m) {
 			return nil, &declinedError{v}
 		}
-	}
-	if len(o.From) == 0 && len(j.fromAny) > 0 {
-		return app.planFromAny(ctx, j, o)
 	}
 	p, err := route.Make(ctx, j.room.World(), j.target, o)
 	if err == nil {
@@ -207,22 +252,6 @@ func (app *App) search(ctx context.Context, j *job, o route.Options) (*route.Pla
 		return nil, failWith(exitUsage, err)
 	}
 	return p, app.declineLeftOut(ctx, j, p, o)
-}
-
-// planFromAny keeps the plan of the start whose first route weighs least.
-func (app *App) planFromAny(ctx context.Context, j *job, o route.Options) (*route.Plan, error) {
-	var chosen *route.Plan
-	for _, m := range j.fromAny {
-		o.From = []*molecule.Molecule{m}
-		p, err := route.Make(ctx, j.room.World(), j.target, o)
-		if err != nil {
-			return nil, failWith(exitUsage, err)
-		}
-		if chosen == nil || len(p.Routes) > 0 && (len(chosen.Routes) == 0 || p.Routes[0].Weight < chosen.Routes[0].Weight) {
-			chosen = p
-		}
-	}
-	return chosen, nil
 }
 
 type routesOptions struct {
