@@ -119,6 +119,7 @@ func (c *chemistry) build(found search.Route, p *Plan) (*Route, error) {
 	b := &bill{c: c, list: list, number: number, plan: p, route: &r}
 	b.work()
 	r.traceAtoms(c, found.Tree)
+	r.markBonds(c, found.Tree)
 	r.alternatives(c, list)
 	r.protections(c.world)
 	r.doubt(c, p)
@@ -211,29 +212,6 @@ func (r *Route) alternatives(c *chemistry, list []making) {
 				a.Reagents = append(a.Reagents, g.Name)
 			}
 			r.Alternatives = append(r.Alternatives, a)
-		}
-	}
-}
-
-// markVariants names, for each route, an earlier one with the same reactions on the same materials in
-// another order.
-func markVariants(routes []Route) {
-	first := map[string]string{}
-	for i := range routes {
-		r := &routes[i]
-		var parts []string
-		for _, s := range r.Steps {
-			parts = append(parts, s.Transform)
-		}
-		for _, m := range r.StartingMaterials {
-			parts = append(parts, m.SMILES)
-		}
-		sort.Strings(parts)
-		sign := strings.Join(parts, "\n")
-		if code, met := first[sign]; met {
-			r.VariantOf = code
-		} else if len(r.Steps) > 1 {
-			first[sign] = r.Code
 		}
 	}
 }

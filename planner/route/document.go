@@ -159,13 +159,16 @@ type Route struct {
 	Alternatives      []Alternative      `json:"alternatives"`
 	Protections       []Protection       `json:"protections"`   // groups shielded over some steps
 	WaysOut           []WayOut           `json:"ways_out"`      // per intermediate: what is left if the step that takes it on fails
-	VariantOf         string             `json:"variant_of"`    // code of a route with the same reactions in another order
+	VariantOf         string             `json:"variant_of"`    // code of an earlier route that makes the same bonds from the same materials
+	VariantBy         string             `json:"variant_by"`    // in what it differs from that one
+	KeyBonds          string             `json:"key_bonds"`     // SMILES of the target; atom class 1: ends of the carbon-carbon bonds made last
 	Short             []string           `json:"short"`         // stock that does not suffice for the scale of the plan
 	StockUnknown      []string           `json:"stock_unknown"` // on the shelf, but nobody wrote down how much
 	GravestClass      int                `json:"gravest_class"` // 0 slight to 4; unknown hazards count as 4
 	Days              float64            `json:"days"`          // working days of eight hours, added up along the bench order
 	Doubts            []string           `json:"doubts"`
 
-	stood time.Duration // after the start of the search
-	made  []making      // parallel to Steps; of a plan just made
+	madePlaces string        // the bonds made, by kinds of place
+	stood      time.Duration // after the start of the search
+	made       []making      // parallel to Steps; of a plan just made
 }

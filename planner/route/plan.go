@@ -27,6 +27,7 @@ type Options struct {
 	Not           []Banned             // steps that may not be used
 	NotThrough    []*molecule.Molecule // molecules that no step may consume
 	InHand        []InHand             // what is there besides the shelf, and costs nothing
+	Different     bool                 // one route for each key bond
 	OneEnantiomer bool
 	MakeAnyway    bool
 	MakeMol       float64 // mol of target wanted, 0: not said; figures are then for DefaultMakeG
@@ -78,8 +79,9 @@ type Plan struct {
 	Version   int      `json:"version"`
 	Target    Target   `json:"target"`
 	From      []string `json:"from"`
-	FromAny   []string `json:"from_any"` // one of them suffices
-	Via       []string `json:"via"`      // made on every route
+	FromAny   []string `json:"from_any"`  // one of them suffices
+	Via       []string `json:"via"`       // made on every route
+	Different bool     `json:"different"` // one route for each key bond
 	RankedBy  RankBy   `json:"ranked_by"`
 	Minimised string   `json:"minimised"` // what weight is, in words
 	Kept
@@ -141,7 +143,11 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 	if o.MakeMol > 0 { // some more, because stock comes before weight
 		wanted += moreForStock
 	}
-	options := search.Options{Cost: by.cost(), Count: wanted, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
+	var kind func(*search.Tree) string
+	if o.Different {
+		kind = c.keyPlace
+	}
+	options := search.Options{Kind: kind, Cost: by.cost(), Count: wanted, MaxSteps: o.MaxSteps, MakeRoot: o.MakeAnyway, MaxExpanded: o.MaxExpanded,
 		MaxBytes: int(partOfMemory * float64(o.Memory)), Full: o.Full, Time: o.Time, Workers: o.Workers, Began: began, Progress: o.Progress, Accept: c.oneWayEach}
 	want.enterInto(&options, c)
 	c.lookFromShelf(ctx)
@@ -194,7 +200,7 @@ func (c *chemistry) findWished(ctx context.Context, root search.Key, o search.Op
 
 func (c *chemistry) newPlan(target *molecule.Molecule, root search.Key, o *Options) *Plan {
 	formula := target.Formula()
-	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Kept: Kept{Avoided: c.filter.Avoided(), LeftOut: []LeftOut{}}, MaxSteps: o.MaxSteps,
+	p := &Plan{Version: planVersion, RankedBy: c.by, Minimised: c.by.Says(), Kept: Kept{Avoided: c.filter.Avoided(), LeftOut: []LeftOut{}}, MaxSteps: o.MaxSteps, Different: o.Different,
 		From: []string{}, FromAny: []string{}, Via: []string{}, Routes: []Route{}, WouldOpen: []Opening{}, Explained: []Explained{}, Doubts: []string{}, Molecule: target,
 		Target: Target{SMILES: c.world.Write(target), Name: c.world.Name(target), Formula: formula.String(), MolarMass: formula.MolarMass(), OnShelf: c.material(root).OnShelf}}
 	for _, m := range o.From {

@@ -132,7 +132,7 @@ func (p *Plan) proof() string {
 func (r *Route) write(t *writer, p *Plan) {
 	head := fmt.Sprintf("Route %s (%d): %d %s, longest run %d, about %s working %s", r.Code, r.Rank, len(r.Steps), plural(len(r.Steps), "step", "steps"), r.LongestRun, figureDays(r.Days), plural(int(r.Days), "day", "days"))
 	if r.VariantOf != "" {
-		head += ", a variant of " + r.VariantOf + " (the same reactions in another order)"
+		head += ", a variant of " + r.VariantOf + " (" + r.VariantBy + ")"
 	}
 	t.line("%s", head)
 	for _, d := range r.Doubts {

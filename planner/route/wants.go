@@ -86,7 +86,8 @@ func (w *wants) enterInto(o *search.Options, c *chemistry) {
 // Ban is one step that may not be used, as it was written.
 type Ban struct {
 	Text      string
-	Reactants []*molecule.Molecule
+	Reactants []*molecule.Molecule // each as written between dots
+	Salts     []*molecule.Molecule // neighbours taken together, as one salt
 	Product   *molecule.Molecule
 }
 
@@ -100,7 +101,8 @@ func (b *Ban) bans(s *reactions.Step) bool {
 		return slices.ContainsFunc(s.Reactants, func(r reactions.Reactant) bool { return isVia(v, r.Molecule) })
 	}
 	written := func(r reactions.Reactant) bool {
-		return slices.ContainsFunc(b.Reactants, func(v *molecule.Molecule) bool { return isVia(v, r.Molecule) })
+		is := func(v *molecule.Molecule) bool { return isVia(v, r.Molecule) }
+		return slices.ContainsFunc(b.Reactants, is) || slices.ContainsFunc(b.Salts, is)
 	}
 	all := true
 	for _, v := range b.Reactants {
@@ -116,6 +118,9 @@ func (p *Plan) wanted() (lines []string) {
 	}
 	if len(p.Via) > 0 {
 		lines = append(lines, "every route goes through: "+strings.Join(p.Via, ", "))
+	}
+	if p.Different {
+		lines = append(lines, "one route for each key bond: the carbon-carbon bonds made last, or the bonds made last where none is made")
 	}
 	return lines
 }

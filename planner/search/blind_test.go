@@ -345,10 +345,26 @@ func task(seed uint64) (*made, Options, map[int]int) {
 	return m, o, from
 }
 
+// cheapestOfKinds gives the least cost of the routes of each number of nodes made, in order.
+func cheapestOfKinds(costs map[string]float64) (order []float64) {
+	least := map[int]float64{}
+	for s, c := range costs {
+		n := strings.Count(s, "(")
+		if old, met := least[n]; !met || c < old {
+			least[n] = c
+		}
+	}
+	for _, c := range least {
+		order = append(order, c)
+	}
+	sort.Float64s(order)
+	return order
+}
+
 // TestBlind compares cost for cost and route for route with the blind enumeration: cycles, sharing,
 // limits, items owed, ties, all three costs.
 func TestBlind(t *testing.T) {
-	tried, withRoutes, withFrom, withVia, looped := 0, 0, 0, 0, 0
+	tried, withRoutes, withFrom, withVia, looped, kinds := 0, 0, 0, 0, 0, 0
 	for seed := uint64(0); tried < 1500; seed++ {
 		m, o, from := task(seed)
 		j := &judge{m: m, o: o, from: from, budget: 60000}
@@ -357,6 +373,13 @@ func TestBlind(t *testing.T) {
 			continue
 		}
 		tried++
+		if seed%5 == 0 { // only the cheapest of each kind; the kind is the number of nodes made
+			o.Kind = func(t *Tree) string { return fmt.Sprint(strings.Count(text(t), "(")) }
+			order = cheapestOfKinds(costs)
+			if len(order) > 1 {
+				kinds++
+			}
+		}
 		got, err := Find(context.Background(), m, key(0), o)
 		if err != nil {
 			t.Fatalf("seed %d: %v", seed, err)
@@ -394,8 +417,8 @@ func TestBlind(t *testing.T) {
 			t.Fatalf("seed %d: %d proven of %d", seed, got.ProvenRoutes, want)
 		}
 	}
-	t.Logf("%d cases: %d with routes, %d of them with items owed, %d with a node on the way, %d with more routes than wanted", tried, withRoutes, withFrom, withVia, looped)
-	if withRoutes < tried/5 || withFrom < tried/20 || withVia < tried/40 || looped < tried/25 {
+	t.Logf("%d cases: %d with routes, %d of them with items owed, %d with a node on the way, %d with more routes than wanted, %d by kinds", tried, withRoutes, withFrom, withVia, looped, kinds)
+	if withRoutes < tried/5 || withFrom < tried/20 || withVia < tried/40 || kinds < tried/60 || looped < tried/25 {
 		t.Errorf("the cases are too easy")
 	}
 }

@@ -30,6 +30,9 @@ type Options struct {
 	// Accept says whether a complete route may be listed; nil accepts all. Routes are drawn until Count
 	// are accepted, so what is proven holds among accepted ones.
 	Accept func(*Tree) bool
+	// Kind sorts routes into kinds of which only the cheapest is listed; nil lists all. What is proven
+	// holds among the cheapest of each kind.
+	Kind func(*Tree) string
 }
 
 // Via says whether a node counts as the one that must be made on the way. A pure function.
@@ -111,6 +114,9 @@ const (
 	// graphs need hundreds; rings of mutual interconversion could need very many.
 	drawBudget  = 20000
 	finalBudget = 200000
+	// kindCost is what looking at the kind of one route counts against the budget: there may be very many
+	// of a kind.
+	kindCost = 30
 )
 
 func (o Options) withDefaults() Options {
@@ -326,7 +332,7 @@ func (r *run) draw(budget int) {
 	}
 	d := newDrawer(r.g, budget)
 	r.routes = r.routes[:0]
-	seen := map[uint64][]*tree{}
+	seen, kinds := map[uint64][]*tree{}, map[string]bool{}
 	for n := 0; ; n++ {
 		t := d.root(n)
 		if t == nil || d.budget <= 0 {
@@ -337,12 +343,35 @@ func (r *run) draw(budget int) {
 		}
 		if !listed(seen[t.hash], t) {
 			seen[t.hash] = append(seen[t.hash], t)
-			if r.o.Accept == nil || r.o.Accept(r.tree(t)) {
+			if r.listable(t, kinds) {
 				r.routes = append(r.routes, t)
+			}
+			if r.o.Kind != nil {
+				d.budget -= kindCost
 			}
 		}
 	}
 	r.cut = d.budget <= 0
+}
+
+// listable says whether a route goes on the list; kinds are those listed already.
+func (r *run) listable(t *tree, kinds map[string]bool) bool {
+	if r.o.Accept == nil && r.o.Kind == nil {
+		return true
+	}
+	whole := r.tree(t)
+	if r.o.Accept != nil && !r.o.Accept(whole) {
+		return false
+	}
+	if r.o.Kind == nil {
+		return true
+	}
+	kind := r.o.Kind(whole)
+	if kinds[kind] {
+		return false
+	}
+	kinds[kind] = true
+	return true
 }
 
 // listed says whether a route of the same molecules is in the list.

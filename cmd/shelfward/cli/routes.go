@@ -2,6 +2,7 @@ package cli
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"os"
 	"regexp"
@@ -12,6 +13,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"shelfward/molecule"
+	"shelfward/molecule/smiles"
 	"shelfward/planner/route"
 	"shelfward/planner/search"
 )
@@ -30,6 +32,7 @@ type planFlags struct {
 	timeGiven     func() bool
 	maxExpanded   int
 	oneEnantiomer bool
+	different     bool
 	makeAnyway    bool
 	make          string
 	bench         string
@@ -54,6 +57,7 @@ func (f *planFlags) bind(cmd *cobra.Command) {
 	fl.IntVar(&f.maxExpanded, "max-expanded", 0, "limit on molecules opened; gives the same bytes every time")
 	fl.StringVar(&f.memory, "memory", "2GiB", "search limit; what was found by then is returned and marked")
 	fl.BoolVar(&f.oneEnantiomer, "one-enantiomer", false, "ask for absolute configuration")
+	fl.BoolVar(&f.different, "different", false, "one route for each key bond (the carbon-carbon bond made last) instead of near copies")
 	fl.BoolVar(&f.makeAnyway, "make-anyway", false, "plan a target that stands on the shelf")
 	fl.StringVar(&f.make, "make", "", "amount of target that prices and stock are worked out for, such as 10g")
 	fl.StringVar(&f.bench, "bench", "", "bench file: what the room can do")
@@ -106,7 +110,7 @@ func (f *planFlags) limit() time.Duration {
 // options turns flags and case file into planning options.
 func (app *App) options(j *job, f *planFlags) (route.Options, error) {
 	o := route.Options{From: j.from, Count: f.count, MaxSteps: f.maxSteps, Avoid: f.avoid, Bench: j.bench, OnlyShelf: f.onlyShelf, MaxHazard: f.maxHazard, AtScale: f.atScale, OneEnantiomer: f.oneEnantiomer,
-		MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.limit(), MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
+		Different: f.different, MakeAnyway: f.makeAnyway, MakeMol: j.makeMol, Time: f.limit(), MaxExpanded: f.maxExpanded, Workers: app.workers(), Progress: app.progress()}
 	for _, word := range f.avoid {
 		if err := checkCode(j, "--avoid", word); err != nil {
 			return o, err
@@ -173,29 +177,43 @@ func (app *App) wants(j *job, f *planFlags, o *route.Options) (err error) {
 		return err
 	}
 	for _, text := range f.not {
-		b := route.Ban{Text: text}
-		left, right, isStep := strings.Cut(text, ">>")
-		if !isStep || strings.TrimSpace(right) == "" {
-			return usageError("--not %s: a step 'A.B>>C' was expected", quoted(text))
-		}
-		if strings.TrimSpace(left) == "" { // every step to C
-			if b.Product, err = j.resolve("smiles:" + strings.TrimSpace(right)); err != nil {
-				return usageError("--not %s: %v", quoted(text), err)
-			}
-			o.Bans = append(o.Bans, b)
-			continue
-		}
-		reactants, products, err := readReaction(text)
+		b, err := readBan(text)
 		if err != nil {
-			return usageError("--not: %v", err)
+			return usageError("--not %s: %v", quoted(text), err)
 		}
-		if len(products) != 1 {
-			return usageError("--not %s: one product was expected, found %d", quoted(text), len(products))
-		}
-		b.Reactants, b.Product = reactants, products[0]
 		o.Bans = append(o.Bans, b)
 	}
 	return nil
+}
+
+// readBan reads one step 'A.B>>C'; the left side may be empty.
+func readBan(text string) (b route.Ban, err error) {
+	b.Text = text
+	left, right, isStep := strings.Cut(text, ">>")
+	if !isStep || strings.TrimSpace(right) == "" || strings.Contains(right, ".") {
+		return b, errors.New("a step 'A.B>>C' with one product was expected")
+	}
+	if b.Product, err = smiles.Read(strings.TrimSpace(right)); err != nil {
+		return b, err
+	}
+	if left = strings.TrimSpace(left); left == "" {
+		return b, nil
+	}
+	parts := strings.Split(left, ".")
+	for i, part := range parts {
+		m, err := smiles.Read(part)
+		if err != nil {
+			return b, err
+		}
+		b.Reactants = append(b.Reactants, m)
+		if i == 0 {
+			continue
+		}
+		if salt, err := smiles.Read(parts[i-1] + "." + part); err == nil {
+			b.Salts = append(b.Salts, salt)
+		}
+	}
+	return b, nil
 }
 
 func (j *job) resolveAll(flag string, texts []string) ([]*molecule.Molecule, error) {
@@ -385,7 +403,7 @@ func (app *App) headerLines(j *job) []string {
 
 // emptyPlan is the object of a search that had no target to begin with.
 func emptyPlan(doubts []string) *route.Plan {
-	return &route.Plan{From: []string{}, Kept: route.Kept{Avoided: []string{}, LeftOut: []route.LeftOut{}}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Explained: []route.Explained{}, Doubts: doubts}
+	return &route.Plan{From: []string{}, FromAny: []string{}, Via: []string{}, Kept: route.Kept{Avoided: []string{}, LeftOut: []route.LeftOut{}}, Routes: []route.Route{}, WouldOpen: []route.Opening{}, Explained: []route.Explained{}, Doubts: doubts}
 }
 
 // nothingFound turns a plan without routes into status 3; the reason has been printed.
