@@ -459,7 +459,10 @@ func (m *mender) shelf(ctx context.Context) error {
 // search plans and lists the routes found as ways. complete adds what follows them and returns the yield
 // that was planned from the same point.
 func (m *mender) search(ctx context.Context, target *molecule.Molecule, o Options, kind, what string, complete func(*Way, *Route) Range) error {
-	o.Bench, o.Time = m.o.Bench, max(o.Time, time.Millisecond)
+	o.Bench = m.o.Bench
+	if o.Time > 0 { // 0: no limit
+		o.Time = max(o.Time, time.Millisecond)
+	}
 	p, err := Make(ctx, m.w, target, o)
 	if err != nil {
 		return err
