@@ -11,9 +11,10 @@ import (
 
 // madeBond is a bond of the target that a step of a route makes, by the kinds of place of its ends.
 type madeBond struct {
-	a, b   int32 // atoms of the target
-	from   int   // steps between the one that makes it and the target
-	carbon bool  // between two carbons
+	a, b   int32  // atoms of the target
+	from   int    // steps between the one that makes it and the target
+	carbon bool   // between two carbons
+	by     string // transform
 }
 
 // madeBonds lists the bonds of the target that the steps of t make, those made last first.
@@ -44,7 +45,7 @@ func (c *chemistry) collectBonds(t *search.Tree, onto []int32, from int, list *[
 		if x.Reactant >= 0 && x.Reactant == y.Reactant && s.Reactants[x.Reactant].Molecule.BondBetween(int(x.Atom), int(y.Atom)) >= 0 {
 			continue
 		}
-		*list = append(*list, madeBond{onto[bond.A], onto[bond.B], from, m.Atom(int(bond.A)).Element == carbon && m.Atom(int(bond.B)).Element == carbon})
+		*list = append(*list, madeBond{onto[bond.A], onto[bond.B], from, m.Atom(int(bond.A)).Element == carbon && m.Atom(int(bond.B)).Element == carbon, s.Transform.ID})
 	}
 	for i, kid := range t.Children {
 		below := make([]int32, c.molecule(kid.Key).NumAtoms())
@@ -98,8 +99,14 @@ func (c *chemistry) keyPlace(t *search.Tree) string {
 func (r *Route) markBonds(c *chemistry, t *search.Tree) {
 	made := c.madeBonds(t)
 	r.madePlaces = c.places(t.Key, made)
+	key := keyBonds(made)
+	for _, x := range key {
+		r.keySteps = append(r.keySteps, x.by)
+	}
+	slices.Sort(r.keySteps)
+	r.keySteps = slices.Compact(r.keySteps)
 	b := c.molecule(t.Key).Builder()
-	for _, x := range keyBonds(made) {
+	for _, x := range key {
 		b.Atoms[x.a].Class, b.Atoms[x.b].Class = 1, 1
 	}
 	if m, err := b.Build(); err == nil && c.world.WriteClasses != nil {
@@ -108,7 +115,8 @@ func (r *Route) markBonds(c *chemistry, t *search.Tree) {
 }
 
 // markVariants names, for each route, an earlier one that makes the same bonds of the target from the same
-// materials: in another order, or by way of other steps.
+// materials, the key bonds by the same reactions: in another order, or by way of other steps (the bromide
+// made into the iodide first, say).
 func markVariants(routes []Route) {
 	type earlier struct {
 		code  string
@@ -129,7 +137,7 @@ func markVariants(routes []Route) {
 		}
 		slices.Sort(steps)
 		slices.Sort(materials)
-		sign, same := r.madePlaces+"\n"+strings.Join(materials, "\n"), strings.Join(steps, "\n")
+		sign, same := r.madePlaces+"\n"+strings.Join(r.keySteps, " ")+"\n"+strings.Join(materials, "\n"), strings.Join(steps, "\n")
 		if r.madePlaces == "" { // no bond made: only another order is a variant
 			sign += "\n" + same
 		}

@@ -169,6 +169,7 @@ type Route struct {
 	Doubts            []string           `json:"doubts"`
 
 	madePlaces string        // the bonds made, by kinds of place
+	keySteps   []string      // the transforms that make the key bonds
 	stood      time.Duration // after the start of the search
 	made       []making      // parallel to Steps; of a plan just made
 }
