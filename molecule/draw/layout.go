@@ -1,416 +1,241 @@
-// Package draw lays molecules out on the plane and writes them as SVG. It promises a plain readable
-// picture: regular rings, zig-zag chains, labels at hetero atoms. It does not yet draw wedges (the
-// caller prints the line notation beside it) and bridged ring systems come out relaxed, not by rule.
+// Package draw lays molecules out on the plane and draws them: structures, and schemes of reactions. A
+// Drawing is neutral of devices; SVG and PNG are written from it.
+//
+// Ring systems come first, each in a frame of its own (regular polygons; bridged ones with a bridge inside).
+// They and the chains are then joined, bond by bond, outwards from the largest system or along the longest
+// chain; overlaps are turned or bent away; at last the whole is turned as chemists hold it. Conventions follow
+// the IUPAC Recommendations 2008 (graphical representation standards for chemical structure diagrams, Pure
+// Appl. Chem. 80 (2008) 277) and 2006 (stereochemical configuration, Pure Appl. Chem. 78 (2006) 1897).
 package draw
 
 import (
-	"math"
+	"cmp"
+	"slices"
+	"sync"
 
 	"shelfward/molecule"
 )
 
-// Point is a place in units of one bond length; y grows upwards.
-type Point struct{ X, Y float64 }
-
-func (p Point) add(q Point) Point     { return Point{p.X + q.X, p.Y + q.Y} }
-func (p Point) sub(q Point) Point     { return Point{p.X - q.X, p.Y - q.Y} }
-func (p Point) scale(f float64) Point { return Point{p.X * f, p.Y * f} }
-func (p Point) length() float64       { return math.Hypot(p.X, p.Y) }
-func (p Point) turn(angle float64) Point {
-	s, c := math.Sincos(angle)
-	return Point{p.X*c - p.Y*s, p.X*s + p.Y*c}
-}
-func toward(angle float64) Point { s, c := math.Sincos(angle); return Point{c, s} }
-func angleOf(p Point) float64    { return math.Atan2(p.Y, p.X) }
-
 // gap is the space between components.
 const gap = 1.5
 
-// Layout returns a place for every atom of m. The same molecule always gets the same picture; the cost
-// is linear but for bridged rings and clashes, which take a bounded number of rounds.
+// Layout returns a place for every atom of m, in bond lengths. The same molecule gets the same picture whatever
+// the order of its atoms. Double bonds stand as they are marked.
 func Layout(m *molecule.Molecule) []Point {
-	l := &layout{m: m, at: make([]Point, m.NumAtoms()), placed: make([]bool, m.NumAtoms())}
-	left := 0.0
-	for a := 0; a < m.NumAtoms(); a++ {
-		if l.placed[a] {
-			continue
-		}
-		atoms := l.component(a)
-		lo, hi := l.bounds(atoms)
-		for _, x := range atoms {
-			l.at[x].X += left - lo
-		}
-		left += hi - lo + gap
+	l := layouts.Get().(*layout)
+	defer layouts.Put(l)
+	l.load(m)
+	at := make([]Point, l.v.n)
+	if l.v.n == 0 {
+		return at
 	}
-	return l.at
+	l.layRings()
+	l.components()
+	for r, p := range l.at {
+		at[l.v.tally[r]] = p
+	}
+	return at
 }
 
-// layout is the state of one picture.
+var layouts = sync.Pool{New: func() any { return new(layout) }}
+
+// layout is the state of one picture, and memory used again by the next.
 type layout struct {
-	m      *molecule.Molecule
-	at     []Point
-	placed []bool
+	v       view
+	at      []Point
+	placed  []bool
+	parent  []int32 // atom -> atom it was reached from, -1 at the start
+	height  []int32 // atom -> longest way down from it
+	side    []int8  // atom -> side (1 left, -1 right) to which the chain turned at it
+	queue   []int32
+	systems []ringSystem
+	member  []int32 // atom -> its first ring system, -1 none
+	marked  []mark
+
+	frame  []Point // a ring system in the making
+	have   []bool
+	framed []int32
+	path   []int32
+	bow    []Point
+	lines  []line
+	marks  []bool
+	want   []float64
+	index  []int32
+	points []Point
+
+	angles []float64
+	todo   []branch
+	bonds  []line // of the component
+	inSide []bool
+	side2  []int32
+	rest   []int32
+	trial  []Point
+	saved  []Point
 }
 
-// component places the connected component of start and returns its atoms.
-func (l *layout) component(start int) []int {
-	atoms := l.connected(start)
-	first := l.firstAtom(atoms)
-	if ring := l.ringOf(first); ring != nil {
-		l.placeRing(ring, Point{}, math.Pi/2)
-	} else {
-		l.at[first], l.placed[first] = Point{}, true
+// mark is a double bond of known geometry in the numbering of the view.
+type mark struct {
+	a, b, la, lb int32
+	bond         int32
+	together     bool
+}
+
+func (l *layout) load(m *molecule.Molecule) {
+	l.v.load(m)
+	n := l.v.n
+	l.at, l.placed = resize(l.at, n), resize(l.placed, n)
+	l.parent, l.height, l.side = resize(l.parent, n), resize(l.height, n), resize(l.side, n)
+	l.frame, l.have, l.framed = resize(l.frame, n), resize(l.have, n), l.framed[:0]
+	l.marked = l.marked[:0]
+	if len(m.DoubleBonds()) > 0 {
+		ranks := m.Ranks()
+		for _, d := range m.DoubleBonds() {
+			x := m.Bond(int(d.Bond))
+			l.marked = append(l.marked, mark{ranks[x.A], ranks[x.B], ranks[d.A], ranks[d.B], d.Bond, d.Together})
+		}
+		slices.SortFunc(l.marked, func(x, y mark) int {
+			return cmp.Compare(min(x.a, x.b)*int32(n)+max(x.a, x.b), min(y.a, y.b)*int32(n)+max(y.a, y.b))
+		})
 	}
-	l.grow(atoms)
-	l.relaxClashes(atoms)
-	return atoms
-}
-
-func (l *layout) connected(start int) []int {
-	seen := map[int]bool{start: true}
-	list := []int{start}
-	for i := 0; i < len(list); i++ {
-		for _, n := range l.m.Neighbors(list[i]) {
-			if !seen[int(n.Atom)] {
-				seen[int(n.Atom)] = true
-				list = append(list, int(n.Atom))
-			}
+	l.member = resize(l.member, n)
+	for i := range l.member {
+		l.member[i] = -1
+	}
+	for i := len(l.v.rings) - 1; i >= 0; i-- {
+		for _, a := range l.v.rings[i] {
+			l.member[a] = l.v.system[i]
 		}
 	}
-	return list
 }
 
-// firstAtom prefers the ring atom with most rings, else an end of the longest chain.
-func (l *layout) firstAtom(atoms []int) int {
-	best, most := -1, 0
-	for _, a := range atoms {
-		n := 0
-		for _, r := range l.m.Rings() {
-			if holds(r, a) {
-				n++
-			}
+// components places the connected parts side by side, large ones first.
+func (l *layout) components() {
+	var parts []component
+	for a := range l.v.n {
+		if !l.placed[a] {
+			parts = append(parts, l.component(int32(a)))
 		}
-		if n > most {
-			best, most = a, n
+	}
+	if len(parts) == 1 {
+		return
+	}
+	slices.SortStableFunc(parts, func(x, y component) int { return cmp.Compare(len(y.atoms), len(x.atoms)) })
+	left := 0.0
+	for _, c := range parts {
+		lo, hi := l.bounds(c.atoms)
+		shift := Point{left - lo.X, -(lo.Y + hi.Y) / 2}
+		for _, a := range c.atoms {
+			l.at[a] = l.at[a].add(shift)
+		}
+		left += hi.X - lo.X + gap
+	}
+}
+
+// component is a connected part.
+type component struct{ atoms []int32 }
+
+// component places the connected part of a.
+func (l *layout) component(a int32) component {
+	start := l.start(a)
+	l.walk(start)
+	atoms := slices.Clone(l.queue)
+	l.assemble(start)
+	l.setGeometry(atoms)
+	l.untangle(atoms)
+	l.orient(atoms)
+	return component{atoms}
+}
+
+// start is the atom to begin with: in the ring system with most atoms, or the end of a longest chain.
+func (l *layout) start(a int32) int32 {
+	l.walk(a)
+	best := int32(-1)
+	for _, x := range l.queue {
+		if s := l.member[x]; s >= 0 && (best < 0 || len(l.systems[s].atoms) > len(l.systems[best].atoms) ||
+			len(l.systems[s].atoms) == len(l.systems[best].atoms) && s < best) {
+			best = s
 		}
 	}
 	if best >= 0 {
-		return best
+		return l.systems[best].atoms[0]
 	}
-	return l.farthest(l.farthest(atoms[0]))
+	l.walk(l.queue[len(l.queue)-1])
+	return l.queue[len(l.queue)-1]
 }
 
-// farthest returns the last atom that a walk by breadth reaches.
-func (l *layout) farthest(start int) int {
-	list := l.connected(start)
-	return list[len(list)-1]
-}
-
-func holds(ring []int32, a int) bool {
-	for _, x := range ring {
-		if int(x) == a {
-			return true
-		}
-	}
-	return false
-}
-
-// ringOf returns the first ring through a with no atom placed.
-func (l *layout) ringOf(a int) []int32 {
-	for _, r := range l.m.Rings() {
-		if holds(r, a) {
-			return r
-		}
-	}
-	return nil
-}
-
-// placeRing puts a ring down as a regular polygon around center.
-func (l *layout) placeRing(ring []int32, center Point, first float64) {
-	n := len(ring)
-	radius := 0.5 / math.Sin(math.Pi/float64(n))
-	for i, a := range ring {
-		if !l.placed[a] {
-			l.at[a] = center.add(toward(first - 2*math.Pi*float64(i)/float64(n)).scale(radius))
-			l.placed[a] = true
-		}
-	}
-}
-
-// grow adds rings that touch what is placed, then chain atoms, until the component stands.
-func (l *layout) grow(atoms []int) {
-	for {
-		if l.growRing() {
-			continue
-		}
-		if !l.growChain(atoms) {
-			return
-		}
-	}
-}
-
-// growRing places one ring that shares atoms with the picture.
-func (l *layout) growRing() bool {
-	for _, r := range l.m.Rings() {
-		done, free := 0, 0
-		for _, a := range r {
-			if l.placed[a] {
-				done++
-			} else {
-				free++
+// walk reaches the atoms connected with a by breadth: queue, parent and height.
+func (l *layout) walk(a int32) {
+	l.queue = append(l.queue[:0], a)
+	l.parent[a] = -1
+	seen := l.flags(l.v.n)
+	seen[a] = true
+	for i := 0; i < len(l.queue); i++ {
+		x := l.queue[i]
+		l.height[x] = 0
+		for _, nb := range l.v.neighbors(x) {
+			if !seen[nb.Atom] {
+				seen[nb.Atom] = true
+				l.parent[nb.Atom] = x
+				l.queue = append(l.queue, nb.Atom)
 			}
 		}
-		if free == 0 || done == 0 {
-			continue
-		}
-		switch {
-		case done == 1:
-			l.spiro(r)
-		case done == 2 && l.fuse(r):
-		default:
-			l.bridge(r)
-		}
-		return true
 	}
-	return false
-}
-
-// spiro hangs a ring on one placed atom, away from its neighbours.
-func (l *layout) spiro(r []int32) {
-	k := 0
-	for i, a := range r {
-		if l.placed[a] {
-			k = i
+	for i := len(l.queue) - 1; i > 0; i-- {
+		x := l.queue[i]
+		if p := l.parent[x]; l.height[p] <= l.height[x] {
+			l.height[p] = l.height[x] + 1
 		}
-	}
-	rotated := append(append([]int32(nil), r[k:]...), r[:k]...)
-	a := int(rotated[0])
-	out := l.freeAngle(a)
-	radius := 0.5 / math.Sin(math.Pi/float64(len(r)))
-	center := l.at[a].add(toward(out).scale(radius))
-	l.placeRing(rotated, center, out+math.Pi)
-}
-
-// fuse hangs a ring on a placed bond, on the side that is free.
-func (l *layout) fuse(r []int32) bool {
-	n := len(r)
-	for i := range r {
-		a, b := r[i], r[(i+1)%n]
-		if !l.placed[a] || !l.placed[b] {
-			continue
-		}
-		rotated := append(append([]int32(nil), r[i:]...), r[:i]...)
-		mid := l.at[a].add(l.at[b]).scale(0.5)
-		side := l.at[b].sub(l.at[a]).turn(math.Pi / 2)
-		if l.crowd(mid.add(side)) > l.crowd(mid.sub(side)) {
-			side = side.scale(-1)
-		}
-		apothem := 0.5 / math.Tan(math.Pi/float64(n))
-		center := mid.add(side.scale(apothem / math.Max(side.length(), 1e-9)))
-		from := angleOf(l.at[a].sub(center))
-		step := -2 * math.Pi / float64(n)
-		if math.Abs(wrap(angleOf(l.at[b].sub(center))-from-step)) > 0.3 {
-			step = -step
-		}
-		radius := 0.5 / math.Sin(math.Pi/float64(n))
-		for k, x := range rotated {
-			if !l.placed[x] {
-				l.at[x] = center.add(toward(from + step*float64(k)).scale(radius))
-				l.placed[x] = true
-			}
-		}
-		return true
-	}
-	return false
-}
-
-func wrap(a float64) float64 {
-	for a > math.Pi {
-		a -= 2 * math.Pi
-	}
-	for a < -math.Pi {
-		a += 2 * math.Pi
-	}
-	return a
-}
-
-// crowd counts placed atoms near a point.
-func (l *layout) crowd(p Point) float64 {
-	total := 0.0
-	for a, q := range l.at {
-		if l.placed[a] {
-			d := p.sub(q)
-			total += 1 / (0.2 + d.X*d.X + d.Y*d.Y)
-		}
-	}
-	return total
-}
-
-// bridge lays the missing path of a bridged ring on a bow between its placed ends.
-func (l *layout) bridge(r []int32) {
-	n := len(r)
-	for i := range r {
-		if !l.placed[r[i]] || l.placed[r[(i+1)%n]] {
-			continue
-		}
-		j := (i + 1) % n
-		var path []int32
-		for !l.placed[r[j]] {
-			path = append(path, r[j])
-			j = (j + 1) % n
-		}
-		l.bow(l.at[r[i]], l.at[r[j]], path)
-		return
 	}
 }
 
-func (l *layout) bow(a, b Point, path []int32) {
-	mid := a.add(b).scale(0.5)
-	side := b.sub(a).turn(math.Pi / 2)
-	if side.length() < 1e-9 {
-		side = Point{0, 1}
-	}
-	side = side.scale(1 / side.length())
-	if l.crowd(mid.add(side)) > l.crowd(mid.sub(side)) {
-		side = side.scale(-1)
-	}
-	k := float64(len(path) + 1)
-	height := 0.35 * k
-	if b.sub(a).length() > k*0.9 {
-		height = 0.25
-	}
-	for i, x := range path {
-		t := float64(i+1) / k
-		l.at[x] = a.add(b.sub(a).scale(t)).add(side.scale(height * 4 * t * (1 - t)))
-		l.placed[x] = true
-	}
-}
-
-// growChain places the neighbours of one placed atom.
-func (l *layout) growChain(atoms []int) bool {
+func (l *layout) bounds(atoms []int32) (lo, hi Point) {
+	lo, hi = l.at[atoms[0]], l.at[atoms[0]]
 	for _, a := range atoms {
-		if !l.placed[a] {
-			continue
-		}
-		for _, n := range l.m.Neighbors(a) {
-			x := int(n.Atom)
-			if l.placed[x] {
-				continue
-			}
-			l.at[x] = l.at[a].add(toward(l.freeAngle(a)))
-			l.placed[x] = true
-			return true
-		}
-	}
-	return false
-}
-
-// freeAngle is the direction at a with most room: straight on for sp atoms, 120 degrees else, zig-zag.
-func (l *layout) freeAngle(a int) float64 {
-	var used []float64
-	for _, n := range l.m.Neighbors(a) {
-		if l.placed[n.Atom] {
-			used = append(used, angleOf(l.at[n.Atom].sub(l.at[a])))
-		}
-	}
-	if len(used) == 0 {
-		return -math.Pi / 6
-	}
-	best, least := 0.0, math.Inf(1)
-	for _, c := range l.directions(a, used) {
-		cost := l.crowd(l.at[a].add(toward(c)))
-		for _, u := range used {
-			if math.Abs(wrap(c-u)) < math.Pi/3-0.05 {
-				cost += 100
-			}
-		}
-		if cost < least-1e-9 {
-			best, least = c, cost
-		}
-	}
-	return best
-}
-
-// directions lists candidate angles at a beside those used.
-func (l *layout) directions(a int, used []float64) []float64 {
-	if len(used) == 1 {
-		if l.linear(a) {
-			return []float64{used[0] + math.Pi}
-		}
-		return []float64{used[0] + 2*math.Pi/3, used[0] - 2*math.Pi/3}
-	}
-	var out []float64
-	for i := range used {
-		for j := range used {
-			if i < j {
-				mid := used[i] + wrap(used[j]-used[i])/2
-				out = append(out, mid+math.Pi, mid)
-			}
-		}
-		out = append(out, used[i]+math.Pi/2, used[i]-math.Pi/2, used[i]+math.Pi)
-	}
-	return out
-}
-
-func (l *layout) linear(a int) bool {
-	doubles := 0
-	for _, n := range l.m.Neighbors(a) {
-		switch l.m.Bond(int(n.Bond)).Order {
-		case 3:
-			return true
-		case 2:
-			doubles++
-		}
-	}
-	return doubles == 2
-}
-
-// relaxClashes pushes atoms apart that came too close, keeping bonds near one unit.
-func (l *layout) relaxClashes(atoms []int) {
-	if len(atoms) > 200 {
-		return
-	}
-	for round := 0; round < 60 && l.clash(atoms); round++ {
-		push := make(map[int]Point, len(atoms))
-		for i, a := range atoms {
-			for _, b := range atoms[i+1:] {
-				d := l.at[b].sub(l.at[a])
-				dist := d.length()
-				if dist < 1e-6 {
-					d, dist = Point{0.01, 0.02}, 0.0224
-				}
-				force := 0.0
-				if l.m.BondBetween(a, b) >= 0 {
-					force = 0.4 * (dist - 1)
-				} else if dist < 0.8 {
-					force = 0.3 * (dist - 0.8)
-				}
-				move := d.scale(force / dist / 2)
-				push[a] = push[a].add(move)
-				push[b] = push[b].sub(move)
-			}
-		}
-		for a, p := range push {
-			l.at[a] = l.at[a].add(p)
-		}
-	}
-}
-
-func (l *layout) clash(atoms []int) bool {
-	for i, a := range atoms {
-		for _, b := range atoms[i+1:] {
-			if l.at[a].sub(l.at[b]).length() < 0.5 {
-				return true
-			}
-		}
-	}
-	return false
-}
-
-func (l *layout) bounds(atoms []int) (lo, hi float64) {
-	lo, hi = math.Inf(1), math.Inf(-1)
-	for _, a := range atoms {
-		lo, hi = math.Min(lo, l.at[a].X), math.Max(hi, l.at[a].X)
+		p := l.at[a]
+		lo = Point{min(lo.X, p.X), min(lo.Y, p.Y)}
+		hi = Point{max(hi.X, p.X), max(hi.Y, p.Y)}
 	}
 	return lo, hi
+}
+
+// setGeometry turns one side of each marked double bond outside rings that stands the wrong way.
+func (l *layout) setGeometry(atoms []int32) {
+	for _, d := range l.marked {
+		if l.parent[d.a] != d.b && l.parent[d.b] != d.a || l.v.m.Bond(int(d.bond)).Ring || !l.placed[d.a] {
+			continue
+		}
+		if l.drawnTogether(d) == d.together {
+			continue
+		}
+		top, low := d.a, d.b
+		if l.parent[d.a] == d.b {
+			top, low = d.b, d.a
+		}
+		u := l.at[low].sub(l.at[top]).unit()
+		for _, x := range l.behind(low, top) {
+			l.at[x] = l.at[x].mirrored(l.at[top], u)
+		}
+	}
+}
+
+// drawnTogether says that the named ligands of a marked double bond stand on one side of it.
+func (l *layout) drawnTogether(d mark) bool {
+	axis := l.at[d.b].sub(l.at[d.a])
+	return axis.cross(l.at[d.la].sub(l.at[d.a]))*axis.cross(l.at[d.lb].sub(l.at[d.b])) > 0
+}
+
+// behind lists the atoms reached from a without passing block.
+func (l *layout) behind(a, block int32) []int32 {
+	seen := l.flags(l.v.n)
+	seen[a], seen[block] = true, true
+	l.side2 = append(l.side2[:0], a)
+	for i := 0; i < len(l.side2); i++ {
+		for _, nb := range l.v.neighbors(l.side2[i]) {
+			if !seen[nb.Atom] {
+				seen[nb.Atom] = true
+				l.side2 = append(l.side2, nb.Atom)
+			}
+		}
+	}
+	return l.side2
 }

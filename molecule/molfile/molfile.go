@@ -25,7 +25,14 @@ type Record struct {
 	Molecule    *molecule.Molecule
 	Coordinates []Point // one per atom of Molecule; nil where the file has none
 	Fields      []Field // in file order; empty for a plain molfile
+	Wedges      []Wedge // for writing in a plane: the wedges of the drawing; nil lets the writer choose
 	Relative    bool    // a V3000 group says that the centres are known relative to each other only
+}
+
+// Wedge is a bond drawn as a wedge (Up) or a hash; its narrow end stands at atom From.
+type Wedge struct {
+	Bond, From int32
+	Up         bool
 }
 
 // Field returns the value of the first field with the name, and whether there is one.

@@ -58,7 +58,11 @@ func newTable(r *Record) (*table, error) {
 		t.turnDoubleBonds()
 	}
 	t.markDoubleBonds()
-	if !t.solid {
+	switch {
+	case t.solid:
+	case r.Wedges != nil:
+		t.takeWedges(r.Wedges)
+	default:
 		t.placeWedges()
 	}
 	return t, nil
@@ -290,6 +294,16 @@ func (t *table) openEnd(a, partner int32) bool {
 	}
 	// The two sides of a ring are equal only as long as nothing across the ring tells them apart.
 	return len(orbits) < 2 || orbits[0] != orbits[1] || ring
+}
+
+// takeWedges writes the wedges of a drawing.
+func (t *table) takeWedges(list []Wedge) {
+	for _, w := range list {
+		t.from[w.Bond], t.stereo[w.Bond] = w.From, stereoHash
+		if w.Up {
+			t.stereo[w.Bond] = stereoWedge
+		}
+	}
 }
 
 // placeWedges gives each centre one wedge or hash, on a bond that is no centre's other wedge:

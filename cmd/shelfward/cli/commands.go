@@ -13,6 +13,7 @@ func (app *App) commands() []*cobra.Command {
 		newMendCommand(app),
 		newJudgeCommand(app),
 		newConvertCommand(app),
+		newDrawCommand(app),
 		newShelfCommand(app),
 		newRulesCommand(app),
 	}

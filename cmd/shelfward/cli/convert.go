@@ -33,7 +33,7 @@ type convertOptions struct {
 func newConvertCommand(app *App) *cobra.Command {
 	o := &convertOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, rxn, formula, name, svg", Args: exactly(1),
+		Use: "convert FILE --to FORMAT", Short: "convert structures: smiles, mol, sdf, rxn, formula, name, svg, png", Args: exactly(1),
 		Long: "Reads a .smi, .mol, .sdf or .rxn file; '-' is standard input. To smiles, formula and name it prints one line per record:\n" +
 			"value, tab, title. A .rxn file becomes one line of reaction SMILES, or its molecules in the order reactants, agents,\n" +
 			"products; --to rxn takes a .rxn file or reaction SMILES, one a line, with titles. A structure that has no name here gives an empty one. A failed record gives an empty value and is reported on standard error; the status is then 2.\n" +
@@ -51,7 +51,7 @@ func newConvertCommand(app *App) *cobra.Command {
 }
 
 // formatNames lists the values of --to.
-const formatNames = "smiles, mol, sdf, rxn, formula, name or svg"
+const formatNames = "smiles, mol, sdf, rxn, formula, name, svg or png"
 
 // format turns one record into its text. A line format gives a value for 'value, tab, title'; the
 // others give a whole block of lines.
@@ -68,9 +68,20 @@ var formats = map[string]format{
 	"sdf":     {func(r *molfile.Record) (string, error) { return molText(r, molfile.WriteSD) }, false},
 	"rxn":     {}, // whole reactions, see reactionAnswer
 	"svg": {func(r *molfile.Record) (string, error) {
-		return draw.SVG(r.Molecule, draw.Options{Title: r.Title}) + "\n", nil
+		return draw.SVG(r.Molecule, draw.Options{Title: r.Title, Relative: r.Relative}) + "\n", nil
 	}, false},
+	"png": {pngText, false},
 }
+
+// pngText is the picture of one structure as the bytes of a PNG file.
+func pngText(r *molfile.Record) (string, error) {
+	var image strings.Builder
+	err := draw.Structure(r.Molecule, draw.Options{Title: r.Title, Relative: r.Relative, Style: draw.Screen}).WritePNG(&image, pngScale)
+	return image.String(), err
+}
+
+// pngScale is the number of pixels to a point of a drawing: enough for print.
+const pngScale = 3
 
 // molText writes a record with the coordinates it came with, or with those of our own picture.
 func molText(r *molfile.Record, write func(io.Writer, *molfile.Record) error) (string, error) {
@@ -85,8 +96,13 @@ func drawn(r *molfile.Record) *molfile.Record {
 		return r
 	}
 	whole := *r
-	for _, p := range draw.Layout(r.Molecule) {
+	placed := draw.Place(r.Molecule, false)
+	for _, p := range placed.At {
 		whole.Coordinates = append(whole.Coordinates, molfile.Point{X: p.X, Y: p.Y})
+	}
+	whole.Wedges = []molfile.Wedge{}
+	for _, w := range placed.Wedges {
+		whole.Wedges = append(whole.Wedges, molfile.Wedge(w))
 	}
 	return &whole
 }
@@ -110,6 +126,9 @@ func (o *convertOptions) run(ctx context.Context) error {
 	}
 	if o.v3000 && o.to != "mol" && o.to != "sdf" && o.to != "rxn" {
 		return usageError("--v3000 goes with --to mol, sdf or rxn, not with %s", o.to)
+	}
+	if o.to == "png" && o.app.JSON {
+		return usageError("--json holds no pictures in PNG; --to svg was expected")
 	}
 	in, closeIn, err := o.app.open(o.file)
 	if err != nil {
@@ -225,7 +244,11 @@ func (o *convertOptions) convert(ctx context.Context, src source) error {
 		if err := ctx.Err(); err != nil {
 			return err
 		}
-		for _, r := range o.batches(batches, workers) {
+		results := o.batches(batches, workers)
+		if record+len(results) > 1 && o.to == "png" {
+			return usageError("--to png writes one picture, found several structures; --to svg writes one element each")
+		}
+		for _, r := range results {
 			record++
 			if r.trouble != "" {
 				failed++
