@@ -309,18 +309,26 @@ func (l *layout) hangSystem(a int32, system int, queue []int32) []int32 {
 	s := &l.systems[system]
 	s.placed = true
 	origin := s.place(a)
-	turn := Point{1, 0}
+	turn, squeeze := Point{1, 0}, 1.0
 	if len(l.angles) > 0 {
-		out := l.outward(s, a)
-		from, width := widestGap(l.angles)
-		free := toward(from + width/2) // the ring lies in the widest gap
-		turn = free.scale(-1).times(Point{out.X, -out.Y})
+		from, width := l.outerSide(s, a)
+		out := toward(from + width/2)
+		open, room := widestGap(l.angles)
+		var free float64
+		free, squeeze = l.share(a, 2*math.Pi-width, open, room) // the ring lies in the widest gap
+		turn = toward(free + math.Pi).times(Point{out.X, -out.Y})
 	}
 	for i, x := range s.atoms {
 		if x == a {
 			continue
 		}
-		l.at[x] = l.at[a].add(s.at[i].sub(origin).times(turn))
+		p := s.at[i].sub(origin).times(turn)
+		if squeeze < 1 {
+			axis := turn.times(l.outward(s, a))
+			across := axis.left()
+			p = axis.scale(p.dot(axis)).add(across.scale(squeeze * p.dot(across)))
+		}
+		l.at[x] = l.at[a].add(p)
 		l.placed[x] = true
 		queue = append(queue, x)
 	}
@@ -328,8 +336,35 @@ func (l *layout) hangSystem(a int32, system int, queue []int32) []int32 {
 	return queue
 }
 
+// share is the direction of the next ring system at a, in a gap that it shares with the others still to come, and
+// the factor by which it is squeezed where they do not fit in (three chelate rings on one metal). own is the
+// angle that it takes at a.
+func (l *layout) share(a int32, own, from, width float64) (direction, squeeze float64) {
+	rings, taken := 0.0, 0.0
+	for _, t := range l.todo {
+		if t.system >= 0 {
+			_, open := l.outerSide(&l.systems[t.system], a)
+			rings++
+			taken += 2*math.Pi - open
+		}
+	}
+	const apart = 37 * math.Pi / 180 // keeps the squeezed rings half a bond apart
+	squeeze = 1
+	if most := (width - (rings+1)*apart) / rings; own > most && most > 0 && own < math.Pi {
+		squeeze = math.Tan(most/2) / math.Tan(own/2)
+		taken, own = most*rings, most
+	}
+	return from + (width-taken)/(rings+1) + own/2, squeeze
+}
+
 // outward is the direction at atom a of a system away from its rings.
 func (l *layout) outward(s *ringSystem, a int32) Point {
+	from, width := l.outerSide(s, a)
+	return toward(from + width/2)
+}
+
+// outerSide is the widest gap between the bonds that atom a of a system has in its frame.
+func (l *layout) outerSide(s *ringSystem, a int32) (from, width float64) {
 	origin := s.place(a)
 	var list [8]float64
 	found := list[:0]
@@ -338,6 +373,5 @@ func (l *layout) outward(s *ringSystem, a int32) Point {
 			found = append(found, angleOf(s.at[i].sub(origin)))
 		}
 	}
-	from, width := widestGap(found)
-	return toward(from + width/2)
+	return widestGap(found)
 }

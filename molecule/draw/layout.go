@@ -69,7 +69,6 @@ type layout struct {
 	inSide []bool
 	side2  []int32
 	rest   []int32
-	trial  []Point
 	saved  []Point
 }
 

@@ -172,7 +172,7 @@ func (s *spread) score(turn Point, flip bool) float64 {
 			across++
 		}
 	}
-	return 1.2*across + 1.6*math.Tanh(odd.X) + 0.8*math.Tanh(sign*odd.Y) + 6*wide/max(total, 1e-9) +
+	return 2*across + 1.6*math.Tanh(odd.X) + 0.8*math.Tanh(sign*odd.Y) + 6*wide/max(total, 1e-9) +
 		1.2*math.Tanh(s.hetero.times(turn).X/math.Sqrt(total+1)) +
 		0.5*math.Tanh(sign*s.up.times(turn).Y) -
 		0.3*math.Tanh(sign*s.down.times(turn).Y)

@@ -26,10 +26,63 @@ func (l *layout) untangle(atoms []int32) {
 	rounds := min(25, 2+4_000_000/(n*n))
 	for range rounds {
 		a, b, ok := l.worstPair(atoms)
-		if !ok || !l.mend(atoms, a, b) {
+		if !ok {
 			return
 		}
+		if !l.mend(atoms, a, b) {
+			break
+		}
 	}
+	l.shorten(atoms)
+}
+
+// shorten draws ends on rings that still stand too close to something shorter, and swings them to where there is
+// room: angular methyl groups in the bay of fused rings.
+func (l *layout) shorten(atoms []int32) {
+	for _, t := range atoms {
+		nbs := l.v.neighbors(t)
+		if len(nbs) != 1 || l.member[nbs[0].Atom] < 0 {
+			continue
+		}
+		host := nbs[0].Atom
+		most := l.room(atoms, t, host)
+		if most >= 0.55 {
+			continue
+		}
+		best := l.at[t]
+		spoke := best.sub(l.at[host]).unit()
+		for _, length := range [...]float64{0.8, 0.65} {
+			for _, swing := range [...]float64{0, 15, -15, 30, -30, 45, -45} {
+				l.at[t] = l.at[host].add(spoke.turn(swing * math.Pi / 180).scale(length))
+				if room := l.room(atoms, t, host); room > most+0.02 {
+					best, most = l.at[t], room
+				}
+			}
+		}
+		l.at[t] = best
+	}
+}
+
+// room is the distance of an end to the nearest other atom, or twice that to the nearest bond.
+func (l *layout) room(atoms []int32, t, host int32) float64 {
+	p := l.at[t]
+	least := 1.0
+	for _, a := range atoms {
+		if a != t && a != host {
+			least = min(least, p.sub(l.at[a]).length())
+		}
+	}
+	for _, b := range l.bonds {
+		if b.a != t && b.b != t && b.a != host && b.b != host {
+			least = min(least, 2*math.Sqrt(toLine(p, l.at[b.a], l.at[b.b])))
+		}
+	}
+	for _, a := range atoms { // and what its own bond runs over
+		if a != t && a != host {
+			least = min(least, 2*math.Sqrt(toLine(l.at[a], p, l.at[host])))
+		}
+	}
+	return least
 }
 
 // worstPair finds two atoms to be parted: the closest pair that crowds, or ends of bonds that cross.

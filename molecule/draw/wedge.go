@@ -44,19 +44,8 @@ func Place(m *molecule.Molecule, hydrogens bool) *Placed {
 	return p
 }
 
-// Wedges says which bonds of m, with its atoms at the places given, become wedges so that every tetrahedral mark
-// can be read: at each centre the bond to a ligand outside rings that is no centre itself, small ligands
-// first; ring bonds and bonds between two centres last (IUPAC Recommendations 2006, ST-1.1). A centre that
-// no single wedge settles, because its bonds lie too unevenly, gets none.
-func Wedges(m *molecule.Molecule, at []Point) []Wedge {
-	w := newWedger(m, at)
-	for _, c := range m.Centers() {
-		w.mark(c)
-	}
-	return w.wedges
-}
-
-// wedger places wedges.
+// wedger places wedges: at each centre on the bond to a ligand outside rings that is no centre itself, small
+// ligands first; on ring bonds and bonds between two centres last (IUPAC Recommendations 2006, ST-1.1).
 type wedger struct {
 	m         *molecule.Molecule
 	at        []Point
