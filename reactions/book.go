@@ -23,9 +23,9 @@ type Book struct {
 	takesOff   map[string]*ProtectingGroup // by transform
 	guarding   []*Transform                // take off what is looked at only in need
 
-	common  commonMolecules
-	sieve   *pattern.Sieve // of all product parts, transform after transform
-	sieveOf []*Transform   // per product part its transform
+	common  *commonMolecules // shared with the books made by Only
+	sieve   *pattern.Sieve   // of all product parts, transform after transform
+	sieveOf []*Transform     // per product part its transform
 }
 
 // Load reads and compiles the rules of fsys (rules.Files() or an overlay). The error is a
@@ -40,7 +40,7 @@ func Load(fsys fs.FS) (*Book, error) {
 	l.loadTolerance()
 	l.loadTransforms()
 	l.checkTogether()
-	b := &Book{Transforms: l.list, byID: l.byID, groups: l.groups, arene: a, media: l.media, protection: l.loadProtection(), takesOff: map[string]*ProtectingGroup{}}
+	b := &Book{Transforms: l.list, byID: l.byID, groups: l.groups, arene: a, media: l.media, protection: l.loadProtection(), takesOff: map[string]*ProtectingGroup{}, common: &commonMolecules{}}
 	b.indexProtection()
 	b.sift()
 	return b, l.errs.Err()
