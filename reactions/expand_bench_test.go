@@ -44,7 +44,7 @@ func referenceRates(t testing.TB) (pairs, sets float64) {
 
 // some is a book of n of the transforms, at equal distances.
 func (b *Book) some(n int) *Book {
-	c := &Book{byID: map[string]*Transform{}, groups: b.groups, arene: b.arene, media: b.media}
+	c := &Book{byID: map[string]*Transform{}, groups: b.groups, arene: b.arene, media: b.media, common: &commonMolecules{}}
 	for i := range n {
 		t := b.Transforms[i*len(b.Transforms)/n]
 		c.Transforms = append(c.Transforms, t)
