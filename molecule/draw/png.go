@@ -103,7 +103,7 @@ func (r *raster) polygon(points []Point) {
 	z.Draw(r.img, area, r.ink, image.Point{})
 }
 
-// text writes a run, letter by letter at the widths of the drawing.
+// text writes a run in the width that it has in the drawing.
 func (r *raster) text(run Run) error {
 	face, ok := r.faces[run.Size]
 	if !ok {
@@ -116,14 +116,15 @@ func (r *raster) text(run Run) error {
 		}
 		r.faces[run.Size] = face
 	}
-	x := run.At.X
+	// The letters of this font keep their proportions; the run as a whole gets the width that the drawing left it.
+	natural := float64(font.MeasureString(face, run.Text)) / 64
+	stretch := textWidth(run.Text, run.Size) * r.scale / max(natural, 1e-9)
+	x := run.At.X * r.scale
 	for _, c := range run.Text {
-		w := textWidth(string(c), run.Size)
-		advance, _ := face.GlyphAdvance(c)
-		slack := (w*r.scale - float64(advance)/64) / 2
-		dot := fixed.Point26_6{X: fixed.Int26_6(64 * (x*r.scale + slack)), Y: fixed.Int26_6(64 * run.At.Y * r.scale)}
+		dot := fixed.Point26_6{X: fixed.Int26_6(64 * x), Y: fixed.Int26_6(64 * run.At.Y * r.scale)}
 		(&font.Drawer{Dst: r.img, Src: r.ink, Face: face, Dot: dot}).DrawString(string(c))
-		x += w
+		advance, _ := face.GlyphAdvance(c)
+		x += float64(advance) / 64 * stretch
 	}
 	return nil
 }

@@ -156,19 +156,33 @@ func (r *Route) ladder(t *writer, p *Plan) {
 	t.line("        %s", label(p.Target.Name, p.Target.SMILES))
 	for i := len(r.Steps) - 1; i >= 0; i-- {
 		s := &r.Steps[i]
-		gravest := ""
-		if len(s.Hazards) > 0 {
-			gravest = ", " + s.Hazards[0]
-		}
-		t.line("    |---|  %d %s, %s %% %s, %s d%s", s.Number, s.Name, Percent(s.Yield), letters[s.Origin], figureDays(daysOf(s)), gravest)
+		t.line("    |---|  %s", s.Rung())
 		if i == 0 {
 			break
 		}
-		below := &r.Steps[i-1]
-		t.line("    |   |    %s%s", label(below.ProductName, below.Product), r.bound(i-1))
+		t.line("    |   |    %s", r.StepProduct(i-1))
 	}
 	t.line("%s", ground)
 	t.line("  shelf: %s", r.Starts())
+}
+
+// Rung is the step in the words that stand on its rung: number, reaction, yield range with its origin, days, gravest
+// hazard.
+func (s *Step) Rung() string {
+	gravest := ""
+	if len(s.Hazards) > 0 {
+		gravest = ", " + s.Hazards[0]
+	}
+	return fmt.Sprintf("%d %s, %s %% %s, %s d%s", s.Number, s.Name, Percent(s.Yield), letters[s.Origin], figureDays(daysOf(s)), gravest)
+}
+
+// StepProduct is the product of step i (from 0) by name, with the steps that it goes to where they are not the next.
+func (r *Route) StepProduct(i int) string {
+	s := &r.Steps[i]
+	if i == len(r.Steps)-1 {
+		return label(s.ProductName, s.Product)
+	}
+	return label(s.ProductName, s.Product) + r.bound(i)
 }
 
 // bound names the step that an intermediate goes to, where that is not the rung above it.
