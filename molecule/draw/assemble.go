@@ -153,19 +153,23 @@ func (l *layout) linear(a int32) bool {
 	return doubles == 2
 }
 
-// cross says that the four bonds of a are drawn as a cross: three ends (tert-butyl, trifluoromethyl), or two
+// cross says that the four bonds of a are drawn as a cross: three ends (tert-butyl, trifluoromethyl), three rings
+// (trityl, triphenylphosphonium), or two
 // ends on an atom that is not carbon (sulfonyl, silyl, phosphoryl).
 func (l *layout) cross(a int32) bool {
 	if l.v.degree(a) != 4 {
 		return l.v.degree(a) > 4
 	}
-	ends := 0
+	ends, rings := 0, 0
 	for _, nb := range l.v.neighbors(a) {
 		if l.v.degree(nb.Atom) == 1 {
 			ends++
 		}
+		if l.member[nb.Atom] >= 0 {
+			rings++
+		}
 	}
-	return ends >= 3 || ends == 2 && l.v.atom(a).Element != 6
+	return ends >= 3 || rings >= 3 && l.member[a] < 0 || ends == 2 && l.v.atom(a).Element != 6
 }
 
 // roomier is the side (1 or -1) on which an atom at that turn from back has more room.

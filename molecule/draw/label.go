@@ -1,7 +1,9 @@
 package draw
 
 import (
+	"cmp"
 	"math"
+	"slices"
 	"strconv"
 
 	"shelfward/molecule"
@@ -114,6 +116,9 @@ func makeLabel(x molecule.Atom, p Point, neighbors []Point, st Style) label {
 	}
 	if x.Charge != 0 {
 		l.run(Point{end, base - 0.4*size}, small, chargeText(int(x.Charge)))
+	}
+	if side == left || side == right { // to be read and copied as it is seen
+		slices.SortStableFunc(l.runs, func(a, b Run) int { return cmp.Compare(a.At.X, b.At.X) })
 	}
 	return l
 }
