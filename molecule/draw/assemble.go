@@ -89,6 +89,8 @@ func (l *layout) expandChain(a int32, queue []int32) []int32 {
 	side := -float64(l.side[parent])
 	if branch := l.side[a] != 0; branch || side == 0 {
 		side = l.roomier(a, back, third)
+	} else if l.run[a] = l.run[parent] + 1; l.turns(a) {
+		side = -side
 	}
 	queue = l.hang(a, todo[0].atom, back+side*third, int8(side), 0, queue)
 	switch len(todo) {
@@ -103,6 +105,40 @@ func (l *layout) expandChain(a int32, queue []int32) []int32 {
 		}
 	}
 	return queue
+}
+
+// rowLength is the number of atoms of a chain after which it turns back, so that a long one fits on a page; the last
+// three of them make the turn. It is even: then one turn goes to the left and the next one to the right.
+const rowLength = 24
+
+// turns says that the chain goes round a corner at a instead of on in zig-zag. A turn begins only where three atoms
+// without branches follow each other and enough of the chain is left; else it is put off by two atoms.
+func (l *layout) turns(a int32) bool {
+	k := l.run[a] % rowLength
+	if k != rowLength-3 {
+		return k > rowLength-3
+	}
+	if l.v.degree(a) == 2 && l.height[a] >= 12 && l.plainAhead(a, 2) {
+		return true
+	}
+	l.run[a] -= 2
+	return false
+}
+
+// plainAhead says that the next atoms after a in a chain yet to be placed have no branches.
+func (l *layout) plainAhead(a int32, atoms int) bool {
+	for before := l.parentPlaced(a); atoms > 0; atoms-- {
+		for _, nb := range l.v.neighbors(a) {
+			if nb.Atom != before {
+				before, a = a, nb.Atom
+				break
+			}
+		}
+		if l.v.degree(a) != 2 || l.member[a] >= 0 || l.linear(a) {
+			return false
+		}
+	}
+	return true
 }
 
 // parentPlaced is the placed neighbour of a chain atom.

@@ -47,6 +47,7 @@ type layout struct {
 	parent  []int32 // atom -> atom it was reached from, -1 at the start
 	height  []int32 // atom -> longest way down from it
 	side    []int8  // atom -> side (1 left, -1 right) to which the chain turned at it
+	run     []int16 // atom -> how many the chain has run on to it without a branch or ring taking over
 	queue   []int32
 	systems []ringSystem
 	member  []int32 // atom -> its first ring system, -1 none
@@ -84,6 +85,7 @@ func (l *layout) load(m *molecule.Molecule) {
 	n := l.v.n
 	l.at, l.placed = resize(l.at, n), resize(l.placed, n)
 	l.parent, l.height, l.side = resize(l.parent, n), resize(l.height, n), resize(l.side, n)
+	l.run = resize(l.run, n)
 	l.frame, l.have, l.framed = resize(l.frame, n), resize(l.have, n), l.framed[:0]
 	l.marked = l.marked[:0]
 	if len(m.DoubleBonds()) > 0 {

@@ -103,6 +103,26 @@ func TestHabits(t *testing.T) {
 	}
 }
 
+// TestLongChainsTurnBack draws a chain of two hundred atoms in rows that fit on a page, without overlaps.
+func TestLongChainsTurnBack(t *testing.T) {
+	p := Layout(mustRead(t, strings.Repeat("C", 200)))
+	lo, hi := p[0], p[0]
+	for i, q := range p {
+		lo, hi = Point{min(lo.X, q.X), min(lo.Y, q.Y)}, Point{max(hi.X, q.X), max(hi.Y, q.Y)}
+		for j := range i {
+			if d := q.sub(p[j]).length(); d < 0.9 {
+				t.Fatalf("atoms %d and %d stand %.2f apart", j, i, d)
+			}
+		}
+	}
+	if wide := hi.X - lo.X; wide > 26 {
+		t.Errorf("%.1f bond lengths wide, at most 26 expected", wide)
+	}
+	if acid := Layout(mustRead(t, strings.Repeat("C", 17)+"C(=O)O")); acid[17].X-acid[0].X < 14 {
+		t.Error("stearic acid does not lie straight")
+	}
+}
+
 func TestSchemeMarksBonds(t *testing.T) {
 	r := Reaction{Reactants: []*molecule.Molecule{mustRead(t, "[CH3:1][C:2](=[O:3])[OH:4]"), mustRead(t, "[OH:5][CH3:6]")},
 		Products: []*molecule.Molecule{mustRead(t, "[CH3:1][C:2](=[O:3])[O:5][CH3:6]")}, Above: []string{"H2SO4"}, Below: []string{"reflux"}}
