@@ -115,8 +115,8 @@ func TestLongChainsTurnBack(t *testing.T) {
 			}
 		}
 	}
-	if wide := hi.X - lo.X; wide > 26 {
-		t.Errorf("%.1f bond lengths wide, at most 26 expected", wide)
+	if wide := hi.X - lo.X; wide > 30 {
+		t.Errorf("%.1f bond lengths wide, at most 30 expected (a last piece stays in its row)", wide)
 	}
 	if acid := Layout(mustRead(t, strings.Repeat("C", 17)+"C(=O)O")); acid[17].X-acid[0].X < 14 {
 		t.Error("stearic acid does not lie straight")
