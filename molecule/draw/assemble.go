@@ -366,7 +366,7 @@ func (l *layout) hangSystem(a int32, system int, queue []int32) []int32 {
 		if squeeze < 1 {
 			axis := turn.times(l.outward(s, a))
 			across := axis.left()
-			p = axis.scale(p.dot(axis)).add(across.scale(squeeze * p.dot(across)))
+			p = axis.scale(1.15 * p.dot(axis)).add(across.scale(1.15 * squeeze * p.dot(across)))
 		}
 		l.at[x] = l.at[a].add(p)
 		l.placed[x] = true

@@ -144,12 +144,13 @@ func (l *layout) mend(atoms []int32, x, y int32) bool {
 	for i := 0; i+1 < len(way); i++ {
 		a, b := way[i], way[i+1]
 		bond := l.v.joined(a, b)
-		if bond < 0 || l.v.m.Bond(int(bond)).Ring {
+		spiro := i > 0 && l.spiro(way[i-1], a, b)
+		if bond < 0 || l.v.m.Bond(int(bond)).Ring && !spiro {
 			continue
 		}
 		side := l.behind(b, a)
 		hinge, far := a, b
-		if 2*len(side) > len(atoms) {
+		if 2*len(side) > len(atoms) && !spiro {
 			side = l.behind(a, b)
 			hinge, far = b, a
 		}
@@ -163,6 +164,9 @@ func (l *layout) mend(atoms []int32, x, y int32) bool {
 		}
 		for kind := range moveKinds {
 			m := move{hinge, far, kind}
+			if spiro && (kind == 0 || kind%2 == 0 || math.Abs(swings[(kind-1)/2]) > 15) { // the ring swings a little as a whole
+				continue
+			}
 			if kind == 0 && l.v.m.Bond(int(bond)).Order == 2 && l.fixed(bond) || kind != 0 && !l.bends(m) {
 				continue
 			}
@@ -184,6 +188,28 @@ func (l *layout) mend(atoms []int32, x, y int32) bool {
 	}
 	l.apply(best, l.behind(best.far, best.hinge))
 	return true
+}
+
+// spiro says that x joins two ring systems and that the way from before to after leads from one into the other.
+func (l *layout) spiro(before, x, after int32) bool {
+	if l.member[before] < 0 || l.member[after] < 0 || l.member[x] < 0 {
+		return false
+	}
+	joins := 0
+	for i := range l.systems {
+		s := &l.systems[i]
+		if !slices.Contains(s.atoms, x) {
+			continue
+		}
+		p, q := slices.Contains(s.atoms, before), slices.Contains(s.atoms, after)
+		if p && q {
+			return false
+		}
+		if p || q {
+			joins++
+		}
+	}
+	return joins == 2
 }
 
 // move is a change to everything behind far, seen from hinge: kind 0 turns it over, the others swing it about
