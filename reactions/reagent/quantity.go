@@ -65,6 +65,7 @@ var quantities = []struct {
 	{regexp.MustCompile(`^` + number + span + ` ?(?:h|hr|hrs|hours?|mins?\.?|minutes?|days?|d|s|secs?|seconds?|weeks?|months?|g|mg|kg|ml|l|mmol|w|v|ma|times|drops?|portions?|volumes?|vol)` + end), useNothing},
 	{ordinal, useOrdinal},
 	{regexp.MustCompile(`^()()(\d|i{1,3}|iv|v|vi)[.)]( |$)`), useOrdinal},
+	{regexp.MustCompile(`^()()([a-d])\)( |$)`), useOrdinal},
 	{regexp.MustCompile(`^(\d+(?:[.,]\d+)?)(?: ?- ?(\d+))?` + end), useEquivalents},
 }
 
@@ -139,4 +140,4 @@ func usePressure(q *quantity, _, high float64, m []string) {
 
 func useNothing(*quantity, float64, float64, []string) {}
 
-func useOrdinal(q *quantity, _, _ float64, m []string) { q.later = m[3] != "1" && m[3] != "i" }
+func useOrdinal(q *quantity, _, _ float64, m []string) { q.later = m[3] != "1" && m[3] != "i" && m[3] != "a" }
