@@ -140,4 +140,6 @@ func usePressure(q *quantity, _, high float64, m []string) {
 
 func useNothing(*quantity, float64, float64, []string) {}
 
-func useOrdinal(q *quantity, _, _ float64, m []string) { q.later = m[3] != "1" && m[3] != "i" && m[3] != "a" }
+func useOrdinal(q *quantity, _, _ float64, m []string) {
+	q.later = m[3] != "1" && m[3] != "i" && m[3] != "a"
+}
