@@ -57,9 +57,6 @@ type leastTransform struct {
 
 // Bound says what making k costs at least and how many steps its longest run has at least; see above.
 func (c *chemistry) Bound(k search.Key, owed uint8) (int, float64) {
-	if c.unbounded {
-		return 0, 0
-	}
 	f := c.facts(k)
 	steps, least := c.reach.bound(&f, owed)
 	switch c.by {

@@ -50,8 +50,7 @@ type chemistry struct {
 	guesser       *guesser
 	least         []leastTransform // in order of weight
 	reach         *reach
-	unbounded     bool // no bounds for now, see unboundedOpenings
-	counted       int  // molecules run forwards that the search knows of
+	counted       int // molecules run forwards that the search knows of
 
 	mu        sync.RWMutex
 	molecules map[search.Key]*molecule.Molecule

@@ -2,7 +2,6 @@ package route
 
 import (
 	"cmp"
-	"context"
 	"fmt"
 	"slices"
 
@@ -41,25 +40,6 @@ func (c *chemistry) purchaseClass(k search.Key) int {
 
 // maxOpenings is how many purchases are proposed where the options do not say.
 const maxOpenings = 5
-
-// openedForPurchases molecules are opened where the bound alone has shown that no route exists.
-const openedForPurchases = 20
-
-// unboundedOpenings looks a little way back without the bounds, which leave closed what only a purchase would
-// complete.
-func (c *chemistry) unboundedOpenings(ctx context.Context, root search.Key, o search.Options) ([]search.Opening, error) {
-	o.Count, o.Progress, o.Time = 1, nil, o.Time/partOfTime
-	if o.MaxExpanded == 0 || o.MaxExpanded > openedForPurchases {
-		o.MaxExpanded = openedForPurchases
-	}
-	c.unbounded = true
-	defer func() { c.unbounded = false }()
-	found, err := search.Find(ctx, c, root, o)
-	if err != nil {
-		return nil, err
-	}
-	return found.Openings, nil
-}
 
 // openings proposes purchases, the cheapest class first; within one, substances with a known name.
 func (c *chemistry) openings(found []search.Opening, most int) []Opening {

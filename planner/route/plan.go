@@ -162,11 +162,6 @@ func Make(ctx context.Context, w *World, target *molecule.Molecule, o Options) (
 		}
 		p.Routes = append(p.Routes, *built)
 	}
-	if len(found.Routes) == 0 && len(found.Openings) == 0 && ctx.Err() == nil {
-		if found.Openings, err = c.unboundedOpenings(ctx, root, options); err != nil {
-			return nil, err
-		}
-	}
 	p.WouldOpen = c.openings(found.Openings, o.Openings)
 	p.fillSearch(found)
 	p.Search.Rules, p.Search.ShelfItems = len(w.Transforms), w.ShelfItems
