@@ -172,7 +172,7 @@ func Find(ctx context.Context, p Problem, target Key, options Options) (*Result,
 		} else if changed {
 			continue
 		}
-		if err := r.batch(ctx); err != nil {
+		if err := r.batch(ctx, r.choose()); err != nil {
 			return nil, err
 		}
 		r.g.propagate()
@@ -180,6 +180,9 @@ func Find(ctx context.Context, p Problem, target Key, options Options) (*Result,
 		if o.Progress != nil {
 			o.Progress(Progress{r.result.Expanded, min(len(r.routes), o.Count), r.bytes, r.bound(), time.Since(r.start)})
 		}
+	}
+	if err := r.openRoot(ctx); err != nil {
+		return nil, err
 	}
 	r.finish()
 	return &r.result, nil
@@ -250,13 +253,12 @@ func (r *run) choose() []int32 {
 }
 
 // batch opens one batch of nodes in parallel and enters what was found in the order of the batch.
-func (r *run) batch(ctx context.Context) error {
+func (r *run) batch(ctx context.Context, ids []int32) error {
 	if r.o.Time > 0 { // a long expansion is cut, too
 		var cancel context.CancelFunc
 		ctx, cancel = context.WithDeadline(ctx, r.start.Add(r.o.Time))
 		defer cancel()
 	}
-	ids := r.choose()
 	found := make([]Expansion, len(ids))
 	failed := make([]error, len(ids))
 	var next atomic.Int32
@@ -322,6 +324,22 @@ func (r *run) tighten(ctx context.Context) (bool, error) {
 		r.g.propagate()
 	}
 	return did.Changed, err
+}
+
+// openRoot opens the target where its bound alone said that there is no route: what would open one can
+// only be seen from there.
+func (r *run) openRoot(ctx context.Context) error {
+	root := &r.g.nodes[r.g.root]
+	if r.result.Stopped != Exhausted || !root.open || r.g.leaf(root, uint8(r.g.sets-1)) < inf || r.g.leafOnly(root, uint8(r.g.sets-1)) {
+		return nil
+	}
+	r.g.batch++
+	root.picked = r.g.batch
+	if err := r.batch(ctx, []int32{r.g.root}); err != nil {
+		return err
+	}
+	r.g.propagate()
+	return nil
 }
 
 // draw lists the routes of the graph as it stands, in order of cost.
