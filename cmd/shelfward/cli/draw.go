@@ -71,15 +71,17 @@ func (o *drawOptions) run(text string) error {
 	} else {
 		data.WriteString(picture.SVG() + "\n")
 	}
-	if o.app.JSON {
-		return printJSON(o.app.Out, drawJSON{File: o.out, SVG: picture.SVG(), Title: picture.Title, Description: picture.Description, Doubts: []string{}})
+	if o.out != "" {
+		if err := os.WriteFile(o.out, data.Bytes(), 0o644); err != nil {
+			return usageError("--out %s: cannot write: %v", o.out, plainReason(err))
+		}
 	}
-	if o.out == "" {
+	switch {
+	case o.app.JSON:
+		return printJSON(o.app.Out, drawJSON{File: o.out, SVG: picture.SVG(), Title: picture.Title, Description: picture.Description, Doubts: []string{}})
+	case o.out == "":
 		_, err := io.Copy(o.app.Out, &data)
 		return err
-	}
-	if err := os.WriteFile(o.out, data.Bytes(), 0o644); err != nil {
-		return usageError("--out %s: cannot write: %v", o.out, plainReason(err))
 	}
 	_, err = fmt.Fprintf(o.app.Out, "%s: %s, %.0f x %.0f points\n", o.out, picture.Description, picture.Width, picture.Height)
 	return err
