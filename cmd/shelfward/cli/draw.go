@@ -32,16 +32,16 @@ type drawOptions struct {
 func newDrawCommand(app *App) *cobra.Command {
 	o := &drawOptions{app: app}
 	cmd := &cobra.Command{
-		Use: "draw STRUCTURE|REACTION|PLAN.json", Short: "draw a structure, a reaction scheme or a route: SVG or PNG", Args: exactly(1),
+		Use: "draw STRUCTURE|REACTION|PLAN.json", Short: "draw a structure, a reaction scheme or a route: SVG, PNG or PDF", Args: exactly(1),
 		Long: "Draws a structure (SMILES, a name, a CAS number) or a reaction such as 'A.B>>C' ('A.B>D>C' writes D above the\n" +
-			"arrow). The SVG goes to standard output, or to FILE, which may end in .svg or .png. Where atom classes tell\n" +
+			"arrow). The SVG goes to standard output, or to FILE, which may end in .svg, .png or .pdf. Where atom classes tell\n" +
 			"(reaction SMILES with [CH3:1]), the bonds that the step makes are marked with a dot. Of a plan file (routes --out) one\n" +
 			"route is drawn as a ladder: the shelf is the ground, the target stands on top.\n" + exitHelp,
 		Example: "  shelfward draw 'ethyl acetate' --out ester.svg\n  shelfward draw 'CC(=O)O.OCC>>CC(=O)OCC' --above 'H2SO4 (cat.)' --below 'reflux, 4 h' --out scheme.png",
 		RunE:    func(c *cobra.Command, args []string) error { return o.run(args[0]) },
 	}
 	f := cmd.Flags()
-	f.StringVar(&o.out, "out", "", "file to write, .svg or .png (standard output otherwise, as SVG)")
+	f.StringVar(&o.out, "out", "", "file to write, .svg, .png or .pdf (standard output otherwise, as SVG)")
 	f.StringVar(&o.style, "style", "screen", draw.StyleNames)
 	f.StringArrayVar(&o.above, "above", nil, "line above the arrow (repeatable)")
 	f.StringArrayVar(&o.below, "below", nil, "line below the arrow (repeatable)")
@@ -56,20 +56,24 @@ func (o *drawOptions) run(text string) error {
 		return usageError("--style %s: %s was expected", o.style, draw.StyleNames)
 	}
 	ext := strings.ToLower(filepath.Ext(o.out))
-	if o.out != "" && ext != ".svg" && ext != ".png" {
-		return usageError("--out %s: a name that ends in .svg or .png was expected", o.out)
+	if o.out != "" && ext != ".svg" && ext != ".png" && ext != ".pdf" {
+		return usageError("--out %s: a name that ends in .svg, .png or .pdf was expected", o.out)
 	}
 	picture, err := o.picture(text, draw.Options{Style: style, Relative: o.relative})
 	if err != nil {
 		return err
 	}
 	var data bytes.Buffer
-	if ext == ".png" {
-		if err := picture.WritePNG(&data, pngScale); err != nil {
-			return err
-		}
-	} else {
+	switch ext {
+	case ".png":
+		err = picture.WritePNG(&data, pngScale)
+	case ".pdf":
+		err = picture.WritePDF(&data)
+	default:
 		data.WriteString(picture.SVG() + "\n")
+	}
+	if err != nil {
+		return err
 	}
 	if o.out != "" {
 		if err := os.WriteFile(o.out, data.Bytes(), 0o644); err != nil {
