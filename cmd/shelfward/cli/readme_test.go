@@ -3,6 +3,7 @@ package cli
 import (
 	"bytes"
 	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 )
@@ -52,18 +53,27 @@ func words(line string) []string {
 	return out
 }
 
-// TestReadmeExamples runs every command of the README from the top of the repository. Searches are cut
+// TestReadmeExamples runs every command of the README in a folder that holds the repository's testdata, so that what
+// the examples write stays out of the tree. Searches are cut
 // short by --max-expanded where the line sets no limit of its own.
 func TestReadmeExamples(t *testing.T) {
 	commands := readmeCommands(t)
 	if len(commands) < 10 {
 		t.Fatalf("only %d examples found in README.md", len(commands))
 	}
+	folder := t.TempDir()
+	top, err := filepath.Abs(root)
+	if err == nil {
+		err = os.Symlink(filepath.Join(top, "testdata"), filepath.Join(folder, "testdata"))
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
 	for _, line := range commands {
 		t.Run(line, func(t *testing.T) {
 			args := append(words(line), "--quiet")
 			var out, errOut bytes.Buffer
-			status := inFolder(root, func() int { return sharedApp(strings.NewReader("OCC ethanol\n"), &out, &errOut).main(args) })
+			status := inFolder(folder, func() int { return sharedApp(strings.NewReader("OCC ethanol\n"), &out, &errOut).main(args) })
 			if status != exitDone {
 				t.Fatalf("status %d\n%s%s", status, out.String(), errOut.String())
 			}
