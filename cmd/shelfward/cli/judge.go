@@ -71,20 +71,9 @@ func (o *judgeOptions) run(c *cobra.Command, text string) error {
 	if err != nil {
 		return err
 	}
-	fsys, err := o.app.ruleFiles()
+	b, table, err := o.rules(products)
 	if err != nil {
 		return err
-	}
-	if err := o.app.declineProducts(fsys, products); err != nil {
-		return err
-	}
-	b, err := o.app.book()
-	if err != nil {
-		return err
-	}
-	table, err := reagent.Load(fsys)
-	if err != nil {
-		return failWith(exitUsage, err)
 	}
 	described := len(o.with) > 0
 	j, err := b.Judge(c.Context(), reactants, products, table.ReadList(o.with, nil), described, table)
@@ -96,6 +85,23 @@ func (o *judgeOptions) run(c *cobra.Command, text string) error {
 	}
 	printJudgement(o.app.Out, reactants, products, j)
 	return nil
+}
+
+// rules declines restricted products, then loads the transforms and the list of reagents.
+func (o *judgeOptions) rules(products []*molecule.Molecule) (*reactions.Book, *reagent.Table, error) {
+	fsys, err := o.app.ruleFiles()
+	if err != nil {
+		return nil, nil, err
+	}
+	if err := o.app.declineProducts(fsys, products); err != nil {
+		return nil, nil, err
+	}
+	b, err := o.app.book()
+	if err != nil {
+		return nil, nil, err
+	}
+	table, err := reagent.Load(fsys)
+	return b, table, failWith(exitUsage, err)
 }
 
 func printJSON(w io.Writer, v any) error {

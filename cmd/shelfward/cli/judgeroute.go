@@ -12,7 +12,6 @@ import (
 
 	"shelfward/molecule"
 	"shelfward/reactions"
-	"shelfward/reactions/reagent"
 )
 
 // stepLine is one step of a route file: a line 'A.B>>C', a tab, the conditions.
@@ -79,22 +78,13 @@ func (o *judgeOptions) runRoute(c *cobra.Command, path string) error {
 	if err != nil {
 		return err
 	}
-	fsys, err := o.app.ruleFiles()
-	if err != nil {
-		return err
-	}
+	var products []*molecule.Molecule
 	for _, s := range steps {
-		if err := o.app.declineProducts(fsys, s.products); err != nil {
-			return err
-		}
+		products = append(products, s.products...)
 	}
-	b, err := o.app.book()
+	b, table, err := o.rules(products)
 	if err != nil {
 		return err
-	}
-	table, err := reagent.Load(fsys)
-	if err != nil {
-		return failWith(exitUsage, err)
 	}
 	list := make([]reactions.Judgement, len(steps))
 	for i, s := range steps {
