@@ -14,7 +14,7 @@ func (m *Molecule) SeparateCharges() *Molecule {
 		switch {
 		case b.Atoms[a].Element == 7:
 			c.pentavalent(int32(a))
-		case isHalogen(b.Atoms[a].Element):
+		case b.Atoms[a].Element.IsHalogen():
 			c.halate(int32(a))
 		}
 	}

@@ -158,6 +158,9 @@ func ElementBySymbol(s string) (Element, bool) {
 	return e, ok
 }
 
+// IsHalogen says whether e is fluorine, chlorine, bromine or iodine.
+func (e Element) IsHalogen() bool { return e == 9 || e == 17 || e == 35 || e == 53 }
+
 // IsMetal says whether e counts as a metal in a salt or organometallic compound: everything but
 // hydrogen, the noble gases, halogens and B C N O Si P S Ge As Se Te.
 func (e Element) IsMetal() bool {

@@ -189,15 +189,13 @@ func (f *freeing) joinOrganometals() bool {
 	}
 	for _, metal := range metals {
 		for a := range b.Atoms {
-			if b.Atoms[metal].Charge > 0 && isHalogen(b.Atoms[a].Element) && b.Atoms[a].Charge == -1 && len(f.nbs[a]) == 0 && holdsCarbon(metal) {
+			if b.Atoms[metal].Charge > 0 && b.Atoms[a].Element.IsHalogen() && b.Atoms[a].Charge == -1 && len(f.nbs[a]) == 0 && holdsCarbon(metal) {
 				join(int32(a), metal)
 			}
 		}
 	}
 	return changed
 }
-
-func isHalogen(e Element) bool { return e == 9 || e == 17 || e == 35 || e == 53 }
 
 // neutralise drops counter-ions and moves protons.
 func (f *freeing) neutralise() bool {

@@ -118,7 +118,7 @@ func fillUp(x *Atom, sum int16) uint8 {
 
 func (p *perceiver) checkValence(a int) error {
 	x := &p.m.atoms[a]
-	p.m.redraw = p.m.redraw || x.Charge > 0 && isHalogen(x.Element)
+	p.m.redraw = p.m.redraw || x.Charge > 0 && x.Element.IsHalogen()
 	list := valences(x)
 	if list == nil {
 		return nil
@@ -133,7 +133,7 @@ func (p *perceiver) checkValence(a int) error {
 		}
 		most = 3
 	}
-	if total > 1 && x.Charge == 0 && isHalogen(x.Element) && !p.oxidised(a) {
+	if total > 1 && x.Charge == 0 && x.Element.IsHalogen() && !p.oxidised(a) {
 		most = 1
 	}
 	if total <= most || x.Charge == 0 && total <= highest[x.Element] {

@@ -115,8 +115,6 @@ func (w *writer) charge(a int32) int { return int(w.m.Atom(int(a)).Charge) }
 
 func (w *writer) hydrogens(a int32) int { return int(w.m.Atom(int(a)).Hydrogens) }
 
-func isHalogen(e molecule.Element) bool { return e == 9 || e == 17 || e == 35 || e == 53 }
-
 // plain says whether the atom bears no charge.
 func (w *writer) plain(a int32) bool { return w.charge(a) == 0 }
 
@@ -269,7 +267,7 @@ func (w *writer) acylGroup(a, x, y, host int32, within bool) *group {
 		default:
 			return nil
 		}
-	case ex == 8 && isHalogen(ey):
+	case ex == 8 && ey.IsHalogen():
 		g.used = append(g.used, y)
 		g.class, g.forms = acylHalide, forms{chain: "oyl", side: "carbonyl", word: halideWord(ey)}
 	case ex == 8 && ey == 16:

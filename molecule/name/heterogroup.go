@@ -46,11 +46,11 @@ func (w *writer) carbonicGroup(a, x, p, q int32) *group {
 		if ex == 16 {
 			g.chain = "carbamodithioate"
 		}
-	case ep == 7 && isHalogen(eq) && ex == 8 && amino(p):
+	case ep == 7 && eq.IsHalogen() && ex == 8 && amino(p):
 		g.nitrogens, g.class, g.chain, g.word = []int32{p}, carbonHalide, "carbamoyl", halideWord(eq)
 	case ep == 8 && eq == 8 && ex == 8 && w.esterOxygen(p, a) && w.esterOxygen(q, a):
 		g.class, g.chain, g.esters = carbonEster, "carbonate", []int32{p, q}
-	case ex == 8 && (ep == 8 && isHalogen(eq) && w.esterOxygen(p, a) || eq == 8 && isHalogen(ep) && w.esterOxygen(q, a)):
+	case ex == 8 && (ep == 8 && eq.IsHalogen() && w.esterOxygen(p, a) || eq == 8 && ep.IsHalogen() && w.esterOxygen(q, a)):
 		if ep != 8 {
 			p, ep, eq = q, eq, ep
 		}
@@ -121,7 +121,7 @@ func (w *writer) sulfurGroup(a int32) *group {
 		}
 	case e == 8 && w.esterOxygen(y, a):
 		g.class, g.chain, g.esters = sulfonicEster, root+"ate", []int32{y}
-	case isHalogen(e):
+	case e.IsHalogen():
 		g.class, g.chain, g.word = sulfonylHalide, root+"yl", halideWord(e)
 	case e == 7 && !w.inRing(y) && w.plainAmine(y, a) && w.hydrazinePartner(y, a) >= 0:
 		z := w.hydrazinePartner(y, a)

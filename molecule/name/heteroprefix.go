@@ -63,7 +63,7 @@ func (w *writer) sulfonylPrefix(a, from int32, r around) sub {
 		return simple("sulfo")
 	case e == 7 && !w.inRing(y) && w.plainAmine(y, a) && radical == "sulfonyl" && w.hydrazinePartner(y, a) < 0:
 		return w.radical(y, a, "sulfamoyl")
-	case isHalogen(e), e == 8, e == 7:
+	case e.IsHalogen(), e == 8, e == 7:
 		return compound(w.linked(w.prefix(y, a), radical))
 	}
 	return sub{}

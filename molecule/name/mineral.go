@@ -50,7 +50,7 @@ func (w *writer) metalName(x int32) string {
 			return ""
 		case e == 6 || w.element(x) == 50:
 			list = append(list, affix{sub: w.prefix(nb.Atom, x)})
-		case isHalogen(e) && halide == 0:
+		case e.IsHalogen() && halide == 0:
 			halide = e
 		default:
 			w.fail = true

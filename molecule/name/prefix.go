@@ -168,7 +168,7 @@ func (w *writer) acylPrefix(a, from int32) sub {
 		return simple("carboxy")
 	case ey == 8 && w.charge(y) == 0 && w.degree(y) == 2 && (ex == 8 || ex == 16):
 		return compound(w.linked(w.prefix(y, a), acylRadical(ex)))
-	case ex == 8 && isHalogen(ey):
+	case ex == 8 && ey.IsHalogen():
 		return simple("carbono" + strings.TrimSuffix(halideWord(ey), "e") + "oyl")
 	case ey == 16 && w.plain(y) && (ex == 8 || ex == 16):
 		return compound(w.linked(w.prefix(y, a), acylRadical(ex)))

@@ -117,9 +117,7 @@ const (
 	iodine   = 53
 )
 
-func isHalogen(el uint8) bool {
-	return el == fluorine || el == chlorine || el == bromine || el == iodine
-}
+func isHalogen(el uint8) bool { return molecule.Element(el).IsHalogen() }
 
 // doubleTo returns the neighbour of a across a double bond with the given element, or -1.
 func (p *Predictor) doubleTo(a int, el uint8) int {
