@@ -308,7 +308,7 @@ func (m *mapper) broken(bond int) int {
 		if m.plain(int(b.A)) && m.plain(int(b.B)) {
 			cost = costBrokenPlain
 		}
-	case halogen(x) || halogen(y):
+	case x.IsHalogen() || y.IsHalogen():
 		cost = costBrokenHalide
 	case x == carbon && acyl(m.l, int(b.A)) || y == carbon && acyl(m.l, int(b.B)):
 		cost = costBrokenAcyl
@@ -326,8 +326,6 @@ func (m *mapper) broken(bond int) int {
 func (m *mapper) plain(a int) bool {
 	return pattern.Hybridisation(m.l, a) == "sp3" && heteroNeighbours(m.l, a) == 0
 }
-
-func halogen(e molecule.Element) bool { return e == 9 || e == 17 || e == 35 || e == 53 }
 
 // acyl says that a carbon carries a double bond to oxygen, sulfur or nitrogen.
 func acyl(m *molecule.Molecule, a int) bool {

@@ -11,7 +11,6 @@ import (
 	"strings"
 
 	"shelfward/molecule"
-	"shelfward/molecule/smiles"
 )
 
 // Sketch is a transform read off a drawing.
@@ -164,31 +163,21 @@ func (s *Sketch) Main() *molecule.Molecule {
 	return main
 }
 
-func carbons(m *molecule.Molecule) int {
-	n := 0
-	for a := range m.NumAtoms() {
-		if m.Atom(a).Element == carbon {
-			n++
-		}
-	}
-	return n
-}
+func carbons(m *molecule.Molecule) int { return int(m.Formula().Count[carbon]) }
 
 // Balance says what the reagents must bring and take so that the drawn equation closes, such as '+ O - 2 H';
 // leaving groups go as drawn, each with a hydrogen. It is empty where nothing is missing.
 func (s *Sketch) Balance() string {
-	count := map[molecule.Element]int{}
-	add := func(m *molecule.Molecule, sign int) {
-		for a := range m.NumAtoms() {
-			count[m.Atom(a).Element] += sign
-			count[1] += sign * int(m.Atom(a).Hydrogens)
+	var count [len(molecule.Formula{}.Count)]int
+	for _, m := range s.Products {
+		for el, n := range m.Formula().Count {
+			count[el] += int(n)
 		}
 	}
-	for _, m := range s.Products {
-		add(m, 1)
-	}
 	for _, m := range s.Reactants {
-		add(m, -1)
+		for el, n := range m.Formula().Count {
+			count[el] -= int(n)
+		}
 	}
 	used := make([]bool, s.left.NumAtoms())
 	for _, r := range s.to {
@@ -209,8 +198,8 @@ func (s *Sketch) Balance() string {
 		}
 	}
 	var sb strings.Builder
-	for el := molecule.Element(1); el < 120; el++ {
-		switch n := count[el]; {
+	for el, n := range count {
+		switch el := molecule.Element(el); {
 		case n > 0:
 			fmt.Fprintf(&sb, " + %d %s", n, el.Symbol())
 		case n < 0:
@@ -218,19 +207,4 @@ func (s *Sketch) Balance() string {
 		}
 	}
 	return strings.TrimSpace(sb.String())
-}
-
-func written(m *molecule.Molecule) string { return smiles.Write(withoutClasses(m)) }
-
-// withoutClasses drops the atom numbers of the drawing.
-func withoutClasses(m *molecule.Molecule) *molecule.Molecule {
-	b := m.Builder()
-	for i := range b.Atoms {
-		b.Atoms[i].Class = 0
-	}
-	plain, err := b.Build()
-	if err != nil {
-		return m
-	}
-	return plain
 }

@@ -183,7 +183,7 @@ func texts(parts []Part) []string {
 func molecules(ms []*molecule.Molecule) []string {
 	out := make([]string, len(ms))
 	for i, m := range ms {
-		out[i] = written(m)
+		out[i] = smiles.Write(m)
 	}
 	return out
 }
@@ -235,5 +235,5 @@ func (s *Sketch) writeChoices(sb *strings.Builder) {
 
 // Example writes the drawing as an example of the transform.
 func (s *Sketch) Example() string {
-	return fmt.Sprintf("{from: %s, to: '%s'}", quoted(molecules(s.Reactants)), written(s.Main()))
+	return fmt.Sprintf("{from: %s, to: '%s'}", quoted(molecules(s.Reactants)), smiles.Write(s.Main()))
 }
